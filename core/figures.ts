@@ -61,7 +61,10 @@ export interface FigureTree {
   /** At the end of the drive window, by level name. */
   readonly populations: Readonly<Record<string, number>>;
   readonly pulse: PulseFigures;
-  readonly phonons: { readonly method: 'none' | 'polaron' | 'weak-coupling' | 'exact'; readonly flags: readonly string[] };
+  readonly phonons: {
+    readonly method: 'none' | 'polaron' | 'weak-coupling' | 'exact';
+    readonly flags: readonly string[];
+  };
   readonly accuracy: {
     /** Steps of the propagator (summed over drift nodes). */
     readonly steps: number;

@@ -1,7 +1,21 @@
+import type { Design, Figures } from '../../core/index.js';
+
 /** A value that the search may choose, in internal units. `path` is that of the study file, such as `pulse.tones.0.fwhm`. */
 export type FreeParameter =
-  | { readonly kind: 'range'; readonly path: string; readonly from: number; readonly to: number; readonly scale: 'linear' | 'log' }
+  | {
+      readonly kind: 'range';
+      readonly path: string;
+      readonly from: number;
+      readonly to: number;
+      readonly scale: 'linear' | 'log';
+    }
   | { readonly kind: 'list'; readonly path: string; readonly values: readonly number[] };
+
+/** `path` always has the value of `sameAs` (both study-file paths). */
+export interface Tie {
+  readonly path: string;
+  readonly sameAs: string;
+}
 
 export interface Goal {
   /** Minimised: of what is collected per pulse. */
@@ -12,4 +26,22 @@ export interface Goal {
   readonly atLeast: number | null;
   /** Brightness levels of the front; from/to null = the reachable range. */
   readonly front: { readonly from: number | null; readonly to: number | null; readonly points: number };
+}
+
+/** The whole search problem as plain data (structured-cloneable, JSON-able): a worker rebuilds everything from it. */
+export interface ProblemSpec {
+  /** Every fixed value in place; free values hold the start of their range (or the first of their list). */
+  readonly design: Design;
+  /** In the order of the study file; empty for a fixed design. */
+  readonly parameters: readonly FreeParameter[];
+  readonly ties: readonly Tie[];
+  readonly goal: Goal;
+  readonly search: { readonly evaluations: number; readonly seed: number };
+}
+
+/** One evaluated candidate. */
+export interface EvaluatedPoint {
+  /** Free-parameter values, internal units, order of `ProblemSpec.parameters`. */
+  readonly values: readonly number[];
+  readonly figures: Figures;
 }
