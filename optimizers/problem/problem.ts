@@ -1,0 +1,40 @@
+import type { Design, Figures } from '../../core/index.js';
+import type { EvaluatedPoint, ProblemSpec } from './contract.js';
+import { type Judgement, judge } from './judge.js';
+import { applyParameters } from './path.js';
+import { type Space, transformOf } from './space.js';
+
+/** Figures of a design; `core`'s `evaluate` at the search's accuracy, or a stand-in. */
+export type Evaluate = (design: Design) => Figures;
+
+/** One evaluated candidate with the two numbers of the goal read from its figures. */
+export interface Candidate extends EvaluatedPoint, Judgement {}
+
+/** A search problem in the unit cube. */
+export interface Problem {
+  readonly space: Space;
+  /** From the unit cube to parameter values, internal units; a coordinate outside [0, 1] is clamped. */
+  readonly valuesAt: (x: readonly number[]) => number[];
+  /** From parameter values to the unit cube. */
+  readonly unitOf: (values: readonly number[]) => number[];
+  /** One objective value. */
+  readonly evaluate: (x: readonly number[]) => Candidate;
+}
+
+/** Builds the problem of a specification. Throws when a path does not exist, a tie is circular or a range is empty. */
+export function createProblem(spec: ProblemSpec, evaluate: Evaluate): Problem {
+  const transforms = spec.parameters.map(transformOf);
+  const valuesAt = (x: readonly number[]) => transforms.map((transform, i) => transform.value(x[i]));
+  // A wrong path or a circular tie is a fault of the study, not of a candidate: found before the search.
+  applyParameters(spec, valuesAt(transforms.map(() => 0)));
+  return {
+    space: { dimension: transforms.length, categories: transforms.map((transform) => transform.categories) },
+    valuesAt,
+    unitOf: (values) => transforms.map((transform, i) => transform.unit(values[i])),
+    evaluate: (x) => {
+      const values = valuesAt(x);
+      const figures = evaluate(applyParameters(spec, values));
+      return { values, figures, ...judge(figures, spec.goal) };
+    },
+  };
+}
