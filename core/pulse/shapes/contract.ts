@@ -1,0 +1,41 @@
+/** Envelope of area 1 in closed form, about its own centre: `env(t) = magnitude(t)·e^{i(phase + chirp·t²)}`. */
+export interface ClosedEnvelope {
+  /** |env(t)|, 1/ps. */
+  magnitude(t: number): number;
+  /** Constant phase, rad. */
+  readonly phase: number;
+  /** Quadratic phase, rad/ps²; the instantaneous frequency is −2·chirp·t. */
+  readonly chirp: number;
+  /** Largest magnitude, 1/ps. */
+  readonly peak: number;
+  /** ∫|env| dt. */
+  readonly absoluteArea: number;
+  /** Characteristic time of the magnitude, ps. */
+  readonly timeScale: number;
+  /** |t| beyond which |env| < eps·peak, ps. */
+  reach(eps: number): number;
+}
+
+/** A transform-limited pulse shape, scaled to area 1, with the FWHM (ps) of its intensity as only parameter. */
+export interface PulseShape {
+  readonly name: string;
+  readonly summary: string;
+  /** FWHM of |env|² in ps times FWHM of |spectrum|² as an ordinary frequency in THz. */
+  readonly timeBandwidth: number;
+  /** Field envelope, 1/ps; at a discontinuity the value inside the pulse. */
+  envelope(t: number, fwhm: number): number;
+  /** ∫ env e^{iωt} dt (real and even, 1 at ω = 0); ω in 1/ps. */
+  spectrum(omega: number, fwhm: number): number;
+  /** Characteristic time of the envelope, ps: field σ, T of sech(t/T), or the whole width of a square. */
+  timeScale(fwhm: number): number;
+  /** |t| beyond which the envelope is below eps times its peak, ps. */
+  reach(fwhm: number, eps: number): number;
+  /** |ω| beyond which |spectrum| < eps, 1/ps; Infinity when it falls too slowly to be cut there. */
+  spectralReach(fwhm: number, eps: number): number;
+  /** Times of discontinuities of the envelope, ps, ascending. */
+  edges(fwhm: number): readonly number[];
+  /** Dispersed by `gdd` (ps²) alone, where a closed form exists. */
+  readonly dispersed?: (fwhm: number, gdd: number) => ClosedEnvelope;
+  /** ∫ env² dt, 1/ps. */
+  energy(fwhm: number): number;
+}

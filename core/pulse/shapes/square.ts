@@ -1,0 +1,21 @@
+import type { PulseShape } from './contract.js';
+
+/** Root of sinc²(x) = ½ (from memory; the test recomputes it). */
+const HALF_POWER = 1.3915573782515103;
+
+/** 1/T on |t| ≤ T/2; spectrum sin(ωT/2)/(ωT/2). */
+export const square: PulseShape = {
+  name: 'square',
+  summary: 'rectangular with sharp edges, time–bandwidth product 0.886',
+  timeBandwidth: (2 * HALF_POWER) / Math.PI,
+  envelope: (t, fwhm) => (Math.abs(t) <= 0.5 * fwhm ? 1 / fwhm : 0),
+  spectrum(omega, fwhm) {
+    const x = 0.5 * omega * fwhm;
+    return Math.abs(x) < 1e-4 ? 1 - (x * x) / 6 : Math.sin(x) / x;
+  },
+  timeScale: (fwhm) => fwhm,
+  reach: (fwhm) => 0.5 * fwhm,
+  spectralReach: () => Number.POSITIVE_INFINITY,
+  edges: (fwhm) => [-0.5 * fwhm, 0.5 * fwhm],
+  energy: (fwhm) => 1 / fwhm,
+};
