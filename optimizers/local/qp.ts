@@ -1,0 +1,100 @@
+/** Dense symmetric matrix, rows. */
+export type Matrix = readonly (readonly number[])[];
+
+/** Quadratic model of a constrained problem around the current point, for a step p. */
+export interface QuadraticProgram {
+  /** Gradient of the objective. */
+  readonly gradient: readonly number[];
+  /** Positive definite Hessian of the Lagrangian. */
+  readonly hessian: Matrix;
+  /** Values c_j of the constraints c_j + a_j·p ≤ 0, and their gradients a_j. */
+  readonly values: readonly number[];
+  readonly normals: Matrix;
+  /** Bounds of the step, lower ≤ 0 ≤ upper. */
+  readonly lower: readonly number[];
+  readonly upper: readonly number[];
+  /** Weight μ of the constraint violation; bounds every multiplier. */
+  readonly penalty: number;
+}
+
+const dot = (a: readonly number[], b: readonly number[]) =>
+  a.reduce((sum, value, i) => sum + value * b[i], 0);
+
+const SWEEPS = 400;
+const BISECTIONS = 60;
+
+/** Minimises g·p + ½ pᵀHp over a box by cyclic coordinate descent; `step` is the start and is overwritten. */
+function boxMinimum(
+  gradient: readonly number[],
+  hessian: Matrix,
+  program: QuadraticProgram,
+  step: number[],
+): void {
+  for (let sweep = 0; sweep < SWEEPS; sweep++) {
+    let moved = 0;
+    for (let i = 0; i < step.length; i++) {
+      const slope = gradient[i] + dot(hessian[i], step);
+      const next = Math.min(Math.max(step[i] - slope / hessian[i][i], program.lower[i]), program.upper[i]);
+      moved = Math.max(moved, Math.abs(next - step[i]));
+      step[i] = next;
+    }
+    if (moved < 1e-13) return;
+  }
+}
+
+/**
+ * Minimises g·p + ½ pᵀHp + μ Σ max(0, c_j + a_j·p) over a box: the elastic subproblem of a trust-region SQP method
+ * (Nocedal & Wright, *Numerical Optimization*, 2nd ed., section 18.5). Solved through its dual: each multiplier within
+ * [0, μ] by bisection on its constraint, cyclically for several. Returns the step and the multipliers.
+ */
+export function solveQuadratic(program: QuadraticProgram): { step: number[]; multipliers: number[] } {
+  const { gradient, hessian, values, normals, penalty } = program;
+  const step = gradient.map(() => 0);
+  const multipliers = values.map(() => 0);
+  const solve = () => {
+    const pulled = gradient.map((g, i) => multipliers.reduce((sum, m, j) => sum + m * normals[j][i], g));
+    boxMinimum(pulled, hessian, program, step);
+  };
+  const residual = (j: number) => values[j] + dot(normals[j], step);
+  const settle = (j: number) => {
+    multipliers[j] = 0;
+    solve();
+    if (residual(j) <= 0) return;
+    multipliers[j] = penalty;
+    solve();
+    if (residual(j) >= 0) return;
+    let low = 0;
+    let high = penalty;
+    for (let k = 0; k < BISECTIONS && high - low > 1e-13 * high; k++) {
+      multipliers[j] = (low + high) / 2;
+      solve();
+      if (residual(j) > 0) low = multipliers[j];
+      else high = multipliers[j];
+    }
+    multipliers[j] = high;
+    solve();
+  };
+  solve();
+  const rounds = values.length > 1 ? 20 : 1;
+  for (let round = 0; round < rounds; round++) {
+    const before = [...multipliers];
+    for (let j = 0; j < values.length; j++) settle(j);
+    if (multipliers.every((m, j) => Math.abs(m - before[j]) <= 1e-10 * penalty)) break;
+  }
+  return { step, multipliers };
+}
+
+/**
+ * Powell's damped BFGS update of a positive definite matrix (Powell, Lecture Notes in Mathematics 630, 144 (1978)):
+ * `s` the step, `y` the change of the gradient of the Lagrangian.
+ */
+export function dampedUpdate(hessian: Matrix, s: readonly number[], y: readonly number[]): number[][] {
+  const hs = hessian.map((row) => dot(row, s));
+  const shs = dot(s, hs);
+  const sy = dot(s, y);
+  if (!(shs > 0)) return hessian.map((row) => [...row]);
+  const theta = sy >= 0.2 * shs ? 1 : (0.8 * shs) / (shs - sy);
+  const r = y.map((value, i) => theta * value + (1 - theta) * hs[i]);
+  const sr = dot(s, r);
+  return hessian.map((row, i) => row.map((value, k) => value - (hs[i] * hs[k]) / shs + (r[i] * r[k]) / sr));
+}

@@ -1,0 +1,120 @@
+import { compareReplies } from './compare.js';
+import { FAILED, type Method, type Reply, type Setup, type Trial } from './contract.js';
+import { randomStream } from './random.js';
+
+/** A search under way: plain data, JSON without loss. */
+export interface SessionState {
+  readonly method: string;
+  readonly setup: Setup;
+  readonly replies: readonly Reply[];
+}
+
+const clean = (value: number) => (Number.isFinite(value) ? value : FAILED);
+
+function checkSetup(method: Method, setup: Setup): void {
+  const { name, traits } = method;
+  if (traits.objectives === 'one' && setup.objectives !== 1) {
+    throw new Error(`${name}: got ${setup.objectives} objectives; it takes one`);
+  }
+  if (setup.constraints > 0 && !traits.constraints) {
+    throw new Error(`${name}: got ${setup.constraints} constraints; it takes none`);
+  }
+  for (const start of setup.start) {
+    if (start.length !== setup.space.dimension || !start.every((u) => u >= 0 && u <= 1)) {
+      throw new Error(`${name}: a start must have ${setup.space.dimension} coordinates within 0 and 1`);
+    }
+  }
+}
+
+/**
+ * Drives one method by ask and tell and keeps its budget to the evaluation. `state` is all it takes to go on later:
+ * resuming replays the replies, which costs no evaluation.
+ */
+export class Session {
+  readonly #method: Method;
+  readonly #setup: Setup;
+  readonly #replies: Reply[] = [];
+  readonly #steps: Generator<readonly Trial[], void, readonly Reply[]>;
+  #pending: readonly Trial[] = [];
+
+  constructor(method: Method, setup: Setup) {
+    checkSetup(method, setup);
+    this.#method = method;
+    this.#setup = structuredClone(setup) as Setup;
+    this.#steps = method.run(this.#setup, randomStream(setup.seed, 0));
+    this.#take(setup.budget > 0 ? this.#steps.next() : { done: true, value: undefined });
+  }
+
+  /** The trials to evaluate next; empty when the method has ended or its budget is spent. */
+  ask(): readonly Trial[] {
+    return this.#pending;
+  }
+
+  /** The replies to all trials of the last `ask`, in their order. */
+  tell(replies: readonly Reply[]): void {
+    if (replies.length !== this.#pending.length) {
+      throw new Error(
+        `${this.#method.name}: got ${replies.length} replies to ${this.#pending.length} trials`,
+      );
+    }
+    if (replies.length === 0) return;
+    const cleaned = replies.map((reply) => ({
+      objectives: reply.objectives.map(clean),
+      constraints: reply.constraints.map(clean),
+    }));
+    for (const reply of cleaned) this.#replies.push(reply);
+    if (this.#replies.length >= this.#setup.budget) this.#pending = [];
+    else this.#take(this.#steps.next(cleaned));
+  }
+
+  state(): SessionState {
+    return { method: this.#method.name, setup: this.#setup, replies: [...this.#replies] };
+  }
+
+  #take(step: IteratorResult<readonly Trial[], void>): void {
+    const left = this.#setup.budget - this.#replies.length;
+    this.#pending = step.done === true ? [] : step.value.slice(0, left).map((trial) => [...trial]);
+  }
+}
+
+/** A session that goes on where `state` was taken. `method` must be the one that the state names. */
+export function resumeSession(method: Method, state: SessionState): Session {
+  if (state.method !== method.name)
+    throw new Error(`got ${method.name}; the state is one of ${state.method}`);
+  const session = new Session(method, state.setup);
+  for (let told = 0; told < state.replies.length; ) {
+    const count = session.ask().length;
+    if (count === 0) throw new Error(`${method.name}: the state has more replies than the method asks for`);
+    session.tell(state.replies.slice(told, told + count));
+    told += count;
+  }
+  return session;
+}
+
+/** One evaluated trial. */
+export interface TrialResult {
+  readonly x: Trial;
+  readonly reply: Reply;
+}
+
+/**
+ * Runs a method to its end or to the end of its budget. Returns every evaluation in order and the best one by the
+ * feasibility rules (of the first objective); null when nothing was evaluated.
+ */
+export function optimize(
+  method: Method,
+  setup: Setup,
+  evaluate: (x: Trial) => Reply,
+): { readonly trace: readonly TrialResult[]; readonly best: TrialResult | null } {
+  const session = new Session(method, setup);
+  const trials: Trial[] = [];
+  for (let asked = session.ask(); asked.length > 0; asked = session.ask()) {
+    trials.push(...asked);
+    session.tell(asked.map((x) => evaluate([...x])));
+  }
+  const trace = session.state().replies.map((reply, i) => ({ x: trials[i], reply }));
+  let best: TrialResult | null = null;
+  for (const result of trace)
+    if (best === null || compareReplies(result.reply, best.reply) < 0) best = result;
+  return { trace, best };
+}
