@@ -1,0 +1,30 @@
+import type { FigureTree } from './figures.js';
+
+/** Smallest value at which a relative accuracy is promised. */
+const FLOOR = 1e-7;
+/** p_0 and p_1 are promised to 1e-9 absolute where others are promised to 1e-6 relative. */
+const PROBABILITY_SCALE = 1000;
+
+/** Largest difference between two evaluations of a design, in the measure of `FigureTree.accuracy.error_estimate`. */
+export function figureDifference(a: FigureTree, b: FigureTree): number {
+  let worst = 0;
+  const relative = (x: number | null, y: number | null): void => {
+    if (x === null || y === null) return;
+    worst = Math.max(worst, Math.abs(x - y) / Math.max(Math.abs(y), FLOOR));
+  };
+  const absolute = (x: number, y: number): void => {
+    worst = Math.max(worst, PROBABILITY_SCALE * Math.abs(x - y));
+  };
+  absolute(a.emitted.p[0], b.emitted.p[0]);
+  absolute(a.emitted.p[1], b.emitted.p[1]);
+  relative(a.emitted.p[2], b.emitted.p[2]);
+  for (const basis of ['emitted', 'filtered', 'signal', 'collected'] as const) {
+    const x = a[basis];
+    const y = b[basis];
+    if (!x || !y) continue;
+    relative(x.mean, y.mean);
+    relative(x.g2, y.g2);
+    relative(x.multiphoton, y.multiphoton);
+  }
+  return worst;
+}

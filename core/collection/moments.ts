@@ -1,0 +1,88 @@
+/** Photon-number probabilities from factorial moments m_k = ⟨n(n−1)…(n−k+1)⟩, and what losses do to them. */
+
+export interface CountFromMoments {
+  readonly p0: number;
+  readonly p1: number;
+  /** P(n≥2). */
+  readonly multiphoton: number;
+  /** Last term included in P(n≥2): the partial sums bracket the truth, so it bounds the error. */
+  readonly bound: number;
+}
+
+/**
+ * Sieve (Bonferroni) sums p_0 = Σ(−1)^k m_k/k!, p_1 = Σ(−1)^{k−1} m_k/(k−1)!, P(n≥2) = Σ_{k≥2} (−1)^k (k−1)/k! m_k;
+ * losses with survival η turn m_k into η^k m_k.
+ * @param moments m_1 … m_K
+ */
+export function countFromMoments(moments: readonly number[], eta: number): CountFromMoments {
+  let p0 = 1;
+  let p1 = 0;
+  let multiphoton = 0;
+  let bound = Number.POSITIVE_INFINITY;
+  let factorial = 1;
+  let power = 1;
+  moments.forEach((m, index) => {
+    const k = index + 1;
+    factorial *= k;
+    power *= eta;
+    const term = (m * power) / factorial;
+    const sign = k % 2 === 0 ? 1 : -1;
+    p0 += sign * term;
+    p1 -= sign * k * term;
+    if (k >= 2) {
+      multiphoton += sign * (k - 1) * term;
+      bound = Math.abs((k - 1) * term);
+    }
+  });
+  return { p0, p1, multiphoton, bound };
+}
+
+/** Relative accuracy promised for P(n≥2), down to this value. */
+export const MULTIPHOTON_ACCURACY = 1e-6;
+export const MULTIPHOTON_FLOOR = 1e-7;
+
+/** True when the moment series is long enough for the promised accuracy of P(n≥2). */
+export function seriesHolds(count: CountFromMoments): boolean {
+  return count.bound <= MULTIPHOTON_ACCURACY * Math.max(count.multiphoton, MULTIPHOTON_FLOOR);
+}
+
+/** A count distribution as far as figures need it; null where the moment series was too short. */
+export interface Count {
+  readonly mean: number;
+  readonly factorial2: number;
+  readonly p0: number | null;
+  readonly single: number | null;
+  readonly multiphoton: number | null;
+}
+
+/** Adds an independent Poisson count of mean `extra` (leaked laser light, dark counts); free of cancellation. */
+export function addPoisson(count: Count, extra: number): Count {
+  const { mean, factorial2, p0, single, multiphoton } = count;
+  const total = {
+    mean: mean + extra,
+    factorial2: factorial2 + 2 * mean * extra + extra * extra,
+  };
+  if (p0 === null || single === null || multiphoton === null) {
+    return { ...total, p0: null, single: null, multiphoton: null };
+  }
+  const dark = Math.exp(-extra);
+  const atLeastOne = -Math.expm1(-extra);
+  return {
+    ...total,
+    p0: p0 * dark,
+    single: (single + p0 * extra) * dark,
+    multiphoton: multiphoton + single * atLeastOne + p0 * poissonAtLeastTwo(extra),
+  };
+}
+
+/** 1 − e^{−x}(1 + x), without cancellation for small x. */
+function poissonAtLeastTwo(x: number): number {
+  if (x > 0.1) return -Math.expm1(-x) - x * Math.exp(-x);
+  let term = (x * x) / 2;
+  let sum = 0;
+  for (let k = 2; k < 20; k++) {
+    sum += term;
+    term *= x / (k + 1);
+  }
+  return sum * Math.exp(-x);
+}

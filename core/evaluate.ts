@@ -1,0 +1,129 @@
+import type { Design } from './design.js';
+import { driftNodes } from './drift/nodes.js';
+import { weightedMean } from './drift/mean.js';
+import type { Figures, FigureTree, Note } from './figures.js';
+import type { Effort } from './kernels/count.js';
+import { figureDifference } from './accuracy.js';
+import { type Sample, sampleDesign } from './sample.js';
+import { pulseFigures } from './pulse/figures.js';
+
+/**
+ * `search`: one propagation, error estimated from its own steps. `quoted`: repeated with finer steps and more drift
+ * nodes until two runs agree to the promised accuracy; the estimate is their difference.
+ */
+export type Accuracy = 'search' | 'quoted';
+
+const SEARCH: Effort = { tolerance: 1e-10, parts: 1, nodes: 1 };
+const LADDER: readonly Effort[] = [
+  { tolerance: 1e-11, parts: 1, nodes: 1 },
+  { tolerance: 1e-11, parts: 2, nodes: 1.5 },
+  { tolerance: 1e-11, parts: 4, nodes: 2.2 },
+  { tolerance: 1e-11, parts: 8, nodes: 3.3 },
+];
+/** Promised accuracy in the measure of `FigureTree.accuracy.error_estimate`. */
+export const PROMISED = 1e-6;
+
+/**
+ * Figures of a fixed design.
+ * @throws PropagationError when the pulse is beyond what can be integrated
+ */
+export function evaluate(design: Design, accuracy: Accuracy): Figures {
+  checkSupport(design);
+  const tree = evaluateTree(design, accuracy);
+  if (!design.drift) return { ...tree, nominal: null };
+  return { ...tree, nominal: evaluateTree({ ...design, drift: null }, accuracy) };
+}
+
+function checkSupport(design: Design): void {
+  if (design.emitter.phonons && design.emitter.phonons.coupling > 0) {
+    throw new UnsupportedDesign('phonons are not modelled yet: leave emitter.phonons out');
+  }
+  if (design.pulse.tones.length === 0) throw new UnsupportedDesign('a pulse needs at least one tone');
+}
+
+/** A valid design that this version cannot evaluate; the message says what to change. */
+export class UnsupportedDesign extends Error {
+  override readonly name = 'UnsupportedDesign';
+}
+
+function evaluateTree(design: Design, accuracy: Accuracy): FigureTree {
+  if (accuracy === 'search') return evaluateOnce(design, SEARCH);
+  let coarse = evaluateOnce(design, LADDER[0]);
+  for (let rung = 1; ; rung++) {
+    const fine = evaluateOnce(design, LADDER[rung]);
+    const floor = fine.accuracy.error_estimate;
+    const estimate = Math.max(figureDifference(coarse, fine), floor);
+    if (estimate <= PROMISED || rung === LADDER.length - 1) return withEstimate(fine, estimate);
+    coarse = fine;
+  }
+}
+
+function withEstimate(tree: FigureTree, estimate: number): FigureTree {
+  const notes: Note[] = [...tree.notes];
+  if (estimate > PROMISED) {
+    notes.push({
+      path: 'accuracy',
+      reason: `the promised accuracy was not reached: estimated error ${estimate.toExponential(1)}, promised ${PROMISED}`,
+    });
+  }
+  return { ...tree, notes, accuracy: { ...tree.accuracy, error_estimate: estimate } };
+}
+
+function evaluateOnce(design: Design, effort: Effort): FigureTree {
+  const duration = design.drift ? pulseFigures(design.pulse).duration_ps : 0;
+  const nodes = driftNodes(design, duration, effort.nodes);
+  const runs = nodes.map((node) => sampleDesign(design, node, effort));
+  const mean = weightedMean(
+    runs.map((r) => r.sample),
+    nodes.map((n) => n.weight),
+  );
+  return figureTree(mean, {
+    steps: runs.reduce((s, r) => s + r.steps, 0),
+    error_estimate: runs.reduce((m, r) => Math.max(m, r.error), 0),
+  });
+}
+
+function ratio(factorial2: number, mean: number): number | null {
+  return mean > 0 ? factorial2 / (mean * mean) : null;
+}
+
+function figureTree(s: Sample, accuracy: FigureTree['accuracy']): FigureTree {
+  const notes: Note[] = [];
+  if (s.filtered && s.filtered.multiphoton === null) {
+    notes.push({ path: 'filtered.multiphoton', reason: 'six factorial moments are not enough: too many photons per pulse' });
+  }
+  if (s.signal.multiphoton === null) {
+    notes.push({ path: 'signal.multiphoton', reason: 'six factorial moments are not enough: too many photons per pulse' });
+  }
+  if (!(s.emitted.mean > 0)) notes.push({ path: 'emitted.g2', reason: 'nothing is emitted' });
+  const count = (c: Sample['signal']) => ({
+    mean: c.mean,
+    single: c.single,
+    any: c.single === null || c.multiphoton === null ? null : c.single + c.multiphoton,
+    multiphoton: c.multiphoton,
+    g2: ratio(c.factorial2, c.mean),
+  });
+  return {
+    emitted: {
+      mean: s.emitted.mean,
+      factorial2: s.emitted.factorial2,
+      g2: ratio(s.emitted.factorial2, s.emitted.mean),
+      p: s.emitted.p,
+      multiphoton: s.emitted.multiphoton,
+    },
+    filtered: s.filtered && {
+      mean: s.filtered.mean,
+      factorial2: s.filtered.factorial2,
+      g2: ratio(s.filtered.factorial2, s.filtered.mean),
+      p: s.filtered.p,
+      multiphoton: s.filtered.multiphoton,
+    },
+    signal: count(s.signal),
+    collected: { ...count(s.collected), leakage: s.leakage },
+    populations: s.populations,
+    pulse: s.pulse,
+    phonons: { method: 'none', flags: [] },
+    accuracy,
+    notes,
+  };
+}

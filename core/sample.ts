@@ -1,0 +1,192 @@
+import { type Count, countFromMoments, addPoisson, seriesHolds } from './collection/moments.js';
+import { leakedPhotons, pulseFilter } from './collection/leakage.js';
+import type { Design } from './design.js';
+import { type DriftNode, driftedDesign } from './drift/nodes.js';
+import type { Scheme } from './emitter/contract.js';
+import { collectedDipoles } from './emitter/generator.js';
+import { emitterModel } from './emitter/registry.js';
+import type { PulseFigures } from './figures.js';
+import { type CountResult, countPhotons, type Effort } from './kernels/count.js';
+import { type Resonance, schemeResonances, slowestFrame } from './kernels/frame.js';
+import { createDrive, type Drive } from './pulse/drive.js';
+import { pulseFigures } from './pulse/figures.js';
+import { HBAR, RAD_PER_PS_PER_GHZ } from './units/constants.js';
+
+/** Everything that may be averaged over drift: moments and probabilities, never ratios. Null: series too short. */
+export interface Sample {
+  readonly emitted: {
+    readonly mean: number;
+    readonly factorial2: number;
+    readonly p: readonly number[];
+    readonly multiphoton: number;
+  };
+  readonly filtered: FilteredSample | null;
+  readonly signal: Count;
+  readonly collected: Count;
+  readonly leakage: number;
+  readonly populations: Readonly<Record<string, number>>;
+  readonly pulse: PulseFigures;
+}
+
+interface FilteredSample {
+  readonly mean: number;
+  readonly factorial2: number;
+  readonly p: readonly number[] | null;
+  readonly multiphoton: number | null;
+}
+
+export interface SampleRun {
+  readonly sample: Sample;
+  readonly steps: number;
+  /** Error estimate of this run by itself, in the measure of `FigureTree.accuracy`. */
+  readonly error: number;
+}
+
+/** Fewest and most factorial moments behind a filter. */
+const FEWEST_MOMENTS = 4;
+const MOST_MOMENTS = 6;
+
+/** A design in the terms of the propagator, without drift. */
+export interface Situation {
+  readonly scheme: Scheme;
+  /** Pulse reference relative to the nominal mean exciton line, 1/ps. */
+  readonly reference: number;
+  /** Rotating frame relative to the nominal mean exciton line, 1/ps. */
+  readonly frame: number;
+  readonly drive: Drive;
+  /** Nominal centre of the collected line relative to the mean exciton line, 1/ps. */
+  readonly line: number;
+}
+
+export function situation(design: Design): Situation {
+  const { emitter, pulse, collection } = design;
+  const scheme = emitterModel(emitter.model).scheme(emitter);
+  const line = scheme.lines[collection.line];
+  if (line === undefined) throw new Error(`emitter model ${emitter.model} has no ${collection.line} line`);
+  if (pulse.reference === 'two-photon' && scheme.twoPhoton === null) {
+    throw new Error(`emitter model ${emitter.model} has no two-photon resonance`);
+  }
+  const reference = pulse.reference === 'two-photon' ? (scheme.twoPhoton as number) : 0;
+  const resonances: Resonance[] = schemeResonances(scheme);
+  for (const t of pulse.tones) resonances.push({ center: reference + t.detuning / HBAR, quanta: 1, weight: 1 });
+  if (collection.filter) {
+    const center = line + collection.filter.center * RAD_PER_PS_PER_GHZ;
+    resonances.push({ center, quanta: 1, weight: FEWEST_MOMENTS });
+  }
+  const frame = slowestFrame(resonances);
+  const drive = createDrive(pulse, { frame: frame - reference, projection: scheme.projection });
+  return { scheme, reference, frame, drive, line };
+}
+
+/** Angle of the collected polarisation from h, rad; `all` where the analyser is open. */
+function collectedAxis(design: Design): number | 'all' {
+  switch (design.collection.polarization) {
+    case 'h':
+      return 0;
+    case 'v':
+      return Math.PI / 2;
+    case 'crossed':
+      return design.pulse.tones[0].polarization + Math.PI / 2;
+    case 'all':
+      return 'all';
+  }
+}
+
+/** Figures of one design at one drift node. */
+export function sampleDesign(nominal: Design, node: DriftNode, effort: Effort): SampleRun {
+  const design = driftedDesign(nominal, node);
+  const where = situation(design);
+  const { scheme, line } = where;
+  const crossedHalf = scheme.projection === 'full' && design.collection.polarization === 'crossed' ? 0.5 : 1;
+  const eta = design.collection.efficiency * crossedHalf;
+  const run = countDesign(design, where, node.shift / HBAR, eta, effort);
+  const leakage = leakedPhotons(design, pulseFilter(design, line, where.reference));
+  const filtered = design.collection.filter ? filteredSample(run.moments) : null;
+  const signal = filtered ? filteredSignal(run.moments, eta) : emittedSignal(run.result, eta);
+  const v = run.result.values;
+  return {
+    sample: {
+      emitted: {
+        mean: v['mean'],
+        factorial2: v['factorial2'],
+        p: [v['p0'], v['p1'], v['p2'], v['p3']],
+        multiphoton: v['multiphoton'],
+      },
+      filtered,
+      signal,
+      collected: addPoisson(signal, leakage),
+      leakage,
+      populations: Object.fromEntries(scheme.levels.map((l, i) => [l.name, run.result.populations[i]])),
+      pulse: pulseFigures(design.pulse),
+    },
+    steps: run.result.steps,
+    error: Math.max(run.result.localErrors * 1000, where.drive.error, run.seriesError),
+  };
+}
+
+interface CountRun {
+  readonly result: CountResult;
+  readonly moments: readonly number[];
+  /** Relative error that the moment series may leave. */
+  readonly seriesError: number;
+}
+
+/** Raises the number of moments until their own bound holds for P(n≥2), or the highest order is reached. */
+function countDesign(design: Design, where: Situation, shift: number, eta: number, effort: Effort): CountRun {
+  const { scheme, frame, drive, line } = where;
+  const { collection } = design;
+  const dipoles = collectedDipoles(scheme, collection.line, collectedAxis(design));
+  const base = { scheme, dipoles, drive, frame, shift, effort };
+  if (!collection.filter) {
+    const result = countPhotons({ ...base, thinning: eta < 1 ? eta : null, filter: null });
+    return { result, moments: [], seriesError: 0 };
+  }
+  const kappa = collection.filter.fwhm * RAD_PER_PS_PER_GHZ;
+  const center = line + collection.filter.center * RAD_PER_PS_PER_GHZ - frame;
+  let order = FEWEST_MOMENTS;
+  for (;;) {
+    const result = countPhotons({ ...base, thinning: null, filter: { kappa, center, order } });
+    const moments = Array.from({ length: order }, (_, k) => result.values[`m${k + 1}`]);
+    const count = countFromMoments(moments, 1);
+    if (seriesHolds(count) || order === MOST_MOMENTS) {
+      const relative = count.bound / Math.max(count.multiphoton, 1e-7);
+      return { result, moments, seriesError: seriesHolds(count) ? relative : 0 };
+    }
+    order = MOST_MOMENTS;
+  }
+}
+
+function filteredSample(moments: readonly number[]): FilteredSample {
+  const count = countFromMoments(moments, 1);
+  const holds = seriesHolds(count);
+  return {
+    mean: moments[0],
+    factorial2: moments[1],
+    p: holds ? [count.p0, count.p1] : null,
+    multiphoton: holds ? count.multiphoton : null,
+  };
+}
+
+function filteredSignal(moments: readonly number[], eta: number): Count {
+  const count = countFromMoments(moments, eta);
+  const holds = seriesHolds(count);
+  return {
+    mean: eta * moments[0],
+    factorial2: eta * eta * moments[1],
+    p0: holds ? count.p0 : null,
+    single: holds ? count.p1 : null,
+    multiphoton: holds ? count.multiphoton : null,
+  };
+}
+
+function emittedSignal(result: CountResult, eta: number): Count {
+  const v = result.values;
+  const whole = eta === 1;
+  return {
+    mean: eta * v['mean'],
+    factorial2: eta * eta * v['factorial2'],
+    p0: whole ? v['p0'] : v['thinned0'],
+    single: whole ? v['p1'] : v['thinned1'],
+    multiphoton: whole ? v['multiphoton'] : v['thinnedMultiphoton'],
+  };
+}
