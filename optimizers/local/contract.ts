@@ -1,5 +1,5 @@
+import type { Stream } from '../../core/numerics/stream.js';
 import type { Space } from '../problem/space.js';
-import type { Random } from './random.js';
 
 /** Point of the unit cube. */
 export type Trial = readonly number[];
@@ -50,5 +50,5 @@ export interface Method {
   /** Where it is published. */
   readonly source: string;
   readonly traits: MethodTraits;
-  readonly run: (setup: Setup, random: Random) => Generator<readonly Trial[], void, readonly Reply[]>;
+  readonly run: (setup: Setup, random: Stream) => Generator<readonly Trial[], void, readonly Reply[]>;
 }

@@ -1,6 +1,7 @@
 // The package marks its UMD build as an ES module, so that importing it sets globalThis.fmin and exports nothing.
 import 'fmin';
 import type { Method, Reply, Setup, Trial } from './contract.js';
+import { fold } from './fold.js';
 
 interface Simplex {
   nelderMead(
@@ -11,12 +12,6 @@ interface Simplex {
 }
 
 const { nelderMead } = (globalThis as unknown as { fmin: Simplex }).fmin;
-
-/** Reflection at the bounds: a triangle wave that maps the line onto [0, 1]. */
-export function fold(u: number): number {
-  const within = Math.abs(u) % 2;
-  return within > 1 ? 2 - within : within;
-}
 
 /** Thrown out of the package's loop when the next value is not known yet. */
 class Unknown extends Error {

@@ -1,6 +1,6 @@
+import { stream } from '../../core/numerics/stream.js';
 import { compareReplies } from './compare.js';
 import { FAILED, type Method, type Reply, type Setup, type Trial } from './contract.js';
-import { randomStream } from './random.js';
 
 /** A search under way: plain data, JSON without loss. */
 export interface SessionState {
@@ -41,7 +41,7 @@ export class Session {
     checkSetup(method, setup);
     this.#method = method;
     this.#setup = structuredClone(setup) as Setup;
-    this.#steps = method.run(this.#setup, randomStream(setup.seed, 0));
+    this.#steps = method.run(this.#setup, stream(setup.seed, 0));
     this.#take(setup.budget > 0 ? this.#steps.next() : { done: true, value: undefined });
   }
 
