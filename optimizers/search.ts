@@ -1,6 +1,14 @@
-import type { EvaluatedPoint, ProblemSpec } from './problem/contract.js';
-import type { Evaluate } from './problem/problem.js';
-import type { TaskResult } from './tasks/contract.js';
+import type { ProblemSpec } from './problem/contract.js';
+import { judge } from './problem/judge.js';
+import { createProblem, type Evaluate } from './problem/problem.js';
+import { Knowledge, type Stage } from './stages/contract.js';
+import { type Milestone, outcomeOf, type SearchOutcome } from './stages/outcome.js';
+import { plan } from './stages/plan.js';
+import type { Task, TaskResult } from './tasks/contract.js';
+import type { TaskPool } from './workers/contract.js';
+import { evaluateForSearch } from './workers/evaluate.js';
+import { workerPool } from './workers/pool.js';
+import { serialPool } from './workers/serial.js';
 
 export interface SearchProgress {
   readonly stage: string;
@@ -10,37 +18,6 @@ export interface SearchProgress {
   readonly budget: number;
   /** Least impurity at the brightness asked for, or at the brightest point so far when no level is set. */
   readonly best: { readonly brightness: number; readonly impurity: number } | null;
-}
-
-export interface FrontLevel {
-  /** Brightness asked for. */
-  readonly level: number;
-  /** Least impurity with at least that brightness; null when the level is out of reach. */
-  readonly point: EvaluatedPoint | null;
-}
-
-export interface StageReport {
-  readonly name: string;
-  readonly tasks: number;
-  readonly evaluations: number;
-  /** Hypervolume of the archive after the stage, against the reference of `SearchOutcome.hypervolume`. */
-  readonly hypervolume: number;
-}
-
-export interface SearchOutcome {
-  readonly kind: 'finished' | 'interrupted';
-  readonly evaluations: number;
-  /** Every non-dominated evaluation, sorted by brightness. */
-  readonly archive: readonly EvaluatedPoint[];
-  readonly front: readonly FrontLevel[];
-  /** At `goal.atLeast`; null when no level is set or it is out of reach. */
-  readonly best: EvaluatedPoint | null;
-  readonly hypervolume: {
-    readonly value: number;
-    readonly reference: { readonly impurity: number; readonly brightness: number };
-    readonly meaning: string;
-  };
-  readonly stages: readonly StageReport[];
 }
 
 export interface SearchOptions {
@@ -57,10 +34,124 @@ export interface SearchOptions {
   readonly evaluate?: Evaluate;
 }
 
+/** Takes in a task's points; its evaluations count when its stage is over. */
+function absorb(known: Knowledge, result: TaskResult): void {
+  for (const point of result.points)
+    known.archive.add({ ...point, ...judge(point.figures, known.spec.goal) });
+}
+
+/** State of the run that progress and the outcome are told from. */
+interface Run {
+  readonly known: Knowledge;
+  readonly pool: TaskPool;
+  readonly options: SearchOptions;
+  readonly milestones: Milestone[];
+}
+
+function bestSoFar(known: Knowledge, results: readonly (TaskResult | null)[]): SearchProgress['best'] {
+  const { goal } = known.spec;
+  const late = results.flatMap((result) => result?.points ?? []).map((point) => judge(point.figures, goal));
+  const all = [...known.front, ...late];
+  if (all.length === 0) return null;
+  const level = goal.atLeast ?? all.reduce((most, point) => Math.max(most, point.brightness), 0);
+  const bright = all.filter((point) => point.brightness >= level);
+  if (bright.length === 0) return null;
+  const { brightness, impurity } = bright.reduce((best, point) =>
+    point.impurity < best.impurity ? point : best,
+  );
+  return { brightness, impurity };
+}
+
+/**
+ * Runs the tasks of a stage that the ledger does not hold, as many at once as the pool has room for. Results stand in
+ * task order whatever the order of their ends; null where an abort came first. Rejects with the first failure.
+ */
+async function runStage(run: Run, stage: Stage): Promise<(TaskResult | null)[]> {
+  const { known, pool, options } = run;
+  const results = stage.tasks.map((task) => options.completed.get(task.id) ?? null);
+  const waiting = [...results.keys()].filter((i) => results[i] === null);
+  const report = () => {
+    const done = results.filter((result) => result !== null);
+    const evaluations = done.reduce((sum, result) => sum + result.evaluations, known.spent);
+    const counts = { tasksDone: done.length, tasksTotal: results.length };
+    const { evaluations: budget } = known.spec.search;
+    options.onProgress?.({
+      stage: stage.name,
+      ...counts,
+      evaluations,
+      budget,
+      best: bestSoFar(known, results),
+    });
+  };
+  const aborted = () => options.signal?.aborted === true;
+  const lane = async () => {
+    for (let i = waiting.shift(); i !== undefined && !aborted(); i = waiting.shift()) {
+      const result = await pool.run(stage.tasks[i]);
+      if (aborted()) return;
+      await options.onTask(result);
+      results[i] = result;
+      report();
+    }
+  };
+  report();
+  const lanes = Array.from({ length: Math.min(pool.size, waiting.length) }, lane);
+  await Promise.all(lanes).catch((error: unknown) => {
+    waiting.length = 0;
+    if (!aborted()) throw error;
+  });
+  return results;
+}
+
+/** Merges a stage's results in task order. */
+function merge(known: Knowledge, results: readonly (TaskResult | null)[]): void {
+  for (const result of results) {
+    if (result === null) continue;
+    absorb(known, result);
+    known.spent += result.evaluations;
+  }
+}
+
+function checkCap(known: Knowledge, tasks: readonly Task[]): void {
+  const asked = tasks.reduce((sum, task) => sum + task.budget, 0);
+  if (asked > known.left) throw new Error(`a stage asked for ${asked} evaluations; ${known.left} are left`);
+}
+
+async function carryOut(run: Run): Promise<'finished' | 'interrupted'> {
+  const { known, milestones, options } = run;
+  const steps = plan(known);
+  for (let step = steps.next(); !step.done; ) {
+    const stage = step.value;
+    checkCap(known, stage.tasks);
+    if (options.signal?.aborted) return 'interrupted';
+    const before = known.spent;
+    const results = await runStage(run, stage);
+    merge(known, results);
+    const evaluations = known.spent - before;
+    milestones.push({ name: stage.name, tasks: stage.tasks.length, evaluations, front: known.front });
+    const complete = results.filter((result) => result !== null);
+    if (complete.length < results.length) return 'interrupted';
+    step = steps.next(complete);
+  }
+  return 'finished';
+}
+
 /**
  * Pareto front of a problem. `spec.search.evaluations` is a hard cap; the same specification gives the same archive and
- * front to the bit, for any number of workers and any interruption and resumption. Throws on a faulty specification.
+ * front to the bit, for any number of workers and any interruption and resumption. Throws on a faulty specification,
+ * when a task fails and when a worker dies.
  */
-export async function search(_spec: ProblemSpec, _options: SearchOptions): Promise<SearchOutcome> {
-  throw new Error('the search strategy has not landed yet');
+export async function search(spec: ProblemSpec, options: SearchOptions): Promise<SearchOutcome> {
+  const problem = createProblem(spec, options.evaluate ?? evaluateForSearch);
+  const threads = options.evaluate === undefined && options.workers > 1;
+  const pool = threads ? workerPool(spec, options.workers) : serialPool(spec, problem);
+  const run: Run = { known: new Knowledge(spec, problem), pool, options, milestones: [] };
+  const stop = () => void pool.close();
+  options.signal?.addEventListener('abort', stop, { once: true });
+  try {
+    const kind = await carryOut(run);
+    return outcomeOf(kind, run.known, run.milestones);
+  } finally {
+    options.signal?.removeEventListener('abort', stop);
+    await pool.close();
+  }
 }

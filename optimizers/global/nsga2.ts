@@ -36,8 +36,8 @@ interface Ranked extends Member {
   readonly distance: number;
 }
 
-/** The best `size` members by rank, then by crowding distance, in that order. */
-function select(members: readonly Member[], size: number): Ranked[] {
+/** The best `size` members by rank, then by crowding distance. */
+export function select(members: readonly Member[], size: number): Ranked[] {
   const ranks = nondominatedRanks(members.length, (a, b) => beats(members[a].reply, members[b].reply));
   const chosen: Ranked[] = [];
   for (const [rank, indices] of ranks.entries()) {

@@ -133,7 +133,8 @@ function* iterate(start: Trial, free: readonly number[], options: SqpOptions): S
  * problems with few constraints. The objective should enter linearly: with the logarithm of a probability the first
  * step runs towards zero light.
  */
-export function sqp(options: SqpOptions = SQP_DEFAULTS): Method {
+export function sqp(options: Partial<SqpOptions> = {}): Method {
+  const all = { ...SQP_DEFAULTS, ...options };
   return {
     name: 'sqp',
     source: 'Nocedal & Wright, Numerical Optimization, 2nd ed. (2006), chapter 18',
@@ -142,7 +143,7 @@ export function sqp(options: SqpOptions = SQP_DEFAULTS): Method {
       const { dimension, categories } = setup.space;
       const start = setup.start[0] ?? new Array<number>(dimension).fill(0.5);
       const free = start.flatMap((_, i) => (categories[i] === 0 ? [i] : []));
-      yield* iterate(start, free, options);
+      yield* iterate(start, free, all);
     },
   };
 }

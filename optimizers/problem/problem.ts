@@ -1,6 +1,7 @@
 import type { Design, Figures } from '../../core/index.js';
-import type { EvaluatedPoint, ProblemSpec } from './contract.js';
-import { type Judgement, judge } from './judge.js';
+import { PropagationError } from '../../core/kernels/count.js';
+import type { ProblemSpec } from './contract.js';
+import { INFEASIBLE, type Judgement, judge } from './judge.js';
 import { applyParameters } from './path.js';
 import { type Space, transformOf } from './space.js';
 
@@ -8,7 +9,12 @@ import { type Space, transformOf } from './space.js';
 export type Evaluate = (design: Design) => Figures;
 
 /** One evaluated candidate with the two numbers of the goal read from its figures. */
-export interface Candidate extends EvaluatedPoint, Judgement {}
+export interface Candidate extends Judgement {
+  /** Free-parameter values, internal units. */
+  readonly values: readonly number[];
+  /** Null when the pulse is beyond what can be integrated; the candidate is then infeasible. */
+  readonly figures: Figures | null;
+}
 
 /** A search problem in the unit cube. */
 export interface Problem {
@@ -33,8 +39,14 @@ export function createProblem(spec: ProblemSpec, evaluate: Evaluate): Problem {
     unitOf: (values) => transforms.map((transform, i) => transform.unit(values[i])),
     evaluate: (x) => {
       const values = valuesAt(x);
-      const figures = evaluate(applyParameters(spec, values));
-      return { values, figures, ...judge(figures, spec.goal) };
+      const design = applyParameters(spec, values);
+      try {
+        const figures = evaluate(design);
+        return { values, figures, ...judge(figures, spec.goal) };
+      } catch (error) {
+        if (!(error instanceof PropagationError)) throw error;
+        return { values, figures: null, ...INFEASIBLE };
+      }
     },
   };
 }

@@ -1,4 +1,20 @@
-import type { EvaluatedPoint } from '../problem/contract.js';
+import type { EvaluatedPoint, ProblemSpec } from '../problem/contract.js';
+import type { Problem } from '../problem/problem.js';
+import type { Recorder } from './recorder.js';
+
+/** A piece of a search that runs on one thread: plain data, a few seconds at most. */
+export interface Task {
+  /** Unique within a search, the same in every run of it; the ledger's key. */
+  readonly id: string;
+  /** Name of a runner in the registry of tasks. */
+  readonly kind: string;
+  /** Stable index of the task within the search: chooses its random stream. */
+  readonly index: number;
+  /** Hard cap of its evaluations. */
+  readonly budget: number;
+  /** What the runner needs besides; plain JSON. */
+  readonly input: unknown;
+}
 
 /** What a finished task leaves behind: plain JSON, the unit of the run ledger. */
 export interface TaskResult {
@@ -9,3 +25,16 @@ export interface TaskResult {
   /** Plain JSON that later stages need. */
   readonly summary: unknown;
 }
+
+/** What a runner works with. */
+export interface TaskContext {
+  readonly spec: ProblemSpec;
+  readonly problem: Problem;
+  /** Evaluates and keeps the task's archive. */
+  readonly recorder: Recorder;
+  /** Seed of the task's random numbers, from root seed and task index. */
+  readonly seed: number;
+}
+
+/** Does a task of one kind and returns its summary; must keep to the budget of the task. */
+export type TaskRunner = (task: Task, context: TaskContext) => unknown;

@@ -1,0 +1,57 @@
+import type { Knowledge, Plan } from './contract.js';
+import { gridOf, samplePoints } from './enumerate.js';
+import { explore } from './explore.js';
+import { aimAtLevels, fillBetween } from './fill.js';
+import { evenLevels, polishLevels, polishOthers, refine, sweep } from './polish.js';
+
+/** Shares of a round's budget. */
+const SHARES = { explore: 0.35, polish: 0.4 };
+/** Evaluations of the first round; each later one doubles. */
+const FIRST_ROUND = 1600;
+const LEVELS = 10;
+const SWEEPS = 4;
+
+/** One round: look around, solve at levels, continue from neighbour to neighbour, fill in between. */
+function* round(known: Knowledge, number: number, budget: number): Plan {
+  const name = (what: string) => `${what}-${number}`;
+  const end = known.spent + budget;
+  const left = () => Math.max(0, end - known.spent);
+  yield* explore(known, name('explore'), Math.floor(SHARES.explore * budget));
+  const polishEnd = known.spent + Math.floor(SHARES.polish * budget);
+  const polishLeft = () => Math.max(0, polishEnd - known.spent);
+  const { atLeast } = known.spec.goal;
+  const levels = [...evenLevels(known, LEVELS), ...(atLeast === null ? [] : [atLeast])];
+  yield* polishLevels(known, name('polish'), levels, polishLeft());
+  yield* polishOthers(known, name('second-branch'), levels, Math.floor(0.3 * polishLeft()));
+  const tried = new Set<string>();
+  for (let i = 1; i <= SWEEPS; i++) {
+    if (!(yield* sweep(known, name(`sweep-${i}`), polishLeft(), tried))) break;
+  }
+  yield* refine(known, name('refine'), polishLeft());
+  const aim = Math.floor(0.3 * left());
+  yield* fillBetween(known, name('fill'), left() - aim);
+  yield* aimAtLevels(known, name('levels'), left());
+}
+
+/** The strategy: see `search`. */
+export function* plan(known: Knowledge): Plan {
+  const { categories } = known.problem.space;
+  const continuous = categories.filter((count) => count === 0).length;
+  if (continuous === 0) {
+    const all = gridOf(categories, 1, known.left);
+    if (all !== null) return yield* samplePoints(known, 'enumerate', all);
+    return yield* explore(known, 'explore', known.left);
+  }
+  if (continuous === 1) {
+    const lists = categories.reduce((product, count) => product * Math.max(1, count), 1);
+    const steps = Math.min(200, Math.floor((0.5 * known.left) / lists));
+    const grid = steps >= 5 ? gridOf(categories, steps, known.left) : null;
+    if (grid !== null) yield* samplePoints(known, 'scan', grid);
+  }
+  for (let number = 1, size = FIRST_ROUND; known.left > 0; number++, size *= 2) {
+    const before = known.spent;
+    // The last round takes what would be too little for another one.
+    yield* round(known, number, known.left < 1.5 * size ? known.left : size);
+    if (known.spent === before) return;
+  }
+}

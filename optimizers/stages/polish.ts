@@ -1,0 +1,134 @@
+import { atLevel } from '../front/levels.js';
+import type { JudgedPoint } from '../tasks/recorder.js';
+import type { Solution } from '../tasks/solve.js';
+import { BRANCH_WIDTH, distance, type Knowledge, type Plan, rangeOfInterest } from './contract.js';
+
+/** A start for the least impurity at a level. */
+interface Start {
+  readonly level: number;
+  readonly x: readonly number[];
+  readonly radius: number;
+}
+
+const JUMP_RADIUS = 0.05;
+const NEIGHBOUR_RADIUS = 0.02;
+
+/** Evaluations a solve may take: some iterations of one value and one gradient each. */
+const allowance = (known: Knowledge) => 16 * (known.problem.space.dimension + 1);
+
+/** Solves from all starts that fit into `budget`, side by side; keeps where they end. */
+function* solveAll(known: Knowledge, name: string, starts: readonly Start[], budget: number): Plan {
+  const each = Math.min(allowance(known), budget);
+  const affordable = each > 0 ? starts.slice(0, Math.floor(Math.min(budget, known.left) / each)) : [];
+  if (affordable.length === 0) return;
+  const tasks = affordable.map(({ level, x, radius }) =>
+    known.task(name, 'solve', each, { level, start: x, radius }),
+  );
+  const results = yield { name, tasks };
+  for (const result of results) if (result.summary !== null) known.solutions.push(result.summary as Solution);
+}
+
+/** Evenly spaced levels over the range of interest, ends included. */
+export function evenLevels(known: Knowledge, count: number): number[] {
+  const range = rangeOfInterest(known);
+  if (range === null) return [];
+  const { from, to } = range;
+  if (from === to || count === 1) return [to];
+  return Array.from({ length: count }, (_, i) => from + ((to - from) * i) / (count - 1));
+}
+
+const unitOf = (known: Knowledge, point: JudgedPoint) => known.problem.unitOf(point.values);
+
+/** The best member of the archive at a level, or the brightest one where the level is out of reach. */
+function memberAt(known: Knowledge, level: number): readonly number[] | null {
+  const { front } = known;
+  const member = atLevel(front, level) ?? front[front.length - 1];
+  return member === undefined ? null : unitOf(known, member);
+}
+
+/** From the archive's member at each level. */
+export function* polishLevels(
+  known: Knowledge,
+  name: string,
+  levels: readonly number[],
+  budget: number,
+): Plan {
+  const starts = levels.flatMap((level) => {
+    const x = memberAt(known, level);
+    return x === null ? [] : [{ level, x, radius: JUMP_RADIUS }];
+  });
+  yield* solveAll(known, name, starts, budget);
+}
+
+/** The best solution of each level, by level. */
+export function bestSolutions(known: Knowledge): Solution[] {
+  const best = new Map<number, Solution>();
+  for (const solution of known.solutions) {
+    if (solution.brightness < solution.level - 1e-4) continue;
+    const old = best.get(solution.level);
+    if (old === undefined || solution.impurity < old.impurity) best.set(solution.level, solution);
+  }
+  return [...best.values()].sort((a, b) => a.level - b.level);
+}
+
+/**
+ * Continuation in both directions: where neighbouring levels sit on different branches, each is solved again from the
+ * other's design.
+ */
+export function* sweep(known: Knowledge, name: string, budget: number, tried: Set<string>): Plan<boolean> {
+  const solutions = bestSolutions(known);
+  const starts: Start[] = [];
+  const offer = (level: number, from: Solution) => {
+    const key = `${level} ${from.x.join(' ')}`;
+    if (tried.has(key)) return;
+    tried.add(key);
+    starts.push({ level, x: from.x, radius: JUMP_RADIUS });
+  };
+  for (let i = 0; i + 1 < solutions.length; i++) {
+    const [low, high] = [solutions[i], solutions[i + 1]];
+    if (distance(known.problem, low.x, high.x) < BRANCH_WIDTH) continue;
+    offer(low.level, high);
+    offer(high.level, low);
+  }
+  yield* solveAll(known, name, starts, budget);
+  return starts.length > 0;
+}
+
+/** New levels between neighbouring solutions, from the point between them (or from both, on different branches). */
+export function* refine(known: Knowledge, name: string, budget: number): Plan<boolean> {
+  const solutions = bestSolutions(known);
+  const gaps = solutions.slice(1).map((high, i) => ({ low: solutions[i], high }));
+  const size = ({ low, high }: (typeof gaps)[number]) => high.level - low.level;
+  const smallest = 1e-4 * (solutions.length > 0 ? solutions[solutions.length - 1].level : 0);
+  const widest = gaps.filter((gap) => size(gap) > smallest).sort((a, b) => size(b) - size(a));
+  const starts = widest.flatMap(({ low, high }): Start[] => {
+    const level = (low.level + high.level) / 2;
+    if (distance(known.problem, low.x, high.x) >= BRANCH_WIDTH) {
+      return [low, high].map(({ x }) => ({ level, x, radius: NEIGHBOUR_RADIUS }));
+    }
+    return [{ level, x: low.x.map((value, k) => (value + high.x[k]) / 2), radius: NEIGHBOUR_RADIUS }];
+  });
+  yield* solveAll(known, name, starts, budget);
+  return starts.length > 0;
+}
+
+/** A second opinion at a level: solves from members of the islands' populations that are far from the best one. */
+export function* polishOthers(
+  known: Knowledge,
+  name: string,
+  levels: readonly number[],
+  budget: number,
+): Plan {
+  const others = known.islands.flat();
+  const taken = levels.flatMap((level) => {
+    const member = memberAt(known, level);
+    return member === null ? [] : [member];
+  });
+  const starts: Start[] = [];
+  for (const x of others) {
+    if (taken.some((old) => distance(known.problem, old, x) < BRANCH_WIDTH)) continue;
+    taken.push(x);
+    starts.push({ level: levels[starts.length % levels.length], x, radius: JUMP_RADIUS });
+  }
+  yield* solveAll(known, name, starts, budget);
+}

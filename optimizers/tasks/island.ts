@@ -1,0 +1,30 @@
+import { nsga2, select } from '../global/nsga2.js';
+import { optimize } from '../local/session.js';
+import type { TaskRunner } from './contract.js';
+
+/** Some generations of NSGA-II. */
+export interface IslandInput {
+  readonly population: number;
+  /** Points of the unit cube to begin with; filled up by a Latin hypercube. */
+  readonly start: readonly (readonly number[])[];
+  /** Brightness below which nothing is of interest; null for none. */
+  readonly floor: number | null;
+}
+
+/** The points of the unit cube that later generations should begin with, best first. */
+export interface IslandSummary {
+  readonly population: readonly (readonly number[])[];
+}
+
+export const islandTask: TaskRunner = (task, { problem, recorder, seed }): IslandSummary => {
+  const { population, start, floor } = task.input as IslandInput;
+  const evaluate = (x: readonly number[]) => {
+    const { impurity, brightness } = recorder.evaluate(x);
+    return { objectives: [impurity, -brightness], constraints: floor === null ? [] : [floor - brightness] };
+  };
+  const { space } = problem;
+  const constraints = floor === null ? 0 : 1;
+  const setup = { space, objectives: 2, constraints, start, seed, budget: task.budget };
+  const { trace } = optimize(nsga2({ population }), setup, evaluate);
+  return { population: select(trace, population).map((member) => member.x) };
+};

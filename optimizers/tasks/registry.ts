@@ -1,0 +1,32 @@
+import { stream } from '../../core/numerics/stream.js';
+import type { ProblemSpec } from '../problem/contract.js';
+import type { Problem } from '../problem/problem.js';
+import type { Task, TaskResult, TaskRunner } from './contract.js';
+import { islandTask } from './island.js';
+import { Recorder } from './recorder.js';
+import { sampleTask } from './sample.js';
+import { solveTask } from './solve.js';
+
+/** Every kind of task, by name. */
+export const taskRunners: ReadonlyMap<string, TaskRunner> = new Map([
+  ['sample', sampleTask],
+  ['island', islandTask],
+  ['solve', solveTask],
+]);
+
+/** Runs a task to its end on this thread. Throws for an unknown kind. */
+export function runTask(spec: ProblemSpec, problem: Problem, task: Task): TaskResult {
+  const runner = taskRunners.get(task.kind);
+  if (runner === undefined) {
+    throw new Error(
+      `task ${task.id}: unknown kind ${task.kind}; known are ${[...taskRunners.keys()].join(', ')}`,
+    );
+  }
+  const recorder = new Recorder(problem);
+  const seed = stream(spec.search.seed, task.index).int(2 ** 32);
+  const summary = task.budget > 0 ? runner(task, { spec, problem, recorder, seed }) : null;
+  if (recorder.evaluations > task.budget) {
+    throw new Error(`task ${task.id}: spent ${recorder.evaluations} evaluations of ${task.budget}`);
+  }
+  return { id: task.id, evaluations: recorder.evaluations, points: recorder.points, summary };
+}

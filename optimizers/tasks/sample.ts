@@ -1,0 +1,20 @@
+import type { TaskRunner } from './contract.js';
+
+/** Evaluates a list of points of the unit cube. */
+export interface SampleInput {
+  readonly points: readonly (readonly number[])[];
+}
+
+/** What each point gave, in order; impurity is null where the candidate was infeasible. */
+export interface SampleSummary {
+  readonly replies: readonly { readonly impurity: number | null; readonly brightness: number }[];
+}
+
+export const sampleTask: TaskRunner = (task, { recorder }): SampleSummary => {
+  const { points } = task.input as SampleInput;
+  const replies = points.slice(0, task.budget).map((x) => {
+    const { impurity, brightness } = recorder.evaluate(x);
+    return { impurity: Number.isFinite(impurity) ? impurity : null, brightness };
+  });
+  return { replies };
+};

@@ -1,0 +1,49 @@
+import { optimize } from '../local/session.js';
+import { sqp } from '../local/sqp.js';
+import type { TaskRunner } from './contract.js';
+
+/** Least impurity at a brightness of at least `level`, from one start. */
+export interface SolveInput {
+  readonly level: number;
+  /** Point of the unit cube. */
+  readonly start: readonly number[];
+  /** First trust radius, in units of the cube. */
+  readonly radius: number;
+}
+
+/** Where the solve ended; null when every candidate was infeasible. */
+export interface Solution {
+  readonly level: number;
+  readonly x: readonly number[];
+  readonly impurity: number;
+  readonly brightness: number;
+}
+
+/** Weight of a missing brightness against the relative impurity, when the best of a solve is chosen. */
+const SHORTFALL = 100;
+
+export const solveTask: TaskRunner = (task, { problem, recorder, seed }): Solution | null => {
+  const { level, start, radius } = task.input as SolveInput;
+  let best: Solution | null = null;
+  let scale = 0;
+  const merit = (s: Solution) => s.impurity / scale + SHORTFALL * Math.max(0, level - s.brightness);
+  const evaluate = (x: readonly number[]) => {
+    const { impurity, brightness } = recorder.evaluate(x);
+    if (Number.isFinite(impurity)) {
+      scale ||= impurity || 1;
+      const next = { level, x: [...x], impurity, brightness };
+      if (best === null || merit(next) < merit(best)) best = next;
+    }
+    return { objectives: [impurity], constraints: [level - brightness] };
+  };
+  const setup = {
+    space: problem.space,
+    objectives: 1,
+    constraints: 1,
+    start: [start],
+    seed,
+    budget: task.budget,
+  };
+  optimize(sqp({ radius }), setup, evaluate);
+  return best;
+};

@@ -1,0 +1,11 @@
+import type { Task, TaskResult } from '../tasks/contract.js';
+
+/** Runs tasks of one problem. */
+export interface TaskPool {
+  /** How many tasks run at once. */
+  readonly size: number;
+  /** Rejects when the task throws, the worker dies or the pool was closed. */
+  run(task: Task): Promise<TaskResult>;
+  /** Gives up running tasks and frees the threads. */
+  close(): Promise<void>;
+}
