@@ -65,24 +65,31 @@ function rule(f: (x: number) => number, a: number, b: number): Piece {
   return { a, b, value: kronrod * half, error: Math.max(Math.min(scaled, difference), floor), floor };
 }
 
-/** Index of the piece with the largest error that bisection can still lower; −1 when rounding is all that is left. */
-function worst(pieces: readonly Piece[]): number {
-  let index = -1;
-  let error = 0;
-  for (let i = 0; i < pieces.length; i++) {
+/** Whether bisection can still lower the error of a piece: above rounding, and wide enough to have a middle. */
+function divisible(piece: Piece): boolean {
+  const center = 0.5 * (piece.a + piece.b);
+  return piece.error > piece.floor && center !== piece.a && center !== piece.b;
+}
+
+/** Bisects every piece that holds more than its share of the wanted error; false when nothing could be bisected. */
+function refine(f: (x: number) => number, pieces: Piece[], target: number, limit: number): boolean {
+  const count = pieces.length;
+  const share = target / count;
+  let changed = false;
+  for (let i = 0; i < count && pieces.length < limit; i++) {
     const piece = pieces[i];
+    if (piece.error <= share || !divisible(piece)) continue;
     const center = 0.5 * (piece.a + piece.b);
-    if (piece.error > error && piece.error > piece.floor && center !== piece.a && center !== piece.b) {
-      index = i;
-      error = piece.error;
-    }
+    pieces[i] = rule(f, piece.a, center);
+    pieces.push(rule(f, center, piece.b));
+    changed = true;
   }
-  return index;
+  return changed;
 }
 
 /**
- * ∫_a^b f(x) dx by globally adaptive bisection with the 10–21 point Gauss–Kronrod pair.
- * Source: Piessens et al., *QUADPACK* (1983), routine QAGP without extrapolation.
+ * ∫_a^b f(x) dx by adaptive bisection with the 10–21 point Gauss–Kronrod pair.
+ * Rule and error estimate: Piessens et al., *QUADPACK* (1983), QK21.
  */
 export function integrate(
   f: (x: number) => number,
@@ -107,13 +114,8 @@ export function integrate(
       error += piece.error;
     }
     const signed = a <= b ? value : -value;
-    if (error <= Math.max(absolute, relative * Math.abs(value)))
-      return { value: signed, error, converged: true };
-    const index = worst(pieces);
-    if (index < 0 || pieces.length >= intervals) return { value: signed, error, converged: false };
-    const piece = pieces[index];
-    const center = 0.5 * (piece.a + piece.b);
-    pieces[index] = rule(f, piece.a, center);
-    pieces.push(rule(f, center, piece.b));
+    const target = Math.max(absolute, relative * Math.abs(value));
+    if (error <= target) return { value: signed, error, converged: true };
+    if (!refine(f, pieces, target, intervals)) return { value: signed, error, converged: false };
   }
 }

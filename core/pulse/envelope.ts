@@ -28,11 +28,13 @@ const RELEVANT = 1e-4;
 
 /** What a shape says about its transform-limited envelope, as a closed form. */
 function transformLimited(shape: PulseShape, fwhm: number): ClosedEnvelope {
+  const peak = shape.envelope(0, fwhm);
   return {
-    magnitude: (t) => shape.envelope(t, fwhm),
+    // A flat tone is switched by its edges; rounding of t at an edge must not switch it as well.
+    magnitude: shape.flat ? () => peak : (t) => shape.envelope(t, fwhm),
     phase: 0,
     chirp: 0,
-    peak: shape.envelope(0, fwhm),
+    peak,
     absoluteArea: 1,
     timeScale: shape.timeScale(fwhm),
     reach: (eps) => shape.reach(fwhm, eps),

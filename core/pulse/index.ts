@@ -1,4 +1,6 @@
 export * from './contract.js';
 export { createDrive, type Drive, type DriveOptions } from './drive.js';
+export { type PolarizedEnergy, pulseEnergy, type SpectralFilter, transmittedEnergy } from './energy.js';
 export type { ClosedEnvelope, PulseShape } from './shapes/contract.js';
 export { pulseShape, pulseShapes } from './shapes/registry.js';
+export { dispersionDelay, dispersionPhase, type ToneSpectrum, toneSpectrum } from './spectrum.js';

@@ -34,6 +34,8 @@ export interface PulseShape {
   spectralReach(fwhm: number, eps: number): number;
   /** Times of discontinuities of the envelope, ps, ascending. */
   edges(fwhm: number): readonly number[];
+  /** True when the envelope is constant between its edges and zero outside. */
+  readonly flat: boolean;
   /** Dispersed by `gdd` (ps²) alone, where a closed form exists. */
   readonly dispersed?: (fwhm: number, gdd: number) => ClosedEnvelope;
   /** ∫ env² dt, 1/ps. */

@@ -43,6 +43,7 @@ export const gaussian: PulseShape = {
   timeScale: sigmaOf,
   reach: (fwhm, eps) => sigmaOf(fwhm) * Math.sqrt(-2 * Math.log(eps)),
   spectralReach: (fwhm, eps) => Math.sqrt(-2 * Math.log(eps)) / sigmaOf(fwhm),
+  flat: false,
   edges: () => [],
   dispersed,
   energy: (fwhm) => 1 / (2 * Math.sqrt(Math.PI) * sigmaOf(fwhm)),

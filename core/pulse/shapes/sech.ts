@@ -15,6 +15,7 @@ export const sech: PulseShape = {
   timeScale: timeOf,
   reach: (fwhm, eps) => timeOf(fwhm) * Math.acosh(1 / eps),
   spectralReach: (fwhm, eps) => Math.acosh(1 / eps) / (0.5 * Math.PI * timeOf(fwhm)),
+  flat: false,
   edges: () => [],
   energy: (fwhm) => 2 / (Math.PI * Math.PI * timeOf(fwhm)),
 };

@@ -16,6 +16,7 @@ export const square: PulseShape = {
   timeScale: (fwhm) => fwhm,
   reach: (fwhm) => 0.5 * fwhm,
   spectralReach: () => Number.POSITIVE_INFINITY,
+  flat: true,
   edges: (fwhm) => [-0.5 * fwhm, 0.5 * fwhm],
   energy: (fwhm) => 1 / fwhm,
 };

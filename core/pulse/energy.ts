@@ -1,0 +1,138 @@
+import { integrate } from '../numerics/index.js';
+import type { Pulse, Tone } from './contract.js';
+import { flatPair, type SpectralFilter } from './flat.js';
+import { pulseShape } from './shapes/registry.js';
+import { type ToneSpectrum, toneSpectrum } from './spectrum.js';
+
+export type { SpectralFilter } from './flat.js';
+
+/** Energies in units of ∫|Ω|² dt, 1/ps. */
+export interface PolarizedEnergy {
+  /** Polarised along the axis; everything when no axis is given. */
+  readonly parallel: number;
+  /** Polarised perpendicular to the axis. */
+  readonly perpendicular: number;
+}
+
+/** Spectral fields below this, relative to a tone's area, carry nothing that counts. */
+const FIELD_FLOOR = 1e-12;
+/** The same for tones whose spectrum falls as 1/ω only, as multiples of 1/fwhm. */
+const FLAT_REACH = 2000;
+/** Radians of relative phase per starting interval of the quadrature. */
+const PHASE_PER_PIECE = 6;
+/** Largest number of starting intervals. */
+const PIECES = 20_000;
+
+const lorentzian = ({ kappa, center }: SpectralFilter, omega: number): number =>
+  1 / (1 + ((omega - center) / (kappa / 2)) ** 2);
+
+function filterBreaks(filter: SpectralFilter | null): number[] {
+  if (!filter) return [];
+  const breaks = [filter.center];
+  for (let width = filter.kappa / 2; width < 1e3; width *= 5) {
+    breaks.push(filter.center - width, filter.center + width);
+  }
+  return breaks;
+}
+
+function reachOf(tone: Tone, spectrum: ToneSpectrum): number {
+  const reach = spectrum.reach(FIELD_FLOOR);
+  return Number.isFinite(reach) ? reach : FLAT_REACH / tone.fwhm;
+}
+
+/** Break points so close that the relative phase of two tones turns by a few radians between them. */
+function fringeBreaks(a: ToneSpectrum, b: ToneSpectrum, low: number, high: number): number[] {
+  const chunks = 32;
+  const breaks: number[] = [];
+  const rate = (omega: number) => Math.abs(a.groupDelay(omega - a.center) - b.groupDelay(omega - b.center));
+  for (let i = 0; i < chunks; i++) {
+    const left = low + ((high - low) * i) / chunks;
+    const right = low + ((high - low) * (i + 1)) / chunks;
+    const fastest = Math.max(rate(left), rate(right), rate(0.5 * (left + right)));
+    const wanted = Math.ceil((fastest * (right - left)) / PHASE_PER_PIECE);
+    const pieces = Math.max(1, Math.min(PIECES / chunks, wanted));
+    for (let j = 0; j < pieces; j++) breaks.push(left + ((right - left) * j) / pieces);
+  }
+  return breaks;
+}
+
+/** ∫|Ω|² of one tone behind the filter. */
+function ownEnergy(tone: Tone, filter: SpectralFilter | null): number {
+  if (tone.area === 0) return 0;
+  const shape = pulseShape(tone.shape);
+  if (!filter) return tone.area * tone.area * shape.energy(tone.fwhm);
+  // Dispersion only turns phases, and one tone has nothing to interfere with.
+  if (shape.flat) return flatPair(tone, tone, filter);
+  const spectrum = toneSpectrum(tone);
+  const reach = reachOf(tone, spectrum);
+  const { center } = spectrum;
+  const integrand = (omega: number) => spectrum.amplitude(omega - center) ** 2 * lorentzian(filter, omega);
+  const breaks = [center - reach / 4, center, center + reach / 4, ...filterBreaks(filter)];
+  return (
+    integrate(integrand, center - reach, center + reach, { relative: 1e-11, breaks }).value / (2 * Math.PI)
+  );
+}
+
+/** Interference of tones k ≠ l behind the filter: Re ∫ E_k E_l* T dω/2π, known to 1e-12 of `scale`. */
+function crossEnergy(a: Tone, b: Tone, filter: SpectralFilter | null, scale: number): number {
+  if (scale === 0) return 0;
+  const alike = a.gdd === b.gdd && a.tod === b.tod && a.detuning === b.detuning;
+  const plain = a.gdd === 0 && a.tod === 0 && b.gdd === 0 && b.tod === 0;
+  if (pulseShape(a.shape).flat && pulseShape(b.shape).flat && (alike || plain)) return flatPair(a, b, filter);
+  const one = toneSpectrum(a);
+  const two = toneSpectrum(b);
+  const low = Math.max(one.center - reachOf(a, one), two.center - reachOf(b, two));
+  const high = Math.min(one.center + reachOf(a, one), two.center + reachOf(b, two));
+  if (low >= high) return 0;
+  const integrand = (omega: number) => {
+    const nu = omega - one.center;
+    const mu = omega - two.center;
+    const product = one.amplitude(nu) * two.amplitude(mu);
+    if (product === 0) return 0;
+    const fringe = product * Math.cos(one.phase(nu) - two.phase(mu));
+    return filter ? fringe * lorentzian(filter, omega) : fringe;
+  };
+  const breaks = [...fringeBreaks(one, two, low, high), one.center, two.center, ...filterBreaks(filter)];
+  const options = { relative: 0, absolute: 1e-12 * 2 * Math.PI * scale, breaks, intervals: 2 * PIECES };
+  return integrate(integrand, low, high, options).value / (2 * Math.PI);
+}
+
+/** Weights of the product of two polarised fields behind an analyser along the axis and across it. */
+function projections(a: number, b: number, axis: number | null): { along: number; across: number } {
+  if (axis === null) return { along: Math.cos(a - b), across: 0 };
+  return {
+    along: Math.cos(a - axis) * Math.cos(b - axis),
+    across: Math.sin(a - axis) * Math.sin(b - axis),
+  };
+}
+
+/**
+ * ∫ |Ω(ω)|² T(ω) dω/2π, split by polarisation along and across `axis` (rad from h), 1/ps. Beating between tones is
+ * included; relative error at most 1e-8 however far the tones lie off the filter, and 1e-10 without a filter, as long
+ * as the tones do not cancel each other.
+ */
+export function transmittedEnergy(
+  pulse: Pulse,
+  filter: SpectralFilter | null,
+  analyser: { readonly axis: number | null },
+): PolarizedEnergy {
+  const { tones } = pulse;
+  const own = tones.map((tone) => ownEnergy(tone, filter));
+  let parallel = 0;
+  let perpendicular = 0;
+  for (let k = 0; k < tones.length; k++) {
+    for (let l = 0; l <= k; l++) {
+      const weights = projections(tones[k].polarization, tones[l].polarization, analyser.axis);
+      const term = k === l ? own[k] : 2 * crossEnergy(tones[k], tones[l], filter, Math.sqrt(own[k] * own[l]));
+      parallel += weights.along * term;
+      perpendicular += weights.across * term;
+    }
+  }
+  // Tones that cancel each other leave rounding of either sign.
+  return { parallel: Math.max(0, parallel), perpendicular: Math.max(0, perpendicular) };
+}
+
+/** ∫(|Ω_h|² + |Ω_v|²) dt, 1/ps, beating between tones included. */
+export function pulseEnergy(pulse: Pulse): number {
+  return transmittedEnergy(pulse, null, { axis: null }).parallel;
+}
