@@ -19,6 +19,11 @@ export const SQP_DEFAULTS: SqpOptions = {
   tolerance: 1e-9,
 };
 
+/** Shares of the predicted gain: below the first a step is refused, above the second the radius may grow. */
+const ACCEPTABLE = 0.05;
+const GOOD = 0.7;
+const LEAST_PENALTY = 1;
+
 type Steps<T> = Generator<readonly Trial[], T, readonly Reply[]>;
 
 interface State {
@@ -47,39 +52,69 @@ const lagrangian = (gradients: Matrix, multipliers: readonly number[]) =>
 const dot = (a: readonly number[], b: readonly number[]) =>
   a.reduce((sum, value, i) => sum + value * b[i], 0);
 
-/** Solves the model; raises the penalty where the multipliers touch it while the constraints could be met. */
-function modelStep(state: State, free: readonly number[]) {
-  const { x, at, hessian, radius } = state;
-  const lower = free.map((coordinate) => Math.max(-radius, -x[coordinate]));
-  const upper = free.map((coordinate) => Math.min(radius, 1 - x[coordinate]));
-  const [value, ...values] = rowOf(at.reply);
-  const [gradient, ...normals] = at.gradients;
-  for (let penalty = state.penalty; ; penalty *= 10) {
-    const { step, multipliers } = solveQuadratic({
-      gradient,
-      hessian,
-      values,
-      normals,
-      lower,
-      upper,
-      penalty,
-    });
-    const linear = values.map((c, j) => c + dot(normals[j], step));
-    const curved =
-      0.5 *
-      dot(
-        step,
-        hessian.map((row) => dot(row, step)),
-      );
-    const model = [value + dot(gradient, step) + curved, ...linear];
-    const predicted = merit([value, ...values], penalty) - merit(model, penalty);
-    // A larger weight helps only while the linear model still leaves a violation.
-    const left = linear.reduce((sum, c) => sum + Math.max(0, c), 0);
-    if (left <= 1e-9 || penalty >= 1e6) return { step, multipliers, predicted, penalty };
-  }
+/** Where the step may go: the trust region cut with the cube. */
+function boundsOf(state: State, free: readonly number[]) {
+  return {
+    lower: free.map((coordinate) => Math.max(-state.radius, -state.x[coordinate])),
+    upper: free.map((coordinate) => Math.min(state.radius, 1 - state.x[coordinate])),
+  };
 }
 
-function updated(state: State, moved: number[], at: Expansion, multipliers: readonly number[]): State {
+interface ModelStep {
+  readonly step: readonly number[];
+  readonly multipliers: readonly number[];
+  readonly predicted: number;
+  readonly penalty: number;
+}
+
+/** Solves the model; raises the weight of the violation as long as that lessens the violation. */
+function modelStep(state: State, free: readonly number[]): ModelStep {
+  const { at, hessian } = state;
+  const [value, ...values] = rowOf(at.reply);
+  const [gradient, ...normals] = at.gradients;
+  const bounds = boundsOf(state, free);
+  const attempt = (penalty: number) => {
+    const { step, multipliers } = solveQuadratic({ gradient, hessian, values, normals, ...bounds, penalty });
+    const linear = values.map((c, j) => c + dot(normals[j], step));
+    const curved = hessian.map((row) => dot(row, step));
+    const model = [value + dot(gradient, step) + 0.5 * dot(step, curved), ...linear];
+    const predicted = merit([value, ...values], penalty) - merit(model, penalty);
+    const left = linear.reduce((sum, c) => sum + Math.max(0, c), 0);
+    return { step, multipliers, predicted, penalty, left };
+  };
+  let current = attempt(state.penalty);
+  while (current.left > 1e-9 && current.penalty < 1e6) {
+    const next = attempt(10 * current.penalty);
+    if (!(next.left < 0.9 * current.left)) break;
+    current = next;
+  }
+  return current;
+}
+
+/**
+ * Second-order correction: the same model with the constraints as they were found at the end of the step, which takes
+ * their curvature along (Nocedal & Wright, section 18.3). Without it the l1 merit refuses good steps along a curved
+ * constraint.
+ */
+function correctedStep(
+  state: State,
+  free: readonly number[],
+  model: ModelStep,
+  found: Reply,
+): readonly number[] {
+  const [gradient, ...normals] = state.at.gradients;
+  const values = found.constraints.map((c, j) => c - dot(normals[j], model.step));
+  const { hessian } = state;
+  const { penalty } = model;
+  return solveQuadratic({ gradient, hessian, values, normals, ...boundsOf(state, free), penalty }).step;
+}
+
+function updated(
+  state: State,
+  moved: readonly number[],
+  at: Expansion,
+  multipliers: readonly number[],
+): State {
   const y = lagrangian(at.gradients, multipliers).map(
     (g, i) => g - lagrangian(state.at.gradients, multipliers)[i],
   );
@@ -103,27 +138,52 @@ function* iterate(start: Trial, free: readonly number[], options: SqpOptions): S
   const steepest = Math.max(...begin.gradients.flat().map(Math.abs));
   if (!(steepest > 0)) return;
   const hessian = identity(free.length, steepest / options.radius);
-  let state: State = { x: start, at: begin, hessian, scaled: false, radius: options.radius, penalty: 10 };
-  while (state.radius > options.smallestRadius) {
-    const { step, multipliers, predicted, penalty } = modelStep(state, free);
-    if (!(predicted > options.tolerance * (1 + Math.abs(state.at.reply.objectives[0])))) return;
+  let state: State = {
+    x: start,
+    at: begin,
+    hessian,
+    scaled: false,
+    radius: options.radius,
+    penalty: 10 * LEAST_PENALTY,
+  };
+  const moved = (step: readonly number[]) => {
     const x = [...state.x];
     free.forEach((coordinate, i) => {
       x[coordinate] = Math.min(Math.max(x[coordinate] + step[i], 0), 1);
     });
+    return x;
+  };
+  while (state.radius > options.smallestRadius) {
+    const model = modelStep(state, free);
+    const { predicted, penalty, multipliers } = model;
+    if (!(predicted > options.tolerance * (1 + Math.abs(state.at.reply.objectives[0])))) return;
+    const now = merit(rowOf(state.at.reply), penalty);
+    const ratioOf = (reply: Reply) => (failed(reply) ? -1 : (now - merit(rowOf(reply), penalty)) / predicted);
+    let { step } = model;
+    let reply = scaledReply((yield [moved(step)])[0], scale);
+    let ratio = ratioOf(reply);
+    if (ratio < GOOD && !failed(reply) && reply.constraints.some((c) => c > 0)) {
+      const corrected = correctedStep(state, free, model, reply);
+      const second = scaledReply((yield [moved(corrected)])[0], scale);
+      if (ratioOf(second) > ratio) {
+        step = corrected;
+        reply = second;
+        ratio = ratioOf(second);
+      }
+    }
     const length = Math.max(...step.map(Math.abs));
-    const reply = scaledReply((yield [x])[0], scale);
-    const gained = merit(rowOf(state.at.reply), penalty) - merit(rowOf(reply), penalty);
-    const ratio = failed(reply) ? -1 : gained / predicted;
-    if (ratio < 0.05) {
-      state = { ...state, penalty, radius: Math.max(0.1, 0.5 * Math.min(1, 1 + ratio)) * length };
+    if (ratio < ACCEPTABLE) {
+      state = { ...state, penalty, radius: 0.3 * length };
       continue;
     }
+    const x = moved(step);
     const at = yield* expansionAt(x, reply);
     const wider =
       length > 0.8 * state.radius ? Math.min(2 * state.radius, options.largestRadius) : state.radius;
-    const radius = ratio > 0.7 ? wider : ratio < 0.25 ? 0.5 * length : state.radius;
-    state = { ...updated(state, step, at, multipliers), x, radius, penalty };
+    const radius = ratio > GOOD ? wider : ratio < 0.25 ? 0.5 * length : state.radius;
+    // The weight follows the multipliers down as well, or an early large one would make every later step tiny.
+    const weight = Math.max(LEAST_PENALTY, 0.5 * penalty, ...multipliers.map((m) => 2 * m));
+    state = { ...updated(state, step, at, multipliers), x, radius, penalty: Math.min(weight, penalty) };
   }
 }
 
