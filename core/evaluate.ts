@@ -1,11 +1,11 @@
+import { figureDifference } from './accuracy.js';
 import type { Design } from './design.js';
-import { driftNodes } from './drift/nodes.js';
 import { weightedMean } from './drift/mean.js';
+import { driftNodes } from './drift/nodes.js';
 import type { Figures, FigureTree, Note } from './figures.js';
 import type { Effort } from './kernels/count.js';
-import { figureDifference } from './accuracy.js';
-import { type Sample, sampleDesign } from './sample.js';
 import { pulseFigures } from './pulse/figures.js';
+import { type Sample, sampleDesign } from './sample.js';
 
 /**
  * `search`: one propagation, error estimated from its own steps. `quoted`: repeated with finer steps and more drift
@@ -90,10 +90,16 @@ function ratio(factorial2: number, mean: number): number | null {
 function figureTree(s: Sample, accuracy: FigureTree['accuracy']): FigureTree {
   const notes: Note[] = [];
   if (s.filtered && s.filtered.multiphoton === null) {
-    notes.push({ path: 'filtered.multiphoton', reason: 'six factorial moments are not enough: too many photons per pulse' });
+    notes.push({
+      path: 'filtered.multiphoton',
+      reason: 'six factorial moments are not enough: too many photons per pulse',
+    });
   }
   if (s.signal.multiphoton === null) {
-    notes.push({ path: 'signal.multiphoton', reason: 'six factorial moments are not enough: too many photons per pulse' });
+    notes.push({
+      path: 'signal.multiphoton',
+      reason: 'six factorial moments are not enough: too many photons per pulse',
+    });
   }
   if (!(s.emitted.mean > 0)) notes.push({ path: 'emitted.g2', reason: 'nothing is emitted' });
   const count = (c: Sample['signal']) => ({

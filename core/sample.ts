@@ -1,5 +1,5 @@
-import { type Count, countFromMoments, addPoisson, seriesHolds } from './collection/moments.js';
 import { leakedPhotons, pulseFilter } from './collection/leakage.js';
+import { addPoisson, type Count, countFromMoments, seriesHolds } from './collection/moments.js';
 import type { Design } from './design.js';
 import { type DriftNode, driftedDesign } from './drift/nodes.js';
 import type { Scheme } from './emitter/contract.js';
@@ -68,7 +68,8 @@ export function situation(design: Design): Situation {
   }
   const reference = pulse.reference === 'two-photon' ? (scheme.twoPhoton as number) : 0;
   const resonances: Resonance[] = schemeResonances(scheme);
-  for (const t of pulse.tones) resonances.push({ center: reference + t.detuning / HBAR, quanta: 1, weight: 1 });
+  for (const t of pulse.tones)
+    resonances.push({ center: reference + t.detuning / HBAR, quanta: 1, weight: 1 });
   if (collection.filter) {
     const center = line + collection.filter.center * RAD_PER_PS_PER_GHZ;
     resonances.push({ center, quanta: 1, weight: FEWEST_MOMENTS });

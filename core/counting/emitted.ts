@@ -40,7 +40,11 @@ export function addEmittedCounting(builder: HierarchyBuilder, dipoles: readonly 
  * Exact for the whole distribution, without knowing p_n beyond n = 1.
  * Targets: `thinned0`, `thinned1`, `thinnedMultiphoton`.
  */
-export function addThinnedCounting(builder: HierarchyBuilder, dipoles: readonly Operator[], eta: number): void {
+export function addThinnedCounting(
+  builder: HierarchyBuilder,
+  dipoles: readonly Operator[],
+  eta: number,
+): void {
   const jumps = builder.addJump(dipoles);
   const source = (factor: number, from: number, to: number): void => {
     for (const j of jumps) builder.couple(j, factor * eta, from, to);

@@ -15,7 +15,8 @@ interface Index {
 }
 
 const sum = (x: readonly number[]): number => x.reduce((a, b) => a + b, 0);
-const step = (x: readonly number[], q: number, by: number): number[] => x.map((v, i) => (i === q ? v + by : v));
+const step = (x: readonly number[], q: number, by: number): number[] =>
+  x.map((v, i) => (i === q ? v + by : v));
 
 /** Only one of R_jk and R_kj = R_jk† is stored. */
 function canonical(index: Index): { stored: Index; conjugate: boolean } {

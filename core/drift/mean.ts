@@ -13,9 +13,22 @@ function meanOf(trees: readonly Tree[], weights: readonly number[]): Tree {
     return (trees as readonly number[]).reduce((sum, x, k) => sum + weights[k] * x, 0);
   }
   if (Array.isArray(head)) {
-    return head.map((_, i) => meanOf((trees as readonly Tree[][]).map((t) => t[i]), weights));
+    return head.map((_, i) =>
+      meanOf(
+        (trees as readonly Tree[][]).map((t) => t[i]),
+        weights,
+      ),
+    );
   }
   const keys = Object.keys(head as object);
   const records = trees as readonly { readonly [key: string]: Tree }[];
-  return Object.fromEntries(keys.map((key) => [key, meanOf(records.map((t) => t[key]), weights)]));
+  return Object.fromEntries(
+    keys.map((key) => [
+      key,
+      meanOf(
+        records.map((t) => t[key]),
+        weights,
+      ),
+    ]),
+  );
 }

@@ -35,11 +35,7 @@ export function buildGenerator(scheme: Scheme, frame: number, shift: number): Ge
     addTransfer(excitons, i, i, level.excitons);
   });
   const parts = [commutatorMap(bare)];
-  for (const decay of scheme.decays) {
-    const c = zero(n);
-    addTransfer(c, decay.to, decay.from, 1);
-    parts.push(dissipatorMap(c, decay.rate));
-  }
+  for (const c of radiationDipoles(scheme)) parts.push(dissipatorMap(c, 1));
   if (scheme.dephasing > 0) parts.push(dissipatorMap(excitons, scheme.dephasing));
   const raising = driveOperators(scheme);
   return {
@@ -74,6 +70,18 @@ function stableCoordinates(scheme: Scheme): boolean[] {
     }
   }
   return stable;
+}
+
+/** One dipole per line and polarisation: decays into the same modes are one coherent jump. */
+function radiationDipoles(scheme: Scheme): Operator[] {
+  const keys = new Set(scheme.decays.map((d) => `${d.line} ${d.polarization}`));
+  return [...keys].map((key) => {
+    const c = zero(scheme.levels.length);
+    for (const d of scheme.decays) {
+      if (`${d.line} ${d.polarization}` === key) addTransfer(c, d.to, d.from, Math.sqrt(d.rate));
+    }
+    return c;
+  });
 }
 
 /**

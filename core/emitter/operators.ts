@@ -164,7 +164,8 @@ export function dissipatorMap(c: Operator, rate: number): SparseMatrix {
 export function addMatrices(matrices: readonly SparseMatrix[]): SparseMatrix {
   const size = matrices[0].size;
   const dense = new Float64Array(size * size);
-  for (const m of matrices) for (let k = 0; k < m.value.length; k++) dense[m.row[k] * size + m.col[k]] += m.value[k];
+  for (const m of matrices)
+    for (let k = 0; k < m.value.length; k++) dense[m.row[k] * size + m.col[k]] += m.value[k];
   return fromDense(dense, size);
 }
 
