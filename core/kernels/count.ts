@@ -89,7 +89,9 @@ export function meshFor(generator: Generator, drive: Drive, fastest: number, eff
     mostSteps: MOST_STEPS,
   });
   if (outcome.kind === 'failed') {
-    throw new PropagationError(`${outcome.reason}; a shorter pulse, less dispersion or a smaller detuning helps`);
+    throw new PropagationError(
+      `${outcome.reason}; a shorter pulse, less dispersion or a smaller detuning helps`,
+    );
   }
   return outcome.mesh;
 }

@@ -53,7 +53,10 @@ interface Scatter {
 }
 
 /** Couplings regrouped by matrix entry, so that the inner loop runs over lanes. */
-function groupCouplings(hierarchy: Hierarchy): { entries: Scatter[]; identity: Omit<Scatter, 'row' | 'col'> } {
+function groupCouplings(hierarchy: Hierarchy): {
+  entries: Scatter[];
+  identity: Omit<Scatter, 'row' | 'col'>;
+} {
   const entries: Scatter[] = [];
   hierarchy.matrices.forEach((m, index) => {
     const own = hierarchy.couplings.filter((c) => c.matrix === index);

@@ -49,7 +49,8 @@ export function buildMesh(rho: LinearSystem, drive: Drive, options: MeshOptions)
       const step = last ? remaining : h > 0.5 * remaining ? 0.5 * remaining : h;
       stepper.advance(t, step, segment, y, next);
       const error = stepper.localError(step);
-      if (!Number.isFinite(error)) return { kind: 'failed', reason: 'the propagator met a value that is not finite' };
+      if (!Number.isFinite(error))
+        return { kind: 'failed', reason: 'the propagator met a value that is not finite' };
       const ratio = error / options.tolerance;
       const factor = ratio === 0 ? GROW : Math.min(GROW, Math.max(SHRINK, SAFETY * ratio ** -0.125));
       if (ratio <= 1) {

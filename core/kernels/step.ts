@@ -72,7 +72,19 @@ function combineStages(
     const at = (k: number): number => used[k] ?? used[0];
     const w = (k: number): number => (k < used.length ? weights[used[k]] * h : 0);
     if (used.length === 0) return;
-    addFour(out, source, stages[at(0)], w(0), stages[at(1)], w(1), stages[at(2)], w(2), stages[at(3)], w(3), n);
+    addFour(
+      out,
+      source,
+      stages[at(0)],
+      w(0),
+      stages[at(1)],
+      w(1),
+      stages[at(2)],
+      w(2),
+      stages[at(3)],
+      w(3),
+      n,
+    );
     source = out;
   }
 }
