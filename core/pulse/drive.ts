@@ -1,7 +1,7 @@
 import { HBAR } from '../units/constants.js';
 import type { Pulse, Tone } from './contract.js';
 import { type Envelope, toneEnvelope } from './envelope.js';
-import { ClosedTone, type ToneSampler } from './tones.js';
+import { type ToneSampler, toneSampler } from './tones.js';
 import { type PlacedWindow, segments } from './window.js';
 
 /** The complex envelope of a pulse in a rotating frame, on a finite window. */
@@ -22,7 +22,10 @@ export interface Drive {
    * shortest time scale (ps).
    */
   readonly scales: { readonly peakRabi: number; readonly frequency: number; readonly time: number };
-  /** Estimated error of the envelope relative to its peak; 0 for closed forms. */
+  /**
+   * Estimated error of the envelope relative to its peak; 0 for closed forms. For a dispersed square the far wings
+   * that no grid can hold count with the excited-state admixture that they would have caused.
+   */
   readonly error: number;
 }
 
@@ -50,7 +53,7 @@ function placeTone(tone: Tone, options: DriveOptions): PlacedTone {
     delay: tone.delay,
     weights,
   };
-  const sampler = new ClosedTone(envelope.form.closed, place);
+  const sampler = toneSampler(envelope, place);
   const window = {
     start: tone.delay + envelope.start,
     end: tone.delay + envelope.end,
@@ -89,6 +92,7 @@ function highestFrequency(tones: readonly PlacedTone[], frame: number): number {
 /**
  * The drive of a pulse in the frame asked for. The window follows by rule from the tones (see `cutLevel`); tones that
  * do not overlap leave gaps in it, in which the drive is exactly zero.
+ * @throws DispersionError when a dispersed tone is spread over more samples than a transform can hold
  */
 export function createDrive(pulse: Pulse, options: DriveOptions): Drive {
   if (pulse.tones.length === 0) throw new RangeError('pulse.tones: got none; needs at least one tone');

@@ -1,4 +1,6 @@
+import type { UniformTable } from '../numerics/index.js';
 import type { Tone } from './contract.js';
+import { disperse, excursion } from './dispersed.js';
 import type { ClosedEnvelope, PulseShape } from './shapes/contract.js';
 import { pulseShape } from './shapes/registry.js';
 
@@ -20,7 +22,9 @@ export interface Envelope {
   readonly frequencies: readonly [number, number];
   /** Estimated error relative to the peak. */
   readonly error: number;
-  readonly form: { readonly kind: 'closed'; readonly closed: ClosedEnvelope };
+  readonly form:
+    | { readonly kind: 'closed'; readonly closed: ClosedEnvelope }
+    | { readonly kind: 'table'; readonly table: UniformTable };
 }
 
 /** Relative field at which the instantaneous frequency stops to matter for step rules. */
@@ -64,11 +68,31 @@ function fromClosed(closed: ClosedEnvelope, edges: readonly number[], area: numb
   };
 }
 
-/** Envelope of a tone after its own dispersion. */
+function fromSpectrum(shape: PulseShape, tone: Tone): Envelope {
+  const { fwhm } = tone;
+  const { table, start, end, peak, reach, error } = disperse(shape, fwhm, tone, tone.area, cutLevel);
+  const relevant = Math.min(shape.spectralReach(fwhm, RELEVANT), reach);
+  const frequency = excursion(tone, relevant, shape.reach(fwhm, RELEVANT));
+  return {
+    start,
+    end,
+    edges: [],
+    peak,
+    timeScale: shape.timeScale(fwhm),
+    frequencies: [-frequency, frequency],
+    error,
+    form: { kind: 'table', table },
+  };
+}
+
+/**
+ * Envelope of a tone after its own dispersion: in closed form where there is one, else through the spectrum.
+ * @throws DispersionError when no grid can hold the dispersed pulse
+ */
 export function toneEnvelope(tone: Tone): Envelope {
   const shape = pulseShape(tone.shape);
   const { fwhm, gdd, tod, area } = tone;
   if (tod === 0 && gdd === 0) return fromClosed(transformLimited(shape, fwhm), shape.edges(fwhm), area);
   if (tod === 0 && shape.dispersed) return fromClosed(shape.dispersed(fwhm, gdd), [], area);
-  throw new RangeError(`dispersion of ${tone.shape} with GDD ${gdd} ps² and TOD ${tod} ps³ is not ready`);
+  return fromSpectrum(shape, tone);
 }

@@ -1,4 +1,5 @@
 export * from './contract.js';
+export { DispersionError } from './dispersed.js';
 export { createDrive, type Drive, type DriveOptions } from './drive.js';
 export { type PolarizedEnergy, pulseEnergy, type SpectralFilter, transmittedEnergy } from './energy.js';
 export type { ClosedEnvelope, PulseShape } from './shapes/contract.js';

@@ -1,3 +1,5 @@
+import type { UniformTable } from '../numerics/index.js';
+import type { Envelope } from './envelope.js';
 import type { ClosedEnvelope } from './shapes/contract.js';
 
 /** One tone, ready to be added to a drive sample. */
@@ -79,4 +81,53 @@ export class ClosedTone extends WeightedTone implements ToneSampler {
     const angle = this.#phase - (this.#rate - this.#chirp * s) * s;
     this.put(field * Math.cos(angle), field * Math.sin(angle), out);
   }
+}
+
+/** A tone read from a table of its envelope; zero outside [start, end] (ps, about the tone's centre). */
+export class TableTone extends WeightedTone implements ToneSampler {
+  readonly #table: UniformTable;
+  readonly #start: number;
+  readonly #end: number;
+  readonly #area: number;
+  readonly #delay: number;
+  readonly #phase: number;
+  readonly #rate: number;
+  readonly #value = new Float64Array(2);
+
+  constructor(table: UniformTable, range: { start: number; end: number }, place: TonePlacement) {
+    super(place.weights);
+    this.#table = table;
+    this.#start = range.start;
+    this.#end = range.end;
+    this.#area = place.area;
+    this.#delay = place.delay;
+    this.#phase = (place.phase - place.rate * place.delay) % (2 * Math.PI);
+    this.#rate = place.rate;
+  }
+
+  magnitude(t: number): number {
+    const s = t - this.#delay;
+    if (s < this.#start || s > this.#end) return 0;
+    this.#table.read(s, this.#value);
+    return Math.abs(this.#area) * Math.hypot(this.#value[0], this.#value[1]);
+  }
+
+  add(t: number, out: Float64Array): void {
+    const s = t - this.#delay;
+    if (s < this.#start || s > this.#end) return;
+    const value = this.#value;
+    this.#table.read(s, value);
+    const angle = this.#phase - this.#rate * s;
+    const re = this.#area * Math.cos(angle);
+    const im = this.#area * Math.sin(angle);
+    this.put(re * value[0] - im * value[1], re * value[1] + im * value[0], out);
+  }
+}
+
+/** The sampler of a tone from its envelope. */
+export function toneSampler(envelope: Envelope, place: TonePlacement): ToneSampler {
+  const { form } = envelope;
+  return form.kind === 'closed'
+    ? new ClosedTone(form.closed, place)
+    : new TableTone(form.table, envelope, place);
 }
