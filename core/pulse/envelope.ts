@@ -39,6 +39,7 @@ function transformLimited(shape: PulseShape, fwhm: number): ClosedEnvelope {
     phase: 0,
     chirp: 0,
     peak,
+    fwhm,
     absoluteArea: 1,
     timeScale: shape.timeScale(fwhm),
     reach: (eps) => shape.reach(fwhm, eps),

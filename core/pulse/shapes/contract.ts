@@ -8,6 +8,8 @@ export interface ClosedEnvelope {
   readonly chirp: number;
   /** Largest magnitude, 1/ps. */
   readonly peak: number;
+  /** Full width at half maximum of |env|², ps. */
+  readonly fwhm: number;
   /** ∫|env| dt. */
   readonly absoluteArea: number;
   /** Characteristic time of the magnitude, ps. */

@@ -21,6 +21,7 @@ function dispersed(fwhm: number, gdd: number): ClosedEnvelope {
     phase: 0.5 * Math.atan2(gdd, variance),
     chirp: (-0.5 * gdd) / (modulus * modulus),
     peak,
+    fwhm: FWHM_PER_SIGMA * stretched,
     absoluteArea: Math.sqrt(stretched / sigma),
     timeScale: stretched,
     reach: (eps) => stretched * Math.sqrt(-2 * Math.log(eps)),

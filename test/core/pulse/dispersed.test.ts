@@ -37,7 +37,7 @@ function fourier(
   return [re * scale, im * scale];
 }
 
-const distance = (a: readonly number[], b: readonly number[]) => Math.hypot(a[0] - b[0], a[1] - b[1]);
+const distance = (a: ArrayLike<number>, b: ArrayLike<number>) => Math.hypot(a[0] - b[0], a[1] - b[1]);
 const size = (a: readonly number[]) => Math.hypot(a[0], a[1]);
 
 /** ∫|Ω|² dt and ∫ t|Ω|² dt by the trapezoidal rule. */

@@ -1,0 +1,111 @@
+import type { PulseFigures } from '../figures.js';
+import type { Pulse, Tone } from './contract.js';
+import { halfMaximumWidth, type Stretch } from './crossings.js';
+import { createDrive } from './drive.js';
+import { pulseEnergy } from './energy.js';
+import { pulseShape } from './shapes/registry.js';
+import { type ToneSpectrum, toneSpectrum } from './spectrum.js';
+
+/** Samples per radian of beating, and per characteristic time of an envelope. */
+const PER_RADIAN = 2.5;
+const PER_TIME = 8;
+/** Most samples that one scan may take. */
+const SAMPLES = 200_000;
+/** Spectral field, relative to a tone's area, below which half the maximum cannot lie. */
+const SPECTRAL_FLOOR = 1e-3;
+/** The same for spectra that fall as 1/ω only, 1/fwhm. */
+const FLAT_REACH = 60;
+/** 1/ps as an ordinary frequency, GHz. */
+const GHZ_PER_RADIAN = 1000 / (2 * Math.PI);
+
+/** |Ω_h|² + |Ω_v|² over the drive window, one stretch per segment. */
+function inTime(pulse: Pulse): Stretch[] {
+  const centers = pulse.tones.map((tone) => toneSpectrum(tone).center);
+  const frame = 0.5 * (Math.min(...centers) + Math.max(...centers));
+  const { breakpoints, scales, sample } = createDrive(pulse, { frame, projection: 'linear' });
+  const out = new Float64Array(4);
+  const whole = breakpoints[breakpoints.length - 1] - breakpoints[0];
+  const step = Math.max(whole / SAMPLES, 1 / (PER_TIME / scales.time + PER_RADIAN * scales.frequency));
+  return Array.from({ length: breakpoints.length - 1 }, (_, s) => ({
+    from: breakpoints[s],
+    to: breakpoints[s + 1],
+    step: Math.min(step, (breakpoints[s + 1] - breakpoints[s]) / 16),
+    value: (t: number) => {
+      sample(t, s, out);
+      return out[0] * out[0] + out[1] * out[1] + out[2] * out[2] + out[3] * out[3];
+    },
+  }));
+}
+
+const spectralReach = (tone: Tone, spectrum: ToneSpectrum): number =>
+  Math.min(spectrum.reach(SPECTRAL_FLOOR), FLAT_REACH / tone.fwhm);
+
+/** Largest difference of group delays within the bands of all tones, ps. */
+function delaySpread(tones: readonly Tone[], spectra: readonly ToneSpectrum[]): number {
+  let [early, late] = [Number.POSITIVE_INFINITY, Number.NEGATIVE_INFINITY];
+  spectra.forEach((spectrum, k) => {
+    for (let i = -8; i <= 8; i++) {
+      const delay = spectrum.groupDelay((spectralReach(tones[k], spectrum) * i) / 8);
+      early = Math.min(early, delay);
+      late = Math.max(late, delay);
+    }
+  });
+  return late - early;
+}
+
+/** |E_h|² + |E_v|² over the bands of all tones. */
+function inFrequency(tones: readonly Tone[]): Stretch[] {
+  const spectra = tones.map(toneSpectrum);
+  const low = Math.min(...spectra.map((s, k) => s.center - spectralReach(tones[k], s)));
+  const high = Math.max(...spectra.map((s, k) => s.center + spectralReach(tones[k], s)));
+  const longest = Math.max(...tones.map((tone) => tone.fwhm));
+  const step = Math.max(
+    (high - low) / SAMPLES,
+    1 / (PER_TIME * longest + PER_RADIAN * delaySpread(tones, spectra)),
+  );
+  const value = (omega: number) => {
+    let [hr, hi, vr, vi] = [0, 0, 0, 0];
+    for (let k = 0; k < spectra.length; k++) {
+      const nu = omega - spectra[k].center;
+      const amplitude = spectra[k].amplitude(nu);
+      const phase = spectra[k].phase(nu);
+      const re = amplitude * Math.cos(phase);
+      const im = amplitude * Math.sin(phase);
+      const h = Math.cos(tones[k].polarization);
+      const v = Math.sin(tones[k].polarization);
+      hr += h * re;
+      hi += h * im;
+      vr += v * re;
+      vi += v * im;
+    }
+    return hr * hr + hi * hi + vr * vr + vi * vi;
+  };
+  return [{ from: low, to: high, step, value }];
+}
+
+/** Half-maximum duration of one tone, ps, where the shape itself knows it; null otherwise. */
+function knownDuration(tone: Tone): number | null {
+  const shape = pulseShape(tone.shape);
+  if (tone.tod !== 0) return null;
+  if (tone.gdd === 0) return tone.fwhm;
+  return shape.dispersed ? shape.dispersed(tone.fwhm, tone.gdd).fwhm : null;
+}
+
+/**
+ * Energy, duration and bandwidth of a pulse. Duration and bandwidth lie between the outermost points at which
+ * |Ω_h|² + |Ω_v|² reaches half its maximum, in time and in frequency; of a pulse without any area they are 0 unless
+ * it has a single tone, whose shape fixes them.
+ * @throws DispersionError when a dispersed tone is spread over more samples than a transform can hold
+ */
+export function pulseFigures(pulse: Pulse): PulseFigures {
+  const [first] = pulse.tones;
+  const reference = Math.PI ** 2 * pulseShape('gaussian').energy(first.fwhm);
+  const energy = pulseEnergy(pulse) / reference;
+  const single = pulse.tones.length === 1;
+  const known = single ? knownDuration(first) : null;
+  const duration = known ?? halfMaximumWidth(inTime(pulse));
+  const bandwidth = single
+    ? (1000 * pulseShape(first.shape).timeBandwidth) / first.fwhm
+    : GHZ_PER_RADIAN * halfMaximumWidth(inFrequency(pulse.tones));
+  return { energy_pi_units: energy, duration_ps: duration, bandwidth_ghz: bandwidth };
+}

@@ -1,0 +1,76 @@
+import { describe, expect, it } from 'vitest';
+import { pulseFigures } from '../../../core/pulse/figures.js';
+import { GHZ_PER_MEV } from '../../../core/units/constants.js';
+import { pulse } from './tone.js';
+
+describe('figures of a pulse', () => {
+  it.each([
+    ['gaussian', 0.44127],
+    ['sech', 0.31483],
+    ['square', 0.88589],
+  ])('%s: duration times bandwidth is %f (textbook, Diels & Rudolph)', (shape, product) => {
+    const single = pulseFigures(pulse({ shape, fwhm: 7, detuning: 1, delay: 30 }));
+    expect(single.duration_ps).toBe(7);
+    expect((single.duration_ps * single.bandwidth_ghz) / 1000).toBeCloseTo(product, 5);
+  });
+
+  it.each(['gaussian', 'sech', 'square'])(
+    '%s: the scan finds what the single tone is known to have',
+    (shape) => {
+      // Two equal tones on top of each other are one tone of twice the area, but take the general path.
+      const tone = { shape, fwhm: 4, detuning: -0.8, delay: 11 };
+      const single = pulseFigures(pulse(tone));
+      const scanned = pulseFigures(pulse(tone, tone));
+      expect(scanned.duration_ps / single.duration_ps).toBeCloseTo(1, 9);
+      expect(scanned.bandwidth_ghz / single.bandwidth_ghz).toBeCloseTo(1, 9);
+      expect(scanned.energy_pi_units / single.energy_pi_units).toBeCloseTo(4, 10);
+    },
+  );
+
+  it('a resonant Gaussian π pulse is the unit of energy; 2π of half the width takes 8', () => {
+    expect(pulseFigures(pulse({ fwhm: 9 })).energy_pi_units).toBeCloseTo(1, 13);
+    const two = pulse({ fwhm: 9, area: 0 }, { fwhm: 4.5, area: 2 * Math.PI });
+    expect(pulseFigures(two).energy_pi_units).toBeCloseTo(8, 12);
+  });
+
+  it('chirp stretches the duration by √(1 + (4 ln2 GDD/τ²)²) and leaves the rest (Diels & Rudolph)', () => {
+    const plain = pulseFigures(pulse({ fwhm: 3 }));
+    const chirped = pulseFigures(pulse({ fwhm: 3, gdd: -25 }));
+    const stretch = Math.hypot(1, (4 * Math.LN2 * 25) / 9);
+    expect(chirped.duration_ps / plain.duration_ps).toBeCloseTo(stretch, 12);
+    expect(chirped.bandwidth_ghz).toBe(plain.bandwidth_ghz);
+    expect(chirped.energy_pi_units).toBe(plain.energy_pi_units);
+  });
+
+  it('TOD → 0 leaves the duration, strong TOD rings it out', () => {
+    expect(pulseFigures(pulse({ fwhm: 3, tod: 1e-7 })).duration_ps).toBeCloseTo(3, 7);
+    expect(pulseFigures(pulse({ fwhm: 3, tod: 300 })).duration_ps).toBeGreaterThan(6);
+  });
+
+  it('two separate pulses: from the first rise to the last fall', () => {
+    const apart = pulseFigures(pulse({ delay: -500 }, { delay: 500, fwhm: 5 }));
+    expect(apart.duration_ps).toBeCloseTo(1005, 8);
+    // Equal spectra with fringes of 1 GHz: the outermost fringe above half the maximum.
+    expect(apart.bandwidth_ghz).toBeGreaterThan(441.27 / 5 - 2.1);
+    expect(apart.bandwidth_ghz).toBeLessThan(441.27 / 5);
+  });
+
+  it('two colours: the distance of the lines plus half of each width; beating inside', () => {
+    const two = pulseFigures(pulse({ fwhm: 10, detuning: -8 }, { fwhm: 10, detuning: 8 }));
+    expect(two.bandwidth_ghz).toBeCloseTo(16 * GHZ_PER_MEV + 44.127, 1);
+    // Crests of cos²(8 meV t/ħ) under the Gaussian: the last one above half the maximum.
+    expect(two.duration_ps).toBeGreaterThan(9.7);
+    expect(two.duration_ps).toBeLessThan(10);
+  });
+
+  it('crossed polarisations do not beat', () => {
+    const crossed = pulse({ fwhm: 10, detuning: -8 }, { fwhm: 10, detuning: 8, polarization: Math.PI / 2 });
+    expect(pulseFigures(crossed).duration_ps).toBeCloseTo(10, 8);
+  });
+
+  it('no area at all', () => {
+    const none = pulseFigures(pulse({ area: 0 }, { area: 0 }));
+    expect(none).toEqual({ energy_pi_units: 0, duration_ps: 0, bandwidth_ghz: 0 });
+    expect(pulseFigures(pulse({ area: 0 })).duration_ps).toBe(5);
+  });
+});
