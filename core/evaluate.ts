@@ -15,8 +15,8 @@ export type Accuracy = 'search' | 'quoted';
 
 const SEARCH: Effort = { tolerance: 1e-10, parts: 1, nodes: 1 };
 const LADDER: readonly Effort[] = [
-  { tolerance: 1e-11, parts: 1, nodes: 1 },
-  { tolerance: 1e-11, parts: 2, nodes: 1.5 },
+  { tolerance: 1e-10, parts: 1, nodes: 1 },
+  { tolerance: 1e-10, parts: 2, nodes: 1.5 },
   { tolerance: 1e-11, parts: 4, nodes: 2.2 },
   { tolerance: 1e-11, parts: 8, nodes: 3.3 },
 ];

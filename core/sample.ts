@@ -121,7 +121,8 @@ export function sampleDesign(nominal: Design, node: DriftNode, effort: Effort): 
       pulse: pulseFigures(design.pulse),
     },
     steps: run.result.steps,
-    error: Math.max(run.result.localErrors * 1000, where.drive.error, run.seriesError),
+    // A refined mesh no longer has the errors that were measured while it was built.
+    error: Math.max(effort.parts > 1 ? 0 : run.result.localErrors * 1000, where.drive.error, run.seriesError),
   };
 }
 

@@ -44,45 +44,44 @@ function mergeGenerator(generator: Generator): Entries {
   };
 }
 
+/** dy[to] += factor · y[from], for every coupling and matrix entry. */
 interface Scatter {
-  readonly row: number;
-  readonly col: number;
   readonly from: Int32Array;
   readonly to: Int32Array;
   readonly factor: Float64Array;
 }
 
-/** Couplings regrouped by matrix entry, so that the inner loop runs over lanes. */
-function groupCouplings(hierarchy: Hierarchy): {
-  entries: Scatter[];
-  identity: Omit<Scatter, 'row' | 'col'>;
-} {
-  const entries: Scatter[] = [];
-  hierarchy.matrices.forEach((m, index) => {
-    const own = hierarchy.couplings.filter((c) => c.matrix === index);
-    if (own.length === 0) return;
-    for (let k = 0; k < m.value.length; k++) {
-      entries.push({
-        row: m.row[k],
-        col: m.col[k],
-        from: Int32Array.from(own, (c) => c.from),
-        to: Int32Array.from(own, (c) => c.to),
-        factor: Float64Array.from(own, (c) => c.factor * m.value[k]),
-      });
+/** Couplings between lanes written out entry by entry: one flat loop beats nested ones in V8. */
+function flattenCouplings(hierarchy: Hierarchy, size: number): Scatter {
+  const { lanes } = hierarchy;
+  const from: number[] = [];
+  const to: number[] = [];
+  const factor: number[] = [];
+  const add = (row: number, col: number, source: number, target: number, value: number): void => {
+    from.push(col * lanes + source);
+    to.push(row * lanes + target);
+    factor.push(value);
+  };
+  for (const c of hierarchy.couplings) {
+    if (c.matrix < 0) {
+      for (let r = 0; r < size; r++) add(r, r, c.from, c.to, c.factor);
+      continue;
     }
-  });
-  const plain = hierarchy.couplings.filter((c) => c.matrix < 0);
-  const turns = hierarchy.blocks.filter((b) => b.rotation !== 0 && !b.hermitian);
+    const m = hierarchy.matrices[c.matrix];
+    for (let k = 0; k < m.value.length; k++) add(m.row[k], m.col[k], c.from, c.to, c.factor * m.value[k]);
+  }
+  for (const b of hierarchy.blocks) {
+    if (b.rotation === 0 || b.hermitian) continue;
+    for (let r = 0; r < size; r++) {
+      add(r, r, b.lane + 1, b.lane, b.rotation);
+      add(r, r, b.lane, b.lane + 1, -b.rotation);
+    }
+  }
+  const order = to.map((_, i) => i).sort((i, j) => to[i] - to[j] || from[i] - from[j]);
   return {
-    entries,
-    identity: {
-      from: Int32Array.from([...plain.map((c) => c.from), ...turns.flatMap((b) => [b.lane + 1, b.lane])]),
-      to: Int32Array.from([...plain.map((c) => c.to), ...turns.flatMap((b) => [b.lane, b.lane + 1])]),
-      factor: Float64Array.from([
-        ...plain.map((c) => c.factor),
-        ...turns.flatMap((b) => [b.rotation, -b.rotation]),
-      ]),
-    },
+    from: Int32Array.from(order, (i) => from[i]),
+    to: Int32Array.from(order, (i) => to[i]),
+    factor: Float64Array.from(order, (i) => factor[i]),
   };
 }
 
@@ -100,8 +99,7 @@ export class LinearSystem {
   private readonly values: Float64Array;
   private readonly damping: Float64Array;
   private readonly damped: boolean;
-  private readonly scatter: Scatter[];
-  private readonly identity: Omit<Scatter, 'row' | 'col'>;
+  private readonly scatter: Scatter;
   private readonly seeded: readonly number[];
 
   constructor(generator: Generator, hierarchy: Hierarchy) {
@@ -117,9 +115,7 @@ export class LinearSystem {
     }
     this.damped = this.damping.some((d) => d !== 0);
     this.fastest = Math.max(0, ...hierarchy.blocks.map((b) => Math.hypot(b.damping, b.rotation)));
-    const grouped = groupCouplings(hierarchy);
-    this.scatter = grouped.entries;
-    this.identity = grouped.identity;
+    this.scatter = flattenCouplings(hierarchy, this.size);
     this.seeded = hierarchy.seeded.map((block) => hierarchy.blocks[block].lane);
   }
 
@@ -162,16 +158,7 @@ export class LinearSystem {
   }
 
   private applyCouplings(y: Float64Array, dy: Float64Array): void {
-    const { lanes, size, identity } = this;
-    for (const { row, col, from, to, factor } of this.scatter) {
-      const r = row * lanes;
-      const c = col * lanes;
-      for (let k = 0; k < from.length; k++) dy[r + to[k]] += factor[k] * y[c + from[k]];
-    }
-    const { from, to, factor } = identity;
-    for (let r = 0; r < size; r++) {
-      const base = r * lanes;
-      for (let k = 0; k < from.length; k++) dy[base + to[k]] += factor[k] * y[base + from[k]];
-    }
+    const { from, to, factor } = this.scatter;
+    for (let k = 0; k < to.length; k++) dy[to[k]] += factor[k] * y[from[k]];
   }
 }
