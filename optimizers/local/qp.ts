@@ -20,25 +20,84 @@ export interface QuadraticProgram {
 const dot = (a: readonly number[], b: readonly number[]) =>
   a.reduce((sum, value, i) => sum + value * b[i], 0);
 
-const SWEEPS = 400;
 const BISECTIONS = 60;
+/** Rounds over several constraints, whose multipliers depend on one another. */
+const ROUNDS = 200;
 
-/** Minimises g·p + ½ pᵀHp over a box by cyclic coordinate descent; `step` is the start and is overwritten. */
+/** Solves M q = r for a small positive definite M by Cholesky factors. */
+function solvePositive(matrix: Matrix, right: readonly number[]): number[] {
+  const n = right.length;
+  const low = matrix.map((row) => [...row]);
+  const q = [...right];
+  for (let i = 0; i < n; i++) {
+    for (let j = 0; j <= i; j++) {
+      for (let k = 0; k < j; k++) low[i][j] -= low[i][k] * low[j][k];
+      low[i][j] = i === j ? Math.sqrt(Math.max(low[i][i], Number.MIN_VALUE)) : low[i][j] / low[j][j];
+    }
+    for (let k = 0; k < i; k++) q[i] -= low[i][k] * q[k];
+    q[i] /= low[i][i];
+  }
+  for (let i = n - 1; i >= 0; i--) {
+    for (let k = i + 1; k < n; k++) q[i] -= low[k][i] * q[k];
+    q[i] /= low[i][i];
+  }
+  return q;
+}
+
+/**
+ * Minimises g·p + ½ pᵀHp over a box by the primal active-set method (Nocedal & Wright, section 16.5); `step` is the
+ * feasible start and is overwritten.
+ */
 function boxMinimum(
   gradient: readonly number[],
   hessian: Matrix,
   program: QuadraticProgram,
   step: number[],
 ): void {
-  for (let sweep = 0; sweep < SWEEPS; sweep++) {
-    let moved = 0;
-    for (let i = 0; i < step.length; i++) {
-      const slope = gradient[i] + dot(hessian[i], step);
-      const next = Math.min(Math.max(step[i] - slope / hessian[i][i], program.lower[i]), program.upper[i]);
-      moved = Math.max(moved, Math.abs(next - step[i]));
-      step[i] = next;
+  const { lower, upper } = program;
+  const fixed = step.map(() => false);
+  for (let pass = 0; pass < 20 * (step.length + 1); pass++) {
+    const free = step.flatMap((_, i) => (fixed[i] ? [] : [i]));
+    const slopes = hessian.map((row, i) => gradient[i] + dot(row, step));
+    const block = free.map((i) => free.map((k) => hessian[i][k]));
+    const move = solvePositive(
+      block,
+      free.map((i) => -slopes[i]),
+    );
+    let share = 1;
+    let blocking = -1;
+    free.forEach((i, at) => {
+      const room = move[at] > 0 ? upper[i] - step[i] : lower[i] - step[i];
+      if (move[at] !== 0 && room / move[at] < share) {
+        share = room / move[at];
+        blocking = i;
+      }
+    });
+    free.forEach((i, at) => {
+      step[i] = Math.min(Math.max(step[i] + share * move[at], lower[i]), upper[i]);
+    });
+    if (blocking >= 0) {
+      fixed[blocking] = true;
+      step[blocking] =
+        step[blocking] - lower[blocking] < upper[blocking] - step[blocking]
+          ? lower[blocking]
+          : upper[blocking];
+      continue;
     }
-    if (moved < 1e-13) return;
+    // At the minimum over the free ones: let go the bound that is held against the slope the most.
+    let wrongest = -1;
+    let most = 1e-12;
+    for (let i = 0; i < step.length; i++) {
+      if (!fixed[i] || lower[i] === upper[i]) continue;
+      const slope = gradient[i] + dot(hessian[i], step);
+      const wrong = step[i] === lower[i] ? -slope : slope;
+      if (wrong > most) {
+        most = wrong;
+        wrongest = i;
+      }
+    }
+    if (wrongest < 0) return;
+    fixed[wrongest] = false;
   }
 }
 
@@ -75,7 +134,7 @@ export function solveQuadratic(program: QuadraticProgram): { step: number[]; mul
     solve();
   };
   solve();
-  const rounds = values.length > 1 ? 20 : 1;
+  const rounds = values.length > 1 ? ROUNDS : 1;
   for (let round = 0; round < rounds; round++) {
     const before = [...multipliers];
     for (let j = 0; j < values.length; j++) settle(j);

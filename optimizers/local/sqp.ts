@@ -16,7 +16,7 @@ export const SQP_DEFAULTS: SqpOptions = {
   radius: 0.05,
   largestRadius: 0.3,
   smallestRadius: 1e-7,
-  tolerance: 1e-9,
+  tolerance: 1e-12,
 };
 
 /** Shares of the predicted gain: below the first a step is refused, above the second the radius may grow. */

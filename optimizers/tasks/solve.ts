@@ -22,6 +22,9 @@ export interface Solution {
 /** Weight of a missing brightness against the relative impurity, when the best of a solve is chosen. */
 const SHORTFALL = 100;
 
+/** Relative gain in impurity that is not worth another iteration. */
+const TOLERANCE = 1e-6;
+
 export const solveTask: TaskRunner = (task, { problem, recorder, seed }): Solution | null => {
   const { level, start, radius } = task.input as SolveInput;
   let best: Solution | null = null;
@@ -44,6 +47,6 @@ export const solveTask: TaskRunner = (task, { problem, recorder, seed }): Soluti
     seed,
     budget: task.budget,
   };
-  optimize(sqp({ radius }), setup, evaluate);
+  optimize(sqp({ radius, tolerance: TOLERANCE }), setup, evaluate);
   return best;
 };

@@ -10,9 +10,21 @@ export function toyEvaluate(design: Design): Figures {
   const single = flip * Math.exp(-0.05 * chirp * chirp) * (1 - (0.1 * tone.fwhm) / design.emitter.lifetime);
   const duration = tone.fwhm * Math.sqrt(1 + chirp * chirp) * (1 + 5 / tone.fwhm ** 2);
   const multiphoton = (0.4 * flip * duration * (1 + 0.3 * tone.area)) / design.emitter.lifetime + 1e-6;
-  const counts = { mean: single, single, any: single, multiphoton, g2: multiphoton / Math.max(single, 1e-12) ** 2 };
+  const counts = {
+    mean: single,
+    single,
+    any: single,
+    multiphoton,
+    g2: multiphoton / Math.max(single, 1e-12) ** 2,
+  };
   return {
-    emitted: { mean: single, factorial2: 2 * multiphoton, g2: counts.g2, p: [1 - single, single], multiphoton },
+    emitted: {
+      mean: single,
+      factorial2: 2 * multiphoton,
+      g2: counts.g2,
+      p: [1 - single, single],
+      multiphoton,
+    },
     filtered: null,
     signal: counts,
     collected: { ...counts, leakage: 0 },
