@@ -1,35 +1,43 @@
-/** A stretch of an axis on which a non-negative function is continuous; ends are one-sided values. */
-export interface Stretch {
+/** A piece of an axis on which a non-negative function is continuous; its ends are one-sided values. */
+export interface Cell {
   readonly from: number;
   readonly to: number;
-  /** Starting resolution: no feature of the function is narrower than a few of these. */
+  /** Sampling step: no feature of the function is narrower than a few of these. */
   readonly step: number;
+  /** The function does not exceed this inside. */
+  readonly bound: number;
   readonly value: (x: number) => number;
 }
 
-interface Sample {
+interface Point {
   readonly x: number;
   readonly y: number;
-  readonly stretch: Stretch;
 }
 
 const GOLDEN = 0.5 * (Math.sqrt(5) - 1);
 
-/** Largest value near a sampled local maximum, by golden-section search between its neighbours. */
-function peakNear(samples: readonly Sample[], i: number): { x: number; y: number } {
-  const { stretch } = samples[i];
-  let a = i > 0 && samples[i - 1].stretch === stretch ? samples[i - 1].x : samples[i].x;
-  let b = i + 1 < samples.length && samples[i + 1].stretch === stretch ? samples[i + 1].x : samples[i].x;
-  let best = { x: samples[i].x, y: samples[i].y };
+function samplesOf(cell: Cell): Point[] {
+  const count = Math.max(4, Math.ceil((cell.to - cell.from) / cell.step));
+  return Array.from({ length: count + 1 }, (_, i) => {
+    const x = i === count ? cell.to : cell.from + ((cell.to - cell.from) * i) / count;
+    return { x, y: cell.value(x) };
+  });
+}
+
+/** Highest point between the neighbours of sample i, by golden-section search. */
+function crest(cell: Cell, samples: readonly Point[], i: number): Point {
+  let a = samples[Math.max(0, i - 1)].x;
+  let b = samples[Math.min(samples.length - 1, i + 1)].x;
+  let best = samples[i];
   const probe = (x: number) => {
-    const y = stretch.value(x);
+    const y = cell.value(x);
     if (y > best.y) best = { x, y };
     return y;
   };
   let c = b - GOLDEN * (b - a);
   let d = a + GOLDEN * (b - a);
   let [yc, yd] = [probe(c), probe(d)];
-  // The value at a maximum is known to rounding when its place is known to 1e-8 of the bracket.
+  // The height of a crest is known to rounding when its place is known to 1e-8 of the bracket.
   for (let k = 0; k < 40; k++) {
     if (yc > yd) {
       [b, d, yd] = [d, c, yc];
@@ -44,17 +52,21 @@ function peakNear(samples: readonly Sample[], i: number): { x: number; y: number
   return best;
 }
 
-function isPeak(samples: readonly Sample[], i: number): boolean {
-  const y = samples[i].y;
+function isCrest(samples: readonly Point[], i: number): boolean {
+  const { y } = samples[i];
   return (i === 0 || samples[i - 1].y <= y) && (i + 1 === samples.length || samples[i + 1].y <= y);
 }
 
-function highest(samples: readonly Sample[]): number {
-  let top = 0;
-  for (const { y } of samples) top = Math.max(top, y);
-  let best = top;
-  for (let i = 0; i < samples.length; i++) {
-    if (samples[i].y > 0.9 * top && isPeak(samples, i)) best = Math.max(best, peakNear(samples, i).y);
+/** Maximum over all cells; those whose bound cannot beat what is known already are never sampled. */
+function highest(cells: readonly Cell[]): number {
+  let best = 0;
+  for (const cell of [...cells].sort((a, b) => b.bound - a.bound)) {
+    if (cell.bound <= best) break;
+    const samples = samplesOf(cell);
+    const top = samples.reduce((largest, { y }) => Math.max(largest, y), best);
+    for (let i = 0; i < samples.length; i++) {
+      if (samples[i].y > 0.9 * top && isCrest(samples, i)) best = Math.max(best, crest(cell, samples, i).y);
+    }
   }
   return best;
 }
@@ -71,37 +83,28 @@ function root(value: (x: number) => number, low: number, high: number, level: nu
   return b;
 }
 
-/** First crossing of the level in the order of the samples. */
-function outermost(samples: readonly Sample[], level: number): number {
-  for (let i = 0; i < samples.length; i++) {
-    const { x, y, stretch } = samples[i];
-    let inside = { x, y };
-    // A crest that the samples just miss may still reach the level.
-    if (y < level && y > 0.9 * level && isPeak(samples, i)) inside = peakNear(samples, i);
-    if (inside.y < level) continue;
-    const before = i > 0 && samples[i - 1].stretch === stretch ? samples[i - 1].x : x;
-    return before === inside.x ? x : root(stretch.value, before, inside.x, level);
+/** First place, from one side, at which the function reaches the level. */
+function outermost(cells: readonly Cell[], level: number, fromRight: boolean): number {
+  for (const cell of fromRight ? [...cells].reverse() : cells) {
+    if (cell.bound < level) continue;
+    const samples = samplesOf(cell);
+    if (fromRight) samples.reverse();
+    for (let i = 0; i < samples.length; i++) {
+      let inside = samples[i];
+      // A crest that the samples just miss may still reach the level.
+      if (inside.y < level && inside.y > 0.9 * level && isCrest(samples, i)) inside = crest(cell, samples, i);
+      if (inside.y < level) continue;
+      return i === 0 ? inside.x : root(cell.value, samples[i - 1].x, inside.x, level);
+    }
   }
-  throw new Error('no sample reaches a level taken from the samples themselves');
+  throw new Error(`no cell reaches ${level}, half of the maximum of the same cells`);
 }
 
 /**
- * Distance between the outermost points at which a function, given on ascending adjacent stretches, reaches half its
- * maximum; jumps between stretches count as crossings. 0 for a function that is zero everywhere.
+ * Distance between the outermost points at which a function, given on ascending adjacent cells, reaches half its
+ * maximum; jumps between cells count as crossings. 0 for a function that is zero everywhere.
  */
-export function halfMaximumWidth(stretches: readonly Stretch[]): number {
-  const samples: Sample[] = [];
-  for (const stretch of stretches) {
-    const { from, to, value } = stretch;
-    const count = Math.max(1, Math.ceil((to - from) / stretch.step));
-    for (let i = 0; i <= count; i++) {
-      const x = i === count ? to : from + ((to - from) * i) / count;
-      samples.push({ x, y: value(x), stretch });
-    }
-  }
-  const half = 0.5 * highest(samples);
-  if (!(half > 0)) return 0;
-  const left = outermost(samples, half);
-  const right = outermost(samples.reverse(), half);
-  return right - left;
+export function halfMaximumWidth(cells: readonly Cell[]): number {
+  const half = 0.5 * highest(cells);
+  return half > 0 ? outermost(cells, half, true) - outermost(cells, half, false) : 0;
 }

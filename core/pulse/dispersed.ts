@@ -22,6 +22,8 @@ export interface DispersedEnvelope {
   readonly end: number;
   /** 1/ps. */
   readonly peak: number;
+  /** Upper bound of |env| between two times, 1/ps. */
+  bound(from: number, to: number): number;
   /** |ν| up to which the spectrum was kept, 1/ps. */
   readonly reach: number;
   /** Estimated error relative to the peak, with the price of the band. */
@@ -98,6 +100,27 @@ function transform(shape: PulseShape, fwhm: number, dispersion: Dispersion, grid
 }
 
 /**
+ * Upper bound of the magnitude between two times, from maxima over bins of samples. Between two samples the magnitude
+ * exceeds them by less than 1 % (the step is far below any period in the band), which is added.
+ */
+function binnedBound(magnitude: Float64Array, origin: number, step: number): DispersedEnvelope['bound'] {
+  const bins = 512;
+  const perBin = Math.ceil(magnitude.length / bins);
+  const maxima = new Float64Array(bins);
+  for (let j = 0; j < magnitude.length; j++) {
+    const bin = Math.floor(j / perBin);
+    if (magnitude[j] > maxima[bin]) maxima[bin] = magnitude[j];
+  }
+  return (from, to) => {
+    const first = Math.max(0, Math.floor((from - origin) / step / perBin - 1 / perBin));
+    const last = Math.min(bins - 1, Math.floor((to - origin) / step / perBin + 1 / perBin));
+    let largest = 0;
+    for (let bin = first; bin <= last; bin++) largest = Math.max(largest, maxima[bin]);
+    return 1.01 * largest;
+  };
+}
+
+/**
  * Envelope of area 1 after GDD and TOD (ps², ps³), by Fourier transform of the spectrum on a grid that holds all group
  * delays, read by interpolation. `area` (rad) only sets how far out the tails are kept.
  * @throws DispersionError when the pulse is spread over more samples than a transform can hold
@@ -116,7 +139,7 @@ export function disperse(
   let peak = 0;
   let sum = 0;
   for (let j = 0; j < size; j++) {
-    magnitude[j] = Math.hypot(samples[2 * j], samples[2 * j + 1]);
+    magnitude[j] = Math.sqrt(samples[2 * j] ** 2 + samples[2 * j + 1] ** 2);
     peak = Math.max(peak, magnitude[j]);
     sum += magnitude[j] * step;
   }
@@ -133,6 +156,7 @@ export function disperse(
     start: origin + (first - 1) * step,
     end: origin + (last + 1) * step,
     peak,
+    bound: binnedBound(magnitude, origin, step),
     reach: grid.band.reach,
     error: grid.band.error + ROUNDING + interpolationError(grid.derivative, step) / peak,
   };

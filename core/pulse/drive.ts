@@ -2,7 +2,15 @@ import { HBAR } from '../units/constants.js';
 import type { Pulse, Tone } from './contract.js';
 import { type Envelope, toneEnvelope } from './envelope.js';
 import { type ToneSampler, toneSampler } from './tones.js';
-import { type PlacedWindow, segments } from './window.js';
+import { type PlacedWindow, type Segments, segments } from './window.js';
+
+/** Interval of a segment with an upper bound of |Ω| (1/ps) inside. */
+export interface BoundedCell {
+  readonly from: number;
+  readonly to: number;
+  readonly segment: number;
+  readonly bound: number;
+}
 
 /** The complex envelope of a pulse in a rotating frame, on a finite window. */
 export interface Drive {
@@ -17,6 +25,8 @@ export interface Drive {
    * interval between breakpoints that is meant: it decides which one-sided value holds at a breakpoint.
    */
   sample(t: number, segment: number, out: Float64Array): void;
+  /** Ascending pieces of the window, each with an upper bound of |Ω|. */
+  readonly cells: readonly BoundedCell[];
   /**
    * For step rules: upper bound of |Ω| (1/ps), largest |instantaneous frequency| in this frame that matters (1/ps),
    * shortest time scale (ps).
@@ -62,21 +72,27 @@ function placeTone(tone: Tone, options: DriveOptions): PlacedTone {
   return { tone, envelope, sampler, window };
 }
 
-/** Upper bound of |Ω|: the largest sum of the tones' magnitudes on a grid through every tone's window. */
-function peakRabi(tones: readonly PlacedTone[]): number {
-  const points = 128;
-  let largest = 0;
-  for (const { window } of tones) {
-    for (let i = 0; i <= points; i++) {
-      const t = window.start + ((window.end - window.start) * i) / points;
-      let sum = 0;
-      for (const other of tones) {
-        if (t >= other.window.start && t <= other.window.end) sum += other.sampler.magnitude(t);
-      }
-      largest = Math.max(largest, sum);
+/** Pieces per tone in which bounds of |Ω| are taken. */
+const CELLS = 64;
+
+/** Cuts every segment so finely that the tones in it hardly change their bound from one cell to the next. */
+function boundedCells(tones: readonly PlacedTone[], { breakpoints, active }: Segments): BoundedCell[] {
+  const cells: BoundedCell[] = [];
+  for (let segment = 0; segment + 1 < breakpoints.length; segment++) {
+    const acting = tones.filter((_, k) => active[segment * tones.length + k] !== 0);
+    const start = breakpoints[segment];
+    const length = breakpoints[segment + 1] - start;
+    const shortest = Math.min(...acting.map(({ window }) => window.end - window.start));
+    const count = acting.length === 0 ? 1 : Math.min(2048, Math.ceil((CELLS * length) / shortest));
+    for (let i = 0; i < count; i++) {
+      const from = start + (length * i) / count;
+      const to = i + 1 === count ? breakpoints[segment + 1] : start + (length * (i + 1)) / count;
+      let bound = 0;
+      for (const { sampler } of acting) bound += sampler.bound(from, to);
+      cells.push({ from, to, segment, bound });
     }
   }
-  return largest;
+  return cells;
 }
 
 function highestFrequency(tones: readonly PlacedTone[], frame: number): number {
@@ -97,7 +113,9 @@ function highestFrequency(tones: readonly PlacedTone[], frame: number): number {
 export function createDrive(pulse: Pulse, options: DriveOptions): Drive {
   if (pulse.tones.length === 0) throw new RangeError('pulse.tones: got none; needs at least one tone');
   const tones = pulse.tones.map((tone) => placeTone(tone, options));
-  const { breakpoints, active } = segments(tones.map((tone) => tone.window));
+  const cut = segments(tones.map((tone) => tone.window));
+  const { breakpoints, active } = cut;
+  const cells = boundedCells(tones, cut);
   const samplers = tones.map((tone) => tone.sampler);
   const count = samplers.length;
   const components = options.projection === 'full' ? 1 : 2;
@@ -112,8 +130,9 @@ export function createDrive(pulse: Pulse, options: DriveOptions): Drive {
         if (active[row + k] !== 0) samplers[k].add(t, out);
       }
     },
+    cells,
     scales: {
-      peakRabi: peakRabi(tones),
+      peakRabi: cells.reduce((largest, cell) => Math.max(largest, cell.bound), 0),
       frequency: highestFrequency(tones, options.frame),
       time: Math.min(...tones.map((tone) => tone.envelope.timeScale)),
     },

@@ -17,7 +17,7 @@ export interface PolarizedEnergy {
 /** Spectral fields below this, relative to a tone's area, carry nothing that counts. */
 const FIELD_FLOOR = 1e-12;
 /** The same for tones whose spectrum falls as 1/ω only, as multiples of 1/fwhm. */
-const FLAT_REACH = 2000;
+const FLAT_REACH = 400;
 /** Radians of relative phase per starting interval of the quadrature. */
 const PHASE_PER_PIECE = 6;
 /** Largest number of starting intervals. */

@@ -1,6 +1,5 @@
-import type { UniformTable } from '../numerics/index.js';
 import type { Tone } from './contract.js';
-import { disperse, excursion } from './dispersed.js';
+import { type DispersedEnvelope, disperse, excursion } from './dispersed.js';
 import type { ClosedEnvelope, PulseShape } from './shapes/contract.js';
 import { pulseShape } from './shapes/registry.js';
 
@@ -24,7 +23,7 @@ export interface Envelope {
   readonly error: number;
   readonly form:
     | { readonly kind: 'closed'; readonly closed: ClosedEnvelope }
-    | { readonly kind: 'table'; readonly table: UniformTable };
+    | { readonly kind: 'table'; readonly dispersed: DispersedEnvelope };
 }
 
 /** Relative field at which the instantaneous frequency stops to matter for step rules. */
@@ -71,18 +70,18 @@ function fromClosed(closed: ClosedEnvelope, edges: readonly number[], area: numb
 
 function fromSpectrum(shape: PulseShape, tone: Tone): Envelope {
   const { fwhm } = tone;
-  const { table, start, end, peak, reach, error } = disperse(shape, fwhm, tone, tone.area, cutLevel);
-  const relevant = Math.min(shape.spectralReach(fwhm, RELEVANT), reach);
+  const dispersed = disperse(shape, fwhm, tone, tone.area, cutLevel);
+  const relevant = Math.min(shape.spectralReach(fwhm, RELEVANT), dispersed.reach);
   const frequency = excursion(tone, relevant, shape.reach(fwhm, RELEVANT));
   return {
-    start,
-    end,
+    start: dispersed.start,
+    end: dispersed.end,
     edges: [],
-    peak,
+    peak: dispersed.peak,
     timeScale: shape.timeScale(fwhm),
     frequencies: [-frequency, frequency],
-    error,
-    form: { kind: 'table', table },
+    error: dispersed.error,
+    form: { kind: 'table', dispersed },
   };
 }
 

@@ -1,6 +1,6 @@
 import type { PulseFigures } from '../figures.js';
 import type { Pulse, Tone } from './contract.js';
-import { halfMaximumWidth, type Stretch } from './crossings.js';
+import { type Cell, halfMaximumWidth } from './crossings.js';
 import { createDrive } from './drive.js';
 import { pulseEnergy } from './energy.js';
 import { pulseShape } from './shapes/registry.js';
@@ -9,8 +9,6 @@ import { type ToneSpectrum, toneSpectrum } from './spectrum.js';
 /** Samples per radian of beating, and per characteristic time of an envelope. */
 const PER_RADIAN = 2.5;
 const PER_TIME = 8;
-/** Most samples that one scan may take. */
-const SAMPLES = 200_000;
 /** Spectral field, relative to a tone's area, below which half the maximum cannot lie. */
 const SPECTRAL_FLOOR = 1e-3;
 /** The same for spectra that fall as 1/ω only, 1/fwhm. */
@@ -18,20 +16,20 @@ const FLAT_REACH = 60;
 /** 1/ps as an ordinary frequency, GHz. */
 const GHZ_PER_RADIAN = 1000 / (2 * Math.PI);
 
-/** |Ω_h|² + |Ω_v|² over the drive window, one stretch per segment. */
-function inTime(pulse: Pulse): Stretch[] {
+/** |Ω_h|² + |Ω_v|² over the drive window. */
+function inTime(pulse: Pulse): Cell[] {
   const centers = pulse.tones.map((tone) => toneSpectrum(tone).center);
   const frame = 0.5 * (Math.min(...centers) + Math.max(...centers));
-  const { breakpoints, scales, sample } = createDrive(pulse, { frame, projection: 'linear' });
+  const { cells, scales, sample } = createDrive(pulse, { frame, projection: 'linear' });
   const out = new Float64Array(4);
-  const whole = breakpoints[breakpoints.length - 1] - breakpoints[0];
-  const step = Math.max(whole / SAMPLES, 1 / (PER_TIME / scales.time + PER_RADIAN * scales.frequency));
-  return Array.from({ length: breakpoints.length - 1 }, (_, s) => ({
-    from: breakpoints[s],
-    to: breakpoints[s + 1],
-    step: Math.min(step, (breakpoints[s + 1] - breakpoints[s]) / 16),
+  const step = 1 / (PER_TIME / scales.time + PER_RADIAN * scales.frequency);
+  return cells.map(({ from, to, segment, bound }) => ({
+    from,
+    to,
+    step,
+    bound: bound * bound,
     value: (t: number) => {
-      sample(t, s, out);
+      sample(t, segment, out);
       return out[0] * out[0] + out[1] * out[1] + out[2] * out[2] + out[3] * out[3];
     },
   }));
@@ -54,15 +52,12 @@ function delaySpread(tones: readonly Tone[], spectra: readonly ToneSpectrum[]): 
 }
 
 /** |E_h|² + |E_v|² over the bands of all tones. */
-function inFrequency(tones: readonly Tone[]): Stretch[] {
+function inFrequency(tones: readonly Tone[]): Cell[] {
   const spectra = tones.map(toneSpectrum);
   const low = Math.min(...spectra.map((s, k) => s.center - spectralReach(tones[k], s)));
   const high = Math.max(...spectra.map((s, k) => s.center + spectralReach(tones[k], s)));
   const longest = Math.max(...tones.map((tone) => tone.fwhm));
-  const step = Math.max(
-    (high - low) / SAMPLES,
-    1 / (PER_TIME * longest + PER_RADIAN * delaySpread(tones, spectra)),
-  );
+  const step = 1 / (PER_TIME * longest + PER_RADIAN * delaySpread(tones, spectra));
   const value = (omega: number) => {
     let [hr, hi, vr, vi] = [0, 0, 0, 0];
     for (let k = 0; k < spectra.length; k++) {
@@ -80,7 +75,17 @@ function inFrequency(tones: readonly Tone[]): Stretch[] {
     }
     return hr * hr + hi * hi + vr * vr + vi * vi;
   };
-  return [{ from: low, to: high, step, value }];
+  const bound = (from: number, to: number) => {
+    let sum = 0;
+    for (const { center, bound } of spectra) sum += bound(Math.max(0, from - center, center - to));
+    return sum * sum;
+  };
+  const count = Math.min(4096, Math.ceil((high - low) * longest));
+  return Array.from({ length: count }, (_, i) => {
+    const from = low + ((high - low) * i) / count;
+    const to = low + ((high - low) * (i + 1)) / count;
+    return { from, to, step, bound: bound(from, to), value };
+  });
 }
 
 /** Half-maximum duration of one tone, ps, where the shape itself knows it; null otherwise. */

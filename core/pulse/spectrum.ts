@@ -7,6 +7,8 @@ export interface ToneSpectrum {
   /** 1/ps, relative to the pulse reference. */
   readonly center: number;
   amplitude(nu: number): number;
+  /** Largest |amplitude| at or beyond |ν|. */
+  bound(nu: number): number;
   /** rad. */
   phase(nu: number): number;
   /** dφ/dω with the delay, ps. */
@@ -47,6 +49,7 @@ export function toneSpectrum(tone: Tone): ToneSpectrum {
   return {
     center: tone.detuning / HBAR,
     amplitude: (nu) => tone.area * shape.spectrum(nu, tone.fwhm),
+    bound: (nu) => Math.abs(tone.area) * shape.spectralBound(nu, tone.fwhm),
     phase: (nu) => tone.phase + dispersionPhase(tone, nu) + nu * tone.delay,
     groupDelay: (nu) => dispersionDelay(tone, nu) + tone.delay,
     reach: (eps) => shape.spectralReach(tone.fwhm, eps),

@@ -1,4 +1,5 @@
 import type { UniformTable } from '../numerics/index.js';
+import type { DispersedEnvelope } from './dispersed.js';
 import type { Envelope } from './envelope.js';
 import type { ClosedEnvelope } from './shapes/contract.js';
 
@@ -6,8 +7,8 @@ import type { ClosedEnvelope } from './shapes/contract.js';
 export interface ToneSampler {
   /** Adds weight·Ω of the tone at time t (ps) to out[2c], out[2c+1] for each component c. */
   add(t: number, out: Float64Array): void;
-  /** |Ω| of the tone at time t, 1/ps. */
-  magnitude(t: number): number;
+  /** Upper bound of |Ω| of the tone between two times (ps), 1/ps. */
+  bound(from: number, to: number): number;
 }
 
 /** Where a tone sits: Ω(t) = area·e^{i(phase − rate·t)}·env(t − delay), times one real weight per component. */
@@ -67,8 +68,9 @@ export class ClosedTone extends WeightedTone implements ToneSampler {
     this.#still = place.rate === 0 && closed.chirp === 0;
   }
 
-  magnitude(t: number): number {
-    return Math.abs(this.#area) * this.#magnitude(t - this.#delay);
+  bound(from: number, to: number): number {
+    const nearest = Math.max(from - this.#delay, Math.min(0, to - this.#delay));
+    return Math.abs(this.#area) * this.#magnitude(nearest);
   }
 
   add(t: number, out: Float64Array): void {
@@ -85,6 +87,7 @@ export class ClosedTone extends WeightedTone implements ToneSampler {
 
 /** A tone read from a table of its envelope; zero outside [start, end] (ps, about the tone's centre). */
 export class TableTone extends WeightedTone implements ToneSampler {
+  readonly #envelope: DispersedEnvelope;
   readonly #table: UniformTable;
   readonly #start: number;
   readonly #end: number;
@@ -94,22 +97,20 @@ export class TableTone extends WeightedTone implements ToneSampler {
   readonly #rate: number;
   readonly #value = new Float64Array(2);
 
-  constructor(table: UniformTable, range: { start: number; end: number }, place: TonePlacement) {
+  constructor(envelope: DispersedEnvelope, place: TonePlacement) {
     super(place.weights);
-    this.#table = table;
-    this.#start = range.start;
-    this.#end = range.end;
+    this.#envelope = envelope;
+    this.#table = envelope.table;
+    this.#start = envelope.start;
+    this.#end = envelope.end;
     this.#area = place.area;
     this.#delay = place.delay;
     this.#phase = (place.phase - place.rate * place.delay) % (2 * Math.PI);
     this.#rate = place.rate;
   }
 
-  magnitude(t: number): number {
-    const s = t - this.#delay;
-    if (s < this.#start || s > this.#end) return 0;
-    this.#table.read(s, this.#value);
-    return Math.abs(this.#area) * Math.hypot(this.#value[0], this.#value[1]);
+  bound(from: number, to: number): number {
+    return Math.abs(this.#area) * this.#envelope.bound(from - this.#delay, to - this.#delay);
   }
 
   add(t: number, out: Float64Array): void {
@@ -127,7 +128,5 @@ export class TableTone extends WeightedTone implements ToneSampler {
 /** The sampler of a tone from its envelope. */
 export function toneSampler(envelope: Envelope, place: TonePlacement): ToneSampler {
   const { form } = envelope;
-  return form.kind === 'closed'
-    ? new ClosedTone(form.closed, place)
-    : new TableTone(form.table, envelope, place);
+  return form.kind === 'closed' ? new ClosedTone(form.closed, place) : new TableTone(form.dispersed, place);
 }

@@ -23,9 +23,17 @@ function snapped(window: PlacedWindow, all: readonly PlacedWindow[]): PlacedWind
   return { start, end, edges: window.edges };
 }
 
+/** The time axis of a pulse, cut into segments. */
+export interface Segments {
+  /** Ascending, ps. */
+  readonly breakpoints: Float64Array;
+  /** `active[segment·n + k]` is 1 where tone k of n acts. */
+  readonly active: Uint8Array;
+}
+
 /**
- * Union of the windows, cut at every end and discontinuity.
- * `active[segment·n + k]` is 1 where tone k acts in that segment, so that one-sided values at edges are right.
+ * Union of the windows, cut at every end and discontinuity. Which tones act is decided per segment, so that one-sided
+ * values at edges are right.
  */
 export function segments(windows: readonly PlacedWindow[]): {
   breakpoints: Float64Array;

@@ -1,6 +1,6 @@
 /** Envelope of area 1 in closed form, about its own centre: `env(t) = magnitude(t)·e^{i(phase + chirp·t²)}`. */
 export interface ClosedEnvelope {
-  /** |env(t)|, 1/ps. */
+  /** |env(t)|, 1/ps; falls off monotonically from t = 0 to either side. */
   magnitude(t: number): number;
   /** Constant phase, rad. */
   readonly phase: number;
@@ -32,6 +32,8 @@ export interface PulseShape {
   timeScale(fwhm: number): number;
   /** |t| beyond which the envelope is below eps times its peak, ps. */
   reach(fwhm: number, eps: number): number;
+  /** Largest |spectrum| at or beyond |ω| (ω ≥ 0). */
+  spectralBound(omega: number, fwhm: number): number;
   /** |ω| beyond which |spectrum| < eps, 1/ps; Infinity when it falls too slowly to be cut there. */
   spectralReach(fwhm: number, eps: number): number;
   /** Times of discontinuities of the envelope, ps, ascending. */

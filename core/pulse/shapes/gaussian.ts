@@ -42,6 +42,9 @@ export const gaussian: PulseShape = {
     return Math.exp(-0.5 * x * x);
   },
   timeScale: sigmaOf,
+  spectralBound(omega, fwhm) {
+    return this.spectrum(omega, fwhm);
+  },
   reach: (fwhm, eps) => sigmaOf(fwhm) * Math.sqrt(-2 * Math.log(eps)),
   spectralReach: (fwhm, eps) => Math.sqrt(-2 * Math.log(eps)) / sigmaOf(fwhm),
   flat: false,

@@ -13,6 +13,9 @@ export const sech: PulseShape = {
   envelope: (t, fwhm) => 1 / (Math.PI * timeOf(fwhm) * Math.cosh(t / timeOf(fwhm))),
   spectrum: (omega, fwhm) => 1 / Math.cosh(0.5 * Math.PI * timeOf(fwhm) * omega),
   timeScale: timeOf,
+  spectralBound(omega, fwhm) {
+    return this.spectrum(omega, fwhm);
+  },
   reach: (fwhm, eps) => timeOf(fwhm) * Math.acosh(1 / eps),
   spectralReach: (fwhm, eps) => Math.acosh(1 / eps) / (0.5 * Math.PI * timeOf(fwhm)),
   flat: false,

@@ -14,6 +14,7 @@ export const square: PulseShape = {
     return Math.abs(x) < 1e-4 ? 1 - (x * x) / 6 : Math.sin(x) / x;
   },
   timeScale: (fwhm) => fwhm,
+  spectralBound: (omega, fwhm) => Math.min(1, 2 / (omega * fwhm)),
   reach: (fwhm) => 0.5 * fwhm,
   spectralReach: () => Number.POSITIVE_INFINITY,
   flat: true,
