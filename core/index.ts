@@ -24,4 +24,4 @@ export * from './pulse/contract.js';
 export * from './pulse/index.js';
 export { type Situation, situation } from './sample.js';
 export * from './trace.js';
-export * from './units/constants.js';
+export * from './units/index.js';
