@@ -37,8 +37,13 @@ function hermiteCount(phase: number, pole: number): number {
     n++;
     logError += 2 * Math.log(Math.max(phase, 1e-6)) - Math.log(2 * (2 * n - 1));
   }
-  const forPole = Number.isFinite(pole) ? Math.ceil((LOG_TARGET / (2 * pole)) ** 2 / 2) : 0;
-  return Math.max(n, forPole, 3);
+  return Math.max(n, poleCount(pole), 3);
+}
+
+/** Nodes that bring 1/(1 + x²/d²) to 1e-10: a fit, safe by up to two nodes, to counts found numerically for d ≥ 2. */
+function poleCount(d: number): number {
+  if (d > 60) return 3;
+  return Math.ceil((LOG_TARGET / (2 * d)) ** 2 + 4 + 18 / (d + 2));
 }
 
 function trapezoid(step: number, half: number): Rule {
@@ -63,7 +68,10 @@ export function driftNodes(design: Design, duration: number, effort: number): Dr
   const width = drift.width > 0 ? normalRule(drift.width * (rotation + 2), 1 / drift.width, effort) : SINGLE;
   const spread = drift.detuning / HBAR;
   const kappa = collection.filter ? collection.filter.fwhm * RAD_PER_PS_PER_GHZ : Number.POSITIVE_INFINITY;
-  const pole = (kappa + 1 / emitter.lifetime) / 2 / spread;
+  const filterPole = (kappa + 1 / emitter.lifetime) / 2;
+  // A sech pulse of FWHM τ excites as sech²(πΔT/2ħ) with T = τ/1.763 (Rosen & Zener): poles at 1.763/τ.
+  const pulsePole = 1.763 / Math.max(...pulse.tones.map((t) => t.fwhm));
+  const pole = Math.min(filterPole, pulsePole) / spread;
   const shift = spread > 0 ? normalRule(spread * duration, pole, effort) : SINGLE;
   const out: DriftNode[] = [];
   area.nodes.forEach((a, i) => {
