@@ -23,6 +23,7 @@ export const SQP_DEFAULTS: SqpOptions = {
 const ACCEPTABLE = 0.05;
 const GOOD = 0.7;
 const LEAST_PENALTY = 1;
+const MOST_PENALTY = 1e6;
 
 type Steps<T> = Generator<readonly Trial[], T, readonly Reply[]>;
 
@@ -83,7 +84,7 @@ function modelStep(state: State, free: readonly number[]): ModelStep {
     return { step, multipliers, predicted, penalty, left };
   };
   let current = attempt(state.penalty);
-  while (current.left > 1e-9 && current.penalty < 1e6) {
+  while (current.left > 1e-9 && current.penalty < MOST_PENALTY) {
     const next = attempt(10 * current.penalty);
     if (!(next.left < 0.9 * current.left)) break;
     current = next;
@@ -123,6 +124,16 @@ function updated(
   return { ...state, at, hessian: dampedUpdate(first, moved, y), scaled: state.scaled || sy > 0 };
 }
 
+/** Feasibility first: a violated constraint outweighs the objective, or a start in the dark would stay there. */
+function firstPenalty({ reply, gradients }: Expansion): number {
+  const steepness = (row: readonly number[]) => Math.max(...row.map(Math.abs));
+  const ratios = reply.constraints.map((c, j) =>
+    c > 0 ? steepness(gradients[0]) / steepness(gradients[j + 1]) : 0,
+  );
+  const needed = 10 * Math.max(0, ...ratios.filter(Number.isFinite));
+  return Math.min(Math.max(10 * LEAST_PENALTY, needed), MOST_PENALTY);
+}
+
 /** The iteration itself, on the free coordinates; ends when the model promises nothing or the radius is spent. */
 function* iterate(start: Trial, free: readonly number[], options: SqpOptions): Steps<void> {
   const [first] = yield [start];
@@ -144,7 +155,7 @@ function* iterate(start: Trial, free: readonly number[], options: SqpOptions): S
     hessian,
     scaled: false,
     radius: options.radius,
-    penalty: 10 * LEAST_PENALTY,
+    penalty: firstPenalty(begin),
   };
   const moved = (step: readonly number[]) => {
     const x = [...state.x];

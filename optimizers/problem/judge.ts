@@ -13,7 +13,7 @@ export interface Judgement {
 export const INFEASIBLE: Judgement = { impurity: Number.POSITIVE_INFINITY, brightness: 0 };
 
 /** Above this estimated error (`accuracy.error_estimate`) the figures are no basis for a decision. */
-const USELESS_ERROR = 1e-3;
+const USELESS_ERROR = 1e-2;
 
 /** Probabilities may leave [0, 1] by rounding only. */
 const ROUNDING = 1e-9;
