@@ -1,18 +1,22 @@
 import type { Knowledge, Plan } from './contract.js';
+import { cross } from './cross.js';
 import { gridOf, samplePoints } from './enumerate.js';
 import { explore } from './explore.js';
 import { aimAtLevels, fillBetween } from './fill.js';
 import { evenLevels, polishLevels, polishOthers, refine, sweep } from './polish.js';
 
 /** Shares of a round's budget. */
-const SHARES = { explore: 0.35, polish: 0.4 };
+const SHARES = { explore: 0.2, polish: 0.6 };
+/** Share of a round for the look along the coordinates. */
+const CROSS = 0.08;
 /** Evaluations of the first round; each later one doubles. */
 const FIRST_ROUND = 1600;
-const LEVELS = 10;
-const SWEEPS = 4;
+const LEVELS = 5;
+/** Evaluations below which another stage of solves is not begun. */
+const WORTH = 10;
 
 /** One round: look around, solve at levels, continue from neighbour to neighbour, fill in between. */
-function* round(known: Knowledge, number: number, budget: number): Plan {
+function* round(known: Knowledge, number: number, budget: number, tried: Set<string>): Plan {
   const name = (what: string) => `${what}-${number}`;
   const end = known.spent + budget;
   const left = () => Math.max(0, end - known.spent);
@@ -22,12 +26,20 @@ function* round(known: Knowledge, number: number, budget: number): Plan {
   const { atLeast } = known.spec.goal;
   const levels = [...evenLevels(known, LEVELS), ...(atLeast === null ? [] : [atLeast])];
   yield* polishLevels(known, name('polish'), levels, polishLeft());
+  yield* cross(known, name('cross'), Math.min(polishLeft(), CROSS * budget), number);
   yield* polishOthers(known, name('second-branch'), levels, Math.floor(0.3 * polishLeft()));
-  const tried = new Set<string>();
-  for (let i = 1; i <= SWEEPS; i++) {
-    if (!(yield* sweep(known, name(`sweep-${i}`), polishLeft(), tried))) break;
+  for (let i = 1; polishLeft() >= WORTH; i++) {
+    const before = known.spent;
+    yield* sweep(known, name(`sweep-${i}`), polishLeft(), tried);
+    if (known.spent === before) break;
   }
-  yield* refine(known, name('refine'), polishLeft());
+  for (let i = 1, fresh = 0; polishLeft() >= WORTH && fresh < 2 * LEVELS * number; i++) {
+    const before = known.solutions.length;
+    yield* refine(known, name(`refine-${i}`), polishLeft(), Math.min(2 ** i, 2 * LEVELS));
+    if (known.solutions.length === before) break;
+    fresh += known.solutions.length - before;
+    yield* sweep(known, name(`spread-${i}`), polishLeft(), tried);
+  }
   const aim = Math.floor(0.3 * left());
   yield* fillBetween(known, name('fill'), left() - aim);
   yield* aimAtLevels(known, name('levels'), left());
@@ -48,10 +60,11 @@ export function* plan(known: Knowledge): Plan {
     const grid = steps >= 5 ? gridOf(categories, steps, known.left) : null;
     if (grid !== null) yield* samplePoints(known, 'scan', grid);
   }
+  const tried = new Set<string>();
   for (let number = 1, size = FIRST_ROUND; known.left > 0; number++, size *= 2) {
     const before = known.spent;
     // The last round takes what would be too little for another one.
-    yield* round(known, number, known.left < 1.5 * size ? known.left : size);
+    yield* round(known, number, known.left < 1.5 * size ? known.left : size, tried);
     if (known.spent === before) return;
   }
 }

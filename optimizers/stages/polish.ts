@@ -10,15 +10,24 @@ interface Start {
   readonly radius: number;
 }
 
-const JUMP_RADIUS = 0.05;
+const JUMP_RADIUS = 0.2;
+const CONTINUE_RADIUS = 0.05;
 const NEIGHBOUR_RADIUS = 0.02;
 
 /** Evaluations a solve may take: some iterations of one value and one gradient each. */
-const allowance = (known: Knowledge) => 16 * (known.problem.space.dimension + 1);
+const allowance = (known: Knowledge, iterations = 16) => iterations * (known.problem.space.dimension + 1);
+/** Iterations of a solve that begins next to its end. */
+const SHORT = 6;
 
 /** Solves from all starts that fit into `budget`, side by side; keeps where they end. */
-function* solveAll(known: Knowledge, name: string, starts: readonly Start[], budget: number): Plan {
-  const each = Math.min(allowance(known), budget);
+function* solveAll(
+  known: Knowledge,
+  name: string,
+  starts: readonly Start[],
+  budget: number,
+  most = allowance(known),
+): Plan {
+  const each = Math.min(most, budget);
   const affordable = each > 0 ? starts.slice(0, Math.floor(Math.min(budget, known.left) / each)) : [];
   if (affordable.length === 0) return;
   const tasks = affordable.map(({ level, x, radius }) =>
@@ -71,31 +80,40 @@ export function bestSolutions(known: Knowledge): Solution[] {
   return [...best.values()].sort((a, b) => a.level - b.level);
 }
 
+/** A solution is beaten when the archive has less than this share of its impurity at its level. */
+const BEATEN = 0.999;
+
 /**
- * Continuation in both directions: where neighbouring levels sit on different branches, each is solved again from the
- * other's design.
+ * Continuation in both directions: a level that another's design serves better is solved again from that design, and
+ * where neighbouring levels sit on different branches, each from the other's. Says whether there was anything to try.
  */
 export function* sweep(known: Knowledge, name: string, budget: number, tried: Set<string>): Plan<boolean> {
   const solutions = bestSolutions(known);
+  const { front } = known;
   const starts: Start[] = [];
-  const offer = (level: number, from: Solution) => {
-    const key = `${level} ${from.x.join(' ')}`;
-    if (tried.has(key)) return;
+  const offer = (level: number, x: readonly number[]) => {
+    const key = `${level} ${x.map((value) => value.toFixed(3)).join(' ')}`;
+    if (tried.has(key) || starts.length >= Math.max(1, Math.floor(budget / allowance(known)))) return;
     tried.add(key);
-    starts.push({ level, x: from.x, radius: JUMP_RADIUS });
+    starts.push({ level, x, radius: CONTINUE_RADIUS });
   };
+  for (const solution of solutions) {
+    const member = atLevel(front, solution.level);
+    if (member !== null && member.impurity < BEATEN * solution.impurity)
+      offer(solution.level, unitOf(known, member));
+  }
   for (let i = 0; i + 1 < solutions.length; i++) {
     const [low, high] = [solutions[i], solutions[i + 1]];
     if (distance(known.problem, low.x, high.x) < BRANCH_WIDTH) continue;
-    offer(low.level, high);
-    offer(high.level, low);
+    offer(low.level, high.x);
+    offer(high.level, low.x);
   }
   yield* solveAll(known, name, starts, budget);
   return starts.length > 0;
 }
 
 /** New levels between neighbouring solutions, from the point between them (or from both, on different branches). */
-export function* refine(known: Knowledge, name: string, budget: number): Plan<boolean> {
+export function* refine(known: Knowledge, name: string, budget: number, count: number): Plan<boolean> {
   const solutions = bestSolutions(known);
   const gaps = solutions.slice(1).map((high, i) => ({ low: solutions[i], high }));
   const size = ({ low, high }: (typeof gaps)[number]) => high.level - low.level;
@@ -108,7 +126,7 @@ export function* refine(known: Knowledge, name: string, budget: number): Plan<bo
     }
     return [{ level, x: low.x.map((value, k) => (value + high.x[k]) / 2), radius: NEIGHBOUR_RADIUS }];
   });
-  yield* solveAll(known, name, starts, budget);
+  yield* solveAll(known, name, starts.slice(0, count), budget, allowance(known, SHORT));
   return starts.length > 0;
 }
 
