@@ -29,8 +29,7 @@ export function normalizeUnit(text: string): string {
 /** Text as messages quote it: cut to a readable length, control characters made visible. */
 export function quoteFound(text: string): string {
   const cut = text.length > LONGEST ? `${text.slice(0, LONGEST)}…` : text;
-  // biome-ignore lint/suspicious/noControlCharactersInRegex: control characters are what this replaces
-  return cut.replace(/[\u0000-\u001f\u007f-\u009f\u2028\u2029\ufeff]/g, (c) => {
+  return cut.replace(/[\p{Cc}\u2028\u2029\ufeff]/gu, (c) => {
     return `\\u${c.charCodeAt(0).toString(16).padStart(4, '0')}`;
   });
 }

@@ -1,0 +1,46 @@
+import { emitterModels } from '../../core/index.js';
+import type { Fault, Override, StudyResult } from './contract.js';
+import { studyKeys } from './keys/table.js';
+import { ReadContext } from './read/context.js';
+import { normaliseStudy, studyHash } from './read/normalise.js';
+import { applyOverrides } from './read/overrides.js';
+import { addRemarks } from './read/remarks.js';
+import { checkRules } from './read/rules.js';
+import { readSection } from './read/section.js';
+import { resolveFields } from './read/ties.js';
+import { readDocument } from './source/document.js';
+import type { Placed } from './source/placed.js';
+import { decodeStudy } from './source/text.js';
+
+/**
+ * Reads a study file: every fault at its place, all at once, or the complete study in internal units. `overrides` are
+ * put in before anything is checked. Never throws for what a file or an override can hold.
+ */
+export function readStudy(
+  bytes: Uint8Array,
+  fileName: string,
+  overrides: readonly Override[] = [],
+): StudyResult {
+  const decoded = decodeStudy(bytes, fileName);
+  if ('fault' in decoded) return { kind: 'faults', faults: [decoded.fault] };
+  const document = readDocument(decoded.text, fileName);
+  if (document.root === null) return { kind: 'faults', faults: document.faults };
+  const faults = [...document.faults, ...applyOverrides(document.root, overrides)];
+  return readTree(document.root, faults);
+}
+
+function readTree(root: Placed, earlier: readonly Fault[]): StudyResult {
+  const context = new ReadContext(root);
+  const raw = readSection(studyKeys, root, root.at, '', context);
+  const free = resolveFields(context);
+  if (raw) checkRules(raw, context);
+  const faults = [...earlier, ...context.faults];
+  if (!raw || faults.length > 0) return { kind: 'faults', faults: faults.sort(byPlace) };
+  const model = emitterModels.find(({ name }) => name === raw.emitter?.model);
+  const study = normaliseStudy(raw, free, model?.hasBiexciton ?? false);
+  addRemarks(study, context);
+  return { kind: 'study', study, remarks: context.remarks.sort(byPlace), hash: studyHash(study) };
+}
+
+const byPlace = (a: Fault | { line: number; column: number }, b: { line: number; column: number }): number =>
+  a.line - b.line || a.column - b.column;
