@@ -84,8 +84,9 @@ export function bestSolutions(known: Knowledge): Solution[] {
 const BEATEN = 0.999;
 
 /**
- * Continuation in both directions: a level that another's design serves better is solved again from that design, and
- * where neighbouring levels sit on different branches, each from the other's. Says whether there was anything to try.
+ * Continuation in both directions: a level that another's design serves better is solved again from that design, one
+ * without a solution from its neighbours', and where neighbouring levels sit on different branches, each from the
+ * other's. Says whether there was anything to try.
  */
 export function* sweep(known: Knowledge, name: string, budget: number, tried: Set<string>): Plan<boolean> {
   const solutions = bestSolutions(known);
@@ -101,6 +102,13 @@ export function* sweep(known: Knowledge, name: string, budget: number, tried: Se
     const member = atLevel(front, solution.level);
     if (member !== null && member.impurity < BEATEN * solution.impurity)
       offer(solution.level, unitOf(known, member));
+  }
+  const solved = new Set(solutions.map((solution) => solution.level));
+  for (const level of new Set(known.solutions.map((solution) => solution.level))) {
+    if (solved.has(level)) continue;
+    const above = solutions.find((solution) => solution.level > level);
+    const below = solutions.filter((solution) => solution.level < level).at(-1);
+    for (const neighbour of [below, above]) if (neighbour !== undefined) offer(level, neighbour.x);
   }
   for (let i = 0; i + 1 < solutions.length; i++) {
     const [low, high] = [solutions[i], solutions[i + 1]];
