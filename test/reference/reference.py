@@ -60,6 +60,7 @@ def with_poisson(signal, extra):
         "p0": p0 * dark,
         "single": (p1 + p0 * extra) * dark,
         "multiphoton": many + p1 * one_or_more + p0 * two_or_more,
+        "leakage": extra,
     }
 
 
@@ -101,8 +102,7 @@ def sample(design, shift=0.0, options=None):
             "multiphoton": part["multiphoton"],
             "bound": part["bound"],
         }
-    out["leakage"] = leakage(design, line)
-    out["collected"] = with_poisson(out["signal"], out["leakage"])
+    out["collected"] = with_poisson(out["signal"], leakage(design, line))
     return out
 
 
