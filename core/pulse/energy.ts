@@ -1,4 +1,5 @@
 import { integrate } from '../numerics/index.js';
+import { bandWeight } from './band.js';
 import type { Pulse, Tone } from './contract.js';
 import { flatPair, type SpectralFilter } from './flat.js';
 import { pulseShape } from './shapes/registry.js';
@@ -16,8 +17,10 @@ export interface PolarizedEnergy {
 
 /** Spectral fields below this, relative to a tone's area, carry nothing that counts. */
 const FIELD_FLOOR = 1e-12;
-/** The same for tones whose spectrum falls as 1/ω only, as multiples of 1/fwhm. */
-const FLAT_REACH = 400;
+/** Where the band of two tones whose spectra fall as 1/ω begins and ends, as multiples of 1/fwhm. */
+const FLAT_REACH = [60, 1e5] as const;
+/** Relative phase at the edge of that band, rad, by which a smooth fade leaves nothing behind. */
+const FLAT_PHASE = 400;
 /** Radians of relative phase per starting interval of the quadrature. */
 const PHASE_PER_PIECE = 6;
 /** Largest number of starting intervals. */
@@ -35,9 +38,31 @@ function filterBreaks(filter: SpectralFilter | null): number[] {
   return breaks;
 }
 
-function reachOf(tone: Tone, spectrum: ToneSpectrum): number {
-  const reach = spectrum.reach(FIELD_FLOOR);
-  return Number.isFinite(reach) ? reach : FLAT_REACH / tone.fwhm;
+interface Interval {
+  readonly low: number;
+  readonly high: number;
+  readonly weight: (omega: number) => number;
+}
+
+/**
+ * Frequencies that two tones share. If neither spectrum ever ends, the interval grows until their relative phase turns
+ * many times, and fades out there: what is left out then cancels itself.
+ */
+function sharedBand(a: ToneSpectrum, b: ToneSpectrum, fwhm: number): Interval {
+  const low = Math.max(a.center - a.reach(FIELD_FLOOR), b.center - b.reach(FIELD_FLOOR));
+  const high = Math.min(a.center + a.reach(FIELD_FLOOR), b.center + b.reach(FIELD_FLOOR));
+  if (Number.isFinite(high)) return { low, high, weight: () => 1 };
+  const middle = 0.5 * (a.center + b.center);
+  const relative = (omega: number) => a.phase(omega - a.center) - b.phase(omega - b.center);
+  const turns = (reach: number) =>
+    Math.min(
+      Math.abs(relative(middle + reach) - relative(middle)),
+      Math.abs(relative(middle - reach) - relative(middle)),
+    );
+  let reach = FLAT_REACH[0] / fwhm + Math.abs(a.center - b.center);
+  while (turns(reach) < FLAT_PHASE && reach < FLAT_REACH[1] / fwhm) reach *= 1.3;
+  const band = { flat: 0.6 * reach, reach, error: 0 };
+  return { low: middle - reach, high: middle + reach, weight: (omega) => bandWeight(band, omega - middle) };
 }
 
 /** Break points so close that the relative phase of two tones turns by a few radians between them. */
@@ -64,12 +89,12 @@ function ownEnergy(tone: Tone, filter: SpectralFilter | null): number {
   // Dispersion only turns phases, and one tone has nothing to interfere with.
   if (shape.flat) return flatPair(tone, tone, filter);
   const spectrum = toneSpectrum(tone);
-  const reach = reachOf(tone, spectrum);
+  const reach = spectrum.reach(FIELD_FLOOR);
   const { center } = spectrum;
   const integrand = (omega: number) => spectrum.amplitude(omega - center) ** 2 * lorentzian(filter, omega);
   const breaks = [center - reach / 4, center, center + reach / 4, ...filterBreaks(filter)];
   return (
-    integrate(integrand, center - reach, center + reach, { relative: 1e-11, breaks }).value / (2 * Math.PI)
+    integrate(integrand, center - reach, center + reach, { relative: 1e-10, breaks }).value / (2 * Math.PI)
   );
 }
 
@@ -81,13 +106,12 @@ function crossEnergy(a: Tone, b: Tone, filter: SpectralFilter | null, scale: num
   if (pulseShape(a.shape).flat && pulseShape(b.shape).flat && (alike || plain)) return flatPair(a, b, filter);
   const one = toneSpectrum(a);
   const two = toneSpectrum(b);
-  const low = Math.max(one.center - reachOf(a, one), two.center - reachOf(b, two));
-  const high = Math.min(one.center + reachOf(a, one), two.center + reachOf(b, two));
+  const { low, high, weight } = sharedBand(one, two, Math.min(a.fwhm, b.fwhm));
   if (low >= high) return 0;
   const integrand = (omega: number) => {
     const nu = omega - one.center;
     const mu = omega - two.center;
-    const product = one.amplitude(nu) * two.amplitude(mu);
+    const product = one.amplitude(nu) * two.amplitude(mu) * weight(omega);
     if (product === 0) return 0;
     const fringe = product * Math.cos(one.phase(nu) - two.phase(mu));
     return filter ? fringe * lorentzian(filter, omega) : fringe;
@@ -109,7 +133,7 @@ function projections(a: number, b: number, axis: number | null): { along: number
 /**
  * ∫ |Ω(ω)|² T(ω) dω/2π, split by polarisation along and across `axis` (rad from h), 1/ps. Beating between tones is
  * included; relative error at most 1e-8 however far the tones lie off the filter, and 1e-10 without a filter, as long
- * as the tones do not cancel each other.
+ * as the tones do not cancel each other; 1e-6 for the beating of two differently dispersed square tones.
  */
 export function transmittedEnergy(
   pulse: Pulse,

@@ -1,7 +1,7 @@
 import type { PulseFigures } from '../figures.js';
 import type { Pulse, Tone } from './contract.js';
 import { type Cell, halfMaximumWidth } from './crossings.js';
-import { createDrive } from './drive.js';
+import { createDrive, type Drive } from './drive.js';
 import { pulseEnergy } from './energy.js';
 import { pulseShape } from './shapes/registry.js';
 import { type ToneSpectrum, toneSpectrum } from './spectrum.js';
@@ -16,11 +16,17 @@ const FLAT_REACH = 60;
 /** 1/ps as an ordinary frequency, GHz. */
 const GHZ_PER_RADIAN = 1000 / (2 * Math.PI);
 
-/** |Ω_h|² + |Ω_v|² over the drive window. */
-function inTime(pulse: Pulse): Cell[] {
+/** A drive whose components show every polarisation apart: the given one if it does, else a new one. */
+function polarizedDrive(pulse: Pulse, given: Drive | null): Drive {
+  const one = pulse.tones.every((tone) => tone.polarization === pulse.tones[0].polarization);
+  if (given !== null && (given.components === 2 || one)) return given;
   const centers = pulse.tones.map((tone) => toneSpectrum(tone).center);
   const frame = 0.5 * (Math.min(...centers) + Math.max(...centers));
-  const { cells, scales, sample } = createDrive(pulse, { frame, projection: 'linear' });
+  return createDrive(pulse, { frame, projection: 'linear' });
+}
+
+/** |Ω_h|² + |Ω_v|² over the drive window. */
+function inTime({ cells, scales, sample }: Drive): Cell[] {
   const out = new Float64Array(4);
   const step = 1 / (PER_TIME / scales.time + PER_RADIAN * scales.frequency);
   return cells.map(({ from, to, segment, bound }) => ({
@@ -100,15 +106,16 @@ function knownDuration(tone: Tone): number | null {
  * Energy, duration and bandwidth of a pulse. Duration and bandwidth lie between the outermost points at which
  * |Ω_h|² + |Ω_v|² reaches half its maximum, in time and in frequency; of a pulse without any area they are 0 unless
  * it has a single tone, whose shape fixes them.
+ * @param drive a drive of the same pulse, if there is one already: saves dispersing it again
  * @throws DispersionError when a dispersed tone is spread over more samples than a transform can hold
  */
-export function pulseFigures(pulse: Pulse): PulseFigures {
+export function pulseFigures(pulse: Pulse, drive: Drive | null = null): PulseFigures {
   const [first] = pulse.tones;
   const reference = Math.PI ** 2 * pulseShape('gaussian').energy(first.fwhm);
   const energy = pulseEnergy(pulse) / reference;
   const single = pulse.tones.length === 1;
   const known = single ? knownDuration(first) : null;
-  const duration = known ?? halfMaximumWidth(inTime(pulse));
+  const duration = known ?? halfMaximumWidth(inTime(polarizedDrive(pulse, drive)));
   const bandwidth = single
     ? (1000 * pulseShape(first.shape).timeBandwidth) / first.fwhm
     : GHZ_PER_RADIAN * halfMaximumWidth(inFrequency(pulse.tones));

@@ -3,6 +3,7 @@ import { describe, expect, it } from 'vitest';
 import type { Pulse } from '../../../core/pulse/contract.js';
 import { createDrive } from '../../../core/pulse/drive.js';
 import { pulseEnergy, transmittedEnergy } from '../../../core/pulse/energy.js';
+import { HBAR } from '../../../core/units/constants.js';
 import { pulse } from './tone.js';
 
 const all = { axis: null };
@@ -102,6 +103,27 @@ describe('pulse energy', () => {
   it('beating of two chirped Gaussians agrees with the time integral', () => {
     const p = pulse({ gdd: 40, detuning: 0.5 }, { gdd: -10, fwhm: 3, delay: 4, phase: 0.7 });
     expect(pulseEnergy(p) / energyInTime(p, 40_000)).toBeCloseTo(1, 10);
+  });
+
+  it('two squares of different dispersion beat as their drives do', () => {
+    for (const [one, two] of [
+      [20, -5],
+      [0, 3],
+    ]) {
+      const shape = 'square';
+      const p = pulse({ shape, gdd: one }, { shape, fwhm: 8, gdd: two, delay: 4, detuning: 0.4, phase: 1 });
+      const apart = pulseEnergy(pulse({ shape })) + pulseEnergy(pulse({ shape, fwhm: 8 }));
+      // The drive leaves out far wings and their energy; what beats is inside.
+      const alone = energyInTime(pulse(p.tones[0]), 60_000) + energyInTime(pulse(p.tones[1]), 60_000);
+      const beating = energyInTime(p, 60_000) - alone;
+      expect((pulseEnergy(p) - apart) / apart).toBeCloseTo(beating / apart, 8);
+    }
+    // Equal GDD only delays one colour against the other: G·δ, and a phase −½Gδ² (from φ(ω), derived).
+    const [gdd, delta, shape] = [10, 0.4 / HBAR, 'square'];
+    const second = { shape, fwhm: 8, delay: 4, detuning: 0.4, phase: 1 };
+    const together = pulseEnergy(pulse({ shape, gdd }, { ...second, gdd }));
+    const moved = pulse({ shape, delay: gdd * delta, phase: -0.5 * gdd * delta * delta }, second);
+    expect(together / pulseEnergy(moved)).toBeCloseTo(1, 7);
   });
 
   it('vanishes with the area', () => {

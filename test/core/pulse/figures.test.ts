@@ -1,4 +1,5 @@
 import { describe, expect, it } from 'vitest';
+import { createDrive } from '../../../core/pulse/drive.js';
 import { pulseFigures } from '../../../core/pulse/figures.js';
 import { GHZ_PER_MEV } from '../../../core/units/constants.js';
 import { pulse } from './tone.js';
@@ -66,6 +67,15 @@ describe('figures of a pulse', () => {
   it('crossed polarisations do not beat', () => {
     const crossed = pulse({ fwhm: 10, detuning: -8 }, { fwhm: 10, detuning: 8, polarization: Math.PI / 2 });
     expect(pulseFigures(crossed).duration_ps).toBeCloseTo(10, 8);
+  });
+
+  it('takes a drive that is there already, and only where it shows the polarisations', () => {
+    const chirped = pulse({ tod: 40 });
+    const drive = createDrive(chirped, { frame: 0.3, projection: 'full' });
+    expect(pulseFigures(chirped, drive).duration_ps / pulseFigures(chirped).duration_ps).toBeCloseTo(1, 9);
+    const crossed = pulse({ fwhm: 10, detuning: -2 }, { fwhm: 10, detuning: 2, polarization: Math.PI / 2 });
+    const full = createDrive(crossed, { frame: 0, projection: 'full' });
+    expect(pulseFigures(crossed, full).duration_ps).toBeCloseTo(10, 8);
   });
 
   it('no area at all', () => {
