@@ -1,5 +1,8 @@
 export * from './contract.js';
-export { leafAt } from './keys/paths.js';
+export { fullPath, keyEntries, leafAt } from './keys/paths.js';
 export { studyHash } from './read/normalise.js';
 export { MAX_STUDY_BYTES } from './source/text.js';
 export { readStudy } from './study.js';
+export { writeDesign, writeStudyFile } from './write/design.js';
+export { keyTable } from './write/key-table.js';
+export { jsonSchema } from './write/schema.js';

@@ -1,9 +1,9 @@
 import { emitterModels } from '../../core/index.js';
-import type { Fault, Override, StudyResult } from './contract.js';
+import type { Fault, Override, Place, StudyResult } from './contract.js';
 import { studyKeys } from './keys/table.js';
 import { ReadContext } from './read/context.js';
 import { normaliseStudy, studyHash } from './read/normalise.js';
-import { applyOverrides } from './read/overrides.js';
+import { applyOverrides, OVERRIDE_FILE } from './read/overrides.js';
 import { addRemarks } from './read/remarks.js';
 import { checkRules } from './read/rules.js';
 import { readSection } from './read/section.js';
@@ -42,5 +42,8 @@ function readTree(root: Placed, earlier: readonly Fault[]): StudyResult {
   return { kind: 'study', study, remarks: context.remarks.sort(byPlace), hash: studyHash(study) };
 }
 
-const byPlace = (a: Fault | { line: number; column: number }, b: { line: number; column: number }): number =>
-  a.line - b.line || a.column - b.column;
+/** Overrides after the file, each in the order of its text. */
+function byPlace(a: Place, b: Place): number {
+  const overridden = Number(a.file === OVERRIDE_FILE) - Number(b.file === OVERRIDE_FILE);
+  return overridden || a.line - b.line || a.column - b.column;
+}

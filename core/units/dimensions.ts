@@ -55,6 +55,13 @@ export const dimensions = {
     display: ['fs^2', 'ps^2'],
     example: '40 ps^2',
   },
+  phononCoupling: {
+    name: 'a phonon coupling',
+    internal: 'ps^2',
+    units: decimal({ 'fs^2': -6, 'ps^2': 0 }),
+    display: ['ps^2'],
+    example: '0.03 ps^2',
+  },
   tod: {
     name: 'a third-order dispersion',
     internal: 'ps^3',

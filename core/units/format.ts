@@ -75,7 +75,7 @@ function placePoint(digits: string, power: number): string {
   const trimmed = digits.replace(/0+$/, '');
   const exponent = power + digits.length - trimmed.length;
   const magnitude = trimmed.length + exponent;
-  if (magnitude > 21 || magnitude < -5) {
+  if (magnitude > 21 || magnitude < -3) {
     const tail = trimmed.slice(1);
     return `${trimmed[0]}${tail ? `.${tail}` : ''}e${magnitude - 1}`;
   }

@@ -32,7 +32,12 @@ export interface Leaf<T> {
   readonly rule: Rule;
   readonly presence: Presence<T>;
   readonly help: string;
+  /** Set where the key is only for emitters that have this. */
+  readonly only?: 'biexciton';
 }
+
+/** The same key, only for emitters with a biexciton. */
+export const biexcitonOnly = <T>(leaf: Leaf<T>): Leaf<T> => ({ ...leaf, only: 'biexciton' });
 
 export interface Section<K extends Keys = Keys, N extends boolean = boolean> {
   readonly kind: 'section';

@@ -1,5 +1,6 @@
 import { emitterModels, pulseShapes } from '../../../core/index.js';
 import {
+  biexcitonOnly,
   choice,
   integer,
   type Leaf,
@@ -39,25 +40,29 @@ const emitter = section('the quantum dot', 'required', {
     default: '930 nm',
   }),
   lifetime: quantity('time', 'radiative lifetime of the exciton', positive),
-  biexciton_lifetime: optionalQuantity(
-    'time',
-    'radiative lifetime of the biexciton; half that of the exciton unless given',
-    positive,
+  biexciton_lifetime: biexcitonOnly(
+    optionalQuantity(
+      'time',
+      'radiative lifetime of the biexciton; half that of the exciton unless given',
+      positive,
+    ),
   ),
-  binding: optionalQuantity(
-    'energy',
-    'biexciton binding energy, positive when its line lies below the exciton line',
-    {
-      bounds: { not: 0 },
-    },
+  binding: biexcitonOnly(
+    optionalQuantity(
+      'energy',
+      'biexciton binding energy, positive when its line lies below the exciton line; required',
+      {
+        bounds: { not: 0 },
+      },
+    ),
   ),
-  splitting: quantity('energy', 'fine-structure splitting, h above v', { default: '0 ueV' }),
+  splitting: biexcitonOnly(quantity('energy', 'fine-structure splitting, h above v', { default: '0 ueV' })),
   dephasing: quantity('rate', 'pure dephasing rate of the excited levels', {
     ...notNegative,
     default: '0 1/ns',
   }),
   phonons: optionalSection('longitudinal-acoustic phonon bath; leave out for none', {
-    coupling: quantity('gdd', 'coupling strength A of J(ω) = A ω³ exp(−ω²/ω_c²)', notNegative),
+    coupling: quantity('phononCoupling', 'coupling strength A of J(ω) = A ω³ exp(−ω²/ω_c²)', notNegative),
     cutoff: quantity('rate', 'cutoff ω_c', positive),
     temperature: quantity('temperature', 'temperature of the bath', notNegative),
     method: choice('how the bath is treated', ['auto', 'polaron', 'weak-coupling', 'exact'], 'auto'),

@@ -1,5 +1,6 @@
 import { type EmitterModel, emitterModels } from '../../../core/index.js';
 import type { ReadOf } from '../keys/kinds.js';
+import { keyEntries } from '../keys/paths.js';
 import type { studyKeys } from '../keys/table.js';
 import { describeFound, locate } from '../source/placed.js';
 import type { ReadContext } from './context.js';
@@ -34,8 +35,8 @@ const biexcitonKeys: Rule = (raw, report, context) => {
     }
     return;
   }
-  for (const key of ['biexciton_lifetime', 'binding', 'splitting']) {
-    const path = `emitter.${key}`;
+  for (const { pattern: path, key } of keyEntries) {
+    if (key.kind !== 'leaf' || key.only !== 'biexciton') continue;
     if (stands(context, path))
       report(path, `a model with a biexciton (${withBiexciton()}); ${model.name} has none`);
   }
