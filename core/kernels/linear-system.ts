@@ -2,7 +2,8 @@ import type { Hierarchy } from '../counting/hierarchy.js';
 import type { Generator } from '../emitter/generator.js';
 import type { SparseMatrix } from '../emitter/operators.js';
 
-interface Entries {
+/** Entries of a generator with their values per drive component. */
+export interface Entries {
   readonly row: Int32Array;
   readonly col: Int32Array;
   /** Value without drive, then per drive component the factors of Re Ω and Im Ω: [entry·width + part]. */
@@ -11,7 +12,7 @@ interface Entries {
 }
 
 /** Merges the sparse parts of L(t) into one entry list, so that a stage only refreshes the values. */
-function mergeGenerator(generator: Generator): Entries {
+export function mergeGenerator(generator: Generator): Entries {
   const all: SparseMatrix[] = [generator.constant];
   generator.real.forEach((m, c) => {
     all.push(m, generator.imaginary[c]);
@@ -85,11 +86,18 @@ function flattenCouplings(hierarchy: Hierarchy, size: number): Scatter {
   };
 }
 
+/** A linear right-hand side dy/dt = M(drive values) y with its start: what the propagator steps. */
+export interface LinearFlow {
+  readonly length: number;
+  initial(): Float64Array;
+  derivative(drive: Float64Array, y: Float64Array, dy: Float64Array): void;
+}
+
 /**
  * The right-hand side of a hierarchy under a drive, as one real linear system.
  * State layout: coordinate-major, [coordinate·lanes + lane], so that one generator entry serves all lanes in a row.
  */
-export class LinearSystem {
+export class LinearSystem implements LinearFlow {
   readonly size: number;
   readonly lanes: number;
   readonly length: number;

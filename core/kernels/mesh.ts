@@ -1,6 +1,5 @@
-import type { Drive } from '../pulse/drive.js';
-import type { LinearSystem } from './linear-system.js';
-import { Stepper } from './step.js';
+import type { LinearFlow } from './linear-system.js';
+import { type SampledDrive, Stepper } from './step.js';
 
 /** Steps of one drive window: step k goes from times[k] to times[k+1] inside segment segments[k]. */
 export interface Mesh {
@@ -30,7 +29,7 @@ const GROW = 4;
  * Chooses the steps by integrating the density operator alone under step-size control. The whole hierarchy is then run
  * on this fixed mesh, which keeps every lane on the same steps and makes refinement a clean error measure.
  */
-export function buildMesh(rho: LinearSystem, drive: Drive, options: MeshOptions): MeshOutcome {
+export function buildMesh(rho: LinearFlow, drive: SampledDrive, options: MeshOptions): MeshOutcome {
   const stepper = new Stepper(rho, drive);
   const { breakpoints, scales } = drive;
   const times: number[] = [breakpoints[0]];
@@ -91,7 +90,7 @@ export function refineMesh(mesh: Mesh, parts: number): Mesh {
 }
 
 /** `count` equal steps per segment: for convergence tests and traces. */
-export function uniformMesh(drive: Drive, count: number): Mesh {
+export function uniformMesh(drive: SampledDrive, count: number): Mesh {
   const segments = drive.breakpoints.length - 1;
   const times = new Float64Array(segments * count + 1);
   const owner = new Int32Array(segments * count);
@@ -109,8 +108,8 @@ export function uniformMesh(drive: Drive, count: number): Mesh {
 
 /** Runs a system over a mesh and returns the state at the end of the drive. */
 export function propagate(
-  system: LinearSystem,
-  drive: Drive,
+  system: LinearFlow,
+  drive: SampledDrive,
   mesh: Mesh,
   observe?: (t: number, y: Float64Array) => void,
 ): Float64Array {

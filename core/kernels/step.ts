@@ -1,6 +1,9 @@
 import type { Drive } from '../pulse/drive.js';
-import type { LinearSystem } from './linear-system.js';
+import type { LinearFlow } from './linear-system.js';
 import { ERROR3, ERROR5, NODES, STAGE_WEIGHTS, STAGES, WEIGHTS } from './runge-kutta.js';
+
+/** What the propagator needs of a drive; there may be more sampled coefficients than Re Ω and Im Ω per polarisation. */
+export type SampledDrive = Pick<Drive, 'breakpoints' | 'scales' | 'sample'> & { readonly components: number };
 
 /** One explicit Runge–Kutta step of order 8 on a linear system; work space is allocated once. */
 export class Stepper {
@@ -9,8 +12,8 @@ export class Stepper {
   private readonly sample: Float64Array;
 
   constructor(
-    private readonly system: LinearSystem,
-    private readonly drive: Drive,
+    private readonly system: LinearFlow,
+    private readonly drive: SampledDrive,
   ) {
     this.stages = Array.from({ length: STAGES }, () => new Float64Array(system.length));
     this.trial = new Float64Array(system.length);
