@@ -95,6 +95,9 @@ function boundedCells(tones: readonly PlacedTone[], { breakpoints, active }: Seg
   return cells;
 }
 
+const peakOf = (cells: readonly BoundedCell[]) =>
+  cells.reduce((largest, cell) => Math.max(largest, cell.bound), 0);
+
 function highestFrequency(tones: readonly PlacedTone[], frame: number): number {
   let highest = 0;
   for (const { tone, envelope } of tones) {
@@ -115,7 +118,11 @@ export function createDrive(pulse: Pulse, options: DriveOptions): Drive {
   const tones = pulse.tones.map((tone) => placeTone(tone, options));
   const cut = segments(tones.map((tone) => tone.window));
   const { breakpoints, active } = cut;
-  const cells = boundedCells(tones, cut);
+  let cells: readonly BoundedCell[] | null = null;
+  const allCells = () => {
+    cells ??= boundedCells(tones, cut);
+    return cells;
+  };
   const samplers = tones.map((tone) => tone.sampler);
   const count = samplers.length;
   const components = options.projection === 'full' ? 1 : 2;
@@ -130,9 +137,11 @@ export function createDrive(pulse: Pulse, options: DriveOptions): Drive {
         if (active[row + k] !== 0) samplers[k].add(t, out);
       }
     },
-    cells,
+    get cells() {
+      return allCells();
+    },
     scales: {
-      peakRabi: cells.reduce((largest, cell) => Math.max(largest, cell.bound), 0),
+      peakRabi: count === 1 ? Math.abs(tones[0].tone.area) * tones[0].envelope.peak : peakOf(allCells()),
       frequency: highestFrequency(tones, options.frame),
       time: Math.min(...tones.map((tone) => tone.envelope.timeScale)),
     },
