@@ -1,5 +1,8 @@
+import { stream } from '../../core/numerics/stream.js';
+import { latinHypercube } from '../global/contract.js';
 import type { IslandSummary } from '../tasks/island.js';
 import { type Knowledge, type Plan, rangeOfInterest, split } from './contract.js';
+import { samplePoints } from './enumerate.js';
 
 /** Evaluations of an island between two migrations, at most. */
 const EPOCH = 200;
@@ -17,12 +20,17 @@ function migrate(islands: Knowledge['islands'], population: number): (readonly (
   });
 }
 
+/** A budget too small for a population: evenly spread points. */
+export function* scatter(known: Knowledge, name: string, count: number): Plan {
+  const points = latinHypercube(known.problem.space, count, stream(known.spec.search.seed, known.spent));
+  yield* samplePoints(known, name, points);
+}
+
 /** Independent NSGA-II islands that exchange members between epochs. Spends at most `budget`. */
 export function* explore(known: Knowledge, name: string, budget: number): Plan {
   const count = Math.min(ISLANDS, Math.max(1, Math.floor(budget / ISLAND_WORTH)));
   const share = budget / count;
   const population = Math.min(40, Math.max(4, 4 * Math.floor(share / 24)));
-  if (share < 4) return;
   const epochs = Math.ceil(share / EPOCH);
   for (const [epoch, spend] of split(budget, epochs).entries()) {
     const starts = known.islands.length === count ? migrate(known.islands, population) : [];

@@ -1,7 +1,7 @@
 import type { Knowledge, Plan } from './contract.js';
 import { cross } from './cross.js';
 import { gridOf, samplePoints } from './enumerate.js';
-import { explore } from './explore.js';
+import { explore, scatter } from './explore.js';
 import { aimAtLevels, fillBetween } from './fill.js';
 import { evenLevels, polishLevels, polishOthers, refine, sweep } from './polish.js';
 
@@ -11,6 +11,8 @@ const SHARES = { explore: 0.2, polish: 0.6 };
 const CROSS = 0.08;
 /** Evaluations of the first round; each later one doubles. */
 const FIRST_ROUND = 1600;
+/** Budgets below this are spent on evenly spread points. */
+const TINY = 25;
 const LEVELS = 5;
 /** Evaluations below which another stage of solves is not begun. */
 const WORTH = 10;
@@ -20,7 +22,8 @@ function* round(known: Knowledge, number: number, budget: number, tried: Set<str
   const name = (what: string) => `${what}-${number}`;
   const end = known.spent + budget;
   const left = () => Math.max(0, end - known.spent);
-  yield* explore(known, name('explore'), Math.floor(SHARES.explore * budget));
+  // A last round of a few evaluations goes to what is known already.
+  if (budget >= TINY) yield* explore(known, name('explore'), Math.floor(SHARES.explore * budget));
   const polishEnd = known.spent + Math.floor(SHARES.polish * budget);
   const polishLeft = () => Math.max(0, polishEnd - known.spent);
   const { atLeast } = known.spec.goal;
@@ -60,6 +63,7 @@ export function* plan(known: Knowledge): Plan {
     const grid = steps >= 5 ? gridOf(categories, steps, known.left) : null;
     if (grid !== null) yield* samplePoints(known, 'scan', grid);
   }
+  if (known.left < TINY) return yield* scatter(known, 'scatter', known.left);
   const tried = new Set<string>();
   for (let number = 1, size = FIRST_ROUND; known.left > 0; number++, size *= 2) {
     const before = known.spent;
