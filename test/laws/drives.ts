@@ -25,6 +25,7 @@ export function sweptDrive(pulse: SweptPulse): Drive {
     components: 1,
     frame: 0,
     breakpoints: Float64Array.of(pulse.start, pulse.end),
+    cells: [{ from: pulse.start, to: pulse.end, segment: 0, bound: pulse.scales.peakRabi }],
     sample(t, _segment, out) {
       const rabi = pulse.rabi(t);
       const phase = pulse.phase(t);
