@@ -118,7 +118,7 @@ export function sampleDesign(nominal: Design, node: DriftNode, effort: Effort): 
       collected: addPoisson(signal, leakage),
       leakage,
       populations: Object.fromEntries(scheme.levels.map((l, i) => [l.name, run.result.populations[i]])),
-      pulse: pulseFigures(design.pulse),
+      pulse: pulseFigures(design.pulse, where.drive),
     },
     steps: run.result.steps,
     // A refined mesh no longer has the errors that were measured while it was built.
