@@ -52,10 +52,16 @@ interface PlacedTone {
   readonly window: PlacedWindow;
 }
 
+/** cos and sin of the polarisation; 6e-17 instead of 0 along an axis would couple what must stay dark. */
+function polarizationWeights(angle: number): readonly [number, number] {
+  const snap = (x: number): number => (Math.abs(x) < 1e-15 ? 0 : x);
+  return [snap(Math.cos(angle)), snap(Math.sin(angle))];
+}
+
 function placeTone(tone: Tone, options: DriveOptions): PlacedTone {
   const envelope = toneEnvelope(tone);
   const weights =
-    options.projection === 'full' ? [1] : [Math.cos(tone.polarization), Math.sin(tone.polarization)];
+    options.projection === 'full' ? [1] : polarizationWeights(tone.polarization);
   const place = {
     area: tone.area,
     phase: tone.phase,
