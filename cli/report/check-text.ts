@@ -1,0 +1,86 @@
+import type { Study } from '../study/index.js';
+import type { DesignFacts, ToneFacts } from './derived.js';
+import { threeDigits } from './numbers.js';
+import { bold, tableText } from './table.js';
+
+/** Facts of a study: of its one design, or at both ends of its free parameters. */
+export interface Corner {
+  /** Heading of the column. */
+  readonly name: string;
+  readonly facts: DesignFacts;
+}
+
+type Row = readonly [label: string, value: (facts: DesignFacts) => string];
+
+const withUnit = (value: number | null, unit: string): string =>
+  value === null ? '–' : `${threeDigits(value)} ${unit}`;
+
+/** A wavelength or photon energy: three digits would hide every detuning. */
+const fine = (value: number, digits: number, unit: string): string => `${value.toFixed(digits)} ${unit}`;
+
+const signed = (value: number): string => (value > 0 ? `+${threeDigits(value)}` : threeDigits(value));
+
+function toneRows(index: number, lines: readonly string[]): Row[] {
+  const of = (text: (tone: ToneFacts) => string) => (facts: DesignFacts) => text(facts.tones[index]);
+  return [
+    ['width (FWHM, transform-limited)', of((t) => withUnit(t.fwhm_ps, 'ps'))],
+    ['bandwidth (FWHM)', of((t) => withUnit(t.bandwidth_ghz, 'GHz'))],
+    ['time–bandwidth product', of((t) => threeDigits(t.time_bandwidth_product))],
+    ['duration after dispersion (FWHM)', of((t) => withUnit(t.duration_ps, 'ps'))],
+    ['energy, π pulse of this width = 1', of((t) => threeDigits(t.energy_pi_units))],
+    ['energy', of((t) => withUnit(t.energy_fj, 'fJ'))],
+    ['peak Rabi frequency Ω', of((t) => withUnit(t.peak_rabi_per_ps, '1/ps'))],
+    ['peak Rabi energy ħΩ', of((t) => withUnit(t.peak_rabi_mev, 'meV'))],
+    ['centre', of((t) => fine(t.wavelength_nm, 4, 'nm'))],
+    ...lines.map(
+      (line): Row => [`centre above the ${line} line`, of((t) => `${signed(t.above_line_mev[line])} meV`)],
+    ),
+  ];
+}
+
+const WHOLE: readonly Row[] = [
+  ['energy, π pulse of the first width = 1', (f) => threeDigits(f.pulse.energy_pi_units)],
+  ['energy', (f) => withUnit(f.pulse.energy_fj, 'fJ')],
+  ['duration (outermost half maxima)', (f) => withUnit(f.pulse.duration_ps, 'ps')],
+  ['bandwidth (outermost half maxima)', (f) => withUnit(f.pulse.bandwidth_ghz, 'GHz')],
+];
+
+const EMITTER: readonly Row[] = [
+  ['exciton photon energy', (f) => fine(f.emitter.exciton_energy_mev, 3, 'meV')],
+  ['exciton linewidth', (f) => withUnit(f.emitter.linewidth_ghz, 'GHz')],
+];
+
+const PROPAGATOR: readonly Row[] = [
+  ['drive window from', (f) => withUnit(f.propagator.window_ps[0], 'ps')],
+  ['drive window to', (f) => withUnit(f.propagator.window_ps[1], 'ps')],
+  ['rotating frame above the exciton line', (f) => `${signed(f.propagator.frame_mev)} meV`],
+  ['steps', (f) => (f.propagator.steps === null ? 'cannot be integrated' : String(f.propagator.steps))],
+];
+
+/** Everything that follows from a study, in sections. */
+export function checkText(
+  study: Study,
+  corners: readonly Corner[],
+  parameters: readonly string[],
+  color: boolean,
+): string {
+  const section = (title: string, rows: readonly Row[]) => {
+    const body = rows.map(([label, value]) => [`  ${label}`, ...corners.map(({ facts }) => value(facts))]);
+    const names = corners.length > 1 ? corners.map((c) => c.name) : [''];
+    return tableText({ head: [title, ...names], rows: body }, color);
+  };
+  const { tones } = corners[0].facts;
+  const lines = Object.keys(tones[0].above_line_mev);
+  const parts = [
+    section(`emitter (${study.design.emitter.model})`, EMITTER),
+    ...tones.map((tone, i) => section(`tone ${i} (${tone.shape})`, toneRows(i, lines))),
+    section('whole pulse', WHOLE),
+    section('propagator', PROPAGATOR),
+  ];
+  const failures = corners.flatMap(({ facts }) => facts.propagator.failure ?? []);
+  if (failures.length > 0) parts.push(failures.join('\n'));
+  if (parameters.length > 0) {
+    parts.push([bold('free parameters', color), ...parameters.map((text) => `  ${text}`)].join('\n'));
+  }
+  return parts.join('\n\n');
+}

@@ -1,0 +1,74 @@
+import { figureAt } from '../run/columns.js';
+import type { FrontDesign, RunResult } from '../run/contract.js';
+import { readable } from '../run/parameters.js';
+import { symbolOf } from './labels.js';
+import { duration, threeDigits } from './numbers.js';
+import { tableText } from './table.js';
+
+const fileName = (point: FrontDesign): string => point.file.replace(/^.*\//, '').replace('.yaml', '');
+
+/** `pulse.tones.0.fwhm` → `tone 0\nfwhm`, `collection.filter.center` → `filter\ncenter`. */
+function parameterHead(path: string): string {
+  const parts = path.split('.');
+  const name = parts[parts.length - 1];
+  const owner = parts[1] === 'tones' ? `tone ${parts[2]}` : parts[parts.length - 2];
+  return `${owner}\n${name}`;
+}
+
+function table(result: RunResult, points: readonly FrontDesign[], color: boolean): string {
+  const { goal, parameters } = result.study;
+  const others = ['multiphoton', 'g2'].filter((name) => name !== goal.impurity);
+  const figures = [
+    `signal.${goal.brightness}`,
+    `collected.${goal.impurity}`,
+    ...others.map((name) => `collected.${name}`),
+  ];
+  const head = (path: string) => `${symbolOf(path.slice(path.indexOf('.') + 1))}\n${path.split('.')[0]}`;
+  return tableText(
+    {
+      head: ['design', 'level', ...figures.map(head), ...parameters.map((p) => parameterHead(p.path))],
+      rows: points.map((point) => [
+        fileName(point),
+        threeDigits(point.level),
+        ...figures.map((path) => threeDigits(figureAt(point.figures, path))),
+        ...parameters.map((p, i) => readable(point.values[i], p.path)),
+      ]),
+    },
+    color,
+  );
+}
+
+function accuracyLine(result: RunResult): string {
+  const points = result.best === null ? result.front : [...result.front, result.best];
+  const worst = Math.max(...points.map((p) => p.figures.accuracy.error_estimate));
+  const methods = [...new Set(points.map((p) => p.figures.phonons.method))].join(', ');
+  return `accuracy: largest estimated relative error ${worst.toExponential(1)}; phonons: ${methods}`;
+}
+
+/** Levels in words, the first few of many. */
+export function levelList(levels: readonly number[]): string {
+  const shown = levels.slice(0, 6).map((level) => threeDigits(level));
+  return shown.join(', ') + (levels.length > 6 ? `, … (${levels.length} levels)` : '');
+}
+
+/** What the user reads at the end of a run: the front, the best design, what was out of reach, where the files are. */
+export function frontText(result: RunResult, directory: string, color: boolean): string {
+  const { goal } = result.study;
+  const { evaluations, hypervolume } = result.outcome;
+  const parts: string[] = [];
+  if (result.front.length > 0) parts.push(table(result, result.front, color), '');
+  if (goal.atLeast !== null) {
+    const name = `signal ${symbolOf(goal.brightness)} ≥ ${goal.atLeast}`;
+    if (result.best === null) parts.push(`best design at ${name}: out of reach`, '');
+    else parts.push(`best design at ${name}:`, table(result, [result.best], color), '');
+  }
+  if (result.outOfReach.length > 0)
+    parts.push(`brightness levels out of reach: ${levelList(result.outOfReach)}`);
+  if (result.front.length > 0) parts.push(accuracyLine(result));
+  parts.push(
+    `hypervolume ${threeDigits(hypervolume.value)}: ${hypervolume.meaning}`,
+    `${evaluations} evaluations in ${duration(result.wall)}`,
+    `files: ${directory}/front.csv, archive.csv, front.json, front.svg, designs/, ledger.jsonl`,
+  );
+  return parts.join('\n');
+}

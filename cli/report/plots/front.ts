@@ -1,0 +1,119 @@
+import type { TopLevelSpec } from 'vega-lite';
+import { axisScale, COLORS, renderSvg } from './render.js';
+
+export interface FrontPoint {
+  readonly brightness: number;
+  readonly impurity: number;
+}
+
+/** Everything that the picture of a front shows. */
+export interface FrontPlot {
+  readonly title: string;
+  readonly subtitle: string;
+  /** Axis titles with basis and unit. */
+  readonly brightnessTitle: string;
+  readonly impurityTitle: string;
+  /** Every non-dominated evaluation. */
+  readonly archive: readonly FrontPoint[];
+  /** The points at the brightness levels asked for. */
+  readonly front: readonly FrontPoint[];
+  /** The brightness asked for and the best design at it. */
+  readonly asked: { readonly level: number; readonly best: FrontPoint | null } | null;
+}
+
+const KINDS = {
+  archive: 'non-dominated evaluation',
+  front: 'design of the front',
+  best: 'best at the brightness asked for',
+};
+
+/** Brightness shown: the levels and the mark with a margin; the dark end of the archive would squeeze them. */
+function shown(plot: FrontPlot): [number, number] {
+  const marks = plot.front.map((p) => p.brightness);
+  if (plot.asked) marks.push(plot.asked.level);
+  if (marks.length === 0) marks.push(...plot.archive.map((p) => p.brightness));
+  const [low, high] = [Math.min(...marks), Math.max(...marks)];
+  const margin = 0.04 * (high - low) || 0.02 * Math.abs(high) || 0.02;
+  return [low - margin, high + margin];
+}
+
+export function frontChart(plot: FrontPlot): TopLevelSpec {
+  const domain = shown(plot);
+  const inside = (p: FrontPoint) => p.brightness >= domain[0] && p.brightness <= domain[1];
+  const rows = [
+    ...plot.archive.filter(inside).map((p) => ({ ...p, kind: KINDS.archive })),
+    ...plot.front.map((p) => ({ ...p, kind: KINDS.front })),
+    ...(plot.asked?.best ? [{ ...plot.asked.best, kind: KINDS.best }] : []),
+  ];
+  const present = Object.values(KINDS).filter((kind) => rows.some((row) => row.kind === kind));
+  const looks: Record<string, { color: string; shape: string; size: number }> = {
+    [KINDS.archive]: { color: COLORS.quiet, shape: 'circle', size: 8 },
+    [KINDS.front]: { color: COLORS.point, shape: 'circle', size: 55 },
+    [KINDS.best]: { color: COLORS.mark, shape: 'diamond', size: 170 },
+  };
+  const range = (key: 'color' | 'shape' | 'size') => present.map((kind) => looks[kind][key]);
+  const scale = (key: 'color' | 'shape' | 'size') => ({ domain: present, range: range(key) as never });
+  const x = {
+    field: 'brightness',
+    type: 'quantitative',
+    title: plot.brightnessTitle,
+    scale: { domain, nice: false },
+  } as const;
+  const type = axisScale(rows.map((row) => row.impurity));
+  const y = {
+    field: 'impurity',
+    type: 'quantitative',
+    title: plot.impurityTitle,
+    scale: type === 'log' ? { type, nice: false } : { type, zero: false },
+    axis: { format: '.1~e', tickCount: 6 },
+  } as const;
+  const points = {
+    data: { values: rows },
+    mark: { type: 'point', filled: true, opacity: 1, clip: true },
+    encoding: {
+      x,
+      y,
+      color: {
+        field: 'kind',
+        type: 'nominal',
+        title: null,
+        scale: scale('color'),
+        legend: { orient: 'bottom', columns: 3, symbolOpacity: 1 },
+      },
+      shape: { field: 'kind', type: 'nominal', title: null, scale: scale('shape') },
+      size: { field: 'kind', type: 'nominal', title: null, scale: scale('size'), sort: present },
+    },
+  } as const;
+  return {
+    width: 560,
+    height: 360,
+    title: { text: plot.title, subtitle: plot.subtitle },
+    layer: [...askedLayers(plot, x), points],
+  } as unknown as TopLevelSpec;
+}
+
+/** A dashed line at the brightness asked for, named at its foot. */
+function askedLayers(plot: FrontPlot, x: object): object[] {
+  if (!plot.asked) return [];
+  const data = { values: [{ brightness: plot.asked.level }] };
+  return [
+    { data, mark: { type: 'rule', strokeDash: [5, 4], color: COLORS.mark }, encoding: { x } },
+    {
+      data,
+      mark: {
+        type: 'text',
+        align: 'left',
+        dx: 6,
+        color: COLORS.mark,
+        fontSize: 12,
+        text: `asked for: ${plot.asked.level}`,
+      },
+      encoding: { x, y: { value: 12 } },
+    },
+  ];
+}
+
+/** SVG of a Pareto front; the impurity axis is logarithmic where it spans more than a decade. */
+export function plotFront(plot: FrontPlot): Promise<string> {
+  return renderSvg(frontChart(plot));
+}

@@ -1,0 +1,51 @@
+import type { Figures, FigureTree } from '../../core/index.js';
+
+/** What decides which figures exist: the same for every point of a run or scan. */
+export interface FigureShape {
+  readonly filtered: boolean;
+  readonly drift: boolean;
+  readonly levels: readonly string[];
+}
+
+/** One figure by its path in the tree, such as `collected.multiphoton` or `emitted.p.2`. */
+export function figureAt(figures: Figures, path: string): number | null {
+  let node: unknown = figures;
+  for (const key of path.split('.')) {
+    if (node === null || typeof node !== 'object') return null;
+    node = (node as Record<string, unknown>)[key];
+  }
+  return typeof node === 'number' ? node : null;
+}
+
+const SIGNAL = ['single', 'any', 'mean', 'multiphoton', 'g2'];
+
+function treePaths(shape: FigureShape): string[] {
+  return [
+    ...SIGNAL.map((name) => `signal.${name}`),
+    ...SIGNAL.map((name) => `collected.${name}`),
+    'collected.leakage',
+    ...(shape.filtered
+      ? ['mean', 'factorial2', 'g2', 'p.0', 'p.1', 'multiphoton'].map((name) => `filtered.${name}`)
+      : []),
+    ...['mean', 'factorial2', 'g2', 'p.0', 'p.1', 'p.2', 'p.3', 'multiphoton'].map((n) => `emitted.${n}`),
+    ...shape.levels.map((name) => `populations.${name}`),
+    ...['energy_pi_units', 'duration_ps', 'bandwidth_ghz'].map((name) => `pulse.${name}`),
+    'accuracy.steps',
+    'accuracy.error_estimate',
+  ];
+}
+
+/** Paths of all figures, in column order; under drift also those without it. */
+export function figurePaths(shape: FigureShape): string[] {
+  const paths = treePaths(shape);
+  return shape.drift ? [...paths, ...paths.map((path) => `nominal.${path}`)] : paths;
+}
+
+/** The shape of one evaluated point. */
+export function shapeOf(figures: FigureTree & { readonly nominal: FigureTree | null }): FigureShape {
+  return {
+    filtered: figures.filtered !== null,
+    drift: figures.nominal !== null,
+    levels: Object.keys(figures.populations),
+  };
+}

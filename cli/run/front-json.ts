@@ -1,0 +1,33 @@
+import { FRONT_FORMAT, type FrontDesign, type RunResult } from './contract.js';
+import { columnOf, inColumn } from './parameters.js';
+
+/** The JSON document of a run: what front.csv holds, how it was found and what its hypervolume refers to. */
+export function frontDocument(result: RunResult): unknown {
+  const { study, hash, version, outcome } = result;
+  const { goal, search, parameters } = study;
+  const point = ({ level, file, values, figures }: FrontDesign) => ({
+    level,
+    design: file,
+    parameters: Object.fromEntries(parameters.map((p, i) => [columnOf(p.path), inColumn(values[i], p.path)])),
+    figures,
+  });
+  return {
+    format: FRONT_FORMAT,
+    version,
+    study: { title: study.title, hash, seed: search.seed },
+    goal: {
+      impurity: `collected.${goal.impurity}`,
+      brightness: `signal.${goal.brightness}`,
+      at_least: goal.atLeast,
+    },
+    accuracy: 'quoted',
+    points: result.front.map(point),
+    best: result.best && point(result.best),
+    out_of_reach: result.outOfReach,
+    archive_points: result.archive.length,
+    evaluations: outcome.evaluations,
+    wall_time_s: result.wall,
+    hypervolume: outcome.hypervolume,
+    stages: outcome.stages,
+  };
+}

@@ -1,0 +1,67 @@
+import type { EvaluatedPoint } from '../../optimizers/index.js';
+import { type FigureShape, figureAt, figurePaths } from './columns.js';
+import { ARCHIVE_FORMAT, FRONT_FORMAT, type RunIdentity, type RunResult } from './contract.js';
+import { type Cell, csv } from './csv.js';
+import { columnOf, inColumn } from './parameters.js';
+
+/** What every table of figures has to say about its numbers. */
+export const BASES = [
+  'emitted: every photon of the collected line and polarisation; filtered: behind the filter; signal: after polariser and efficiency; collected: signal plus leaked laser light; all per pulse',
+];
+
+function identityLines({ study, hash, version }: RunIdentity): string[] {
+  const { goal, search } = study;
+  return [
+    `study: ${study.title}`,
+    `study hash: ${hash}`,
+    `pulsewright ${version}, seed ${search.seed}, at most ${search.evaluations} evaluations`,
+    `goal: least collected.${goal.impurity} at signal.${goal.brightness} of at least each level`,
+    ...BASES,
+  ];
+}
+
+function figureShape({ study }: RunIdentity, points: readonly EvaluatedPoint[]): FigureShape {
+  const { collection, drift } = study.design;
+  const levels = points.length > 0 ? Object.keys(points[0].figures.populations) : [];
+  return { filtered: collection.filter !== null, drift: drift !== null, levels };
+}
+
+/** Parameter and figure cells of points, with their columns. */
+export function pointTable(
+  identity: RunIdentity,
+  points: readonly EvaluatedPoint[],
+): { columns: string[]; rows: Cell[][] } {
+  const paths = figurePaths(figureShape(identity, points));
+  const { parameters } = identity.study;
+  return {
+    columns: [...parameters.map((p) => columnOf(p.path)), ...paths],
+    rows: points.map(({ values, figures }) => [
+      ...parameters.map((p, i) => inColumn(values[i], p.path)),
+      ...paths.map((path) => figureAt(figures, path)),
+    ]),
+  };
+}
+
+/** front.csv: one line per design of the front. No clock, no dates: the same run gives the same bytes. */
+export function frontCsv(result: RunResult): string {
+  const { columns, rows } = pointTable(result, result.front);
+  const comments = [
+    FRONT_FORMAT,
+    ...identityLines(result),
+    'level: highest brightness level asked for that the design serves; figures evaluated anew at accuracy quoted',
+    ...(result.outOfReach.length > 0 ? [`out of reach: ${result.outOfReach.join(' ')}`] : []),
+  ];
+  const full = rows.map((row, i) => [result.front[i].level, result.front[i].file, ...row]);
+  return csv(comments, ['level', 'design', ...columns], full);
+}
+
+/** archive.csv: every non-dominated evaluation of the search, by brightness. */
+export function archiveCsv(result: RunResult): string {
+  const { columns, rows } = pointTable(result, result.archive);
+  const comments = [
+    ARCHIVE_FORMAT,
+    ...identityLines(result),
+    'every non-dominated evaluation; figures at accuracy search (one propagation, its own error estimate): front.csv holds the quoted ones',
+  ];
+  return csv(comments, columns, rows);
+}
