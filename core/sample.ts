@@ -6,9 +6,10 @@ import type { Scheme } from './emitter/contract.js';
 import { collectedDipoles } from './emitter/generator.js';
 import { emitterModel } from './emitter/registry.js';
 import type { PulseFigures } from './figures.js';
-import { type CountResult, countPhotons, type Effort } from './kernels/count.js';
+import { type CountResult, countPhotons, type Effort, PropagationError } from './kernels/count.js';
 import { type Resonance, schemeResonances, slowestFrame } from './kernels/frame.js';
-import { createDrive, type Drive } from './pulse/drive.js';
+import { DispersionError } from './pulse/dispersed.js';
+import { createDrive, type Drive, type DriveOptions } from './pulse/drive.js';
 import { pulseFigures } from './pulse/figures.js';
 import { HBAR, RAD_PER_PS_PER_GHZ } from './units/constants.js';
 
@@ -75,8 +76,18 @@ export function situation(design: Design): Situation {
     resonances.push({ center, quanta: 1, weight: FEWEST_MOMENTS });
   }
   const frame = slowestFrame(resonances);
-  const drive = createDrive(pulse, { frame: frame - reference, projection: scheme.projection });
+  const drive = driveOf(pulse, { frame: frame - reference, projection: scheme.projection });
   return { scheme, reference, frame, drive, line };
+}
+
+/** A pulse that spreads beyond what can be sampled is one more propagation that cannot be carried out. */
+function driveOf(pulse: Design['pulse'], options: DriveOptions): Drive {
+  try {
+    return createDrive(pulse, options);
+  } catch (error) {
+    if (error instanceof DispersionError) throw new PropagationError(error.message);
+    throw error;
+  }
 }
 
 /** Angle of the collected polarisation from h, rad; `all` where the analyser is open. */
