@@ -16,57 +16,55 @@ from scipy.integrate import odeint
 sys.path.insert(0, str(Path(__file__).resolve().parents[2] / "test" / "reference"))
 
 import counting  # noqa: E402
+import field  # noqa: E402
 import reference  # noqa: E402
-from liouville import Blocks  # noqa: E402
-
-
-def lsoda_run(blocks, drive, rtol, components):
-    blocks.assemble()
-    y = blocks.initial().view(float)
-    width = len(blocks.rates) * blocks.size
-    for a, b in zip(drive.breaks, drive.breaks[1:]):
-        value = drive.sampler(a, b)
-
-        def rhs(state, t):
-            omega = value(t)[components]
-            weights = np.empty(blocks.count)
-            weights[0] = 1.0
-            weights[1::2] = omega.real
-            weights[2::2] = omega.imag
-            return (weights @ (blocks.stack @ state.view(complex)).reshape(blocks.count, width)).view(float)
-
-        y = odeint(rhs, y, [a, b], rtol=rtol, atol=rtol * 1e-3, hmax=(b - a) / 20, mxstep=10**7)[-1].copy()
-    return y.view(complex)
+from physics import RAD_PER_GHZ, collected, emitter  # noqa: E402
 
 
 class Case:
+    """A design with its matrices, built once; `evaluate` integrates and closes."""
+
     def __init__(self, design, moments):
-        self.design = design
-        self.moments = moments
-        self.exact = self.evaluate(1e-12, Blocks.run)
+        spec, coll, pulse = design["emitter"], design["collection"], design["pulse"]
+        self.drive = field.Drive(pulse, reference.reference_line(design), spec["model"] != "two-level")
+        model = emitter(spec, self.drive.frame, 0.0)
+        dipoles = collected(model, coll, pulse["tones"][0]["polarization"])
+        self.filtered = coll["filter"] is not None
+        if self.filtered:
+            kappa = coll["filter"]["fwhm"] * RAD_PER_GHZ
+            center = model.lines[coll["line"]] + coll["filter"]["center"] * RAD_PER_GHZ - self.drive.frame
+            self.system = counting.moments_system(model, dipoles, self.drive, kappa, center, moments)
+        else:
+            self.system = counting.emitted_system(model, dipoles, self.drive)
+        self.exact = self.figures(self.system.solve(self.drive, 1e-12))
         for digits in range(6, 14):
             self.tolerance = 10.0**-digits
-            self.error = self.deviation(self.evaluate(self.tolerance, lsoda_run))
+            self.error = self.deviation(self.evaluate())
             if self.error["p"] <= 1e-9 and self.error["relative"] <= 1e-6:
                 return
         raise SystemExit("LSODA does not reach the promised accuracy")
 
-    def evaluate(self, rtol, run):
-        """The parts of a design that a goal needs: without a filter the emitted count, else the filtered moments."""
-        spec, coll, pulse = self.design["emitter"], self.design["collection"], self.design["pulse"]
-        drive = reference.field.Drive(pulse, reference.reference_line(self.design), spec["model"] != "two-level")
-        model = reference.emitter(spec, drive.frame, 0.0)
-        dipoles = reference.collected(model, coll, pulse["tones"][0]["polarization"])
-        standard, Blocks.run = Blocks.run, run
-        try:
-            if coll["filter"] is None:
-                return counting.emitted(model, dipoles, drive, 3, rtol)
-            kappa = coll["filter"]["fwhm"] * reference.RAD_PER_GHZ
-            center = model.lines[coll["line"]] + coll["filter"]["center"] * reference.RAD_PER_GHZ - drive.frame
-            m = counting.moments(model, dipoles, drive, kappa, center, self.moments, rtol)
-            return {"mean": m[0], "factorial2": m[1], **counting.from_moments(m)}
-        finally:
-            Blocks.run = standard
+    def figures(self, read):
+        return {"mean": read[0], "factorial2": read[1], **counting.from_moments(read)} if self.filtered else read
+
+    def evaluate(self):
+        blocks, drive, components = self.system.blocks, self.drive, self.system.components
+        y = blocks.initial().view(float)
+        width = len(blocks.rates) * blocks.size
+        for a, b in zip(drive.breaks, drive.breaks[1:]):
+            value = drive.sampler(a, b)
+
+            def rhs(state, t):
+                omega = value(t)[components]
+                weights = np.empty(blocks.count)
+                weights[0] = 1.0
+                weights[1::2] = omega.real
+                weights[2::2] = omega.imag
+                return (weights @ (blocks.stack @ state.view(complex)).reshape(blocks.count, width)).view(float)
+
+            tolerance = {"rtol": self.tolerance, "atol": self.tolerance * 1e-3}
+            y = odeint(rhs, y, [a, b], hmax=(b - a) / 20, mxstep=10**7, **tolerance)[-1].copy()
+        return self.figures(self.system.read(blocks.finish(y.view(complex))))
 
     def deviation(self, found):
         """Largest error of p_0 and p_1, and largest relative error of means, g2 and P(n>=2)."""
@@ -89,7 +87,7 @@ def main():
         else:
             case = cases[request["run"]]
             began = time.perf_counter()
-            case.evaluate(case.tolerance, lsoda_run)
+            case.evaluate()
             answer = {"seconds": time.perf_counter() - began}
         print(json.dumps(answer), flush=True)
 

@@ -1,8 +1,10 @@
 """Photon counting of emitted light, and behind a Lorentzian filter in two independent ways: closed moments, and a
 master equation with truncated filter modes."""
 
+from dataclasses import dataclass
 from itertools import product
 from math import comb, factorial
+from typing import Callable
 
 import numpy as np
 import scipy.sparse as sp
@@ -34,7 +36,19 @@ def active(model, drive):
     return use or [0], [model.raising["hv"[k]] for k in (use or [0])]
 
 
-def emitted(model, dipoles, drive, highest=3, rtol=RTOL):
+@dataclass
+class System:
+    """Blocks, the drive components that act on them, and what to read from the traces at the end."""
+
+    blocks: Blocks
+    components: list
+    read: Callable
+
+    def solve(self, drive, rtol):
+        return self.read(self.blocks.finish(self.blocks.run(drive, rtol, self.components)))
+
+
+def emitted_system(model, dipoles, drive, highest=3):
     components, raising = active(model, drive)
     blocks = Blocks(undriven(model), drive_parts(raising), 0, model.excitons)
     jump = sum(sandwich(c) for c in dipoles)
@@ -50,13 +64,17 @@ def emitted(model, dipoles, drive, highest=3, rtol=RTOL):
     blocks.link("mean", "rho", jump)
     blocks.add("factorial2")
     blocks.link("factorial2", "mean", 2 * jump)
-    done = blocks.finish(blocks.run(drive, rtol, components))
-    return {
+    return System(blocks, components, lambda done: {
         "mean": done["mean"],
         "factorial2": done["factorial2"],
         "p": [done[f"p{n}"] for n in range(highest + 1)],
         "multiphoton": done["many"],
-    }
+    })
+
+
+def emitted(model, dipoles, drive, highest=3, rtol=RTOL):
+    """Count of emitted photons by jump operators."""
+    return emitted_system(model, dipoles, drive, highest).solve(drive, rtol)
 
 
 def powers(modes, most):
@@ -65,6 +83,10 @@ def powers(modes, most):
 
 def moments(model, dipoles, drive, kappa, center, highest, rtol=RTOL):
     """Factorial moments m_1 ... m_K of the light that leaves the filters, by the closed moment equations."""
+    return moments_system(model, dipoles, drive, kappa, center, highest).solve(drive, rtol)
+
+
+def moments_system(model, dipoles, drive, kappa, center, highest):
     components, raising = active(model, drive)
     blocks = Blocks(undriven(model), drive_parts(raising), 0, model.excitons)
     modes = len(dipoles)
@@ -86,9 +108,10 @@ def moments(model, dipoles, drive, kappa, center, highest, rtol=RTOL):
                     blocks.link((d, j, k), (d, j, shifted(k, q, -1)), couple * k[q] * right(c.conj().T))
                 if d:
                     blocks.link((d, j, k), (d - 1, shifted(j, q, 1), shifted(k, q, 1)), kappa / 2 * one)
-    done = blocks.finish(blocks.run(drive, rtol, components))
     none = (0,) * modes
-    return [factorial(d) * done[(d, none, none)] for d in range(1, highest + 1)]
+    return System(
+        blocks, components, lambda done: [factorial(d) * done[(d, none, none)] for d in range(1, highest + 1)]
+    )
 
 
 def from_moments(m, eta=1.0):
@@ -150,13 +173,13 @@ def filter_modes(model, dipoles, drive, kappa, center, photons, rtol=RTOL):
     blocks.link("p1", "p1", -jump)
     for to, source, factor in (("p1", "p0", 1), ("many", "p1", 1), ("mean", "rho", 1), ("factorial2", "mean", 2)):
         blocks.link(to, source, factor * jump)
-    done = blocks.finish(blocks.run(drive, rtol, components))
-    return {
+    read = lambda done: {
         "mean": done["mean"],
         "factorial2": done["factorial2"],
         "p": [done["p0"], done["p1"]],
         "multiphoton": done["many"],
     }
+    return System(blocks, components, read).solve(drive, rtol)
 
 
 def thinned(p, eta):

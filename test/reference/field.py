@@ -1,5 +1,8 @@
 """Tones, their envelopes by direct Fourier quadrature where dispersed, windows, energies and spectral overlaps."""
 
+import cmath
+import math
+
 import numpy as np
 from scipy.integrate import quad
 from scipy.interpolate import make_interp_spline
@@ -20,18 +23,8 @@ def width(tone):
     }[tone["shape"]]
 
 
-def limited(tone, t):
-    """Transform-limited envelope of area 1, 1/ps."""
-    w, shape = width(tone), tone["shape"]
-    if shape == "gaussian":
-        return np.exp(-((t / w) ** 2) / 2) / (np.sqrt(2 * np.pi) * w)
-    if shape == "sech":
-        return 1 / np.cosh(np.clip(t / w, -700, 700)) / (np.pi * w)
-    return np.where(np.abs(t) < w / 2, 1 / w, 0.0)
-
-
 def spectrum(tone, nu):
-    """Fourier transform of `limited`, real, 1 at the centre."""
+    """Fourier transform of the transform-limited envelope of area 1, real."""
     w, shape = width(tone), tone["shape"]
     if shape == "gaussian":
         return np.exp(-((nu * w) ** 2) / 2)
@@ -90,10 +83,17 @@ class Envelope:
         worst = np.abs(direct - self.table(places)).max() / np.abs(values).max()
         assert worst < 1e-11, f"envelope table: {worst}"
 
-    def __call__(self, t):
-        if not self.dispersed:
-            return limited(self.tone, t)
-        return self.table(t)
+    def function(self):
+        """The envelope at one time, inside its window."""
+        w, shape = width(self.tone), self.tone["shape"]
+        if self.dispersed:
+            return lambda t: complex(self.table(t))
+        if shape == "gaussian":
+            peak = 1 / (math.sqrt(2 * math.pi) * w)
+            return lambda t: peak * math.exp(-0.5 * (t / w) ** 2)
+        if shape == "sech":
+            return lambda t: 1 / (math.pi * w * math.cosh(t / w))
+        return lambda t: 1 / w
 
 
 class Drive:
@@ -115,22 +115,24 @@ class Drive:
         middle = (begin + end) / 2
         on = [k for k, w in enumerate(self.windows) if w[0] < middle < w[1]]
 
-        def flat(k):
-            t = self.tones[k]
-            return t["shape"] == "square" and not self.envelopes[k].dispersed
+        def one(k):
+            """(envelope at t, complex factor, rate, delay, weights) of a tone, constants worked out once."""
+            tone, env = self.tones[k], self.envelopes[k]
+            angle = tone["polarization"]
+            weights = [math.cos(angle), math.sin(angle)] if self.linear else [1.0]
+            factor = tone["area"] * np.exp(1j * tone["phase"])
+            return env.function(), complex(factor), self.centers[k] - self.frame, tone["delay"], weights
+
+        parts = [one(k) for k in on]
+        size = 2 if self.linear else 1
 
         def value(t):
-            out = np.zeros(2 if self.linear else 1, complex)
-            for k in on:
-                tone = self.tones[k]
-                env = 1 / width(tone) if flat(k) else self.envelopes[k](t - tone["delay"])
-                field = tone["area"] * env * np.exp(1j * (tone["phase"] - (self.centers[k] - self.frame) * t))
-                if self.linear:
-                    out[0] += field * np.cos(tone["polarization"])
-                    out[1] += field * np.sin(tone["polarization"])
-                else:
-                    out[0] += field
-            return out
+            out = [0j] * size
+            for env, factor, rate, delay, weights in parts:
+                omega = env(t - delay) * factor * cmath.exp(-1j * rate * t)
+                for c, w in enumerate(weights):
+                    out[c] += w * omega
+            return np.array(out)
 
         return value
 

@@ -34,6 +34,7 @@ class Blocks:
         self.links.append((self.names[to], self.names[source], sp.coo_matrix(superoperator)))
 
     def assemble(self):
+        """Sparse matrices of the undriven generator and of every drive part, and the solver for the time after."""
         n, size = len(self.rates), self.size
         eye = sp.identity(n, format="csr")
         base = sp.kron(eye, self.constant) - sp.kron(sp.diags(self.rates), sp.identity(size))
@@ -50,6 +51,14 @@ class Blocks:
         parts = [self.base] + [sp.kron(eye, sp.csr_matrix(m)) for pair in self.drives for m in pair]
         self.stack = sp.csr_matrix(sp.vstack(parts))
         self.count = len(parts)
+        # Without drive the quanta on the left and on the right change together, so only operators with as many on
+        # either side (each block adds its own `order`) reach the ground state; leaving out the rest keeps the fast
+        # coherences out of the solve.
+        self.still = np.array([b * size + self.rest for b in range(n) if self.rates[b] == 0])
+        balanced = np.nonzero(np.add.outer(self.orders, self.order).ravel() == 0)[0]
+        self.decays = np.setdiff1d(balanced, self.still)
+        self.afterwards = splu(self.base[self.decays][:, self.decays].tocsc())
+        self.outflow = self.base[self.still][:, self.decays]
 
     def initial(self):
         y = np.zeros(len(self.rates) * self.size, complex)
@@ -92,14 +101,7 @@ class Blocks:
         return y, peaks
 
     def finish(self, y):
-        """Trace of every undamped block at t = infinity. Without drive the quanta on the left and on the right change
-        together, so only operators with as many on either side (each block adds its own `order`) reach the ground
-        state; leaving out the rest keeps the fast coherences out of the solve."""
-        n, size = len(self.rates), self.size
-        still = np.array([b * size + self.rest for b in range(n) if self.rates[b] == 0])
-        balanced = np.nonzero(np.add.outer(self.orders, self.order).ravel() == 0)[0]
-        decays = np.setdiff1d(balanced, still)
-        inside = self.base[decays][:, decays].tocsc()
-        final = y[still] - self.base[still][:, decays] @ splu(inside).solve(y[decays])
-        return {name: final[np.nonzero(still == b * size + self.rest)[0][0]].real
-                for name, b in self.names.items() if self.rates[b] == 0}
+        """Trace of every undamped block at t = infinity."""
+        final = y[self.still] - self.outflow @ self.afterwards.solve(y[self.decays])
+        where = {int(index) // self.size: k for k, index in enumerate(self.still)}
+        return {name: final[where[b]].real for name, b in self.names.items() if b in where}
