@@ -9,6 +9,8 @@ import { evenLevels, polishLevels, polishOthers, refine, sweep } from './polish.
 const SHARES = { explore: 0.2, polish: 0.6 };
 /** Share of a round for the look along the coordinates. */
 const CROSS = 0.08;
+/** Share of what is left for solves that goes to second opinions. */
+const OTHERS = 0.3;
 /** Evaluations of the first round; each later one doubles. */
 const FIRST_ROUND = 1600;
 /** Budgets below this are spent on evenly spread points. */
@@ -28,9 +30,13 @@ function* round(known: Knowledge, number: number, budget: number, tried: Set<str
   const polishLeft = () => Math.max(0, polishEnd - known.spent);
   const { atLeast } = known.spec.goal;
   const levels = [...evenLevels(known, LEVELS), ...(atLeast === null ? [] : [atLeast])];
-  yield* polishLevels(known, name('polish'), levels, polishLeft());
+  // A first few solves, a look around from where they end, and only then the rest: a solve on a poor branch is lost.
+  const probes =
+    atLeast === null ? evenLevels(known, 4).slice(1, 3) : [atLeast, ...evenLevels(known, 3).slice(1, 2)];
+  yield* polishLevels(known, name('probe'), probes, polishLeft());
   yield* cross(known, name('cross'), Math.min(polishLeft(), CROSS * budget), number);
-  yield* polishOthers(known, name('second-branch'), levels, Math.floor(0.3 * polishLeft()));
+  yield* polishLevels(known, name('polish'), levels, polishLeft());
+  yield* polishOthers(known, name('second-branch'), levels, Math.floor(OTHERS * polishLeft()));
   for (let i = 1; polishLeft() >= WORTH; i++) {
     const before = known.spent;
     yield* sweep(known, name(`sweep-${i}`), polishLeft(), tried);

@@ -18,6 +18,8 @@ const NEIGHBOUR_RADIUS = 0.02;
 const allowance = (known: Knowledge, iterations = 16) => iterations * (known.problem.space.dimension + 1);
 /** Iterations of a solve that begins next to its end. */
 const SHORT = 6;
+/** Iterations of a solve that begins on the right branch, perhaps. */
+const MEDIUM = 10;
 
 /** Solves from all starts that fit into `budget`, side by side; keeps where they end. */
 function* solveAll(
@@ -55,16 +57,22 @@ function memberAt(known: Knowledge, level: number): readonly number[] | null {
   return member === undefined ? null : unitOf(known, member);
 }
 
-/** From the archive's member at each level. */
+/** A solution is beaten when the archive has less than this share of its impurity at its level. */
+const BEATEN = 0.999;
+
+/** From the archive's member at each level that has no solution yet or a beaten one. */
 export function* polishLevels(
   known: Knowledge,
   name: string,
   levels: readonly number[],
   budget: number,
 ): Plan {
+  const solved = new Map(bestSolutions(known).map((solution) => [solution.level, solution]));
   const starts = levels.flatMap((level) => {
     const x = memberAt(known, level);
-    return x === null ? [] : [{ level, x, radius: JUMP_RADIUS }];
+    const own = solved.get(level)?.impurity ?? Number.POSITIVE_INFINITY;
+    const better = atLevel(known.front, level)?.impurity ?? 0;
+    return x === null || better >= BEATEN * own ? [] : [{ level, x, radius: JUMP_RADIUS }];
   });
   yield* solveAll(known, name, starts, budget);
 }
@@ -80,9 +88,6 @@ export function bestSolutions(known: Knowledge): Solution[] {
   return [...best.values()].sort((a, b) => a.level - b.level);
 }
 
-/** A solution is beaten when the archive has less than this share of its impurity at its level. */
-const BEATEN = 0.999;
-
 /**
  * Continuation in both directions: a level that another's design serves better is solved again from that design, one
  * without a solution from its neighbours', and where neighbouring levels sit on different branches, each from the
@@ -94,7 +99,7 @@ export function* sweep(known: Knowledge, name: string, budget: number, tried: Se
   const starts: Start[] = [];
   const offer = (level: number, x: readonly number[]) => {
     const key = `${level} ${x.map((value) => value.toFixed(3)).join(' ')}`;
-    if (tried.has(key) || starts.length >= Math.max(1, Math.floor(budget / allowance(known)))) return;
+    if (tried.has(key) || starts.length >= Math.max(1, Math.floor(budget / allowance(known, MEDIUM)))) return;
     tried.add(key);
     starts.push({ level, x, radius: CONTINUE_RADIUS });
   };
@@ -116,7 +121,7 @@ export function* sweep(known: Knowledge, name: string, budget: number, tried: Se
     offer(low.level, high.x);
     offer(high.level, low.x);
   }
-  yield* solveAll(known, name, starts, budget);
+  yield* solveAll(known, name, starts, budget, allowance(known, MEDIUM));
   return starts.length > 0;
 }
 
