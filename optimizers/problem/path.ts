@@ -39,6 +39,13 @@ function rootOf(tie: Tie, ties: ReadonlyMap<string, Tie>): string {
   return path;
 }
 
+/** A copy in which nothing is shared: two tones may be the same object in the specification. */
+function copy<T>(value: T): T {
+  if (Array.isArray(value)) return value.map(copy) as T;
+  if (value === null || typeof value !== 'object') return value;
+  return Object.fromEntries(Object.entries(value).map(([key, part]) => [key, copy(part)])) as T;
+}
+
 /**
  * The design with the free parameters at `values` (internal units, order of `spec.parameters`) and every tie kept.
  * The specification is not changed. Throws when a path does not lead to a number or ties form a circle.
@@ -47,7 +54,7 @@ export function applyParameters(spec: ProblemSpec, values: readonly number[]): D
   if (values.length !== spec.parameters.length) {
     throw new Error(`got ${values.length} values; the problem has ${spec.parameters.length} free parameters`);
   }
-  const design = structuredClone(spec.design) as Design;
+  const design = copy(spec.design);
   spec.parameters.forEach((parameter, i) => {
     const { parent, key } = descend(design, parameter.path);
     parent[key] = values[i];

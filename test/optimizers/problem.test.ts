@@ -24,6 +24,13 @@ describe('parameters of a design', () => {
     expect(tied).toEqual(before);
   });
 
+  it('sets one tone only where two tones are the same object', () => {
+    const [tone] = spec.design.pulse.tones;
+    const pulse = { ...spec.design.pulse, tones: [tone, tone] };
+    const { tones } = applyParameters({ ...spec, design: { ...spec.design, pulse } }, [4, 25]).pulse;
+    expect([tones[0].fwhm, tones[1].fwhm]).toEqual([4, tone.fwhm]);
+  });
+
   it('finds keys that the study writes in snake case', () => {
     const free = toySpec(1, 1, [range('laser.pi_pulse.energy', 1, 2)]);
     const laser = { repetition: 76, piPulse: { energy: 12, fwhm: 5 }, rejection: 0 };
