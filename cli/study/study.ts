@@ -34,7 +34,9 @@ function readTree(root: Placed, earlier: readonly Fault[]): StudyResult {
   const raw = readSection(studyKeys, root, root.at, '', context);
   const free = resolveFields(context);
   if (raw) checkRules(raw, context);
-  const faults = [...earlier, ...context.faults];
+  // What could not be read has its fault already.
+  const later = context.faults.filter((f) => !earlier.some((e) => e.path === f.path && byPlace(e, f) === 0));
+  const faults = [...earlier, ...later];
   if (!raw || faults.length > 0) return { kind: 'faults', faults: faults.sort(byPlace) };
   const model = emitterModels.find(({ name }) => name === raw.emitter?.model);
   const study = normaliseStudy(raw, free, model?.hasBiexciton ?? false);

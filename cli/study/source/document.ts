@@ -1,4 +1,4 @@
-import { isAlias, isMap, isScalar, isSeq, LineCounter, type Node, type Pair, parseDocument } from 'yaml';
+import { isAlias, isMap, isScalar, isSeq, type Node, type Pair, parseDocument } from 'yaml';
 import { quoteFound } from '../../../core/index.js';
 import type { Fault, Place } from '../contract.js';
 import type { Placed, PlacedMap } from './placed.js';
@@ -20,17 +20,11 @@ export interface PlacedDocument {
 export function readDocument(text: string, file: string, shift = 0): PlacedDocument {
   const tooDeep = nestingFault(text, file);
   if (tooDeep) return { root: null, faults: [tooDeep] };
-  const lines = new LineCounter();
   const document = parseDocument(text, {
-    lineCounter: lines,
     prettyErrors: false,
     uniqueKeys: false,
-    logLevel: 'silent',
   });
-  const placeAt = (offset: number): Place => {
-    const { line, col } = lines.linePos(Math.min(offset, text.length));
-    return { file, line: Math.max(line, 1), column: Math.max(col, 1) + (line <= 1 ? shift : 0) };
-  };
+  const placeAt = placer(text, file, shift);
   const syntax = [...document.errors, ...document.warnings].slice(0, MAX_SYNTAX_FAULTS);
   if (syntax.length > 0) {
     const faults = syntax.map((e) => ({
@@ -44,6 +38,22 @@ export function readDocument(text: string, file: string, shift = 0): PlacedDocum
   const walker = new Walker(placeAt, text);
   const root = walker.convert(document.contents as Node | null, '', 0);
   return { root: walker.full ? null : root, faults: walker.faults };
+}
+
+/** Places of offsets. Not the parser's own line counter: it stops where the parser does. */
+function placer(text: string, file: string, shift: number): (offset: number) => Place {
+  const starts = [0];
+  for (let i = text.indexOf('\n'); i >= 0; i = text.indexOf('\n', i + 1)) starts.push(i + 1);
+  return (offset) => {
+    const end = Math.min(offset, text.length);
+    let [low, high] = [0, starts.length];
+    while (high - low > 1) {
+      const middle = (low + high) >> 1;
+      if (starts[middle] <= end) low = middle;
+      else high = middle;
+    }
+    return { file, line: low + 1, column: end - starts[low] + 1 + (low === 0 ? shift : 0) };
+  };
 }
 
 class Walker {
