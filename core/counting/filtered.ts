@@ -7,6 +7,12 @@ export interface RotatingFilter {
   readonly center: number;
 }
 
+/** Broad light of the same emitter that the filter passes incoherently: counted jumps, each with probability `rate`. */
+export interface SideLight {
+  readonly dipoles: readonly Operator[];
+  readonly rate: number;
+}
+
 /** Index of a filtered operator: level d (photons already transmitted) and powers of a (j) and a† (k) per mode. */
 interface Index {
   readonly level: number;
@@ -37,16 +43,19 @@ function canonical(index: Index): { stored: Index; conjugate: boolean } {
  * Each collected mode (polarisation) has its own filter mode; a count is a photon through any of them. Only the
  * operators that the targets need are kept.
  * Targets `m1` … `mK`: factorial moments of the transmitted count, exact.
+ * @param aside light beside the line of `dipoles` that passes with a fixed probability: one more counted jump per level
  */
 export function addFilteredMoments(
   builder: HierarchyBuilder,
   dipoles: readonly Operator[],
   filter: RotatingFilter,
   order: number,
+  aside: SideLight | null = null,
 ): void {
   const modes = dipoles.length;
   const none = new Array<number>(modes).fill(0);
   const left = dipoles.map((c) => builder.addLeft(c));
+  const jumps = aside && aside.rate > 0 ? builder.addJump(aside.dipoles) : [];
   const known = new Map<string, number>();
   const half = filter.kappa / 2;
   const drive = -Math.sqrt(half);
@@ -81,6 +90,10 @@ export function addFilteredMoments(
         const from = request({ level: level - 1, j: step(j, q, 1), k: step(k, q, 1) });
         coupleSame(builder, half, from, block);
       }
+    }
+    if (level > 0 && aside) {
+      const from = request({ level: level - 1, j, k });
+      for (const jump of jumps) builder.couple(jump, aside.rate, from.block, block);
     }
     return block;
   };
