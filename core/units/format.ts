@@ -5,13 +5,13 @@ import { parseQuantity } from './parse.js';
 export function formatQuantity(value: number, dimension: Dimension, significantDigits = 3): string {
   const info = dimensionInfo(dimension);
   const candidates = info.display.map((name) => info.units.find((u) => u.name === name) ?? BARE);
-  const inUnit = (unit: Unit) => value / scaleOf(unit);
-  const rounded = (unit: Unit) => Math.abs(Number(inUnit(unit).toPrecision(significantDigits)));
+  const scaled = (unit: Unit) => value / scaleOf(unit);
+  const rounded = (unit: Unit) => Math.abs(Number(scaled(unit).toPrecision(significantDigits)));
   let unit = candidates.find((u) => u.name === info.internal) ?? candidates[0];
   if (value !== 0 && Number.isFinite(value)) {
     unit = candidates.findLast((u) => rounded(u) >= 1) ?? candidates[0];
   }
-  return withUnit(plainDigits(inUnit(unit), significantDigits), unit.name);
+  return withUnit(plainDigits(scaled(unit), significantDigits), unit.name);
 }
 
 /** The number of a quantity in one named unit of its dimension. Throws when the dimension has no such unit. */

@@ -71,6 +71,11 @@ function readRange(node: PlacedMap, path: string, rule: QuantityRule, context: R
     );
     return { kind: 'faulty' };
   }
+  if (!Number.isFinite(to - from)) {
+    const found = `a range from ${textOf('from')} to ${textOf('to')}`;
+    context.fault(keyPlace(node, 'from'), path, found, 'a range whose width is a finite number');
+    return { kind: 'faulty' };
+  }
   if (scale === 'log' && !(from > 0)) {
     const at = (node.entries.get('from') as { value: Placed }).value.at;
     context.fault(

@@ -73,6 +73,11 @@ const single: [string, string, string][] = [
     '7:17 pulse.tones.0.fwhm: got a reversed range from 4 ps to 2 ps; needs from below to',
   ],
   [
+    'range too wide for its width to be a number',
+    tone('fwhm: 5 ps, area: 1 pi, gdd: { from: -1e308 ps^2, to: 1e308 ps^2 }'),
+    '7:40 pulse.tones.0.gdd: got a range from -1e308 ps^2 to 1e308 ps^2; needs a range whose width is a finite number',
+  ],
+  [
     'range with one end',
     tone('fwhm: { from: 4 ps }, area: 1 pi'),
     '7:15 pulse.tones.0.fwhm: got a range without to; needs both ends: { from, to }',
