@@ -1,12 +1,15 @@
+import { levelsOf } from '../front/levels.js';
 import type { Knowledge, Plan } from './contract.js';
 import { cross } from './cross.js';
 import { gridOf, samplePoints } from './enumerate.js';
 import { explore, scatter } from './explore.js';
 import { aimAtLevels, fillBetween } from './fill.js';
-import { evenLevels, polishLevels, polishOthers, refine, sweep } from './polish.js';
+import { evenLevels, polishLevels, polishOthers, refine, sweep, tighten } from './polish.js';
 
 /** Shares of a round's budget. */
 const SHARES = { explore: 0.2, polish: 0.6 };
+/** Share of what is left for filling that goes to the levels asked for. */
+const LEVEL_SHARE = 0.4;
 /** Share of a round for the look along the coordinates. */
 const CROSS = 0.08;
 /** Share of what is left for solves that goes to second opinions. */
@@ -49,9 +52,12 @@ function* round(known: Knowledge, number: number, budget: number, tried: Set<str
     fresh += known.solutions.length - before;
     yield* sweep(known, name(`spread-${i}`), polishLeft(), tried);
   }
-  const aim = Math.floor(0.3 * left());
+  const aim = Math.floor(LEVEL_SHARE * left());
   yield* fillBetween(known, name('fill'), left() - aim);
+  const wanted = levelsOf(known.spec.goal.front, known.front);
   yield* aimAtLevels(known, name('levels'), left());
+  yield* tighten(known, name('tighten'), wanted, left());
+  yield* aimAtLevels(known, name('levels-again'), left());
 }
 
 /** The strategy: see `search`. */

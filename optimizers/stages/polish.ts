@@ -143,6 +143,24 @@ export function* refine(known: Knowledge, name: string, budget: number, count: n
   return starts.length > 0;
 }
 
+/** Excess brightness, as a share of the level, above which a level is worth a solve of its own. */
+const SLACK = 1e-4;
+
+/** Solves the levels that are served by a design noticeably brighter than asked for, the worst served first. */
+export function* tighten(known: Knowledge, name: string, levels: readonly number[], budget: number): Plan {
+  const { front } = known;
+  const loose = levels.flatMap((level) => {
+    const member = atLevel(front, level);
+    if (member === null || member.brightness <= level * (1 + SLACK)) return [];
+    return [{ level, x: unitOf(known, member), radius: NEIGHBOUR_RADIUS, slack: member.brightness - level }];
+  });
+  const starts = loose
+    .sort((a, b) => b.slack - a.slack)
+    .map(({ level, x, radius }) => ({ level, x, radius }));
+  const each = allowance(known, SHORT);
+  yield* solveAll(known, name, starts.slice(0, Math.floor(budget / each)), budget, each);
+}
+
 /** A second opinion at a level: solves from members of the islands' populations that are far from the best one. */
 export function* polishOthers(
   known: Knowledge,
