@@ -74,7 +74,12 @@ class Walker {
     if (++this.count > MAX_VALUES || depth > MAX_DEPTH) {
       this.full = true;
       const wanted = `at most ${MAX_VALUES} values, ${MAX_DEPTH} levels deep`;
-      this.faults.push({ ...at, path, found: 'aliases or nesting that expand without end', wanted });
+      this.faults.push({
+        ...at,
+        path,
+        found: 'too many or too deep values (an alias counts as what it stands for)',
+        wanted,
+      });
       return nothing;
     }
     if (node === null) return nothing;

@@ -63,13 +63,13 @@ describe('a file that is no study', () => {
     expect(result).toMatchObject({
       faults: [
         {
-          found: 'aliases or nesting that expand without end',
+          found: 'too many or too deep values (an alias counts as what it stands for)',
           wanted: 'at most 20000 values, 32 levels deep',
         },
       ],
     });
     expect(printed('a: &a [*a]\n')).toEqual([
-      'study.yaml:1:7 a.0.0.0.0.0.0.0.0.0.0.0.0.0.0.0.0: got aliases or nesting that expand without end; needs at most 20000 values, 32 levels deep',
+      'study.yaml:1:7 a.0.0.0.0.0.0.0.0.0.0.0.0.0.0.0.0: got too many or too deep values (an alias counts as what it stands for); needs at most 20000 values, 32 levels deep',
     ]);
   });
 
