@@ -1,5 +1,6 @@
-import { lstat, mkdir } from 'node:fs/promises';
+import { lstat } from 'node:fs/promises';
 import { join } from 'node:path';
+import { makeDirectory } from '../run/make-directory.js';
 import { fileError, UserError } from '../run/user-error.js';
 import { writeWhole } from '../run/whole-file.js';
 import { jsonSchema } from '../study/index.js';
@@ -50,11 +51,7 @@ export const init: Command = {
     const starter = await starterNamed((args['starter'] as string | undefined) ?? DEFAULT_STARTER);
     const study = join(directory, STUDY_FILE);
     const schema = join(directory, SCHEMA_FILE);
-    try {
-      await mkdir(directory, { recursive: true });
-    } catch (error) {
-      throw fileError(error, directory);
-    }
+    await makeDirectory(directory);
     await refuseExisting(study);
     await refuseExisting(schema);
     await writeWhole(study, starter.text);

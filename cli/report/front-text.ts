@@ -1,3 +1,4 @@
+import type { FreeParameter } from '../../optimizers/index.js';
 import { figureAt } from '../run/columns.js';
 import type { FrontDesign, RunResult } from '../run/contract.js';
 import { readable } from '../run/parameters.js';
@@ -13,6 +14,12 @@ function parameterHead(path: string): string {
   const name = parts[parts.length - 1];
   const owner = parts[1] === 'tones' ? `tone ${parts[2]}` : parts[parts.length - 2];
   return `${owner}\n${name}`;
+}
+
+/** A value that is zero on the scale of its range is shown as zero: the search leaves it at some 1e-6 of the range. */
+function cleaned(value: number, parameter: FreeParameter): number {
+  if (parameter.kind === 'list') return value;
+  return Math.abs(value) < 1e-3 * (parameter.to - parameter.from) && parameter.from < 0 ? 0 : value;
 }
 
 function table(result: RunResult, points: readonly FrontDesign[], color: boolean): string {
@@ -31,7 +38,7 @@ function table(result: RunResult, points: readonly FrontDesign[], color: boolean
         fileName(point),
         threeDigits(point.level),
         ...figures.map((path) => threeDigits(figureAt(point.figures, path))),
-        ...parameters.map((p, i) => readable(point.values[i], p.path)),
+        ...parameters.map((p, i) => readable(cleaned(point.values[i], p), p.path)),
       ]),
     },
     color,
@@ -55,6 +62,8 @@ export function levelList(levels: readonly number[]): string {
 export function frontText(result: RunResult, directory: string, color: boolean): string {
   const { goal } = result.study;
   const { evaluations, hypervolume } = result.outcome;
+  const { impurity, brightness } = hypervolume.reference;
+  const corner = `${threeDigits(impurity)} collected ${symbolOf(goal.impurity)}, ${threeDigits(brightness)} signal ${symbolOf(goal.brightness)}`;
   const parts: string[] = [];
   if (result.front.length > 0) parts.push(table(result, result.front, color), '');
   if (goal.atLeast !== null) {
@@ -66,7 +75,7 @@ export function frontText(result: RunResult, directory: string, color: boolean):
     parts.push(`brightness levels out of reach: ${levelList(result.outOfReach)}`);
   if (result.front.length > 0) parts.push(accuracyLine(result));
   parts.push(
-    `hypervolume ${threeDigits(hypervolume.value)}: ${hypervolume.meaning}`,
+    `hypervolume ${threeDigits(hypervolume.value)} (area between the front and the corner ${corner})`,
     `${evaluations} evaluations in ${duration(result.wall)}`,
     `files: ${directory}/front.csv, archive.csv, front.json, front.svg, designs/, ledger.jsonl`,
   );

@@ -3,11 +3,10 @@ export function threeDigits(value: number | null): string {
   if (value === null || !Number.isFinite(value)) return '–';
   if (value === 0) return '0';
   const size = Math.abs(value);
-  if (size < 1e-3 || size >= 1e5)
-    return value.toExponential(2).replace('e+', 'e').replace('-', '−').replace('e-', 'e−');
+  if (size < 1e-3 || size >= 1e5) return value.toExponential(2).replace('e+', 'e');
   const plain = Number(value.toPrecision(3));
   const decimals = Math.max(0, 2 - Math.floor(Math.log10(Math.abs(plain))));
-  return plain.toFixed(decimals).replace('-', '−');
+  return plain.toFixed(decimals);
 }
 
 /** Time in words: 42 s, 3 min 10 s, 2 h 5 min. */

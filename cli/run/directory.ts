@@ -1,6 +1,7 @@
-import { mkdir, open, readdir, readFile, rm, stat } from 'node:fs/promises';
+import { open, readdir, readFile, rm, stat } from 'node:fs/promises';
 import { join } from 'node:path';
 import { checkHeader, Ledger, type LedgerEntry, type LedgerHeader, readLedger } from './ledger.js';
+import { makeDirectory } from './make-directory.js';
 import { fileError, UserError } from './user-error.js';
 import { temporaryOf, writeWhole } from './whole-file.js';
 
@@ -45,7 +46,7 @@ async function prepare(directory: string): Promise<void> {
   }
   const trial = join(directory, `.writable.${process.pid}.tmp`);
   try {
-    await mkdir(directory, { recursive: true });
+    await makeDirectory(directory);
     await (await open(trial, 'w')).close();
     await rm(trial);
   } catch (error) {

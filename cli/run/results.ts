@@ -1,11 +1,10 @@
-import { mkdir } from 'node:fs/promises';
 import { join } from 'node:path';
 import { writeDesign } from '../study/index.js';
 import type { FrontDesign, RunResult } from './contract.js';
 import { DESIGNS, keepDesigns } from './directory.js';
 import { frontDocument } from './front-json.js';
+import { makeDirectory } from './make-directory.js';
 import { archiveCsv, frontCsv } from './tables.js';
-import { fileError } from './user-error.js';
 import { removeTemporaries, writeWhole } from './whole-file.js';
 
 export const BEST_FILE = `${DESIGNS}/best.yaml`;
@@ -28,11 +27,7 @@ async function writeDesignFile(result: RunResult, point: FrontDesign, directory:
  */
 export async function writeResults(directory: string, result: RunResult, picture: string): Promise<void> {
   const designs = result.best === null ? result.front : [...result.front, result.best];
-  try {
-    await mkdir(join(directory, DESIGNS), { recursive: true });
-  } catch (error) {
-    throw fileError(error, join(directory, DESIGNS));
-  }
+  await makeDirectory(join(directory, DESIGNS));
   for (const point of designs) await writeDesignFile(result, point, directory);
   await keepDesigns(
     directory,

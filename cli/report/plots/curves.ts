@@ -45,7 +45,7 @@ export function curvesChart(plot: CurvesPlot): TopLevelSpec {
           field: 'y',
           type: 'quantitative',
           title: curve.title,
-          scale: type === 'log' ? { type, nice: false } : { type, zero: false },
+          scale: type === 'log' ? { type, nice: false, padding: 8 } : { type, zero: false },
           axis: { tickCount: 5, format: type === 'log' ? '.0e' : '.3~g', minExtent: 60 },
         },
       },

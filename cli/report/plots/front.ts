@@ -21,11 +21,8 @@ export interface FrontPlot {
   readonly asked: { readonly level: number; readonly best: FrontPoint | null } | null;
 }
 
-const KINDS = {
-  archive: 'non-dominated evaluation',
-  front: 'design of the front',
-  best: 'best at the brightness asked for',
-};
+const KINDS = { archive: 'non-dominated', front: 'front', best: 'best at the brightness asked for' };
+const HEIGHT = 360;
 
 /** Brightness shown: the levels and the mark with a margin; the dark end of the archive would squeeze them. */
 function shown(plot: FrontPlot): [number, number] {
@@ -64,7 +61,7 @@ export function frontChart(plot: FrontPlot): TopLevelSpec {
     field: 'impurity',
     type: 'quantitative',
     title: plot.impurityTitle,
-    scale: type === 'log' ? { type, nice: false } : { type, zero: false },
+    scale: type === 'log' ? { type, nice: false, padding: 12 } : { type, zero: false },
     axis: { format: '.1~e', tickCount: 6 },
   } as const;
   const points = {
@@ -78,7 +75,7 @@ export function frontChart(plot: FrontPlot): TopLevelSpec {
         type: 'nominal',
         title: null,
         scale: scale('color'),
-        legend: { orient: 'bottom', columns: 3, symbolOpacity: 1 },
+        legend: { orient: 'bottom', columns: 3, columnPadding: 24, symbolOpacity: 1 },
       },
       shape: { field: 'kind', type: 'nominal', title: null, scale: scale('shape') },
       size: { field: 'kind', type: 'nominal', title: null, scale: scale('size'), sort: present },
@@ -86,29 +83,33 @@ export function frontChart(plot: FrontPlot): TopLevelSpec {
   } as const;
   return {
     width: 560,
-    height: 360,
+    height: HEIGHT,
     title: { text: plot.title, subtitle: plot.subtitle },
-    layer: [...askedLayers(plot, x), points],
+    layer: [...askedLayers(plot, x, domain), points],
   } as unknown as TopLevelSpec;
 }
 
-/** A dashed line at the brightness asked for, named at its foot. */
-function askedLayers(plot: FrontPlot, x: object): object[] {
+/**
+ * A dashed line at the brightness asked for, with its name where a front leaves room: right of the line at the foot, or
+ * left of it at the top.
+ */
+function askedLayers(plot: FrontPlot, x: object, [low, high]: readonly [number, number]): object[] {
   if (!plot.asked) return [];
   const data = { values: [{ brightness: plot.asked.level }] };
+  const right = plot.asked.level < low + 0.7 * (high - low);
+  const place = right ? { align: 'left', dx: 6 } : { align: 'right', dx: -6 };
   return [
     { data, mark: { type: 'rule', strokeDash: [5, 4], color: COLORS.mark }, encoding: { x } },
     {
       data,
       mark: {
         type: 'text',
-        align: 'left',
-        dx: 6,
+        ...place,
         color: COLORS.mark,
         fontSize: 12,
         text: `asked for: ${plot.asked.level}`,
       },
-      encoding: { x, y: { value: 12 } },
+      encoding: { x, y: { value: right ? HEIGHT - 14 : 12 } },
     },
   ];
 }

@@ -23,15 +23,19 @@ export interface MapPlot {
   readonly figures: readonly MapFigure[];
 }
 
+/** Cells drawn edge to edge leave hairlines in most viewers: each reaches this share of the axis under the next one. */
+const OVERLAP = 1.5e-3;
+
 /** Cell borders: half-way between neighbours (in the logarithm on a logarithmic axis). */
 function borders({ values, log }: MapAxis): [number, number][] {
   const there = log ? values.map(Math.log) : values;
   const back = (v: number) => (log ? Math.exp(v) : v);
   const last = there.length - 1;
+  const overlap = OVERLAP * (there[last] - there[0]);
   return there.map((v, i) => {
     const low = i === 0 ? v - (there[1] - v) / 2 : (there[i - 1] + v) / 2;
     const high = i === last ? v + (v - there[last - 1]) / 2 : (v + there[i + 1]) / 2;
-    return [back(low), back(high)];
+    return [back(low), back(i === last ? high : high + overlap)];
   });
 }
 
@@ -62,20 +66,19 @@ export function mapChart(plot: MapPlot): TopLevelSpec {
       width: 460,
       height: 360,
       data: { values: cells },
-      // Cells drawn edge to edge leave hairlines in most viewers: each is outlined in its own colour.
-      mark: { type: 'rect', strokeWidth: 0.7, clip: true },
+      mark: { type: 'rect', clip: true },
       encoding: {
         x: axis(plot.x, xs, 'x0'),
         x2: { field: 'x1' },
         y: axis(plot.y, ys, 'y0'),
         y2: { field: 'y1' },
-        stroke: { field: 'value', type: 'quantitative', scale, legend: null },
-        fill: {
+        color: {
           field: 'value',
           type: 'quantitative',
           title: figure.title,
           scale,
           legend: {
+            type: 'gradient',
             orient: 'right',
             gradientLength: 330,
             gradientThickness: 16,
@@ -91,7 +94,7 @@ export function mapChart(plot: MapPlot): TopLevelSpec {
     title: { text: plot.title, subtitle: plot.subtitle },
     hconcat: plot.figures.map(panel),
     spacing: 40,
-    resolve: { scale: { fill: 'independent', stroke: 'independent', x: 'independent', y: 'independent' } },
+    resolve: { scale: { color: 'independent', x: 'independent', y: 'independent' } },
   } as unknown as TopLevelSpec;
 }
 

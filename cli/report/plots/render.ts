@@ -11,7 +11,9 @@ const CONFIG: NonNullable<TopLevelSpec['config']> = {
     titleFontWeight: 'normal',
     titlePadding: 10,
     labelFlush: false,
-    gridColor: '#e6e6e6',
+    gridColor: '#dddddd',
+    // Unlabelled lines of a logarithmic axis stay in the background.
+    gridOpacity: { condition: { test: "datum.label === ''", value: 0.35 }, value: 1 },
     domainColor: '#555555',
     tickColor: '#555555',
   },

@@ -1,0 +1,90 @@
+import { describe, expect, it } from 'vitest';
+import { FIXED, FREE, invoke, studyFile } from './invoke.js';
+
+interface Facts {
+  readonly designs: readonly {
+    readonly at: string;
+    readonly tones: readonly Record<string, number>[];
+    readonly pulse: Record<string, number>;
+    readonly propagator: { readonly window_ps: number[]; readonly frame_mev: number; readonly steps: number };
+  }[];
+  readonly parameters: readonly { path: string; allowed: string }[];
+  readonly faults: readonly { line: number; column: number; path: string }[];
+}
+
+async function facts(text: string): Promise<Facts> {
+  const { out } = await invoke(['check', studyFile(text), '--json']);
+  return JSON.parse(out) as Facts;
+}
+
+describe('check', () => {
+  it('derives the quantities of a π pulse', async () => {
+    const { designs } = await facts(FIXED);
+    const tone = designs[0].tones[0];
+    // Gaussian: time–bandwidth product 2 ln2/π (textbook, Diels & Rudolph, Ultrashort Laser Pulse Phenomena).
+    expect(tone.time_bandwidth_product).toBeCloseTo((2 * Math.LN2) / Math.PI, 6);
+    expect(tone.bandwidth_ghz).toBeCloseTo((1000 * 2 * Math.LN2) / Math.PI / 5, 3);
+    // By definition of the measured π pulse.
+    expect(tone.energy_pi_units).toBeCloseTo(1, 9);
+    expect(tone.energy_fj).toBeCloseTo(12, 6);
+    // Peak of Θ/(√(2π) σ), σ = τ/(2√ln2).
+    const sigma = 5 / (2 * Math.sqrt(Math.LN2));
+    expect(tone.peak_rabi_per_ps).toBeCloseTo(Math.PI / (Math.sqrt(2 * Math.PI) * sigma), 4);
+    expect(tone.peak_rabi_mev / tone.peak_rabi_per_ps).toBeCloseTo(0.6582119569, 9);
+    expect(designs[0].propagator.window_ps[0]).toBeLessThan(-5);
+    expect(designs[0].propagator.steps).toBeGreaterThan(10);
+  });
+
+  it('gives duration after dispersion by the closed form of a chirped Gaussian (Diels & Rudolph)', async () => {
+    const { designs } = await facts(FIXED.replace('area: 1 pi', 'area: 1 pi, gdd: 40 ps^2'));
+    const grown = 5 * Math.sqrt(1 + ((4 * Math.LN2 * 40) / 25) ** 2);
+    expect(designs[0].tones[0].duration_ps / grown).toBeCloseTo(1, 4);
+    expect(designs[0].tones[0].time_bandwidth_product).toBeCloseTo(0.4413, 4);
+  });
+
+  it('gives the distance of each tone from each line of a cascade', async () => {
+    const { designs } = await facts(`pulsewright: 1
+emitter: { model: cascade, lifetime: 400 ps, binding: 3 meV }
+pulse: { reference: two-photon, tones: [{ fwhm: 8 ps, area: 3 pi, detuning: 0.25 meV }] }
+`);
+    const above = designs[0].tones[0].above_line_mev as unknown as Record<string, number>;
+    expect(above.exciton).toBeCloseTo(-1.25, 9);
+    expect(above.biexciton).toBeCloseTo(1.75, 9);
+  });
+
+  it('shows both ends of free parameters and lists them', async () => {
+    const { designs, parameters } = await facts(FREE);
+    expect(designs.map(({ at }) => at)).toEqual(['all lowest', 'all highest']);
+    expect(designs.map(({ tones }) => tones[0].fwhm_ps)).toEqual([3, 12]);
+    expect(parameters[0]).toEqual({
+      path: 'pulse.tones.0.fwhm',
+      allowed: 'from 3.00 ps to 12.0 ps, logarithmic',
+    });
+    const { out } = await invoke(['check', studyFile(FREE)]);
+    expect(out).toContain('bandwidth (FWHM)');
+    expect(out).toContain('pulse.tones.0.area: from 0.300 pi to 1.40 pi');
+  });
+
+  it('says what it converted', async () => {
+    const { out } = await invoke([
+      'check',
+      studyFile(FIXED.replace('area: 1 pi', 'area: 1 pi, detuning: 30 GHz')),
+    ]);
+    expect(out).toMatch(/study\.yaml:4:\d+ pulse\.tones\.0\.detuning: .*through h/);
+  });
+
+  it('lists all faults at their places, exit 2, also as JSON', async () => {
+    const path = studyFile(
+      FIXED.replace('5 ps, area: 1 pi', '-5 ps, area: 1 meV').replace('lifetime', 'lifetme'),
+    );
+    const { code, out, err } = await invoke(['check', path]);
+    expect(code).toBe(2);
+    expect(out).toBe('');
+    expect(err).toMatch(/study\.yaml:3:\d+ emitter\.lifetme/);
+    expect(err).toMatch(/study\.yaml:4:\d+ pulse\.tones\.0\.fwhm: got -5 ps; needs more than 0 ps/);
+    expect(err).toMatch(/study\.yaml:4:\d+ pulse\.tones\.0\.area: got 1 meV/);
+    const json = await invoke(['check', path, '--json']);
+    expect(json.code).toBe(2);
+    expect((JSON.parse(json.out) as Facts).faults.map(({ line }) => line).sort()).toEqual([3, 3, 4, 4]);
+  });
+});

@@ -1,0 +1,106 @@
+import { existsSync, readFileSync } from 'node:fs';
+import { join } from 'node:path';
+import { describe, expect, it } from 'vitest';
+import { parseOver } from '../../../cli/commands/over.js';
+import { csvCells, FIXED, FREE, freshFolder, invoke, studyFile } from './invoke.js';
+
+describe('scan', () => {
+  it('writes a CSV of every figure and a picture of curves', async () => {
+    const base = join(freshFolder(), 'rabi');
+    const argv = [
+      'scan',
+      studyFile(FIXED.replace('5 ps,', '0.5 ps,')),
+      '--over',
+      'tones.0.area=0 pi..2 pi:9',
+      '--out',
+      base,
+    ];
+    const { code, out } = await invoke(argv);
+    expect(code).toBe(0);
+    expect(out).toContain(`${base}.csv, ${base}.svg`);
+    const [head, ...rows] = csvCells(readFileSync(`${base}.csv`, 'utf8'));
+    expect(head[0]).toBe('pulse.tones.0.area [pi]');
+    const x = head.indexOf('populations.x');
+    // Resonant pulse, decay negligible in 0.5 ps: sin²(Θ/2) (Allen & Eberly, Optical Resonance and Two-Level Atoms).
+    rows.forEach((row, i) => {
+      expect(Number(row[0])).toBeCloseTo(i / 4, 12);
+      expect(Number(row[x])).toBeCloseTo(Math.sin((i * Math.PI) / 8) ** 2, 2);
+    });
+    const svg = readFileSync(`${base}.svg`, 'utf8');
+    for (const title of ['tone 0 area (π)', 'P(n=1), signal', 'P(n≥2), collected'])
+      expect(svg).toContain(title);
+  });
+
+  it('maps two parameters, the first one fastest', async () => {
+    const base = join(freshFolder(), 'map');
+    const over = ['--over', 'tones.0.area=0.5 pi..1 pi:2', '--over', 'tones.0.detuning=-1 meV..1 meV:3'];
+    const { code } = await invoke([
+      'scan',
+      studyFile(FIXED),
+      ...over,
+      '--out',
+      base,
+      '--accuracy',
+      'search',
+      '--figure',
+      'emitted.g2',
+    ]);
+    expect(code).toBe(0);
+    const [head, ...rows] = csvCells(readFileSync(`${base}.csv`, 'utf8'));
+    expect(head.slice(0, 2)).toEqual(['pulse.tones.0.area [pi]', 'pulse.tones.0.detuning [meV]']);
+    expect(rows.map((row) => row.slice(0, 2).map(Number))).toEqual(
+      [-1, 0, 1].flatMap((detuning) => [0.5, 1].map((area) => [area, detuning])),
+    );
+    const svg = readFileSync(`${base}.svg`, 'utf8');
+    for (const text of ['tone 0 detuning (meV)', 'g⁽²⁾[0], emitted', 'gradient']) expect(svg).toContain(text);
+  });
+
+  it('prints JSON without writing files unless asked', async () => {
+    const { code, out } = await invoke([
+      'scan',
+      studyFile(FIXED),
+      '--over',
+      'emitter.lifetime=100 ps..1 ns:3:log',
+      '--json',
+    ]);
+    expect(code).toBe(0);
+    const document = JSON.parse(out) as { format: string; points: { parameters: object; figures: object }[] };
+    expect(document.format).toBe('pulsewright.scan/1');
+    const lifetimes = document.points.map(({ parameters }) => Object.values(parameters)[0] as number);
+    expect(lifetimes[1] / Math.sqrt(1e5)).toBeCloseTo(1, 12);
+    expect(existsSync('study-scan.csv')).toBe(false);
+  });
+
+  it.each([
+    [FIXED, ['--over', 'tones.0.area=0..4:5'], 'got 0 (no unit); needs a pulse area'],
+    [FIXED, ['--over', 'tones.0.aera=0 pi..4 pi:5'], 'nearest: pulse.tones.0.area'],
+    [FIXED, ['--over', 'tones.1.area=0 pi..4 pi:5'], 'needs one at which a quantity of this study stands'],
+    [FIXED, ['--over', 'tones.0.area=4 pi..0 pi:5'], 'needs from below to'],
+    [FIXED, ['--over', 'tones.0.area=0 pi..1 pi:1'], 'got 1 values; needs 2'],
+    [FIXED, ['--over', 'tones.0.area=0 pi..1 pi:3:log'], 'needs more than 0'],
+    [FIXED, ['--over', 'tones.0.area'], 'needs path=from..to:count'],
+    [FIXED, ['--over', 'tones.0.fwhm=-1 ps..1 ps:3'], 'needs more than 0 ps'],
+    [
+      FIXED,
+      ['--over', 'tones.0.area=0 pi..1 pi:3', '--over', 'pulse.tones.0.area=0 pi..1 pi:3'],
+      'given twice',
+    ],
+    [FIXED, ['--over', 'tones.0.area=0 pi..1 pi:3', '--figure', 'colected.g2'], 'nearest: collected.g2'],
+    [
+      FIXED,
+      ['--over', 'tones.0.area=0 pi..1 pi:3', '--out', '/nowhere/scan'],
+      '/nowhere: no such file or directory',
+    ],
+    [FREE, ['--over', 'tones.0.area=0 pi..1 pi:3'], 'pulse.tones.0.fwhm: from 3.00 ps'],
+  ])('refuses %#', async (study, argv, message) => {
+    const { code, err } = await invoke(['scan', studyFile(study), ...argv]);
+    expect(code).toBe(2);
+    expect(err).toContain(message);
+  });
+
+  it('steps evenly, ends exact', () => {
+    const over = parseOver('tones.0.detuning = -1 meV .. 2 meV:4', 1);
+    expect(over.values).toEqual([-1, 0, 1, 2]);
+    expect(over.texts[0]).toBe('-1 meV');
+  });
+});
