@@ -1,6 +1,6 @@
 import { existsSync } from 'node:fs';
 import { dirname, join } from 'node:path';
-import { fileURLToPath } from 'node:url';
+import { fileURLToPath, pathToFileURL } from 'node:url';
 import { Worker } from 'node:worker_threads';
 import type { ProblemSpec } from '../problem/contract.js';
 import type { Task, TaskResult } from '../tasks/contract.js';
@@ -20,7 +20,7 @@ function entryUrl(): URL {
   const built = join(folder, 'dist', 'optimizers', 'workers', 'entry.js');
   if (!existsSync(built))
     throw new Error(`worker threads need the built ${built}: run "npm run build" first`);
-  return new URL(`file://${built}`);
+  return pathToFileURL(built);
 }
 
 interface Job {

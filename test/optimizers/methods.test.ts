@@ -58,18 +58,18 @@ function successes(
 // Success counts of our own runs at these seeds; what a method should manage is common practice, no source.
 describe('single-objective methods on shifted functions, successes of ten seeds', () => {
   it('differential evolution', () => {
-    expect(successes(differentialEvolution(), rosenbrock, 4, 20_000, 1e-6)).toBe(10);
+    expect(successes(differentialEvolution(), rosenbrock, 3, 10_000, 1e-6)).toBe(10);
     expect(successes(differentialEvolution(), ackley, 4, 8000, 1e-6)).toBe(10);
-    expect(successes(differentialEvolution(), rastrigin, 4, 20_000, 1e-6)).toBeGreaterThanOrEqual(8);
+    expect(successes(differentialEvolution(), rastrigin, 3, 8000, 1e-6)).toBeGreaterThanOrEqual(8);
   });
   it('controlled random search', () => {
-    expect(successes(controlledRandomSearch(), rosenbrock, 4, 20_000, 1e-6)).toBeGreaterThanOrEqual(9);
+    expect(successes(controlledRandomSearch(), rosenbrock, 3, 10_000, 1e-6)).toBeGreaterThanOrEqual(9);
     expect(successes(controlledRandomSearch(), ackley, 4, 8000, 1e-6)).toBe(10);
-    expect(successes(controlledRandomSearch(), rastrigin, 4, 20_000, 1e-6)).toBeGreaterThanOrEqual(6);
+    expect(successes(controlledRandomSearch(), rastrigin, 2, 4000, 1e-6)).toBeGreaterThanOrEqual(7);
   });
   it('mutation search', () => {
-    expect(successes(mutationSearch, ackley, 4, 10_000, 1e-2)).toBeGreaterThanOrEqual(8);
-    expect(successes(mutationSearch, rastrigin, 4, 10_000, 1e-2)).toBeGreaterThanOrEqual(8);
+    expect(successes(mutationSearch, ackley, 3, 4000, 1e-2)).toBeGreaterThanOrEqual(8);
+    expect(successes(mutationSearch, rastrigin, 3, 4000, 1e-2)).toBeGreaterThanOrEqual(8);
   });
   it('local methods on the smooth one', () => {
     expect(successes(nelderMeadMethod, rosenbrock, 2, 1500, 1e-8)).toBeGreaterThanOrEqual(9);

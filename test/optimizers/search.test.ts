@@ -127,6 +127,27 @@ describe('front', () => {
     expect(front[8].point).toEqual(archive.at(-1));
   });
 
+  it.each(['single', 'any', 'mean'] as const)(
+    'serves g2 against %s without a level of its own',
+    async (brightness) => {
+      const goal = {
+        impurity: 'g2',
+        brightness,
+        atLeast: null,
+        front: { from: 0.4, to: 0.95, points: 12 },
+      } as const;
+      const { front, best } = await run(toySpec(900, 6, FOUR, goal));
+      expect(best).toBeNull();
+      // In the stand-in g2 falls with brightness for one and the same pulse, so a level may well be exceeded.
+      let last = 0;
+      for (const { level, point } of front) {
+        expect(point?.figures.signal[brightness]).toBeGreaterThanOrEqual(level);
+        expect(point?.figures.collected.g2).toBeGreaterThanOrEqual(last);
+        last = point?.figures.collected.g2 ?? Number.NaN;
+      }
+    },
+  );
+
   it('is empty, without an error, when every candidate is infeasible', async () => {
     const evaluate: Evaluate = (design) => {
       const figures = toyEvaluate(design);
