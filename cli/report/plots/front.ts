@@ -29,6 +29,7 @@ function shown(plot: FrontPlot): [number, number] {
   const marks = plot.front.map((p) => p.brightness);
   if (plot.asked) marks.push(plot.asked.level);
   if (marks.length === 0) marks.push(...plot.archive.map((p) => p.brightness));
+  if (marks.length === 0) return [0, 1];
   const [low, high] = [Math.min(...marks), Math.max(...marks)];
   const margin = 0.04 * (high - low) || 0.02 * Math.abs(high) || 0.02;
   return [low - margin, high + margin];
@@ -61,7 +62,10 @@ export function frontChart(plot: FrontPlot): TopLevelSpec {
     field: 'impurity',
     type: 'quantitative',
     title: plot.impurityTitle,
-    scale: type === 'log' ? { type, nice: false, padding: 12 } : { type, zero: false },
+    scale:
+      type === 'log'
+        ? { type, nice: false, padding: 12 }
+        : { type, zero: false, ...(rows.length === 0 ? { domain: [0, 1] } : {}) },
     axis: { format: '.1~e', tickCount: 6 },
   } as const;
   const points = {
