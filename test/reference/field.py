@@ -59,7 +59,8 @@ class Envelope:
         reach = spectral_half(tone)
         nu = np.linspace(-reach, reach, 2001)
         delay = tone["gdd"] * nu + tone["tod"] * nu**2 / 2
-        self.start, self.end = delay.min() - half, delay.max() + half
+        # beyond the last group delay the tail falls slower than the limited pulse (an Airy tail for pure TOD)
+        self.start, self.end = delay.min() - 4 * half, delay.max() + 4 * half
         self._tabulate(reach)
 
     def _tabulate(self, reach):
@@ -76,6 +77,8 @@ class Envelope:
         line[index % count] = weights
         times = (np.arange(count) - count // 2) * span / count
         values = np.fft.fftshift(np.fft.fft(line))
+        alive = np.nonzero(np.abs(values) > CUT * np.abs(values).max())[0]
+        self.start, self.end = times[alive[0]], times[alive[-1]]
         keep = slice(*np.searchsorted(times, (self.start - span / 50, self.end + span / 50)))
         self.table = make_interp_spline(times[keep], values[keep], k=9)
         places = np.linspace(self.start, self.end, 52)[1:-1]
@@ -92,7 +95,7 @@ class Envelope:
             peak = 1 / (math.sqrt(2 * math.pi) * w)
             return lambda t: peak * math.exp(-0.5 * (t / w) ** 2)
         if shape == "sech":
-            return lambda t: 1 / (math.pi * w * math.cosh(t / w))
+            return lambda t: 1 / (math.pi * w * math.cosh(min(abs(t / w), 700)))  # a step may be tried far outside
         return lambda t: 1 / w
 
 
