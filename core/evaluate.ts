@@ -13,12 +13,12 @@ import { type Sample, sampleDesign } from './sample.js';
  */
 export type Accuracy = 'search' | 'quoted';
 
-const SEARCH: Effort = { tolerance: 1e-10, parts: 1, nodes: 1 };
+const SEARCH: Effort = { tolerance: 1e-10, parts: 1, nodes: 1, series: 'estimate' };
 const LADDER: readonly Effort[] = [
-  { tolerance: 1e-10, parts: 1, nodes: 1 },
-  { tolerance: 1e-10, parts: 2, nodes: 1.5 },
-  { tolerance: 1e-11, parts: 4, nodes: 2.2 },
-  { tolerance: 1e-11, parts: 8, nodes: 3.3 },
+  { tolerance: 1e-10, parts: 1, nodes: 1, series: 'bound' },
+  { tolerance: 1e-10, parts: 2, nodes: 1.5, series: 'bound' },
+  { tolerance: 1e-11, parts: 4, nodes: 2.2, series: 'bound' },
+  { tolerance: 1e-11, parts: 8, nodes: 3.3, series: 'bound' },
 ];
 /** Promised accuracy in the measure of `FigureTree.accuracy.error_estimate`. */
 export const PROMISED = 1e-6;

@@ -1,5 +1,12 @@
 import { leakedPhotons, pulseFilter } from './collection/leakage.js';
-import { addPoisson, type Count, countFromMoments, seriesHolds } from './collection/moments.js';
+import {
+  addPoisson,
+  type Count,
+  countFromMoments,
+  type SeriesRule,
+  seriesError,
+  seriesHolds,
+} from './collection/moments.js';
 import type { Design } from './design.js';
 import { type DriftNode, driftedDesign } from './drift/nodes.js';
 import type { Scheme } from './emitter/contract.js';
@@ -44,7 +51,7 @@ export interface SampleRun {
 }
 
 /** Fewest and most factorial moments behind a filter. */
-const FEWEST_MOMENTS = 4;
+const FEWEST_MOMENTS = { bound: 4, estimate: 3 } as const;
 const MOST_MOMENTS = 6;
 
 /** A design in the terms of the propagator, without drift. */
@@ -73,7 +80,7 @@ export function situation(design: Design): Situation {
     resonances.push({ center: reference + t.detuning / HBAR, quanta: 1, weight: 1 });
   if (collection.filter) {
     const center = line + collection.filter.center * RAD_PER_PS_PER_GHZ;
-    resonances.push({ center, quanta: 1, weight: FEWEST_MOMENTS });
+    resonances.push({ center, quanta: 1, weight: FEWEST_MOMENTS.bound });
   }
   const frame = slowestFrame(resonances);
   const drive = driveOf(pulse, { frame: frame - reference, projection: scheme.projection });
@@ -113,8 +120,8 @@ export function sampleDesign(nominal: Design, node: DriftNode, effort: Effort): 
   const eta = design.collection.efficiency * crossedHalf;
   const run = countDesign(design, where, node.shift / HBAR, eta, effort);
   const leakage = leakedPhotons(design, pulseFilter(design, line, where.reference));
-  const filtered = design.collection.filter ? filteredSample(run.moments) : null;
-  const signal = filtered ? filteredSignal(run.moments, eta) : emittedSignal(run.result, eta);
+  const filtered = design.collection.filter ? filteredSample(run.moments, effort.series) : null;
+  const signal = filtered ? filteredSignal(run.moments, eta, effort.series) : emittedSignal(run.result, eta);
   const v = run.result.values;
   return {
     sample: {
@@ -156,22 +163,32 @@ function countDesign(design: Design, where: Situation, shift: number, eta: numbe
   }
   const kappa = collection.filter.fwhm * RAD_PER_PS_PER_GHZ;
   const center = line + collection.filter.center * RAD_PER_PS_PER_GHZ - frame;
-  let order = FEWEST_MOMENTS;
+  const rule = effort.series;
+  let order: number = FEWEST_MOMENTS[rule];
   for (;;) {
     const result = countPhotons({ ...base, thinning: null, filter: { kappa, center, order } });
     const moments = Array.from({ length: order }, (_, k) => result.values[`m${k + 1}`]);
     const count = countFromMoments(moments, 1);
-    if (seriesHolds(count) || order === MOST_MOMENTS) {
-      const relative = count.bound / Math.max(count.multiphoton, 1e-7);
-      return { result, moments, seriesError: seriesHolds(count) ? relative : 0 };
-    }
-    order = MOST_MOMENTS;
+    if (seriesHolds(count, rule)) return { result, moments, seriesError: seriesError(count, rule) };
+    if (order === MOST_MOMENTS) return { result, moments, seriesError: 0 };
+    order = nextOrder(moments, rule);
   }
 }
 
-function filteredSample(moments: readonly number[]): FilteredSample {
+/** The shortest series that should hold if the moments go on falling as they last did. */
+function nextOrder(moments: readonly number[], rule: SeriesRule): number {
+  const extended = [...moments];
+  const ratio = moments[moments.length - 1] / moments[moments.length - 2];
+  while (extended.length < MOST_MOMENTS) {
+    extended.push(extended[extended.length - 1] * ratio);
+    if (seriesHolds(countFromMoments(extended, 1), rule)) break;
+  }
+  return extended.length;
+}
+
+function filteredSample(moments: readonly number[], rule: SeriesRule): FilteredSample {
   const count = countFromMoments(moments, 1);
-  const holds = seriesHolds(count);
+  const holds = seriesHolds(count, rule);
   return {
     mean: moments[0],
     factorial2: moments[1],
@@ -180,9 +197,9 @@ function filteredSample(moments: readonly number[]): FilteredSample {
   };
 }
 
-function filteredSignal(moments: readonly number[], eta: number): Count {
+function filteredSignal(moments: readonly number[], eta: number, rule: SeriesRule): Count {
   const count = countFromMoments(moments, eta);
-  const holds = seriesHolds(count);
+  const holds = seriesHolds(count, rule);
   return {
     mean: eta * moments[0],
     factorial2: eta * eta * moments[1],

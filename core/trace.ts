@@ -34,7 +34,12 @@ export function trace(design: Design): Trace {
   const rho = new LinearSystem(generator, new HierarchyBuilder().build());
   const { breakpoints } = drive;
   const window = breakpoints[breakpoints.length - 1] - breakpoints[0];
-  const mesh = meshFor(generator, drive, POINTS / window, { tolerance: 1e-11, parts: 1, nodes: 1 });
+  const mesh = meshFor(generator, drive, POINTS / window, {
+    tolerance: 1e-11,
+    parts: 1,
+    nodes: 1,
+    series: 'bound',
+  });
   const shown = createDrive(design.pulse, { frame: 0, projection: scheme.projection });
   const sample = new Float64Array(2 * shown.components);
   const points: TracePoint[] = [];

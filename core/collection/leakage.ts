@@ -34,7 +34,7 @@ export function piPulseEnergy(fwhm: number): number {
  */
 export function leakedPhotons(design: Design, filter: PulseFilter | null): number {
   const { laser, collection, pulse, emitter } = design;
-  if (!laser || !laser.piPulse) return 0;
+  if (!laser?.piPulse) return 0;
   const photons = laser.piPulse.energy / (FJ_PER_MEV * (HC / emitter.wavelength));
   const axis = collection.polarization === 'crossed' ? pulse.tones[0].polarization : null;
   const energy = transmittedEnergy(pulse, filter, { axis });

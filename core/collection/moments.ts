@@ -7,6 +7,8 @@ export interface CountFromMoments {
   readonly multiphoton: number;
   /** Last term included in P(n≥2): the partial sums bracket the truth, so it bounds the error. */
   readonly bound: number;
+  /** The first term left out, estimated by m_{K+1} ≈ m_K²/m_{K−1}: moments of few photons fall at least that fast. */
+  readonly next: number;
 }
 
 /**
@@ -34,16 +36,33 @@ export function countFromMoments(moments: readonly number[], eta: number): Count
       bound = Math.abs((k - 1) * term);
     }
   });
-  return { p0, p1, multiphoton, bound };
+  return { p0, p1, multiphoton, bound, next: nextTerm(moments, eta, factorial) };
+}
+
+function nextTerm(moments: readonly number[], eta: number, factorial: number): number {
+  const order = moments.length;
+  const last = moments[order - 1];
+  if (last === 0) return 0;
+  const following = (last * last) / moments[order - 2];
+  return Math.abs((order * following * eta ** (order + 1)) / (factorial * (order + 1)));
 }
 
 /** Relative accuracy promised for P(n≥2), down to this value. */
 export const MULTIPHOTON_ACCURACY = 1e-6;
 export const MULTIPHOTON_FLOOR = 1e-7;
 
+/** What judges the length of a moment series: the rigorous bound, or the estimate of what is left out. */
+export type SeriesRule = 'bound' | 'estimate';
+
 /** True when the moment series is long enough for the promised accuracy of P(n≥2). */
-export function seriesHolds(count: CountFromMoments): boolean {
-  return count.bound <= MULTIPHOTON_ACCURACY * Math.max(count.multiphoton, MULTIPHOTON_FLOOR);
+export function seriesHolds(count: CountFromMoments, rule: SeriesRule): boolean {
+  return seriesError(count, rule) <= MULTIPHOTON_ACCURACY;
+}
+
+/** Relative error that the length of the series may leave in P(n≥2). */
+export function seriesError(count: CountFromMoments, rule: SeriesRule): number {
+  const error = rule === 'bound' ? count.bound : count.next;
+  return error / Math.max(count.multiphoton, MULTIPHOTON_FLOOR);
 }
 
 /** A count distribution as far as figures need it; null where the moment series was too short. */

@@ -1,3 +1,4 @@
+import type { SeriesRule } from '../collection/moments.js';
 import { addEmittedCounting, addThinnedCounting } from '../counting/emitted.js';
 import { addFilteredMoments, type RotatingFilter } from '../counting/filtered.js';
 import { type Hierarchy, HierarchyBuilder } from '../counting/hierarchy.js';
@@ -6,6 +7,7 @@ import type { Scheme } from '../emitter/contract.js';
 import { buildGenerator, type Generator } from '../emitter/generator.js';
 import type { Operator } from '../emitter/operators.js';
 import type { Drive } from '../pulse/drive.js';
+import { fastKernels } from './fast/registry.js';
 import { LinearSystem } from './linear-system.js';
 import { buildMesh, type Mesh, propagate, refineMesh } from './mesh.js';
 
@@ -32,6 +34,8 @@ export interface Effort {
   readonly parts: number;
   /** Multiplies the number of drift nodes. */
   readonly nodes: number;
+  /** How the number of filtered moments is judged. */
+  readonly series: SeriesRule;
 }
 
 export interface CountResult {
@@ -51,8 +55,17 @@ export class PropagationError extends Error {
   override readonly name = 'PropagationError';
 }
 
-/** Counts photons of one design without drift: integrates the drive window, then closes with the tail. */
+/** Counts photons of one design without drift: by the first fast kernel that reaches the accuracy, else by the reference. */
 export function countPhotons(request: CountRequest): CountResult {
+  for (const kernel of fastKernels) {
+    const result = kernel.supports(request) ? kernel.count(request) : null;
+    if (result) return result;
+  }
+  return countByReference(request);
+}
+
+/** The reference: integrates the drive window with the adaptive Runge–Kutta propagator, then closes with the tail. */
+export function countByReference(request: CountRequest): CountResult {
   const { scheme, drive, effort } = request;
   const generator = buildGenerator(scheme, request.frame, request.shift);
   const hierarchy = buildHierarchy(request);

@@ -48,7 +48,7 @@ export function countTwoLevel(drive: Drive, lifetime: number): CountResult {
     shift: 0,
     thinning: null,
     filter: null,
-    effort: { tolerance: 1e-12, parts: 1, nodes: 1 },
+    effort: { tolerance: 1e-12, parts: 1, nodes: 1, series: 'bound' },
   });
 }
 

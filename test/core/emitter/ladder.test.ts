@@ -49,7 +49,7 @@ function count(area: number, detuning: number) {
     shift: 0,
     thinning: 0.3,
     filter: { kappa: 0.1, center: 0.02, order: 3 },
-    effort: { tolerance: 1e-12, parts: 1, nodes: 1 },
+    effort: { tolerance: 1e-12, parts: 1, nodes: 1, series: 'bound' },
   });
 }
 
