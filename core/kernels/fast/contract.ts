@@ -1,0 +1,13 @@
+import type { CountRequest, CountResult } from '../count.js';
+
+/**
+ * A specialised way to answer a count request. It gives the same figures as the reference propagator to the promised
+ * accuracy, by its own error estimate, or declines.
+ */
+export interface FastKernel {
+  readonly name: string;
+  /** Whether the request has the traits that the kernel is made for; cheap. */
+  supports(request: CountRequest): boolean;
+  /** The figures, or null where the kernel's rule or its own estimate says that it cannot reach the accuracy. */
+  count(request: CountRequest): CountResult | null;
+}

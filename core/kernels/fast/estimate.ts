@@ -1,0 +1,36 @@
+type Values = Readonly<Record<string, number>>;
+
+/** Smallest value at which a relative accuracy is promised. */
+const FLOOR = 1e-7;
+/** Relative accuracy (1e-6) over absolute accuracy of p_0 and p_1 (1e-9). */
+const RELATIVE = 1e-3;
+const ABSOLUTE = new Set(['p0', 'p1', 'thinned0', 'thinned1']);
+/** Followed for its own sake; no accuracy is promised. */
+const UNPROMISED = new Set(['p3']);
+
+/**
+ * Largest difference of two runs: absolute for probabilities of no and one photon, relative/1000 for all else (floored
+ * at 1e-7), g⁽²⁾[0] included. One thousand times this is the measure of `FigureTree.accuracy`.
+ */
+export function disagreement(a: Values, b: Values): number {
+  let worst = 0;
+  const take = (difference: number, scale: number): void => {
+    const d = Math.abs(difference) / scale;
+    if (!(d <= worst)) worst = d;
+  };
+  for (const name of Object.keys(b)) {
+    if (UNPROMISED.has(name)) continue;
+    const scale = ABSOLUTE.has(name) ? 1 : Math.max(Math.abs(b[name]), FLOOR) / RELATIVE;
+    take(a[name] - b[name], scale);
+  }
+  for (const [first, second] of [
+    ['mean', 'factorial2'],
+    ['m1', 'm2'],
+  ]) {
+    if (!(b[first] > 0) || !(a[first] > 0)) continue;
+    const x = a[second] / a[first] ** 2;
+    const y = b[second] / b[first] ** 2;
+    take(x - y, Math.max(y, FLOOR) / RELATIVE);
+  }
+  return worst;
+}

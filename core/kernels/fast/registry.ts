@@ -1,0 +1,5 @@
+import type { FastKernel } from './contract.js';
+import { twoLevelEmitted } from './two-level-emitted.js';
+
+/** Every fast kernel, in the order in which a request is offered to them. */
+export const fastKernels: readonly FastKernel[] = [twoLevelEmitted];
