@@ -1,6 +1,7 @@
 import { open, readdir, readFile, rm, stat } from 'node:fs/promises';
 import { join } from 'node:path';
-import { checkHeader, Ledger, type LedgerEntry, type LedgerHeader, readLedger } from './ledger.js';
+import { Ledger } from './ledger.js';
+import { checkHeader, type LedgerEntry, type LedgerHeader, readLedger } from './ledger-format.js';
 import { makeDirectory } from './make-directory.js';
 import { fileError, UserError } from './user-error.js';
 import { temporaryOf, writeWhole } from './whole-file.js';

@@ -2,7 +2,7 @@ import { existsSync, mkdirSync, readdirSync, readFileSync, writeFileSync } from 
 import { join } from 'node:path';
 import { describe, expect, it } from 'vitest';
 import { openRun } from '../../../cli/run/directory.js';
-import { LEDGER_FORMAT } from '../../../cli/run/ledger.js';
+import { LEDGER_FORMAT } from '../../../cli/run/ledger-format.js';
 import { freshFolder } from '../commands/invoke.js';
 
 const header = { format: LEDGER_FORMAT, study: 'abc', version: '1.0.0', seed: 7 };

@@ -1,7 +1,8 @@
 import { readFileSync, writeFileSync } from 'node:fs';
 import { join } from 'node:path';
 import { describe, expect, it } from 'vitest';
-import { checkHeader, LEDGER_FORMAT, Ledger, parseLedger, readLedger } from '../../../cli/run/ledger.js';
+import { Ledger } from '../../../cli/run/ledger.js';
+import { checkHeader, LEDGER_FORMAT, parseLedger, readLedger } from '../../../cli/run/ledger-format.js';
 import type { TaskResult } from '../../../optimizers/index.js';
 import { freshFolder } from '../commands/invoke.js';
 

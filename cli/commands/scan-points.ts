@@ -1,0 +1,110 @@
+import { setImmediate } from 'node:timers/promises';
+import {
+  type Accuracy,
+  type Design,
+  emitterModel,
+  evaluate,
+  type Figures,
+  PropagationError,
+} from '../../core/index.js';
+import { progressBar } from '../report/progress.js';
+import { type Scan, valuesAt } from '../report/scan-report.js';
+import { type FigureShape, figurePaths } from '../run/columns.js';
+import { packageVersion } from '../run/package.js';
+import { UserError } from '../run/user-error.js';
+import type { Override, Study } from '../study/index.js';
+import { nearestName } from '../study/nearest.js';
+import type { Arguments, Context } from './contract.js';
+import { fixedDesign } from './fixed-design.js';
+import { assignments } from './options.js';
+import { type Over, parseOver } from './over.js';
+import { loadStudy, type StudyFile, soundStudy } from './study-file.js';
+
+const MOST_POINTS = 1_000_000;
+
+export interface Plan {
+  readonly file: StudyFile;
+  readonly sets: readonly Override[];
+  readonly overs: readonly Over[];
+  readonly accuracy: Accuracy;
+}
+
+export async function planOf(args: Arguments): Promise<Plan> {
+  const sets = assignments(args['set'] as unknown[]);
+  const file = await loadStudy(String(args['study']), sets);
+  const texts = args['over'] as string[];
+  const { tones } = file.study.design.pulse;
+  const overs = texts.map((text) => parseOver(text, tones.length));
+  if (overs.length > 2) throw new UserError(`--over: given ${overs.length} times; needs one or two`);
+  const twice = overs.find((o, i) => overs.findIndex((p) => p.path === o.path) < i);
+  if (twice) throw new UserError(`--over: ${twice.path} is given twice`);
+  const count = overs.reduce((product, { values }) => product * values.length, 1);
+  if (count > MOST_POINTS) throw new UserError(`--over: ${count} points; allowed are ${MOST_POINTS}`);
+  return { file, sets, overs, accuracy: args['accuracy'] as Accuracy };
+}
+
+/** The study at one point of the scan, read anew: ties, limits and rules hold at each. */
+function studyAt({ file, sets, overs }: Plan, index: number): StudyFile {
+  const indices = valuesAt({ axes: overs.map((o) => ({ ...o, values: o.values.map((_, i) => i) })) }, index);
+  const overrides = [...sets, ...overs.map((o, k) => ({ path: o.path, value: o.texts[indices[k]] }))];
+  return { ...file, ...soundStudy(file.bytes, file.path, overrides) };
+}
+
+function shownFigures(asked: readonly string[], study: Study, shape: FigureShape, axes: number): string[] {
+  const known = figurePaths(shape);
+  for (const name of asked) {
+    if (known.includes(name)) continue;
+    const near = nearestName(name, known);
+    throw new UserError(
+      `--figure: got ${name}; needs the path of a figure${near === null ? `, such as ${known[0]}` : `; nearest: ${near}`}`,
+    );
+  }
+  if (asked.length > 0) return [...new Set(asked)];
+  const impurity = `collected.${study.goal.impurity}`;
+  return axes === 2
+    ? [impurity]
+    : [...new Set([`signal.${study.goal.brightness}`, impurity, 'collected.g2'])];
+}
+
+function shapeFor({ emitter, collection, drift }: Design): FigureShape {
+  const { levels } = emitterModel(emitter.model).scheme(emitter);
+  return { filtered: collection.filter !== null, drift: drift !== null, levels: levels.map((l) => l.name) };
+}
+
+async function evaluatePoints(plan: Plan, context: Context): Promise<(Figures | null)[]> {
+  const total = plan.overs.reduce((product, { values }) => product * values.length, 1);
+  const progress = progressBar(context.streams.stderr, 'points');
+  const points: (Figures | null)[] = [];
+  try {
+    for (let index = 0; index < total; index++) {
+      if (index % 8 === 0) await setImmediate();
+      progress.update({ stage: 'scan', done: index, total, best: '' });
+      try {
+        points.push(evaluate(studyAt(plan, index).study.design, plan.accuracy));
+      } catch (error) {
+        if (!(error instanceof PropagationError)) throw error;
+        if (!points.includes(null)) context.note(`no figures at point ${index + 1}: ${error.message}`);
+        points.push(null);
+      }
+    }
+  } finally {
+    progress.stop();
+  }
+  return points;
+}
+
+export async function scanOf(plan: Plan, figures: readonly string[], context: Context): Promise<Scan> {
+  const first = studyAt(plan, 0);
+  const shape = shapeFor(fixedDesign(first, 'scan'));
+  const shown = shownFigures(figures, first.study, shape, plan.overs.length);
+  const points = await evaluatePoints(plan, context);
+  if (points.every((point) => point === null)) throw new UserError('no point of the scan could be evaluated');
+  return {
+    title: first.study.title || plan.file.path,
+    hash: first.hash,
+    version: packageVersion(),
+    accuracy: plan.accuracy,
+    axes: plan.overs,
+    ...{ points, shape, shown },
+  };
+}

@@ -1,0 +1,90 @@
+import { type SearchOutcome, type SearchProgress, search } from '../../optimizers/index.js';
+import { frontPicture } from '../report/front-picture.js';
+import { threeDigits } from '../report/numbers.js';
+import { type Progress, progressBar } from '../report/progress.js';
+import type { RunResult } from '../run/contract.js';
+import type { Run } from '../run/directory.js';
+import { packageVersion } from '../run/package.js';
+import { writeResults } from '../run/results.js';
+import type { Context } from './contract.js';
+import { outOfReach, quoteFront } from './quote.js';
+import type { StudyFile } from './study-file.js';
+
+/** What one session of a run works with. */
+interface Session {
+  readonly file: StudyFile;
+  readonly run: Run;
+  readonly workers: number;
+  readonly signal: AbortSignal;
+  readonly progress: Progress;
+}
+
+function bestText({ best }: SearchProgress): string {
+  if (best === null) return '';
+  return `best ${threeDigits(best.impurity)} at ${threeDigits(best.brightness)}`;
+}
+
+/** Searches and keeps the ledger; `wall` is the time of all sessions up to the last finished task, s. */
+async function searchWithLedger(session: Session): Promise<{ outcome: SearchOutcome; wall: number }> {
+  const { file, run, workers, signal, progress } = session;
+  const earlier = run.entries[run.entries.length - 1]?.wall ?? 0;
+  const began = performance.now();
+  let wall = earlier;
+  const outcome = await search(file.study, {
+    workers,
+    signal,
+    completed: new Map(run.entries.map(({ task }) => [task.id, task])),
+    onTask: async (task) => {
+      wall = Math.round(earlier * 1000 + performance.now() - began) / 1000;
+      await run.ledger.append({ task, wall });
+    },
+    onProgress: (p) =>
+      progress.update({ stage: p.stage, done: p.evaluations, total: p.budget, best: bestText(p) }),
+  });
+  return { outcome, wall };
+}
+
+/** The whole run, or null when it was stopped. */
+async function work(session: Session): Promise<RunResult | null> {
+  const { file, signal, progress } = session;
+  const { study, hash } = file;
+  const { outcome, wall } = await searchWithLedger(session);
+  if (outcome.kind === 'interrupted') return null;
+  const total = study.search.evaluations;
+  const quoted = await quoteFront(study, outcome, signal, (done, points) =>
+    progress.update({ stage: `quoting design ${done} of ${points}`, done: total, total, best: '' }),
+  );
+  if (quoted === null) return null;
+  const result: RunResult = {
+    ...{ study, hash, version: packageVersion(), wall },
+    ...{ front: quoted.front, best: quoted.best, outOfReach: outOfReach(study, outcome) },
+    ...{ archive: outcome.archive, outcome },
+  };
+  await writeResults(session.run.directory, result, await frontPicture(result));
+  return result;
+}
+
+/**
+ * Searches, writes all results and closes the ledger. SIGINT stops it between tasks.
+ * @returns null when it was stopped
+ */
+export async function runSession(
+  file: StudyFile,
+  run: Run,
+  workers: number,
+  context: Context,
+): Promise<RunResult | null> {
+  const abort = new AbortController();
+  const signals = context.streams.signals ?? process;
+  // Only the first one is caught: a second Ctrl-C ends the process at once, and the ledger is sound all the same.
+  const onInterrupt = () => abort.abort();
+  signals.once('SIGINT', onInterrupt);
+  const progress = progressBar(context.streams.stderr, 'evaluations');
+  try {
+    return await work({ file, run, workers, signal: abort.signal, progress });
+  } finally {
+    progress.stop();
+    signals.off('SIGINT', onInterrupt);
+    await run.ledger.close();
+  }
+}
