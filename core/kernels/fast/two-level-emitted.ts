@@ -1,18 +1,18 @@
+import type { Drive } from '../../pulse/drive.js';
 import type { CountRequest, CountResult } from '../count.js';
 import { BlochStep } from './bloch-step.js';
 import type { FastKernel } from './contract.js';
-import { disagreement } from './estimate.js';
+import { refine } from './refine.js';
 import { type Span, smoothSpans } from './spans.js';
-import { chooseSteps, GROWTH, type StepPlan } from './step-rule.js';
+import { firstSteps, type StepPlan } from './step-rule.js';
 import { asTwoLevel, type TwoLevel } from './two-level.js';
 
 /**
  * Emitted light of two levels. Per step the drive is one rotation of the Bloch vectors of all counting operators;
  * between steps stands the exact effect of decay, dephasing and counted jumps over one step (a "kick"). To first order
  * in the rates this is a sum over uniform steps of a smooth function that is constant at both ends, so its error
- * is spectrally small; to second order the error of the symmetric splitting is
- * (h²/24)[K,[K,V]] (Takahashi & Imada, J. Phys. Soc. Jpn. 53, 3765 (1984)), which is taken out in closed form: it
- * scales the drive by 1 − h²Γ²/24 and, with pure dephasing, adds the small terms of `correct`.
+ * is spectrally small. To second order the sum has an Euler–Maclaurin series, whose h² and h⁴ terms are closed (the
+ * first is the double commutator of Takahashi & Imada, J. Phys. Soc. Jpn. 53, 3765 (1984)) and are taken out.
  */
 export const twoLevelEmitted: FastKernel = {
   name: 'two-level emitted',
@@ -21,23 +21,18 @@ export const twoLevelEmitted: FastKernel = {
     const model = asTwoLevel(request);
     const spans = smoothSpans(request.drive);
     if (!model || !spans) return null;
-    const plan = chooseSteps(request.drive, model, spans);
-    for (let round = 0; round < plan.length - 1; round++) {
-      const coarse = run(request, model, spans, plan[round], 1);
-      const fine = run(request, model, spans, plan[round + 1], 1);
-      // Both errors that matter fall at least as h⁴: what is left in the finer run follows from the difference.
-      const error = disagreement(coarse.values, fine.values) / (GROWTH ** 4 - 1);
-      if (!Number.isFinite(error)) return null;
-      if (error > request.effort.tolerance * ACCEPT) continue;
-      const { parts } = request.effort;
-      const best = parts > 1 ? run(request, model, spans, plan[round + 1], parts) : fine;
-      return { ...best, localErrors: error };
-    }
-    return null;
+    const { parts } = request.effort;
+    return refine(
+      firstSteps(request.drive, model, spans),
+      request.effort.tolerance * ACCEPT,
+      (plan) => run(request, model, spans, plan, 1),
+      (plan) => run(request, model, spans, plan, parts),
+      parts,
+    );
   },
 };
 
-/** Accepted disagreement of two runs, in units of the effort's tolerance per step. */
+/** Accepted error of a run, in units of the effort's tolerance per step. */
 const ACCEPT = 10;
 
 /** Order of the counting operators in the state: full, n = 0 … 3, n ≥ 2, first and second factorial moment, thinned 0, 1, ≥ 2. */
@@ -69,7 +64,6 @@ export function run(
   }
   let steps = 0;
   const { breakpoints } = drive;
-  const extra = model.dephasing * model.decay;
   spans.forEach((span, index) => {
     const length = span.end - span.start;
     if (span.gap) {
@@ -79,13 +73,12 @@ export function run(
     }
     const count = plan.counts[index] * parts;
     const h = length / count;
-    const scale = 1 - (h * h * model.coherence * model.coherence) / 24;
-    const step = new BlochStep(drive, model.weight * scale, model.energy, plan.follow);
+    const step = new BlochStep(drive, model, h, plan.follow);
     const fade = Math.exp(-model.coherence * h);
     const loss = -Math.expm1(-model.decay * h);
     const halfFade = Math.exp(-0.5 * model.coherence * h);
     const halfLoss = -Math.expm1(-0.5 * model.decay * h);
-    const correction = (-h * h * extra) / 48;
+    const correction = new LaneCorrection(model, lanes, sources, h);
     kick(y, sources, halfFade, halfLoss);
     let segment = span.first;
     for (let n = 0; n < count; n++) {
@@ -99,11 +92,11 @@ export function run(
         right = middle;
         while (right < span.last && t + 0.4 * h >= breakpoints[right + 1]) right++;
       }
-      step.advance(t, h, segment, middle, right);
-      if (extra > 0) correct(y, sources, correction, step.pulse);
+      step.advance(t, segment, middle, right);
       rotate(y, lanes, step.matrix);
-      if (extra > 0) correct(y, sources, correction, step.pulse);
-      if (n + 1 < count) kick(y, sources, fade, loss);
+      if (n + 1 === count) break;
+      correction.apply(y, drive, t + 0.5 * h, right);
+      kick(y, sources, fade, loss);
     }
     kick(y, sources, halfFade, halfLoss);
     steps += count;
@@ -184,36 +177,90 @@ function move(y: Float64Array, at: number, out: number, into: number): void {
 }
 
 /**
- * What remains of the double commutator with pure dephasing: strength·[½iΩ̄*·(Z + 1)ρ_xx on the coherence,
- * and the drive's pull on the populations with (−Z, 1) in place of (1, −1)], Z the feeding of lanes by counted jumps.
+ * Second-order errors of the splitting that differ from lane to lane. With Z the feeding of lanes by jumps
+ * (dρ_gg/dt = γZρ_xx), δ = (γ*)/γ, P = (1 + Z)/2, M = Z − 1, e the inversion's axis and b = B × e the transverse drive,
+ * the kicks' error per unit time is cancelled by
+ *   (b∧e)[(h²γ²/48)δZ − (h⁴γ²Ω²/5760)(3Z² − 8δZ)] on the Bloch vectors,
+ *   b·[−(h²γγ*·1/48)P + (h⁴γ²Ω²/1920)(Z − δ)P] from the traces to them, and
+ *   bᵀ·[−(h²γγ*·1/24)M + (h⁴γ²Ω²/960)M(Z − δ)] back:
+ * (h²/24)[[K,V],K] − (h⁴/1440)[[K,V], [[K,V],V] + [K,V̇]] of the Euler–Maclaurin series of the double sum over kicks,
+ * without the parts common to all lanes, which scale the rotation.
  */
-function correct(y: Float64Array, sources: Sources, strength: number, pulse: Float64Array): void {
-  const { collected: q, surviving: e, lanes } = sources;
-  const a = strength * pulse[0];
-  const b = strength * pulse[1];
-  for (let lane = lanes - 1; lane >= 0; lane--) {
-    // Lanes feed later ones only, so going down the list every source is still unchanged.
-    const self =
-      lane === 0 || lane === 5 || lane === 6 || lane === 7 || lane === 10 ? 1 : lane < LANES ? 1 - q : 1 - e;
-    const from = FEEDS[lane];
-    const share = from < 0 ? 0 : lane === 7 ? 2 * q : lane < LANES ? q : e;
-    const i = 4 * lane;
-    const j = 4 * Math.max(0, from);
-    const fed = self * upper(y, i) + share * upper(y, j) + upper(y, i);
-    const pull = -(b * y[i] + a * y[i + 1]);
-    const pulled = self * pull - share * (b * y[j] + a * y[j + 1]);
-    y[i] += 0.5 * b * fed;
-    y[i + 1] += 0.5 * a * fed;
-    move(y, i + 2, -pull, -pulled);
+class LaneCorrection {
+  private readonly first: Float64Array;
+  private readonly second: Float64Array;
+  private readonly sample = new Float64Array(2);
+  private readonly own: Float64Array;
+  private readonly share: Float64Array;
+  private readonly quartic: number;
+  private readonly quadratic: number;
+  private readonly delta: number;
+
+  constructor(
+    private readonly model: TwoLevel,
+    private readonly lanes: number,
+    sources: Sources,
+    private readonly h: number,
+  ) {
+    const { decay, dephasing } = model;
+    this.first = new Float64Array(3 * lanes);
+    this.second = new Float64Array(3 * lanes);
+    this.quadratic = (-h * h * decay * dephasing) / 48;
+    this.quartic = (h ** 4 * decay * decay) / 1920;
+    this.delta = dephasing / decay;
+    const { collected: q, surviving: e } = sources;
+    this.own = Float64Array.from({ length: lanes }, (_, l) =>
+      WHOLE.includes(l) ? 1 : l < LANES ? 1 - q : 1 - e,
+    );
+    this.share = Float64Array.from({ length: lanes }, (_, l) =>
+      FEEDS[l] < 0 ? 0 : l === 7 ? 2 * q : l < LANES ? q : e,
+    );
+  }
+
+  /** Applies the correction of one step at a grid point. */
+  apply(y: Float64Array, drive: Drive, t: number, segment: number): void {
+    const { first, second, lanes, h, sample, model } = this;
+    drive.sample(t, segment, sample);
+    const br = model.weight * h * sample[1];
+    const bm = model.weight * h * sample[0];
+    const beta = this.quartic * model.weight ** 2 * (sample[0] * sample[0] + sample[1] * sample[1]);
+    const base = this.quadratic - beta * this.delta;
+    const linear = -this.quadratic + (8 / 3) * beta * this.delta;
+    for (let l = 0, i = 0, k = 0; l < lanes; l++, i += 4, k += 3) {
+      const f = FEEDS[l] < 0 ? 0 : 4 * FEEDS[l];
+      const own = this.own[l];
+      const share = this.share[l];
+      first[k] = own * y[i + 2] + share * y[f + 2];
+      first[k + 1] = own * y[i + 3] + share * y[f + 3];
+      first[k + 2] = own * (br * y[i] + bm * y[i + 1]) + share * (br * y[f] + bm * y[f + 1]);
+    }
+    for (let l = 0, k = 0; l < lanes; l++, k += 3) {
+      const f = FEEDS[l] < 0 ? 0 : 3 * FEEDS[l];
+      const own = this.own[l];
+      const share = this.share[l];
+      second[k] = own * first[k] + share * first[f];
+      second[k + 1] = own * first[k + 1] + share * first[f + 1];
+      second[k + 2] = own * first[k + 2] + share * first[f + 2];
+    }
+    for (let l = 0, i = 0, k = 0; l < lanes; l++, i += 4, k += 3) {
+      const q = br * y[i] + bm * y[i + 1];
+      const into =
+        linear * first[k] -
+        beta * second[k] +
+        0.5 * (base * y[i + 3] + (base + beta) * first[k + 1] + beta * second[k + 1]);
+      y[i] += br * into;
+      y[i + 1] += bm * into;
+      y[i + 2] -= linear * first[k + 2] - beta * second[k + 2];
+      y[i + 3] += 2 * (-base * q + (base - beta) * first[k + 2] + beta * second[k + 2]);
+    }
   }
 }
 
+/** Lanes whose every jump feeds themselves. */
+const WHOLE = [0, 5, 6, 7, 10];
+
 /** Lane that feeds each lane by a counted jump, besides itself. */
 const FEEDS = [-1, -1, 1, 2, 3, 2, 0, 6, -1, 8, 9];
-
-function upper(y: Float64Array, i: number): number {
-  return 0.5 * y[i + 3] - y[i + 2];
-}
 
 function named(y: Float64Array, thinned: boolean): Record<string, number> {
   const values: Record<string, number> = {
