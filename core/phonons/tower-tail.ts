@@ -31,7 +31,7 @@ class TowerTail {
   private readonly tower: Tower;
   private readonly half: number;
   private readonly owner: number[] = [];
-  /** Time integral per lane of the hierarchy, [coordinate·storeys + storey]. */
+  /** Time integral per lane of the hierarchy, [storey·coordinates + coordinate]. */
   private readonly integrals = new Map<number, Float64Array>();
   private readonly dense: Float64Array;
   private readonly stable: boolean[];
@@ -50,7 +50,7 @@ class TowerTail {
     this.dense = toDense(generator.constant);
     this.stable = Array.from(
       { length: this.half },
-      (_, k) => k % this.tower.lanes === 0 && generator.stable[Math.floor(k / this.tower.lanes)],
+      (_, k) => k < system.size && generator.stable[k],
     );
   }
 
@@ -59,15 +59,14 @@ class TowerTail {
     const source = this.inflow(lane);
     let sum = 0;
     for (let i = 0; i < this.generator.levels; i++) {
-      sum += this.state[this.system.root(i, lane)] + source[i * this.tower.lanes];
+      sum += this.state[this.system.root(i, lane)] + source[i];
     }
     return sum;
   }
 
   /** Σ over sources of a lane: factor · matrix · integral. */
   private inflow(lane: number): Float64Array {
-    const { hierarchy } = this.system;
-    const storeys = this.tower.lanes;
+    const { hierarchy, size } = this.system;
     const out = new Float64Array(this.half);
     for (const c of hierarchy.couplings) {
       if (c.to !== lane || c.from === lane) continue;
@@ -77,11 +76,10 @@ class TowerTail {
         continue;
       }
       const m = hierarchy.matrices[c.matrix];
-      for (let k = 0; k < m.value.length; k++) {
-        const f = c.factor * m.value[k];
-        const r = m.row[k] * storeys;
-        const q = m.col[k] * storeys;
-        for (let s = 0; s < storeys; s++) out[r + s] += f * x[q + s];
+      for (let base = 0; base < out.length; base += size) {
+        for (let k = 0; k < m.value.length; k++) {
+          out[base + m.row[k]] += c.factor * m.value[k] * x[base + m.col[k]];
+        }
       }
     }
     return out;
@@ -98,7 +96,7 @@ class TowerTail {
       const source = this.inflow(block.lane + h);
       for (let k = 0; k < this.half; k++) {
         if (undamped && this.stable[k]) continue;
-        rhs[h * this.half + k] = -source[k] - this.state[k * this.system.lanes + block.lane + h];
+        rhs[h * this.half + k] = -source[k] - this.state[k * this.system.stride + block.lane + h];
       }
     }
     const outcome = gmres(
@@ -180,10 +178,9 @@ class TowerTail {
     damping: number,
     rotation: number,
   ): void {
-    const storeys = this.tower.lanes;
     const { size } = this.system;
     const at = (coordinate: number, h: number, second: boolean): number =>
-      h * this.half + coordinate * storeys + storey.lane + (second ? 1 : 0);
+      h * this.half + (storey.lane + (second ? 1 : 0)) * size + coordinate;
     const get = (coordinate: number, h: number, second: boolean): number =>
       coordinate < 0 || h >= halves || (second && storey.hermitian) ? 0 : from[at(coordinate, h, second)];
     const decay = -this.dense[a * size + a] + damping + storey.decay[0];

@@ -36,10 +36,16 @@ export interface Tower {
   readonly turns: readonly { readonly from: number; readonly to: number; readonly factor: number }[];
   /** Number of auxiliary operators, conjugate ones counted apart. */
   readonly operators: number;
+  /** Largest |Σ n ν|, 1/ps: bounds the step of an explicit method. */
+  readonly fastest: number;
 }
 
-export function buildTower(poles: readonly Pole[], depth: number): Tower {
-  const all = compositions(poles.length, depth);
+/**
+ * @param least smallest weight Π (√s_k/|ν_k|)^{n_k}/√n_k! of an auxiliary operator, about its size in a driven emitter;
+ *   lighter ones are left out (the filtering of Shi et al., done beforehand)
+ */
+export function buildTower(poles: readonly Pole[], depth: number, least: number): Tower {
+  const all = compositions(poles.length, depth).filter((counts) => weightOf(poles, counts) >= least);
   const index = new Map<string, { storey: number; conjugate: boolean }>();
   const storeys: Storey[] = [];
   let lanes = 0;
@@ -68,7 +74,15 @@ export function buildTower(poles: readonly Pole[], depth: number): Tower {
     turns.push({ from: s.lane + 1, to: s.lane, factor: s.decay[1] });
     turns.push({ from: s.lane, to: s.lane + 1, factor: -s.decay[1] });
   }
-  return { storeys, lanes, links: linksOf(poles, storeys, index), damping, turns, operators: all.length };
+  return {
+    storeys,
+    lanes,
+    links: linksOf(poles, storeys, index),
+    damping,
+    turns,
+    operators: all.length,
+    fastest: Math.max(...storeys.map((s) => Math.hypot(...s.decay))),
+  };
 }
 
 /** Every list of `length` whole numbers with a sum of at most `most`, lowest sums first. */
@@ -99,7 +113,8 @@ function linksOf(
       const up = index.get(moved(to.counts, k, 1));
       if (up) addLink(links, storeys[up.storey], up.conjugate, to, Math.sqrt((to.counts[k] + 1) * s), 0, 0, 0);
       if (to.counts[k] === 0) return;
-      const down = index.get(moved(to.counts, k, -1)) as Found;
+      const down = index.get(moved(to.counts, k, -1));
+      if (!down) return;
       const size = Math.sqrt(to.counts[k] / s);
       const [cr, ci] = pole.amplitude;
       const [dr, di] = pole.conjugate;
@@ -117,6 +132,15 @@ function linksOf(
     });
   }
   return mergeLinks(links);
+}
+
+function weightOf(poles: readonly Pole[], counts: readonly number[]): number {
+  return poles.reduce((product, pole, k) => {
+    let weight = product;
+    const ratio = Math.sqrt(scaleOf(pole)) / Math.hypot(pole.re, pole.im);
+    for (let n = 1; n <= counts[k]; n++) weight *= ratio / Math.sqrt(n);
+    return weight;
+  }, 1);
 }
 
 function scaleOf(pole: Pole): number {

@@ -1,0 +1,59 @@
+import type { PhononSpec } from '../design.js';
+import type { CountRequest } from '../kernels/count.js';
+import type { Bath } from './bath.js';
+import type { PhononCount } from './contract.js';
+import { phononMethod } from './registry.js';
+
+/** Highest temperature for which the methods were checked against each other, K. */
+export const HOTTEST = 300;
+
+/** A bath outside what the fits and the methods hold; the message says what is allowed. */
+export class PhononRangeError extends Error {
+  override readonly name = 'PhononRangeError';
+}
+
+/**
+ * Counts photons of one design with phonons: the targets of `countPhotons`, plus what the reader has to know.
+ * @param quoted for `exact`: raise terms and depth until every figure settles
+ * @throws PhononRangeError outside 0–300 K
+ */
+export function countWithPhonons(
+  request: CountRequest,
+  phonons: PhononSpec,
+  method: 'polaron' | 'weak-coupling' | 'exact',
+  quoted = false,
+): PhononCount {
+  const bath: Bath = {
+    coupling: phonons.coupling,
+    cutoff: phonons.cutoff,
+    temperature: phonons.temperature,
+  };
+  checkRange(bath);
+  const count = phononMethod(method).count(request, bath, quoted);
+  return { ...count, flags: [...count.flags, ...unphysical(count.values, method)] };
+}
+
+function checkRange({ coupling, cutoff, temperature }: Bath): void {
+  if (!(temperature >= 0 && temperature <= HOTTEST)) {
+    throw new PhononRangeError(
+      `emitter.phonons.temperature: got ${temperature} K; the bath's correlation is fitted from 0 K to ${HOTTEST} K`,
+    );
+  }
+  if (!(coupling > 0) || !(cutoff > 0)) {
+    throw new PhononRangeError(
+      `emitter.phonons: got coupling ${coupling} ps^2 and cutoff ${cutoff} 1/ps; both need more than 0`,
+    );
+  }
+}
+
+/** Rounding and truncation may leave probabilities below zero by this much. */
+const ROUNDING = 1e-9;
+
+/** Probabilities below zero or above one, each with its value: never clamped. */
+function unphysical(values: Readonly<Record<string, number>>, method: string): string[] {
+  const cause = method === 'exact' ? 'hierarchy too small' : 'second-order method';
+  return Object.entries(values)
+    .filter(([name]) => /^(p\d|multiphoton|thinned\w+)$/.test(name))
+    .filter(([, v]) => v < -ROUNDING || v > 1 + ROUNDING)
+    .map(([name, v]) => `${name} = ${v.toExponential(1)} is unphysical: ${cause}`);
+}
