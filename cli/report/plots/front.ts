@@ -13,7 +13,7 @@ export interface FrontPlot {
   /** Axis titles with basis and unit. */
   readonly brightnessTitle: string;
   readonly impurityTitle: string;
-  /** Every non-dominated evaluation. */
+  /** Every non-dominated evaluation, by brightness. */
   readonly archive: readonly FrontPoint[];
   /** The points at the brightness levels asked for. */
   readonly front: readonly FrontPoint[];
@@ -35,11 +35,22 @@ function shown(plot: FrontPlot): [number, number] {
   return [low - margin, high + margin];
 }
 
+/** Of points that would lie on one another, by brightness, only the first: an archive can hold many thousands. */
+function apart(points: readonly FrontPoint[], [low, high]: readonly [number, number]): FrontPoint[] {
+  const kept: FrontPoint[] = [];
+  for (const point of points) {
+    const last = kept[kept.length - 1];
+    const near = last !== undefined && point.brightness - last.brightness < (high - low) / 600;
+    if (!near || Math.abs(point.impurity - last.impurity) > 0.01 * last.impurity) kept.push(point);
+  }
+  return kept;
+}
+
 export function frontChart(plot: FrontPlot): TopLevelSpec {
   const domain = shown(plot);
   const inside = (p: FrontPoint) => p.brightness >= domain[0] && p.brightness <= domain[1];
   const rows = [
-    ...plot.archive.filter(inside).map((p) => ({ ...p, kind: KINDS.archive })),
+    ...apart(plot.archive.filter(inside), domain).map((p) => ({ ...p, kind: KINDS.archive })),
     ...plot.front.map((p) => ({ ...p, kind: KINDS.front })),
     ...(plot.asked?.best ? [{ ...plot.asked.best, kind: KINDS.best }] : []),
   ];
