@@ -1,7 +1,7 @@
 import { HierarchyBuilder } from './counting/hierarchy.js';
 import type { Design } from './design.js';
 import { buildGenerator } from './emitter/generator.js';
-import { meshFor } from './kernels/count.js';
+import { meshFor, STABLE_PHASE } from './kernels/count.js';
 import { LinearSystem } from './kernels/linear-system.js';
 import { propagate } from './kernels/mesh.js';
 import { createDrive } from './pulse/drive.js';
@@ -34,7 +34,7 @@ export function trace(design: Design): Trace {
   const rho = new LinearSystem(generator, new HierarchyBuilder().build());
   const { breakpoints } = drive;
   const window = breakpoints[breakpoints.length - 1] - breakpoints[0];
-  const mesh = meshFor(generator, drive, POINTS / window, {
+  const mesh = meshFor(generator, drive, (STABLE_PHASE * POINTS) / window, {
     tolerance: 1e-11,
     parts: 1,
     nodes: 1,

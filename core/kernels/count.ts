@@ -97,7 +97,7 @@ function buildHierarchy(request: CountRequest): Hierarchy {
  * Damped blocks follow their sources adiabatically, so they ask for stability rather than accuracy: h·|λ| up to here
  * (the method is stable to about 6) left every moment within 1e-9 of a six times finer mesh on all cases tried.
  */
-const STABLE_PHASE = 4.5;
+export const STABLE_PHASE = 4.5;
 
 /** A mesh by step-size control on the density operator alone. */
 export function meshFor(generator: Generator, drive: Drive, fastest: number, effort: Effort): Mesh {
