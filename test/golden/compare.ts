@@ -39,7 +39,8 @@ export function disagreements(found: unknown, golden: unknown, paths: readonly s
       continue;
     }
     const excess = Math.abs(got - wanted) / allowance(path, wanted);
-    if (!(excess <= 1)) out.push(`${path}: got ${got}, golden ${wanted} (${excess.toPrecision(3)} times too far)`);
+    if (!(excess <= 1))
+      out.push(`${path}: got ${got}, golden ${wanted} (${excess.toPrecision(3)} times too far)`);
   }
   return out;
 }

@@ -96,7 +96,7 @@ def random_two_level(seed):
                 design(two_level(300), swing_up, polarization="crossed", efficiency=0.6, filter=40, laser=draw.laser()), {}))
     out.append(("two-level: many photons a pulse", design(two_level(50), [tone(fwhm=200, area=18 * pi)], filter=60), {}))
     drifts = [
-        ({"area": 0.03, "width": 0, "detuning": 0.008}, 12, {"area": 8, "detuning": 16}),
+        ({"area": 0.03, "width": 0, "detuning": 0.008}, 12, {"area": 10, "detuning": 14}),
         ({"area": 0.02, "width": 0.04, "detuning": 0}, None, {"area": 10, "width": 12}),
         ({"area": 0, "width": 0, "detuning": 0.02}, 80, {"detuning": 24}),
     ]
@@ -131,6 +131,8 @@ def random_cascade(seed):
         lifetime = draw.log(150, 900)
         emitter = cascade(lifetime, draw.linear(0.4, 0.7) * lifetime, binding, draw.pick(0.0, draw.linear(-0.04, 0.04)),
                           draw.pick(0, draw.log(1e-5, 5e-3)))
+        if polarization == "crossed" and emitter["splitting"] == 0:
+            emitter["splitting"] = 0.02  # without splitting nothing is emitted across the drive
         fwhm = draw.log(3, 10)
         if reference == "two-photon":  # area for a two-photon pi pulse, times a random factor
             area = np.sqrt(abs(binding) / 0.658 * fwhm * 2.13 * pi) * 2.0 * draw.linear(0.5, 1.2)

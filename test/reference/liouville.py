@@ -71,7 +71,7 @@ class Blocks:
         takes an absolute tolerance per block from it, so that small multiphoton terms keep their relative accuracy."""
         self.assemble()
         _, peaks = self._pass(drive, 1e-5, np.full(len(self.rates), 1e-8), components)
-        y, _ = self._pass(drive, rtol, np.maximum(peaks, 1e-40) * rtol, components)
+        y, _ = self._pass(drive, rtol, np.maximum(peaks, 1e-16) * rtol, components)
         return y
 
     def _pass(self, drive, rtol, atol, components):

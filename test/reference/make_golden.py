@@ -83,7 +83,7 @@ def golden(name, design, options):
         assert checks["filter_modes"]["difference"] < 1e-6, (name, checks)
     if design["drift"]:
         fewer = {k: max(4, int(0.75 * v)) for k, v in options["nodes"].items()}
-        again = reference.evaluate(design, {**options, "nodes": fewer, "rtol": LOOSE})
+        again = reference.evaluate(design, {**options, "nodes": fewer})
         checks["nodes"] = deviation({k: figures[k] for k in ("emitted", "filtered", "signal", "collected")}, again)
         assert checks["nodes"] < 1e-7, (name, checks)
     assert figures.get("beyond", 0) < 1e-10, (name, figures["beyond"])
