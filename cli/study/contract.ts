@@ -3,6 +3,18 @@ import type { ProblemSpec } from '../../optimizers/index.js';
 /** A checked study: complete, readonly, internal units. Nothing downstream applies a default. */
 export interface Study extends ProblemSpec {
   readonly title: string;
+  /** Null where the line cannot be tuned. The physics does not need it: it says which voltage makes a detuning. */
+  readonly tuning: Tuning | null;
+}
+
+/** Linear Stark shift of all lines in common: line(V) = line(bias) + slope·(V − bias). */
+export interface Tuning {
+  /** meV/mV, not 0. */
+  readonly slope: number;
+  /** Voltage at which the lines are where the study has them, mV; inside the range. */
+  readonly bias: number;
+  /** Plateau, mV. */
+  readonly range: { readonly from: number; readonly to: number };
 }
 
 /** A place in a file; lines and columns count from 1, columns in UTF-16 code units. */

@@ -4,6 +4,7 @@ import { studyKeys } from './keys/table.js';
 import { ReadContext } from './read/context.js';
 import { normaliseStudy, studyHash } from './read/normalise.js';
 import { applyOverrides, OVERRIDE_FILE } from './read/overrides.js';
+import { keepOnPlateau } from './read/plateau.js';
 import { addRemarks } from './read/remarks.js';
 import { checkRules } from './read/rules.js';
 import { readSection } from './read/section.js';
@@ -32,6 +33,7 @@ export function readStudy(
 function readTree(root: Placed, earlier: readonly Fault[]): StudyResult {
   const context = new ReadContext(root);
   const raw = readSection(studyKeys, root, root.at, '', context);
+  if (raw) keepOnPlateau(raw, context);
   const free = resolveFields(context);
   if (raw) checkRules(raw, context);
   // What could not be read has its fault already.

@@ -39,7 +39,7 @@ const energyAsFrequency: Unit[] = Object.entries({ ueV: 1e-3, meV: 1, eV: 1e3 })
   throughPlanck: true,
 }));
 
-/** Every dimension. Internal units: ps, ps², ps³, meV, GHz, MHz, rad, 1/ps, K, µm, fJ, mV, and pure numbers. */
+/** Every dimension. Internal units: ps, ps², ps³, meV, GHz, MHz, rad, 1/ps, K, µm, fJ, mV, meV/mV, and pure numbers. */
 export const dimensions = {
   time: {
     name: 'a time',
@@ -138,6 +138,13 @@ export const dimensions = {
     units: decimal({ mV: 0, V: 3 }),
     display: ['mV', 'V'],
     example: '200 mV',
+  },
+  starkSlope: {
+    name: 'a Stark slope',
+    internal: 'meV/mV',
+    units: decimal({ 'ueV/mV': -3, 'meV/V': -3, 'ueV/V': -6, 'meV/mV': 0 }),
+    display: ['ueV/V', 'ueV/mV', 'meV/mV'],
+    example: '5 ueV/mV',
   },
   percent: {
     name: 'a percentage',

@@ -1,7 +1,15 @@
 import { readdirSync, readFileSync } from 'node:fs';
 import { describe, expect, it } from 'vitest';
 import { parse, stringify } from 'yaml';
-import { keyEntries, leafAt, readStudy, type Study, writeStudyFile } from '../../cli/study/index.js';
+import {
+  biasOf,
+  keyEntries,
+  leafAt,
+  plateauDetunings,
+  readStudy,
+  type Study,
+  writeStudyFile,
+} from '../../cli/study/index.js';
 import { type Stream, stream } from '../../core/index.js';
 import { applyParameters } from '../../optimizers/index.js';
 import { COMPLETE, MINIMAL } from '../cli/study/support.js';
@@ -41,6 +49,7 @@ const UNITS = [
   'K',
   'fJ',
   'V',
+  'ueV/mV',
   '%',
   'deg',
   'rad',
@@ -74,6 +83,9 @@ const VALUES = [
   '{ of: [1 ps, 2 meV] }',
   '{ same_as: tones.0.fwhm }',
   '{ same_as: tones.9.area }',
+  '[100 mV, 260 mV]',
+  '[2 V, 1 V]',
+  '[1 mV]',
   '*a',
   '&a 5 ps',
   '!!binary AA==',
@@ -173,7 +185,7 @@ const mutations: Readonly<Record<string, Mutation>> = {
   'misspelt key': matchMutation(/\w+(?=:)/g, typo),
   'other key': matchMutation(/\w+(?=:)/g, (_, random) => pick(random, names)),
   'other unit': matchMutation(
-    /(?<=\d ?)(fs|ps\^2|ps|ns|GHz|MHz|ueV|meV|nm|1\/ns|1\/ps|K|fJ|%|deg|pi)\b/g,
+    /(?<=\d ?)(fs|ueV\/mV|mV|ps\^2|ps|ns|GHz|MHz|ueV|meV|nm|1\/ns|1\/ps|K|fJ|%|deg|pi)\b/g,
     (_, random) => pick(random, UNITS),
   ),
   'other number': matchMutation(/[-+]?\d+(\.\d+)?(e-?\d+)?/g, (found, random) =>
@@ -221,7 +233,7 @@ function expectFinite(value: unknown, path: string): void {
 
 function expectSound(study: Study): void {
   expectFinite(study, 'study');
-  const { design, parameters, ties, goal } = study;
+  const { design, parameters, ties, goal, tuning } = study;
   expect(design.pulse.tones.length).toBeGreaterThan(0);
   for (const tone of design.pulse.tones) {
     expect(tone.fwhm).toBeGreaterThan(0);
@@ -232,6 +244,15 @@ function expectSound(study: Study): void {
   expect(design.collection.efficiency).toBeLessThanOrEqual(1);
   if (design.laser !== null && design.laser.rejection > 0) expect(design.laser.piPulse).not.toBeNull();
   if (goal.front.from !== null && goal.front.to !== null) expect(goal.front.from).toBeLessThan(goal.front.to);
+  const bias = biasOf(study, design);
+  expect(bias === null).toBe(tuning === null);
+  if (tuning !== null) {
+    expect(tuning.slope).not.toBe(0);
+    expect(tuning.range.from).toBeLessThan(tuning.range.to);
+    const allowed = plateauDetunings(tuning);
+    const { detuning } = design.pulse.tones[0];
+    expect(detuning >= allowed.from && detuning <= allowed.to).toBe(true);
+  }
   for (const parameter of parameters) {
     expect(leafAt(parameter.path)).not.toBeNull();
     if (parameter.kind === 'range') expect(parameter.from).toBeLessThan(parameter.to);

@@ -1,6 +1,6 @@
 import fc from 'fast-check';
 import { describe, expect, it } from 'vitest';
-import { formatFault, readStudy, type Study, writeStudyFile } from '../../cli/study/index.js';
+import { formatFault, readStudy, type Study, type Tuning, writeStudyFile } from '../../cli/study/index.js';
 import type { Design } from '../../core/index.js';
 
 const finite = fc.double({ noNaN: true, min: -1e9, max: 1e9 }).map((x) => x + 0);
@@ -72,9 +72,27 @@ const design: fc.Arbitrary<Design> = fc.boolean().chain((cascade) =>
   }),
 ) as fc.Arbitrary<Design>;
 
-const study: fc.Arbitrary<Study> = fc.record({
+/** A plateau with the nominal bias and the first tone's detuning on it. */
+const tuningFor = ({ pulse }: Design): fc.Arbitrary<Tuning | null> =>
+  nullable(
+    fc
+      .record({
+        slope: fc.double({ noNaN: true, min: 1e-3, max: 1e3 }).chain((x) => fc.constantFrom(x, -x)),
+        bias: fc.double({ noNaN: true, min: -1e3, max: 1e3 }).map((x) => x + 0),
+        below: positive,
+        above: positive,
+      })
+      .map(({ slope, bias, below, above }) => {
+        const reach = 2 * Math.abs(pulse.tones[0].detuning / slope) + 1;
+        return { slope, bias, range: { from: bias - reach - below, to: bias + reach + above } };
+      }),
+  );
+
+const studyWith = (tuning: (design: Design) => fc.Arbitrary<Tuning | null>): fc.Arbitrary<Study> =>
+  design.chain((d) => fc.record({ ...parts, design: fc.constant(d), tuning: tuning(d) }));
+
+const parts = {
   title: fc.string({ unit: 'grapheme', maxLength: 40 }).filter((t) => t.length <= 200 && !/\p{Cc}/u.test(t)),
-  design,
   parameters: fc.constant([]),
   ties: fc.constant([]),
   goal: fc.record({
@@ -91,7 +109,8 @@ const study: fc.Arbitrary<Study> = fc.record({
     evaluations: fc.integer({ min: 1, max: 1e9 }),
     seed: fc.integer({ min: 1, max: Number.MAX_SAFE_INTEGER }),
   }),
-});
+};
+const study = studyWith(tuningFor);
 
 describe('writing and reading a study', () => {
   it('gives the same numbers bit for bit', () => {

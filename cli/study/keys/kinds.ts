@@ -16,6 +16,8 @@ export type Rule =
       /** True where a free parameter or a tie may stand. */
       readonly free: boolean;
     }
+  /** Two quantities, the lower one first. */
+  | { readonly kind: 'interval'; readonly dimension: Dimension }
   | { readonly kind: 'integer'; readonly from: number; readonly to: number }
   | { readonly kind: 'choice'; readonly values: readonly string[] }
   | { readonly kind: 'text'; readonly longest: number }
@@ -106,6 +108,16 @@ const quantityRule = (dimension: Dimension, { bounds, free }: QuantityOptions): 
   bounds: bounds ?? {},
   free: free ?? false,
 });
+
+/** Value of a key that takes `[lower, upper]`, in internal units. */
+export interface Interval {
+  readonly from: number;
+  readonly to: number;
+}
+
+export function interval(dimension: Dimension, help: string): Leaf<Interval> {
+  return { kind: 'leaf', rule: { kind: 'interval', dimension }, presence: { kind: 'required' }, help };
+}
 
 export function choice<const V extends string>(
   help: string,

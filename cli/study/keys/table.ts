@@ -3,6 +3,7 @@ import {
   biexcitonOnly,
   choice,
   integer,
+  interval,
   type Leaf,
   type List,
   optionalQuantity,
@@ -67,6 +68,20 @@ const emitter = section('the quantum dot', 'required', {
     temperature: quantity('temperature', 'temperature of the bath', notNegative),
     method: choice('how the bath is treated', ['auto', 'polaron', 'weak-coupling', 'exact'], 'auto'),
   }),
+  tuning: optionalSection(
+    'linear Stark shift: with the laser left where the first tone has no detuning at `bias`, its detuning δ is set by V = bias − δ/slope; leave out for none',
+    {
+      slope: quantity(
+        'starkSlope',
+        'shift of the line per voltage: line(V) = line(bias) + slope·(V − bias)',
+        {
+          bounds: { not: 0 },
+        },
+      ),
+      bias: quantity('voltage', 'voltage at which the line is where the study has it'),
+      range: interval('voltage', 'plateau on which the dot keeps its charge: [lowest, highest]'),
+    },
+  ),
 });
 
 const tone = section('one colour of the pulse', 'empty', {

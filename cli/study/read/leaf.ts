@@ -1,5 +1,5 @@
-import { quoteFound } from '../../../core/index.js';
-import type { Leaf } from '../keys/kinds.js';
+import { type Dimension, describeDimension, quoteFound } from '../../../core/index.js';
+import type { Interval, Leaf } from '../keys/kinds.js';
 import { nearestName } from '../nearest.js';
 import { describeFound, type Placed } from '../source/placed.js';
 import type { FieldState, ReadContext } from './context.js';
@@ -14,6 +14,8 @@ export function readLeaf(leaf: Leaf<unknown>, node: Placed, path: string, contex
   switch (rule.kind) {
     case 'quantity':
       return readQuantity(node, path, rule.dimension, rule.bounds, context);
+    case 'interval':
+      return readInterval(node, path, rule.dimension, context);
     case 'integer': {
       const ok =
         typeof value === 'number' && Number.isSafeInteger(value) && value >= rule.from && value <= rule.to;
@@ -41,6 +43,23 @@ export function readLeaf(leaf: Leaf<unknown>, node: Placed, path: string, contex
       );
     }
   }
+}
+
+function readInterval(
+  node: Placed,
+  path: string,
+  dimension: Dimension,
+  context: ReadContext,
+): Interval | undefined {
+  if (node.kind !== 'list' || node.items.length !== 2) {
+    const wanted = `two values, [lowest, highest], each ${describeDimension(dimension)}`;
+    return context.fault(node.at, path, describeFound(node), wanted);
+  }
+  const [from, to] = node.items.map((item, i) => readQuantity(item, `${path}.${i}`, dimension, {}, context));
+  if (from === undefined || to === undefined) return undefined;
+  if (from < to) return { from, to };
+  const found = node.items.map(describeFound).join(' before ');
+  return context.fault(node.at, path, found, 'the lower value first and the higher one second');
 }
 
 /** What stands at a key that can be free. */

@@ -20,26 +20,28 @@ export function normaliseStudy(
   hasBiexciton: boolean,
 ): Study {
   const { title, emitter, pulse, collection, laser, goal, drift, search } = raw as Complete<RawStudy>;
+  const { tuning, ...dot } = emitter;
   const still = drift !== null && drift.area === 0 && drift.width === 0 && drift.detuning === 0;
   const design: Design = {
     emitter: {
-      ...emitter,
-      biexcitonLifetime: hasBiexciton ? (emitter.biexcitonLifetime ?? emitter.lifetime / 2) : null,
+      ...dot,
+      biexcitonLifetime: hasBiexciton ? (dot.biexcitonLifetime ?? dot.lifetime / 2) : null,
     },
     pulse,
     collection,
     laser,
     drift: still ? null : drift,
   };
-  return { title, design, parameters: free.parameters, ties: free.ties, goal, search };
+  return { title, tuning, design, parameters: free.parameters, ties: free.ties, goal, search };
 }
 
 /** SHA-256 (hex) of a study's content; the order of its keys is that of the key table, so it depends on nothing else. */
 export function studyHash(study: Study): string {
-  const { title, design, parameters, ties, goal, search } = study;
+  const { title, tuning, design, parameters, ties, goal, search } = study;
   const content = JSON.stringify({
     format: 'pulsewright.study/1',
     title,
+    tuning,
     design,
     parameters,
     ties,

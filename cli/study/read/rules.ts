@@ -1,4 +1,4 @@
-import { type EmitterModel, emitterModels } from '../../../core/index.js';
+import { type EmitterModel, emitterModels, exactQuantity } from '../../../core/index.js';
 import type { ReadOf } from '../keys/kinds.js';
 import { keyEntries } from '../keys/paths.js';
 import type { studyKeys } from '../keys/table.js';
@@ -111,4 +111,13 @@ const leakage: Rule = (raw, report) => {
   }
 };
 
-const RULES: readonly Rule[] = [biexcitonKeys, reference, collected, reach, frontOrder, leakage];
+const nominalBias: Rule = (raw, report) => {
+  const tuning = raw.emitter?.tuning;
+  if (!tuning?.range || tuning.bias === undefined) return;
+  const { from, to } = tuning.range;
+  if (tuning.bias >= from && tuning.bias <= to) return;
+  const [low, high] = [from, to].map((end) => exactQuantity(end, 'voltage'));
+  report('emitter.tuning.bias', `a voltage inside emitter.tuning.range, ${low} to ${high}`);
+};
+
+const RULES: readonly Rule[] = [biexcitonKeys, reference, collected, reach, frontOrder, leakage, nominalBias];

@@ -1,7 +1,7 @@
 import { type Design, emitterModels, exactQuantity } from '../../../core/index.js';
 import { applyParameters } from '../../../optimizers/index.js';
 import type { Study } from '../contract.js';
-import { camelCase, type Key, type Leaf, type Section } from '../keys/kinds.js';
+import { camelCase, type Interval, type Key, type Leaf, type Section } from '../keys/kinds.js';
 import { FORMAT_VERSION, studyKeys } from '../keys/table.js';
 
 /** A study file with the free parameters at `values` (internal units, in their order): see `writeStudyFile`. */
@@ -14,8 +14,9 @@ export function writeDesign(study: Study, values: readonly number[], title: stri
  * it back gives the same numbers bit for bit. Throws when the design holds a number that is not finite.
  */
 export function writeStudyFile(study: Study, design: Design, title: string): string {
-  const { goal, search } = study;
-  const content = { pulsewright: FORMAT_VERSION, title, ...design, goal, search };
+  const { goal, search, tuning } = study;
+  const emitter = { ...design.emitter, tuning };
+  const content = { pulsewright: FORMAT_VERSION, title, ...design, emitter, goal, search };
   const biexciton = emitterModels.find(({ name }) => name === design.emitter.model)?.hasBiexciton ?? false;
   const lines = ['# A design with fixed values; every number is exact to the last bit.'];
   lines.push(...sectionLines(studyKeys, content as unknown as Values, biexciton));
@@ -33,6 +34,11 @@ function sectionLines(section: Section, values: Values, biexciton: boolean): str
 }
 
 function keyLines(name: string, key: Key, value: unknown, biexciton: boolean): string[] {
+  if (key.kind === 'leaf' && key.rule.kind === 'interval') {
+    const { dimension } = key.rule;
+    const { from, to } = value as Interval;
+    return [`${name}:`, ...indent([from, to].map((end) => `- ${exactQuantity(end, dimension)}`))];
+  }
   if (key.kind === 'leaf') return [`${name}: ${leafText(key, value)}`];
   if (key.kind === 'section') return [`${name}:`, ...indent(sectionLines(key, value as Values, biexciton))];
   const items = (value as readonly Values[]).flatMap((item) => {

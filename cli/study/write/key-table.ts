@@ -39,6 +39,8 @@ function leafAllowed({ rule }: Leaf<unknown>): string {
       const kind = rule.dimension === 'fraction' ? describeDimension('fraction') : joinNames(units);
       return [kind, bounds, rule.free ? 'may be free' : ''].filter((part) => part !== '').join('; ');
     }
+    case 'interval':
+      return `two values in ${joinNames(unitNames(rule.dimension))}, the lower one first`;
     case 'integer':
       return `whole number from ${rule.from}`;
     case 'choice':

@@ -46,6 +46,10 @@ function leafSchema(leaf: Leaf<unknown>): Schema {
       const fixed = quantitySchema(rule.dimension);
       return rule.free ? { description, anyOf: [fixed, ...freeSchemas(fixed)] } : { description, ...fixed };
     }
+    case 'interval': {
+      const description = `${help}; each ${describeDimension(rule.dimension)}`;
+      return { description, type: 'array', minItems: 2, maxItems: 2, items: quantitySchema(rule.dimension) };
+    }
     case 'integer':
       return { description: help, type: 'integer', minimum: rule.from, maximum: rule.to };
     case 'choice':

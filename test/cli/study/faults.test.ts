@@ -179,7 +179,7 @@ const single: [string, string, string][] = [
   [
     'unknown key near to none',
     emitter('colour: red'),
-    '5:3 emitter.colour: got the unknown key colour; needs one of model, wavelength, lifetime, biexciton_lifetime, binding, splitting, dephasing, phonons',
+    '5:3 emitter.colour: got the unknown key colour; needs one of model, wavelength, lifetime, biexciton_lifetime, binding, splitting, dephasing, phonons, tuning',
   ],
   [
     'key of another place',
@@ -346,6 +346,41 @@ const single: [string, string, string][] = [
     'unknown alias',
     MINIMAL.replace('5 ps', '*tau'),
     '7:13 pulse.tones.0.fwhm: got *tau; needs an anchor that stands before it',
+  ],
+  [
+    'slope of zero',
+    emitter('tuning: { slope: 0 ueV/mV, bias: 0.2 V, range: [0.1 V, 0.3 V] }'),
+    '5:20 emitter.tuning.slope: got 0 ueV/mV; needs any value but 0 meV/mV',
+  ],
+  [
+    'slope of another dimension',
+    emitter('tuning: { slope: 5 ueV, bias: 0.2 V, range: [0.1 V, 0.3 V] }'),
+    '5:20 emitter.tuning.slope: got 5 ueV (an energy); needs a Stark slope in ueV/mV, meV/V, ueV/V or meV/mV, such as 5 ueV/mV',
+  ],
+  [
+    'reversed plateau',
+    emitter('tuning: { slope: 5 ueV/mV, bias: 0.2 V, range: [0.3 V, 0.1 V] }'),
+    '5:50 emitter.tuning.range: got 0.3 V before 0.1 V; needs the lower value first and the higher one second',
+  ],
+  [
+    'plateau with one end',
+    emitter('tuning: { slope: 5 ueV/mV, bias: 0.2 V, range: [0.3 V] }'),
+    '5:50 emitter.tuning.range: got a list of 1; needs two values, [lowest, highest], each a voltage in mV or V, such as 200 mV',
+  ],
+  [
+    'plateau that is no voltage',
+    emitter('tuning: { slope: 5 ueV/mV, bias: 0.2 V, range: [0.1 V, 3 K] }'),
+    '5:58 emitter.tuning.range.1: got 3 K (a temperature); needs a voltage in mV or V, such as 200 mV',
+  ],
+  [
+    'nominal bias off the plateau',
+    emitter('tuning: { slope: 5 ueV/mV, bias: 0.4 V, range: [0.1 V, 0.3 V] }'),
+    '5:36 emitter.tuning.bias: got 0.4 V; needs a voltage inside emitter.tuning.range, 100 mV to 300 mV',
+  ],
+  [
+    'plateau too wide for the slope',
+    emitter('tuning: { slope: 1e308 meV/mV, bias: 0.2 V, range: [0.19 V, 0.21 V] }'),
+    '5:47 emitter.tuning.range: got 190 mV to 210 mV at 1e308 meV/mV; needs a plateau whose detunings are finite and not all the same',
   ],
   [
     'negative temperature',

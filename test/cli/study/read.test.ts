@@ -7,6 +7,7 @@ describe('a valid study', () => {
     const { study, remarks } = studyOf(MINIMAL);
     expect(study).toEqual({
       title: '',
+      tuning: null,
       design: {
         emitter: {
           model: 'two-level',

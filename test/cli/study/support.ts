@@ -51,6 +51,7 @@ emitter:
     cutoff: 2.2 1/ps
     temperature: 4 K
     method: exact
+  tuning: { slope: 5 ueV/mV, bias: 200 mV, range: [100 mV, 260 mV] }
 pulse:
   reference: two-photon
   tones:

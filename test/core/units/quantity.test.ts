@@ -46,6 +46,7 @@ const oneOf: Record<Dimension, Record<string, number>> = {
   length: { nm: 1e-3, um: 1 },
   pulseEnergy: { aJ: 1e-3, fJ: 1, pJ: 1e3, nJ: 1e6 },
   voltage: { mV: 1, V: 1e3 },
+  starkSlope: { 'ueV/mV': 1e-3, 'meV/V': 1e-3, 'ueV/V': 1e-6, 'meV/mV': 1 },
   percent: { '%': 0.01 },
   fraction: { '%': 0.01, '': 1 },
 };
