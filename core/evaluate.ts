@@ -35,10 +35,11 @@ export function evaluate(design: Design, accuracy: Accuracy): Figures {
 }
 
 function checkSupport(design: Design): void {
-  if (design.emitter.phonons && design.emitter.phonons.coupling > 0) {
-    throw new UnsupportedDesign('phonons are not modelled yet: leave emitter.phonons out');
-  }
   if (design.pulse.tones.length === 0) throw new UnsupportedDesign('a pulse needs at least one tone');
+}
+
+function hasPhonons(design: Design): boolean {
+  return design.emitter.phonons !== null && design.emitter.phonons.coupling > 0;
 }
 
 /** A valid design that this version cannot evaluate; the message says what to change. */
@@ -48,6 +49,10 @@ export class UnsupportedDesign extends Error {
 
 function evaluateTree(design: Design, accuracy: Accuracy): FigureTree {
   if (accuracy === 'search') return evaluateOnce(design, SEARCH);
+  // The exact phonon method settles by its own size; what finer steps could add lies far below that.
+  if (hasPhonons(design) && design.emitter.phonons?.method === 'exact') {
+    return evaluateOnce(design, { ...LADDER[0], nodes: LADDER[1].nodes });
+  }
   let coarse = evaluateOnce(design, LADDER[0]);
   for (let rung = 1; ; rung++) {
     const fine = evaluateOnce(design, LADDER[rung]);
@@ -77,17 +82,23 @@ function evaluateOnce(design: Design, effort: Effort): FigureTree {
     runs.map((r) => r.sample),
     nodes.map((n) => n.weight),
   );
-  return figureTree(mean, {
-    steps: runs.reduce((s, r) => s + r.steps, 0),
-    error_estimate: runs.reduce((m, r) => Math.max(m, r.error), 0),
-  });
+  const { method } = runs[0].phonons;
+  const flags = [...new Set(runs.flatMap((r) => r.phonons.flags))];
+  return figureTree(
+    mean,
+    { method, flags },
+    {
+      steps: runs.reduce((s, r) => s + r.steps, 0),
+      error_estimate: runs.reduce((m, r) => Math.max(m, r.error), 0),
+    },
+  );
 }
 
 function ratio(factorial2: number, mean: number): number | null {
   return mean > 0 ? factorial2 / (mean * mean) : null;
 }
 
-function figureTree(s: Sample, accuracy: FigureTree['accuracy']): FigureTree {
+function figureTree(s: Sample, phonons: FigureTree['phonons'], accuracy: FigureTree['accuracy']): FigureTree {
   const notes: Note[] = [];
   if (s.filtered && s.filtered.multiphoton === null) {
     notes.push({
@@ -128,7 +139,7 @@ function figureTree(s: Sample, accuracy: FigureTree['accuracy']): FigureTree {
     collected: { ...count(s.collected), leakage: s.leakage },
     populations: s.populations,
     pulse: s.pulse,
-    phonons: { method: 'none', flags: [] },
+    phonons,
     accuracy,
     notes,
   };

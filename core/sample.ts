@@ -12,9 +12,11 @@ import { type DriftNode, driftedDesign } from './drift/nodes.js';
 import type { Scheme } from './emitter/contract.js';
 import { collectedDipoles } from './emitter/generator.js';
 import { emitterModel } from './emitter/registry.js';
-import type { PulseFigures } from './figures.js';
-import { type CountResult, countPhotons, type Effort, PropagationError } from './kernels/count.js';
+import type { FigureTree, PulseFigures } from './figures.js';
+import { type Effort, PropagationError } from './kernels/count.js';
 import { type Resonance, schemeResonances, slowestFrame } from './kernels/frame.js';
+import type { PhononCount } from './phonons/contract.js';
+import { type PhononPlan, phononPlan } from './phonons/plan.js';
 import { DispersionError } from './pulse/dispersed.js';
 import { createDrive, type Drive, type DriveOptions } from './pulse/drive.js';
 import { pulseFigures } from './pulse/figures.js';
@@ -45,6 +47,7 @@ interface FilteredSample {
 
 export interface SampleRun {
   readonly sample: Sample;
+  readonly phonons: FigureTree['phonons'];
   readonly steps: number;
   /** Error estimate of this run by itself, in the measure of `FigureTree.accuracy`. */
   readonly error: number;
@@ -112,13 +115,16 @@ function collectedAxis(design: Design): number | 'all' {
 }
 
 /** Figures of one design at one drift node. */
-export function sampleDesign(nominal: Design, node: DriftNode, effort: Effort): SampleRun {
+export function sampleDesign(nominal: Design, node: DriftNode, wanted: Effort): SampleRun {
   const design = driftedDesign(nominal, node);
   const where = situation(design);
   const { scheme, line } = where;
   const crossedHalf = scheme.projection === 'full' && design.collection.polarization === 'crossed' ? 0.5 : 1;
   const eta = design.collection.efficiency * crossedHalf;
-  const run = countDesign(design, where, node.shift / HBAR, eta, effort);
+  const plan = planOf(design, where, node.shift / HBAR, wanted);
+  // A hierarchy settles to 1e-3: a bound on the moment series far below that would only cost operators.
+  const effort: Effort = plan.method === 'exact' ? { ...wanted, series: 'estimate' } : wanted;
+  const run = countDesign(design, where, node.shift / HBAR, eta, effort, plan);
   const leakage = leakedPhotons(design, pulseFilter(design, line, where.reference));
   const filtered = design.collection.filter ? filteredSample(run.moments, effort.series) : null;
   const signal = filtered ? filteredSignal(run.moments, eta, effort.series) : emittedSignal(run.result, eta);
@@ -138,27 +144,52 @@ export function sampleDesign(nominal: Design, node: DriftNode, effort: Effort): 
       populations: Object.fromEntries(scheme.levels.map((l, i) => [l.name, run.result.populations[i]])),
       pulse: pulseFigures(design.pulse, where.drive),
     },
+    phonons: { method: plan.method, flags: [...plan.flags, ...run.result.flags] },
     steps: run.result.steps,
     // A refined mesh no longer has the errors that were measured while it was built.
-    error: Math.max(effort.parts > 1 ? 0 : run.result.localErrors * 1000, where.drive.error, run.seriesError),
+    error: Math.max(
+      effort.parts > 1 ? 0 : run.result.localErrors * 1000,
+      where.drive.error,
+      run.seriesError,
+      run.result.error,
+    ),
   };
 }
 
+/** With which phonon method the design is counted; `auto` goes by how far each tone lies from what it can drive. */
+function planOf(design: Design, where: Situation, shift: number, effort: Effort): PhononPlan {
+  const { scheme, reference, drive } = where;
+  const resonances = [0, ...(scheme.twoPhoton === null ? [] : [scheme.twoPhoton])];
+  const { tones } = design.pulse;
+  const offsets = tones.map((t) =>
+    Math.min(...resonances.map((r) => Math.abs(reference + t.detuning / HBAR - shift - r))),
+  );
+  const chirped = tones.some((t) => t.gdd !== 0 || t.tod !== 0);
+  return phononPlan(design.emitter.phonons, drive, { offsets, chirped }, effort.series === 'bound');
+}
+
 interface CountRun {
-  readonly result: CountResult;
+  readonly result: PhononCount;
   readonly moments: readonly number[];
   /** Relative error that the moment series may leave. */
   readonly seriesError: number;
 }
 
 /** Raises the number of moments until their own bound holds for P(n≥2), or the highest order is reached. */
-function countDesign(design: Design, where: Situation, shift: number, eta: number, effort: Effort): CountRun {
+function countDesign(
+  design: Design,
+  where: Situation,
+  shift: number,
+  eta: number,
+  effort: Effort,
+  plan: PhononPlan,
+): CountRun {
   const { scheme, frame, drive, line } = where;
   const { collection } = design;
   const dipoles = collectedDipoles(scheme, collection.line, collectedAxis(design));
   const base = { scheme, dipoles, drive, frame, shift, effort };
   if (!collection.filter) {
-    const result = countPhotons({ ...base, thinning: eta < 1 ? eta : null, filter: null });
+    const result = plan.count({ ...base, thinning: eta < 1 ? eta : null, filter: null });
     return { result, moments: [], seriesError: 0 };
   }
   const kappa = collection.filter.fwhm * RAD_PER_PS_PER_GHZ;
@@ -166,7 +197,7 @@ function countDesign(design: Design, where: Situation, shift: number, eta: numbe
   const rule = effort.series;
   let order: number = FEWEST_MOMENTS[rule];
   for (;;) {
-    const result = countPhotons({ ...base, thinning: null, filter: { kappa, center, order } });
+    const result = plan.count({ ...base, thinning: null, filter: { kappa, center, order } });
     const moments = Array.from({ length: order }, (_, k) => result.values[`m${k + 1}`]);
     const count = countFromMoments(moments, 1);
     if (seriesHolds(count, rule)) return { result, moments, seriesError: seriesError(count, rule) };
@@ -209,7 +240,7 @@ function filteredSignal(moments: readonly number[], eta: number, rule: SeriesRul
   };
 }
 
-function emittedSignal(result: CountResult, eta: number): Count {
+function emittedSignal(result: PhononCount, eta: number): Count {
   const v = result.values;
   const whole = eta === 1;
   return {

@@ -7,36 +7,45 @@ export interface Choice {
   readonly reason: string;
 }
 
+/** What the choice needs to know of a pulse. */
+export interface DriveKind {
+  /** Distance of each tone from the nearest resonance that it can drive, 1/ps. */
+  readonly offsets: readonly number[];
+  readonly chirped: boolean;
+}
+
 /** Peak Rabi frequency over ω_c from which a detuned drive counts as faster than the bath. */
 const FAST = 0.4;
-/** Peak Rabi frequency over ω_c up to which resonant drives were compared with the exact method. */
-const COMPARED = 0.6;
+/** The same for a warm bath, where slower drives are better served by the polaron frame. */
+const FAST_WHEN_WARM = 2;
+/** Distance from resonance over ω_c from which a tone counts as detuned. */
+const DETUNED = 0.1;
+/** Temperatures up to which errors were measured as small, K. */
+const COLD = 10;
+const COOL = 20;
 
 /**
- * Chooses between the second-order methods (accuracy against the hierarchy measured on resonant, chirped, detuned, two-colour
- * and two-photon pulses at 4 and 10 K, A = 0.03 ps², ω_c = 2.2 1/ps): the polaron transformation follows slow and resonant
- * drives, but its displaced bath cannot follow a detuned drive that is much faster than the bath.
- * @param offsets detunings of the tones from the resonance they drive, 1/ps
+ * Chooses between the second-order methods, by their errors against the hierarchy of auxiliary operators for A = 0.03 ps²,
+ * ω_c = 2.2 1/ps at 4 to 77 K (resonant, chirped, detuned, two-colour and two-photon pulses): the polaron transformation is
+ * the better one for resonant drives of any speed and for slow detuned ones, but its displaced bath cannot follow a
+ * detuned drive that is much faster than the bath.
  */
-export function chooseMethod(drive: Drive, bath: Bath, offsets: readonly number[]): Choice {
+export function chooseMethod(drive: Drive, bath: Bath, kind: DriveKind): Choice {
   const speed = drive.scales.peakRabi / bath.cutoff;
-  const detuned = offsets.some((offset) => Math.abs(offset) > 0.1 * bath.cutoff);
-  const ratio = `peak Rabi frequency ${speed.toFixed(2)} of the bath's cutoff`;
-  if (detuned && offsets.length > 1 && speed > FAST) {
-    return {
-      method: 'weak-coupling',
-      reason: `auto: weak-coupling, for a detuned drive faster than the bath (${ratio}); measured error of populations 1e-3`,
-    };
-  }
-  if (detuned && speed > FAST) {
-    return {
-      method: 'weak-coupling',
-      reason: `auto: weak-coupling, for a detuned drive faster than the bath (${ratio}); measured error of populations 2e-3 to 3e-3`,
-    };
-  }
-  const error = speed <= COMPARED && !detuned ? '5e-4 (2e-3 at areas of several pi)' : '1e-2';
+  const detuned = kind.offsets.some((offset) => Math.abs(offset) > DETUNED * bath.cutoff);
+  const fast = speed > (bath.temperature > COLD ? FAST_WHEN_WARM : FAST);
+  const method = detuned && fast ? 'weak-coupling' : 'polaron';
+  const what = kind.chirped ? 'a chirped drive' : detuned ? 'a detuned drive' : 'a resonant drive';
+  const pace = detuned ? (fast ? ' faster than the bath' : ' slower than the bath') : '';
   return {
-    method: 'polaron',
-    reason: `auto: polaron, for a ${detuned ? 'detuned drive slower than the bath' : 'resonant drive'} (${ratio}); measured error of populations ${error}`,
+    method,
+    reason: `auto: ${method}, for ${what}${pace} (peak Rabi frequency ${speed.toFixed(2)} of the bath's cutoff); measured error of populations for this kind: ${errorClass(bath.temperature, kind.chirped, detuned)}`,
   };
+}
+
+function errorClass(temperature: number, chirped: boolean, detuned: boolean): string {
+  if (temperature > COOL) return 'up to 6e-2 (77 K)';
+  if (temperature > COLD) return 'up to 4e-2 (20 K)';
+  if (detuned) return 'up to 1e-2';
+  return chirped ? 'up to 4e-3' : 'up to 2e-3 (1.6e-2 at a peak beyond the cutoff)';
 }

@@ -60,7 +60,9 @@ function settle(request: CountRequest, bath: Bath, from: TowerSize): PhononCount
       const best = trials[changes.indexOf(Math.max(...changes))]?.run ?? run;
       const settled = worst <= SETTLED;
       const phrase = `exact: ${size.terms} terms, depth ${size.depth}; one more of either changes a figure by at most ${worst.toExponential(1)}; ${fitPhrase(run)}`;
-      const flags = [settled ? phrase : `${phrase}; not settled to ${SETTLED}: larger hierarchies were not tried`];
+      const flags = [
+        settled ? phrase : `${phrase}; not settled to ${SETTLED}: larger hierarchies were not tried`,
+      ];
       return { ...best, flags, error: worst };
     }
     const at = changes.indexOf(Math.max(...changes));

@@ -37,7 +37,8 @@ export function countWithHierarchy(request: CountRequest, bath: Bath, size: Towe
   const drive = trimmed(request.drive, NEGLIGIBLE_AREA);
   const scheme = withRelaxationEnergy(request.scheme, relaxationShift(bath));
   const fit = correlationFit(bath, 'bath', size.terms);
-  const tower = buildTower(fit.poles, size.depth, LIGHTEST);
+  const excitons = Math.max(...scheme.levels.map((l) => l.excitons));
+  const tower = buildTower(fit.poles, size.depth, excitons, LIGHTEST);
   const generator = buildGenerator(scheme, frame, shift);
   const hierarchy = requestedHierarchy(request, { amplitude: 1, sideband: 0 });
   const system = new TowerSystem(generator, hierarchy, scheme, tower);
@@ -52,7 +53,8 @@ export function countWithHierarchy(request: CountRequest, bath: Bath, size: Towe
   effects.names.forEach((name, i) => {
     let sum = 0;
     for (let c = 0; c < system.size; c++) {
-      for (let lane = 0; lane < run; lane++) sum += effects.rows[i][c * run + lane] * state[system.root(c, lane)];
+      for (let lane = 0; lane < run; lane++)
+        sum += effects.rows[i][c * run + lane] * state[system.root(c, lane)];
     }
     values[name] = sum;
   });

@@ -37,11 +37,7 @@ const TRANSIENT_SHARE = 0.08;
  * Heisenberg picture, in which X̃ = U†XU is as smooth as the drive: the bath's fast exponentials are integrated as they
  * are and never limit the step.
  */
-export function tabulateMemory(
-  model: SecondOrderModel,
-  drive: Drive,
-  options: MemoryOptions,
-): MemoryTable {
+export function tabulateMemory(model: SecondOrderModel, drive: Drive, options: MemoryOptions): MemoryTable {
   return new MemoryBuilder(model, drive, options).build();
 }
 

@@ -1,6 +1,6 @@
 import type { Scheme } from '../emitter/contract.js';
 import { driveOperators } from '../emitter/generator.js';
-import { type ComplexMatrix } from './complex-matrix.js';
+import type { ComplexMatrix } from './complex-matrix.js';
 import type { ExponentialFit } from './fit.js';
 
 /**

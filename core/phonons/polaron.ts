@@ -1,4 +1,3 @@
-
 import type { PhononMethod } from './contract.js';
 import { frankCondon, settledFit } from './correlations.js';
 import { addDrive, raisingEntries, type SecondOrderModel } from './model.js';

@@ -6,7 +6,7 @@ import { LinearSystem } from '../kernels/linear-system.js';
 import { type Mesh, propagate, refineMesh } from '../kernels/mesh.js';
 import type { SampledDrive } from '../kernels/step.js';
 import type { Drive } from '../pulse/drive.js';
-import { requestedHierarchy, type LineShare } from './counting.js';
+import { type LineShare, requestedHierarchy } from './counting.js';
 import { MemoryReader, type MemoryTable, tabulateMemory } from './memory.js';
 import type { SecondOrderModel } from './model.js';
 
@@ -33,7 +33,11 @@ export function countSecondOrder(
     settling: bath.settling,
   });
   const generator = buildGenerator(model.scheme, frame, shift);
-  const system = new MemorySystem(new LinearSystem(generator, hierarchy), table, 2 * request.drive.components);
+  const system = new MemorySystem(
+    new LinearSystem(generator, hierarchy),
+    table,
+    2 * request.drive.components,
+  );
   const mesh = shortened(
     meshFor(generator, plainDrive(request.drive, table, model.driveFactor), system.inner.fastest, effort),
     table,

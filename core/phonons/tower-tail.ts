@@ -48,10 +48,7 @@ class TowerTail {
       if (!b.hermitian) this.owner[b.lane + 1] = i;
     });
     this.dense = toDense(generator.constant);
-    this.stable = Array.from(
-      { length: this.half },
-      (_, k) => k < system.size && generator.stable[k],
-    );
+    this.stable = Array.from({ length: this.half }, (_, k) => k < system.size && generator.stable[k]);
   }
 
   finalTrace(block: number): number {

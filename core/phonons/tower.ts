@@ -41,11 +41,14 @@ export interface Tower {
 }
 
 /**
- * @param least smallest weight Π (√s_k/|ν_k|)^{n_k}/√n_k! of an auxiliary operator, about its size in a driven emitter;
+ * @param excitons largest exciton number of a level, S
+ * @param least smallest weight Π (S√s_k/|ν_k|)^{n_k}/√n_k! of an auxiliary operator, about its size in a driven emitter;
  *   lighter ones are left out (the filtering of Shi et al., done beforehand)
  */
-export function buildTower(poles: readonly Pole[], depth: number, least: number): Tower {
-  const all = compositions(poles.length, depth).filter((counts) => weightOf(poles, counts) >= least);
+export function buildTower(poles: readonly Pole[], depth: number, excitons: number, least: number): Tower {
+  const all = compositions(poles.length, depth).filter(
+    (counts) => weightOf(poles, counts, excitons) >= least,
+  );
   const index = new Map<string, { storey: number; conjugate: boolean }>();
   const storeys: Storey[] = [];
   let lanes = 0;
@@ -111,7 +114,8 @@ function linksOf(
     poles.forEach((pole, k) => {
       const s = scaleOf(pole);
       const up = index.get(moved(to.counts, k, 1));
-      if (up) addLink(links, storeys[up.storey], up.conjugate, to, Math.sqrt((to.counts[k] + 1) * s), 0, 0, 0);
+      if (up)
+        addLink(links, storeys[up.storey], up.conjugate, to, Math.sqrt((to.counts[k] + 1) * s), 0, 0, 0);
       if (to.counts[k] === 0) return;
       const down = index.get(moved(to.counts, k, -1));
       if (!down) return;
@@ -134,10 +138,10 @@ function linksOf(
   return mergeLinks(links);
 }
 
-function weightOf(poles: readonly Pole[], counts: readonly number[]): number {
+function weightOf(poles: readonly Pole[], counts: readonly number[], excitons: number): number {
   return poles.reduce((product, pole, k) => {
     let weight = product;
-    const ratio = Math.sqrt(scaleOf(pole)) / Math.hypot(pole.re, pole.im);
+    const ratio = (excitons * Math.sqrt(scaleOf(pole))) / Math.hypot(pole.re, pole.im);
     for (let n = 1; n <= counts[k]; n++) weight *= ratio / Math.sqrt(n);
     return weight;
   }, 1);
