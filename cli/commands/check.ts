@@ -16,7 +16,7 @@ const highest = (p: FreeParameter): number => (p.kind === 'list' ? Math.max(...p
 function corners(study: Study): Corner[] {
   const at = (name: string, end: (p: FreeParameter) => number): Corner => ({
     name,
-    facts: designFacts(applyParameters(study, study.parameters.map(end))),
+    facts: designFacts(study, applyParameters(study, study.parameters.map(end))),
   });
   if (study.parameters.length === 0) return [at('fixed', lowest)];
   return [at('all lowest', lowest), at('all highest', highest)];

@@ -2,6 +2,7 @@ import { type Design, evaluate, type Figures, type FigureTree, trace } from '../
 import { figuresText } from '../report/figures-table.js';
 import { csv } from '../run/csv.js';
 import { writeWhole } from '../run/whole-file.js';
+import { biasOf } from '../study/index.js';
 import type { Command } from './contract.js';
 import { fixedDesign } from './fixed-design.js';
 import { assignments, JSON_OPTION, once, SET_OPTION } from './options.js';
@@ -15,14 +16,18 @@ function treeDocument(tree: FigureTree): Omit<FigureTree, 'notes'> {
   return { emitted, filtered, signal, collected, populations, pulse, phonons, accuracy };
 }
 
-/** The JSON document of `evaluate`: numbers in full double precision, absent things null. */
-export function figuresDocument(figures: Figures): unknown {
+/**
+ * The JSON document of `evaluate`: numbers in full double precision, absent things null.
+ * @param bias bias to set, mV; null without tuning
+ */
+export function figuresDocument(figures: Figures, bias: number | null): unknown {
   const { emitted, filtered, signal, collected, ...rest } = treeDocument(figures);
   const nominal = figures.nominal && { ...treeDocument(figures.nominal), notes: figures.nominal.notes };
   return {
     format: FIGURES_FORMAT,
     ...{ emitted, filtered, signal, collected, nominal },
     ...rest,
+    bias_mv: bias,
     notes: figures.notes,
   };
 }
@@ -69,10 +74,11 @@ export const evaluateCommand: Command = {
     const file = await loadStudy(String(args['study']), assignments(args['set'] as unknown[]));
     const design = fixedDesign(file, 'evaluate');
     const figures = evaluate(design, 'quoted');
+    const bias = biasOf(file.study, design);
     const target = args['trace'] as string | undefined;
     if (target !== undefined) await writeWhole(target, traceCsv(design, file.study.title || file.path));
-    if (args['json']) context.print(JSON.stringify(figuresDocument(figures), null, 2));
-    else context.print(figuresText(file.study.title || file.path, figures, context.color));
+    if (args['json']) context.print(JSON.stringify(figuresDocument(figures, bias), null, 2));
+    else context.print(figuresText(file.study.title || file.path, figures, bias, context.color));
     if (target !== undefined) context.note(`trace: ${target}`);
     return 0;
   },

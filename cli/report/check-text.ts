@@ -1,5 +1,7 @@
+import { formatQuantity, GHZ_PER_MEV } from '../../core/index.js';
 import type { Study } from '../study/index.js';
 import type { DesignFacts, ToneFacts } from './derived.js';
+import { lineText } from './lines.js';
 import { threeDigits } from './numbers.js';
 import { bold, tableText } from './table.js';
 
@@ -33,7 +35,10 @@ function toneRows(index: number, lines: readonly string[]): Row[] {
     ['peak Rabi energy ħΩ', of((t) => withUnit(t.peak_rabi_mev, 'meV'))],
     ['centre', of((t) => fine(t.wavelength_nm, 4, 'nm'))],
     ...lines.map(
-      (line): Row => [`centre above the ${line} line`, of((t) => `${signed(t.above_line_mev[line])} meV`)],
+      (line): Row => [
+        `centre above the ${lineText(line)}`,
+        of((t) => `${signed(t.above_line_mev[line])} meV`),
+      ],
     ),
   ];
 }
@@ -50,12 +55,30 @@ const EMITTER: readonly Row[] = [
   ['exciton linewidth', (f) => withUnit(f.emitter.linewidth_ghz, 'GHz')],
 ];
 
+const BIAS: Row = [
+  'bias to set',
+  (f) => (f.emitter.bias_mv === null ? '–' : formatQuantity(f.emitter.bias_mv, 'voltage', 4)),
+];
+
 const PROPAGATOR: readonly Row[] = [
   ['drive window from', (f) => withUnit(f.propagator.window_ps[0], 'ps')],
   ['drive window to', (f) => withUnit(f.propagator.window_ps[1], 'ps')],
   ['rotating frame above the exciton line', (f) => `${signed(f.propagator.frame_mev)} meV`],
   ['steps', (f) => (f.propagator.steps === null ? 'cannot be integrated' : String(f.propagator.steps))],
 ];
+
+/** Tones whose bandwidth reaches a transition that they do not stand at: it is driven along. */
+function reachWarnings(corners: readonly Corner[]): string[] {
+  return corners.flatMap(({ name, facts }) =>
+    facts.tones.flatMap(({ reaches, bandwidth_ghz }, i) =>
+      reaches.map(({ line, above_mev }) => {
+        const at = corners.length > 1 ? ` (${name})` : '';
+        const width = threeDigits(bandwidth_ghz / GHZ_PER_MEV);
+        return `  tone ${i}${at}: its bandwidth of ${width} meV reaches the ${lineText(line)}, which lies ${threeDigits(Math.abs(above_mev))} meV from its centre`;
+      }),
+    ),
+  );
+}
 
 /** Everything that follows from a study, in sections. */
 export function checkText(
@@ -72,11 +95,13 @@ export function checkText(
   const { tones } = corners[0].facts;
   const lines = Object.keys(tones[0].above_line_mev);
   const parts = [
-    section(`emitter (${study.design.emitter.model})`, EMITTER),
+    section(`emitter (${study.design.emitter.model})`, study.tuning === null ? EMITTER : [...EMITTER, BIAS]),
     ...tones.map((tone, i) => section(`tone ${i} (${tone.shape})`, toneRows(i, lines))),
     section('whole pulse', WHOLE),
     section('propagator', PROPAGATOR),
   ];
+  const warnings = reachWarnings(corners);
+  if (warnings.length > 0) parts.push([bold('warnings', color), ...warnings].join('\n'));
   const failures = corners.flatMap(({ facts }) => facts.propagator.failure ?? []);
   if (failures.length > 0) parts.push(failures.join('\n'));
   if (parameters.length > 0) {

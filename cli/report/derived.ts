@@ -12,9 +12,11 @@ import {
   type Tone,
   wavelengthAt,
 } from '../../core/index.js';
+import { biasOf, type Study } from '../study/index.js';
+import { type ToneLines, toneLines } from './lines.js';
 
 /** What follows from one tone. */
-export interface ToneFacts {
+export interface ToneFacts extends ToneLines {
   readonly shape: string;
   /** Intensity FWHM before and after dispersion, ps. */
   readonly fwhm_ps: number;
@@ -32,8 +34,6 @@ export interface ToneFacts {
   readonly peak_rabi_mev: number;
   /** Vacuum wavelength of the centre, nm. */
   readonly wavelength_nm: number;
-  /** Centre of the tone minus centre of each line of the emitter, meV. */
-  readonly above_line_mev: Readonly<Record<string, number>>;
 }
 
 /** What follows from a fixed design before any photon is counted. */
@@ -49,6 +49,8 @@ export interface DesignFacts {
     readonly exciton_energy_mev: number;
     /** Natural width of each line with pure dephasing, GHz: (γ + γ*)/2π of the exciton line. */
     readonly linewidth_ghz: number;
+    /** Bias to set, mV; null without tuning. */
+    readonly bias_mv: number | null;
   };
   readonly propagator: {
     /** Start and end of the drive window, ps. */
@@ -88,17 +90,13 @@ function energyScale(design: Design): number | null {
 }
 
 function toneFacts(design: Design, tone: Tone): ToneFacts {
-  const { lines, twoPhoton } = situation(design).scheme;
+  const { twoPhoton } = situation(design).scheme;
   const reference = design.pulse.reference === 'two-photon' ? (twoPhoton ?? 0) * HBAR : 0;
   const alone = { reference: design.pulse.reference, tones: [{ ...tone, delay: 0 }] } as const;
   const shape = pulseFigures(alone);
   const energy = pulseEnergy(alone);
   const scale = energyScale(design);
   const peak = peakRabi(tone);
-  const above = Object.entries(lines).map(([line, center]) => [
-    line,
-    reference + tone.detuning - center * HBAR,
-  ]);
   return {
     shape: tone.shape,
     fwhm_ps: tone.fwhm,
@@ -110,7 +108,7 @@ function toneFacts(design: Design, tone: Tone): ToneFacts {
     peak_rabi_per_ps: peak,
     peak_rabi_mev: peak * HBAR,
     wavelength_nm: 1000 * wavelengthAt(design.emitter.wavelength, reference + tone.detuning),
-    above_line_mev: Object.fromEntries(above),
+    ...toneLines(design, tone, shape.bandwidth_ghz),
   };
 }
 
@@ -130,10 +128,10 @@ function propagatorFacts(design: Design): DesignFacts['propagator'] {
 }
 
 /**
- * Derived quantities of a fixed design.
+ * Derived quantities of a fixed design of a study.
  * @throws UnsupportedDesign, DispersionError as `evaluate` does
  */
-export function designFacts(design: Design): DesignFacts {
+export function designFacts(study: Pick<Study, 'tuning'>, design: Design): DesignFacts {
   const { emitter, pulse } = design;
   const whole = pulseFigures(pulse);
   const scale = energyScale(design);
@@ -143,6 +141,7 @@ export function designFacts(design: Design): DesignFacts {
     emitter: {
       exciton_energy_mev: photonEnergy(emitter.wavelength),
       linewidth_ghz: ((1 / emitter.lifetime + emitter.dephasing) * 1000) / (2 * Math.PI),
+      bias_mv: biasOf(study, design),
     },
     propagator: propagatorFacts(design),
   };

@@ -1,4 +1,4 @@
-import type { Figures, FigureTree } from '../../core/index.js';
+import { type Figures, type FigureTree, formatQuantity } from '../../core/index.js';
 import { symbolOf } from './labels.js';
 import { threeDigits } from './numbers.js';
 import { bold, tableText } from './table.js';
@@ -45,11 +45,16 @@ function otherLines(tree: FigureTree): string[] {
   ];
 }
 
-/** Figures as a physicist reads them: the basis over each column, three significant digits. */
-export function figuresText(title: string, figures: Figures, color: boolean): string {
+/**
+ * Figures as a physicist reads them: the basis over each column, three significant digits.
+ * @param bias bias to set, mV; null without tuning
+ */
+export function figuresText(title: string, figures: Figures, bias: number | null, color: boolean): string {
   const parts = [bold(title, color), ''];
   if (figures.nominal) parts.push('mean over drift');
   parts.push(countTable(figures, color), '', ...otherLines(figures));
+  if (bias !== null)
+    parts.push(`bias         ${formatQuantity(bias, 'voltage', 4)} to be set for the first tone's detuning`);
   if (figures.nominal) parts.push('', 'without drift', countTable(figures.nominal, color));
   parts.push(
     '',

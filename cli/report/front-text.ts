@@ -1,7 +1,9 @@
-import type { FreeParameter } from '../../optimizers/index.js';
+import { formatQuantity } from '../../core/index.js';
+import { applyParameters, type FreeParameter } from '../../optimizers/index.js';
 import { figureAt } from '../run/columns.js';
 import type { FrontDesign, RunResult } from '../run/contract.js';
 import { readable } from '../run/parameters.js';
+import { biasOf } from '../study/index.js';
 import { symbolOf } from './labels.js';
 import { duration, threeDigits } from './numbers.js';
 import { tableText } from './table.js';
@@ -30,15 +32,27 @@ function table(result: RunResult, points: readonly FrontDesign[], color: boolean
     `collected.${goal.impurity}`,
     ...others.map((name) => `collected.${name}`),
   ];
+  const { study } = result;
+  const bias = ({ values }: FrontDesign): string[] => {
+    const voltage = biasOf(study, applyParameters(study, values));
+    return voltage === null ? [] : [formatQuantity(voltage, 'voltage', 4)];
+  };
   const head = (path: string) => `${symbolOf(path.slice(path.indexOf('.') + 1))}\n${path.split('.')[0]}`;
   return tableText(
     {
-      head: ['design', 'level', ...figures.map(head), ...parameters.map((p) => parameterHead(p.path))],
+      head: [
+        'design',
+        'level',
+        ...figures.map(head),
+        ...parameters.map((p) => parameterHead(p.path)),
+        ...(study.tuning === null ? [] : ['bias\nto set']),
+      ],
       rows: points.map((point) => [
         fileName(point),
         threeDigits(point.level),
         ...figures.map((path) => threeDigits(figureAt(point.figures, path))),
         ...parameters.map((p, i) => readable(cleaned(point.values[i], p), p.path)),
+        ...bias(point),
       ]),
     },
     color,

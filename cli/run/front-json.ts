@@ -1,3 +1,5 @@
+import { applyParameters } from '../../optimizers/index.js';
+import { biasOf } from '../study/index.js';
 import { FRONT_FORMAT, type FrontDesign, type RunResult } from './contract.js';
 import { columnOf, inColumn } from './parameters.js';
 
@@ -9,6 +11,7 @@ export function frontDocument(result: RunResult): unknown {
     level,
     design: file,
     parameters: Object.fromEntries(parameters.map((p, i) => [columnOf(p.path), inColumn(values[i], p.path)])),
+    bias_mv: biasOf(study, applyParameters(study, values)),
     figures,
   });
   return {

@@ -1,4 +1,5 @@
-import type { EvaluatedPoint } from '../../optimizers/index.js';
+import { applyParameters, type EvaluatedPoint } from '../../optimizers/index.js';
+import { biasOf } from '../study/index.js';
 import { type FigureShape, figureAt, figurePaths } from './columns.js';
 import { ARCHIVE_FORMAT, FRONT_FORMAT, type RunIdentity, type RunResult } from './contract.js';
 import { type Cell, csv } from './csv.js';
@@ -26,17 +27,23 @@ function figureShape({ study }: RunIdentity, points: readonly EvaluatedPoint[]):
   return { filtered: collection.filter !== null, drift: drift !== null, levels };
 }
 
-/** Parameter and figure cells of points, with their columns. */
+/** Parameter cells, the bias to set where the line can be tuned, and figure cells of points, with their columns. */
 export function pointTable(
   identity: RunIdentity,
   points: readonly EvaluatedPoint[],
 ): { columns: string[]; rows: Cell[][] } {
   const paths = figurePaths(figureShape(identity, points));
-  const { parameters } = identity.study;
+  const { study } = identity;
+  const { parameters } = study;
   return {
-    columns: [...parameters.map((p) => columnOf(p.path)), ...paths],
+    columns: [
+      ...parameters.map((p) => columnOf(p.path)),
+      ...(study.tuning === null ? [] : ['bias [mV]']),
+      ...paths,
+    ],
     rows: points.map(({ values, figures }) => [
       ...parameters.map((p, i) => inColumn(values[i], p.path)),
+      ...(study.tuning === null ? [] : [biasOf(study, applyParameters(study, values))]),
       ...paths.map((path) => figureAt(figures, path)),
     ]),
   };

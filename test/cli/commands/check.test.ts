@@ -6,11 +6,17 @@ interface Facts {
     readonly at: string;
     readonly tones: readonly Record<string, number>[];
     readonly pulse: Record<string, number>;
+    readonly emitter: Record<string, number>;
     readonly propagator: { readonly window_ps: number[]; readonly frame_mev: number; readonly steps: number };
   }[];
   readonly parameters: readonly { path: string; allowed: string }[];
   readonly faults: readonly { line: number; column: number; path: string }[];
 }
+
+const cascade = (reference: string, tone: string, emitter = 'splitting: 0 ueV') => `pulsewright: 1
+emitter: { model: cascade, lifetime: 400 ps, binding: 3 meV, ${emitter} }
+pulse: { reference: ${reference}, tones: [{ area: 0.1 pi, ${tone} }] }
+`;
 
 async function facts(text: string): Promise<Facts> {
   const { out } = await invoke(['check', studyFile(text), '--json']);
@@ -48,8 +54,51 @@ emitter: { model: cascade, lifetime: 400 ps, binding: 3 meV }
 pulse: { reference: two-photon, tones: [{ fwhm: 8 ps, area: 3 pi, detuning: 0.25 meV }] }
 `);
     const above = designs[0].tones[0].above_line_mev as unknown as Record<string, number>;
-    expect(above.exciton).toBeCloseTo(-1.25, 9);
-    expect(above.biexciton).toBeCloseTo(1.75, 9);
+    // Half the binding energy on each side of the resonance; no splitting.
+    for (const axis of ['h', 'v']) {
+      expect(above[`exciton_${axis}`]).toBeCloseTo(-1.25, 9);
+      expect(above[`biexciton_${axis}`]).toBeCloseTo(1.75, 9);
+    }
+    expect(above.two_photon).toBeCloseTo(0.25, 9);
+  });
+
+  it('tells the components of each line apart by the splitting', async () => {
+    const { designs } = await facts(cascade('exciton', 'fwhm: 8 ps', 'splitting: 40 ueV'));
+    const above = designs[0].tones[0].above_line_mev as unknown as Record<string, number>;
+    // h above v by f; b→h is lower than b→v by the same f.
+    expect(above.exciton_h).toBeCloseTo(-0.02, 9);
+    expect(above.exciton_v).toBeCloseTo(0.02, 9);
+    expect(above.biexciton_h).toBeCloseTo(3.02, 9);
+    expect(above.biexciton_v).toBeCloseTo(2.98, 9);
+  });
+
+  // Gaussian: spectral FWHM 0.4413/τ, that is 1.825 meV·ps/τ; the binding energy is 3 meV.
+  it.each([
+    ['exciton', 'fwhm: 0.6 ps', ['biexciton']],
+    ['exciton', 'fwhm: 0.62 ps', []],
+    ['exciton', 'fwhm: 0.62 ps, detuning: -3 meV', []],
+    ['exciton', 'fwhm: 0.6 ps, detuning: -3 meV', ['exciton']],
+    ['two-photon', 'fwhm: 1.2 ps', ['exciton', 'biexciton']],
+    ['two-photon', 'fwhm: 1.23 ps', []],
+    ['two-photon', 'fwhm: 1.23 ps, detuning: 0.1 meV', ['exciton']],
+    ['two-photon', 'fwhm: 1.23 ps, detuning: 1.5 meV', []],
+  ])('warns when the bandwidth reaches the other transition: %s, %s', async (reference, tone, lines) => {
+    const text = cascade(reference, tone);
+    const { designs } = await facts(text);
+    const reaches = designs[0].tones[0].reaches as unknown as { line: string }[];
+    expect(reaches.map(({ line }) => line)).toEqual(lines);
+    const { out } = await invoke(['check', studyFile(text)]);
+    for (const line of lines) expect(out).toMatch(new RegExp(`tone 0: its bandwidth of .* ${line} line`));
+    expect(out.includes('warnings')).toBe(lines.length > 0);
+  });
+
+  it('prints the bias to set', async () => {
+    const tuning = 'tuning: { slope: 5 ueV/mV, bias: 200 mV, range: [100 mV, 260 mV] }';
+    const text = cascade('two-photon', 'fwhm: 8 ps, detuning: 0.1 meV', tuning);
+    const { designs } = await facts(text);
+    expect(designs[0].emitter.bias_mv).toBeCloseTo(180, 9);
+    expect((await invoke(['check', studyFile(text)])).out).toMatch(/bias to set +180\.0 mV/);
+    expect((await invoke(['check', studyFile(FIXED)])).out).not.toContain('bias');
   });
 
   it('shows both ends of free parameters and lists them', async () => {

@@ -11,7 +11,9 @@ describe('evaluate', () => {
     expect(err).toBe('');
     const document = JSON.parse(out) as Figures & { format: string };
     expect(Object.keys(document)).toEqual(
-      'format emitted filtered signal collected nominal populations pulse phonons accuracy notes'.split(' '),
+      'format emitted filtered signal collected nominal populations pulse phonons accuracy bias_mv notes'.split(
+        ' ',
+      ),
     );
     expect(document.format).toBe('pulsewright.figures/1');
     expect(document.filtered).toBeNull();
@@ -19,6 +21,23 @@ describe('evaluate', () => {
     // Two-level, γ = 1/500 ps, Gaussian π pulse of 5 ps: independent ODE code, window ±40 ps.
     expect(document.emitted.p[1]).toBeCloseTo(0.9978161334, 8);
     expect(document.emitted.g2).toBeCloseTo(4.33213974e-3, 8);
+  });
+
+  it('says which bias makes the detuning', async () => {
+    const text = FIXED.replace(
+      'lifetime',
+      'tuning: { slope: -2 ueV/mV, bias: 0.5 V, range: [0.4 V, 0.6 V] }, lifetime',
+    ).replace('area: 1 pi', 'area: 1 pi, detuning: 0.1 meV');
+    const { out } = await invoke(['evaluate', studyFile(text), '--json']);
+    // V = bias − δ/slope = 500 mV + 0.1/0.002 mV.
+    expect((JSON.parse(out) as { bias_mv: number }).bias_mv).toBeCloseTo(550, 9);
+    expect((await invoke(['evaluate', studyFile(text)])).out).toContain('550.0 mV');
+    const plain = JSON.parse((await invoke(['evaluate', studyFile(FIXED), '--json'])).out) as object;
+    expect(plain).toMatchObject({ bias_mv: null });
+    const outside = await invoke(['evaluate', studyFile(text), '--set', 'tones.0.detuning=0.3 meV']);
+    expect(outside.code).toBe(2);
+    expect(outside.err).toContain('--set:1:');
+    expect(outside.err).toContain('-200 ueV to 200 ueV');
   });
 
   it('holds the nominal tree under drift', async () => {

@@ -143,6 +143,35 @@ describe('optimize', () => {
     expect(contents(folder)).toEqual(before);
   });
 
+  it('gives the bias of every design of a tuned dot', async () => {
+    const folder = freshFolder();
+    const tuning = 'tuning: { slope: 5 ueV/mV, bias: 200 mV, range: [190 mV, 260 mV] }';
+    const text = FREE.replace('lifetime', `${tuning}, lifetime`).replace(
+      'fwhm: { from: 3 ps, to: 12 ps, scale: log }',
+      'fwhm: 5 ps\n      detuning: { from: -1 meV, to: 1 meV }',
+    );
+    const { out, err } = await invoke(['optimize', studyFile(text), '--out', folder, '--workers', '1']);
+    expect(err).toContain('narrowed to -300 ueV to 50 ueV');
+    expect(out).toMatch(/bias/);
+    for (const name of ['front.csv', 'archive.csv']) {
+      const [head, ...rows] = csvCells(read(folder, name));
+      const [bias, detuning] = [head.indexOf('bias [mV]'), head.indexOf('pulse.tones.0.detuning [meV]')];
+      expect(rows.length).toBeGreaterThan(0);
+      for (const row of rows) {
+        expect(Number(row[bias])).toBeCloseTo(200 - Number(row[detuning]) / 0.005, 9);
+        expect(Number(row[bias])).toBeGreaterThan(190 - 1e-9);
+        expect(Number(row[bias])).toBeLessThan(260 + 1e-9);
+      }
+    }
+    const document = JSON.parse(read(folder, 'front.json')) as {
+      points: { bias_mv: number; design: string }[];
+    };
+    for (const { bias_mv, design } of document.points) {
+      const { out: again } = await invoke(['evaluate', join(folder, design), '--json']);
+      expect((JSON.parse(again) as { bias_mv: number }).bias_mv).toBe(bias_mv);
+    }
+  });
+
   it('makes a front of one point from a fixed design', async () => {
     const folder = freshFolder();
     const { code } = await invoke(['optimize', studyFile(FIXED), '--out', folder, '--workers', '1']);
