@@ -34,7 +34,7 @@ export class BlochStep {
     private readonly h: number,
     private readonly follow: boolean,
   ) {
-    const ratio = (model.dephasing / model.decay) ** 2;
+    const ratio = model.decay > 0 ? (model.dephasing / model.decay) ** 2 : 0;
     const small = (h * model.decay) ** 2;
     this.coupling = model.weight * h * (1 - (small / 96) * (1 + ratio));
     this.quartic = (small / 5760) * (1 + 4 * ratio);

@@ -1,5 +1,6 @@
 import type { FastKernel } from './contract.js';
+import { kicked } from './kicked.js';
 import { twoLevelEmitted } from './two-level-emitted.js';
 
 /** Every fast kernel, in the order in which a request is offered to them. */
-export const fastKernels: readonly FastKernel[] = [twoLevelEmitted];
+export const fastKernels: readonly FastKernel[] = [twoLevelEmitted, kicked];

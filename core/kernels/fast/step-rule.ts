@@ -43,7 +43,7 @@ export function firstSteps(drive: Drive, model: TwoLevel, spans: readonly Span[]
 const PROBES = 48;
 
 /** False where tones overlap or beat: their common phase turns too unevenly to be followed. */
-function phaseIsSteady(drive: Drive, spans: readonly Span[]): boolean {
+export function phaseIsSteady(drive: Drive, spans: readonly Span[]): boolean {
   const { peakRabi, frequency, time } = drive.scales;
   const out = new Float64Array(2);
   const small = 1e-3 * peakRabi;
