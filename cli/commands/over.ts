@@ -7,7 +7,7 @@ import { nearestName } from '../study/nearest.js';
 /** One scanned parameter. */
 export interface Over {
   readonly path: string;
-  /** Ascending, internal units. */
+  /** In order, internal units; ascending unless it goes together with another. */
   readonly values: readonly number[];
   /** The same as study text that reads back to the same numbers. */
   readonly texts: readonly string[];
@@ -31,8 +31,9 @@ function pathOf(text: string, tones: number): string {
 /**
  * Reads one `--over`.
  * @param tones number of tones of the study
+ * @param downward whether the range may also fall
  */
-export function parseOver(text: string, tones: number): Over {
+export function parseOver(text: string, tones: number, downward = false): Over {
   const match = PATTERN.exec(text.trim());
   if (!match) throw new UserError(`--over: got "${text}"; needs ${FORM}`);
   const path = pathOf(match[1], tones);
@@ -49,8 +50,12 @@ export function parseOver(text: string, tones: number): Over {
   if (count < 2 || count > MOST_VALUES) {
     throw new UserError(`--over ${path}: got ${count} values; needs 2 to ${MOST_VALUES}`);
   }
-  if (!(from < to)) throw new UserError(`--over ${path}: got ${match[2]}..${match[3]}; needs from below to`);
-  if (log && !(from > 0)) throw new UserError(`--over ${path}: got ${match[2]} with log; needs more than 0`);
+  if (!(from < to) && !(downward && from > to)) {
+    const wanted = downward ? 'two different ends' : 'from below to';
+    throw new UserError(`--over ${path}: got ${match[2]}..${match[3]}; needs ${wanted}`);
+  }
+  if (log && !(Math.min(from, to) > 0))
+    throw new UserError(`--over ${path}: got ${from > to ? match[3] : match[2]} with log; needs more than 0`);
   const values = Array.from({ length: count }, (_, i) => {
     if (i === count - 1) return to;
     const share = i / (count - 1);

@@ -32,4 +32,10 @@ export const commands: readonly CommandEntry[] = [
     summary: 'search the least multiphoton light at every brightness',
     load: async () => (await import('./optimize.js')).optimize,
   },
+  {
+    name: 'compare',
+    positionals: '<dir..>',
+    summary: 'fronts of finished runs in one picture and one table',
+    load: async () => (await import('./compare.js')).compare,
+  },
 ];

@@ -26,6 +26,8 @@ export interface Plan {
   readonly file: StudyFile;
   readonly sets: readonly Override[];
   readonly overs: readonly Over[];
+  /** Whether all parameters step together, so that the scan is one line through them. */
+  readonly together: boolean;
   readonly accuracy: Accuracy;
 }
 
@@ -34,18 +36,32 @@ export async function planOf(args: Arguments): Promise<Plan> {
   const file = await loadStudy(String(args['study']), sets);
   const texts = args['over'] as string[];
   const { tones } = file.study.design.pulse;
-  const overs = texts.map((text) => parseOver(text, tones.length));
-  if (overs.length > 2) throw new UserError(`--over: given ${overs.length} times; needs one or two`);
+  const together = args['together'] === true;
+  const overs = texts.map((text, i) => parseOver(text, tones.length, together && i > 0));
+  if (!together && overs.length > 2) {
+    throw new UserError(`--over: given ${overs.length} times; needs one or two, or --together`);
+  }
   const twice = overs.find((o, i) => overs.findIndex((p) => p.path === o.path) < i);
   if (twice) throw new UserError(`--over: ${twice.path} is given twice`);
-  const count = overs.reduce((product, { values }) => product * values.length, 1);
+  const odd = together ? overs.find(({ values }) => values.length !== overs[0].values.length) : undefined;
+  if (odd) {
+    const [counts, first] = [odd.values.length, overs[0].values.length];
+    throw new UserError(
+      `--together: got ${counts} values of ${odd.path}; needs ${first}, as many as of the first`,
+    );
+  }
+  const count = pointCount({ overs, together });
   if (count > MOST_POINTS) throw new UserError(`--over: ${count} points; allowed are ${MOST_POINTS}`);
-  return { file, sets, overs, accuracy: args['accuracy'] as Accuracy };
+  return { file, sets, overs, together, accuracy: args['accuracy'] as Accuracy };
 }
 
+const pointCount = ({ overs, together }: Pick<Plan, 'overs' | 'together'>): number =>
+  together ? overs[0].values.length : overs.reduce((product, { values }) => product * values.length, 1);
+
 /** The study at one point of the scan, read anew: ties, limits and rules hold at each. */
-function studyAt({ file, sets, overs }: Plan, index: number): StudyFile {
-  const indices = valuesAt({ axes: overs.map((o) => ({ ...o, values: o.values.map((_, i) => i) })) }, index);
+function studyAt({ file, sets, overs, together }: Plan, index: number): StudyFile {
+  const axes = overs.map((o) => ({ ...o, values: o.values.map((_, i) => i) }));
+  const indices = valuesAt({ axes, together }, index);
   const overrides = [...sets, ...overs.map((o, k) => ({ path: o.path, value: o.texts[indices[k]] }))];
   return { ...file, ...soundStudy(file.bytes, file.path, overrides) };
 }
@@ -72,7 +88,7 @@ function shapeFor({ emitter, collection, drift }: Design): FigureShape {
 }
 
 async function evaluatePoints(plan: Plan, context: Context): Promise<(Figures | null)[]> {
-  const total = plan.overs.reduce((product, { values }) => product * values.length, 1);
+  const total = pointCount(plan);
   const progress = progressBar(context.streams.stderr, 'points');
   const points: (Figures | null)[] = [];
   try {
@@ -96,7 +112,7 @@ async function evaluatePoints(plan: Plan, context: Context): Promise<(Figures | 
 export async function scanOf(plan: Plan, figures: readonly string[], context: Context): Promise<Scan> {
   const first = studyAt(plan, 0);
   const shape = shapeFor(fixedDesign(first, 'scan'));
-  const shown = shownFigures(figures, first.study, shape, plan.overs.length);
+  const shown = shownFigures(figures, first.study, shape, plan.together ? 1 : plan.overs.length);
   const points = await evaluatePoints(plan, context);
   if (points.every((point) => point === null)) throw new UserError('no point of the scan could be evaluated');
   return {
@@ -105,6 +121,7 @@ export async function scanOf(plan: Plan, figures: readonly string[], context: Co
     version: packageVersion(),
     accuracy: plan.accuracy,
     axes: plan.overs,
+    together: plan.together,
     ...{ points, shape, shown },
   };
 }

@@ -27,6 +27,11 @@ export const scan: Command = {
         demandOption: true,
         describe: 'path=from..to:count, once or twice; :log at the end for even ratios',
       })
+      .option('together', {
+        type: 'boolean',
+        default: false,
+        describe: 'step every --over at the same time: one line through all of them instead of a map',
+      })
       .option('figure', {
         type: 'string',
         array: true,
@@ -51,6 +56,10 @@ export const scan: Command = {
       .example(
         'pulsewright scan design.yaml --over "tones.0.area=0 pi..6 pi:61" --over "tones.0.detuning=-1 meV..1 meV:41"',
         'a map',
+      )
+      .example(
+        'pulsewright scan design.yaml --together --over "tones.0.fwhm=2 ps..8 ps:9:log" --over "tones.0.area=2 pi..4 pi:9:log"',
+        'the area along with the square root of the width',
       ),
   async run(args, context) {
     const plan = await planOf(args);

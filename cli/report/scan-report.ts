@@ -14,19 +14,20 @@ export const SCAN_FORMAT = 'pulsewright.scan/1';
 /** A scanned parameter. */
 export interface ScanAxis {
   readonly path: string;
-  /** Ascending, internal units. */
+  /** In order, internal units; ascending unless it goes together with another. */
   readonly values: readonly number[];
   readonly log: boolean;
 }
 
-/** A finished scan: the first axis runs fastest. */
+/** A finished scan: the first axis runs fastest, or all of them step together. */
 export interface Scan {
   readonly title: string;
   readonly hash: string;
   readonly version: string;
   readonly accuracy: string;
-  /** One or two. */
+  /** One or two; any number of the same length when they step together. */
   readonly axes: readonly ScanAxis[];
+  readonly together: boolean;
   /** Null where the pulse is beyond what can be integrated. */
   readonly points: readonly (Figures | null)[];
   readonly shape: FigureShape;
@@ -35,7 +36,8 @@ export interface Scan {
 }
 
 /** Parameter values of point `index`, internal units. */
-export function valuesAt(scan: Pick<Scan, 'axes'>, index: number): number[] {
+export function valuesAt(scan: Pick<Scan, 'axes' | 'together'>, index: number): number[] {
+  if (scan.together) return scan.axes.map(({ values }) => values[index]);
   let rest = index;
   return scan.axes.map(({ values }) => {
     const i = rest % values.length;
@@ -65,14 +67,14 @@ export function scanCsv(scan: Scan): string {
 
 /** The JSON document of a scan. */
 export function scanDocument(scan: Scan): unknown {
-  const { title, hash, version, accuracy, axes } = scan;
+  const { title, hash, version, accuracy, axes, together } = scan;
   const points = scan.points.map((figures, index) => ({
     parameters: Object.fromEntries(
       valuesAt(scan, index).map((value, k) => [columnOf(axes[k].path), inColumn(value, axes[k].path)]),
     ),
     figures,
   }));
-  return { format: SCAN_FORMAT, version, study: { title, hash }, accuracy, points };
+  return { format: SCAN_FORMAT, version, study: { title, hash }, accuracy, together, points };
 }
 
 /** `tone 0 area (π)`: what stands at an axis. */
@@ -96,12 +98,15 @@ export function scanPicture(scan: Scan): Promise<string> {
     title: scan.title,
     subtitle: `per pulse, accuracy ${scan.accuracy}, study ${scan.hash.slice(0, 8)}`,
   };
-  if (y === undefined) {
+  if (y === undefined || scan.together) {
     const curves = scan.shown.map((path) => ({
       title: figureLabel(path),
       values: scan.points.map((point) => figure(point, path)),
     }));
-    return plotCurves({ ...head, xTitle: x.title, x: x.values, logX: x.log, curves });
+    const others = scan.axes.slice(1).map(({ path }) => axisTitle(path).replace(/ \(.*\)$/, ''));
+    const along =
+      others.length === 0 ? '' : `; ${others.join(', ')} step${others.length === 1 ? 's' : ''} along`;
+    return plotCurves({ ...head, xTitle: `${x.title}${along}`, x: x.values, logX: x.log, curves });
   }
   const rows = (path: string) =>
     y.values.map((_, j) => x.values.map((__, i) => figure(scan.points[j * x.values.length + i], path)));

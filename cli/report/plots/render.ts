@@ -38,6 +38,16 @@ const CONFIG: NonNullable<TopLevelSpec['config']> = {
 /** Ordinal colours that stay apart for colour-blind readers. Source: Okabe & Ito, Color Universal Design (2008). */
 export const COLORS = { point: '#0072B2', mark: '#D55E00', quiet: '#9a9a9a', text: '#333333' } as const;
 
+/** Looks of lines that stand in one panel: colours of the same source, told apart by the shape of their points too. */
+export const SERIES: readonly { readonly color: string; readonly shape: string }[] = [
+  { color: '#0072B2', shape: 'circle' },
+  { color: '#D55E00', shape: 'square' },
+  { color: '#009E73', shape: 'triangle-up' },
+  { color: '#CC79A7', shape: 'diamond' },
+  { color: '#E69F00', shape: 'triangle-down' },
+  { color: '#56B4E9', shape: 'cross' },
+];
+
 /** Static SVG of a chart; the same specification gives the same bytes. */
 export async function renderSvg(chart: TopLevelSpec): Promise<string> {
   const [vega, lite] = await Promise.all([import('vega'), import('vega-lite')]);

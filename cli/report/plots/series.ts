@@ -1,0 +1,67 @@
+import type { TopLevelSpec } from 'vega-lite';
+import { renderSvg, SERIES } from './render.js';
+
+export interface Series {
+  /** What the legend says. */
+  readonly name: string;
+  readonly points: readonly { readonly x: number; readonly y: number }[];
+}
+
+/** Several named lines in one panel. */
+export interface SeriesPlot {
+  readonly title: string;
+  readonly subtitle: string;
+  /** Axis titles with basis and unit. */
+  readonly xTitle: string;
+  readonly yTitle: string;
+  readonly logX: boolean;
+  readonly logY: boolean;
+  readonly series: readonly Series[];
+}
+
+/** More lines than this cannot be told apart. */
+export const MOST_SERIES = SERIES.length;
+
+export function seriesChart(plot: SeriesPlot): TopLevelSpec {
+  const domain = plot.series.map(({ name }) => name);
+  // A logarithmic axis has no place for zero.
+  const shown = (x: number, y: number) => (!plot.logX || x > 0) && (!plot.logY || y > 0);
+  const values = plot.series.flatMap(({ name, points }) =>
+    points.filter(({ x, y }) => shown(x, y)).map(({ x, y }) => ({ x, y, name })),
+  );
+  const axis = (field: 'x' | 'y', title: string, log: boolean) => ({
+    field,
+    type: 'quantitative',
+    title,
+    scale: log ? { type: 'log', nice: false, padding: 14 } : { zero: false, nice: false, padding: 14 },
+    axis: field === 'y' ? { format: '.0~e', tickCount: 6 } : { format: '.3~g', tickCount: 8 },
+  });
+  const looks = { domain, range: SERIES.slice(0, domain.length).map(({ color }) => color) };
+  const shapes = { domain, range: SERIES.slice(0, domain.length).map(({ shape }) => shape) };
+  const legend = {
+    orient: 'bottom',
+    direction: 'vertical',
+    columns: 1,
+    symbolOpacity: 1,
+    labelLimit: 540,
+    title: null,
+  };
+  return {
+    width: 560,
+    height: 360,
+    title: { text: plot.title, subtitle: plot.subtitle },
+    data: { values },
+    mark: { type: 'line', strokeWidth: 1.8, point: { filled: true, size: 45, opacity: 1 } },
+    encoding: {
+      x: axis('x', plot.xTitle, plot.logX),
+      y: axis('y', plot.yTitle, plot.logY),
+      color: { field: 'name', type: 'nominal', scale: looks, legend },
+      shape: { field: 'name', type: 'nominal', scale: shapes, legend },
+    },
+  } as unknown as TopLevelSpec;
+}
+
+/** SVG of several lines with a legend; points that a logarithmic axis cannot show are left out. */
+export function plotSeries(plot: SeriesPlot): Promise<string> {
+  return renderSvg(seriesChart(plot));
+}
