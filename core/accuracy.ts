@@ -18,6 +18,10 @@ export function figureDifference(a: FigureTree, b: FigureTree): number {
   absolute(a.emitted.p[0], b.emitted.p[0]);
   absolute(a.emitted.p[1], b.emitted.p[1]);
   relative(a.emitted.p[2], b.emitted.p[2]);
+  if (a.filtered?.p && b.filtered?.p) {
+    absolute(a.filtered.p[0], b.filtered.p[0]);
+    absolute(a.filtered.p[1], b.filtered.p[1]);
+  }
   for (const basis of ['emitted', 'filtered', 'signal', 'collected'] as const) {
     const x = a[basis];
     const y = b[basis];
