@@ -19,6 +19,21 @@ export interface SeriesPlot {
   readonly series: readonly Series[];
 }
 
+/** Without a canvas, the width of a text is guessed too large: a longer subtitle would leave the right side empty. */
+const SUBTITLE = 68;
+
+/** A text broken at its commas and semicolons into lines that are no wider than the panel. */
+function broken(text: string): string[] {
+  const lines = [''];
+  for (const part of text.split(/(?<=[,;]) /)) {
+    const last = lines[lines.length - 1];
+    const longer = last === '' ? part : `${last} ${part}`;
+    if (last === '' || longer.length <= SUBTITLE) lines[lines.length - 1] = longer;
+    else lines.push(part);
+  }
+  return lines;
+}
+
 /** More lines than this cannot be told apart. */
 export const MOST_SERIES = SERIES.length;
 
@@ -49,7 +64,7 @@ export function seriesChart(plot: SeriesPlot): TopLevelSpec {
   return {
     width: 560,
     height: 360,
-    title: { text: plot.title, subtitle: plot.subtitle },
+    title: { text: plot.title, subtitle: broken(plot.subtitle) },
     data: { values },
     mark: { type: 'line', strokeWidth: 1.8, point: { filled: true, size: 45, opacity: 1 } },
     encoding: {
