@@ -6,7 +6,7 @@ const SEQUENCE = [1, 1.25, 1.5, 1.8, 2.2, 2.7];
 /** Runs before the first comparison. */
 const FEWEST = 3;
 /** The last extrapolated value is better than its difference from the one before by at least this. */
-const GAIN = 4;
+const GAIN = 1.5;
 
 type Values = Readonly<Record<string, number>>;
 

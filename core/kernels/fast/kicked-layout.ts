@@ -1,11 +1,13 @@
 import { addEmittedCounting, addThinnedCounting } from '../../counting/emitted.js';
 import { addFilteredMoments } from '../../counting/filtered.js';
 import { type Hierarchy, HierarchyBuilder } from '../../counting/hierarchy.js';
+import { tailEffects } from '../../counting/tail.js';
 import type { Scheme } from '../../emitter/contract.js';
 import { buildGenerator, type Generator } from '../../emitter/generator.js';
-import type { SparseMatrix } from '../../emitter/operators.js';
+import { coherencePairs, type SparseMatrix } from '../../emitter/operators.js';
 import type { CountRequest } from '../count.js';
-import { type SparseRows, sparseRows } from './sparse.js';
+import { Memo } from './memo.js';
+import { ExponentialFamily, sparseRows } from './sparse.js';
 
 /** A set of coordinates that the drive mixes, with the places in the state of every lane that uses them. */
 export interface Component {
@@ -28,13 +30,12 @@ export interface TurningPair {
  * left out.
  */
 export interface KickedLayout {
-  readonly hierarchy: Hierarchy;
-  readonly generator: Generator;
+  readonly levels: number;
   readonly components: readonly Component[];
   readonly pairs: readonly TurningPair[];
-  /** Frequency of the collected line in the drive's frame, 1/ps. */
-  readonly line: number;
-  readonly kicks: SparseRows;
+  readonly kicks: ExponentialFamily;
+  /** Figures as functionals of the state at the end of the drive. */
+  readonly effects: readonly { readonly name: string; readonly row: Float64Array }[];
   /** lane·size + coordinate of every place in the state. */
   readonly places: Int32Array;
   /** Places that start at 1. */
@@ -46,24 +47,40 @@ export function frameEnergies(request: CountRequest): number[] {
   return request.scheme.levels.map((l) => l.offset - l.excitons * (request.frame - request.shift));
 }
 
-function hierarchyOf(request: CountRequest, center: number): Hierarchy {
+/** What the layout depends on: all of it enters the memo's key. */
+interface Ingredients {
+  readonly scheme: CountRequest['scheme'];
+  readonly dipoles: CountRequest['dipoles'];
+  readonly thinning: number | null;
+  readonly filter: { readonly kappa: number; readonly order: number } | null;
+  /** Filter centre minus the collected line, 1/ps. */
+  readonly offset: number;
+  /** Frame in which the collected line stands still (the exciton line where nothing is filtered), 1/ps. */
+  readonly frame: number;
+  readonly used: readonly (readonly [boolean, boolean])[];
+  /** Whether the drive's frame turns coherences: pairs of levels with different energies there. */
+  readonly distinct: readonly boolean[];
+  /** Whether the collected line turns in the drive's frame. */
+  readonly turning: boolean;
+}
+
+/** Frequencies are rounded to this (1/ps), so that one emitter gives the same ingredients in every frame. */
+const GRAIN = 2 ** -42;
+const rounded = (x: number): number => Math.round(x / GRAIN) * GRAIN;
+
+function hierarchyOf({ filter, thinning, dipoles }: Ingredients, center: number): Hierarchy {
   const builder = new HierarchyBuilder();
-  if (request.filter) {
-    addFilteredMoments(
-      builder,
-      request.dipoles,
-      { kappa: request.filter.kappa, center },
-      request.filter.order,
-    );
+  if (filter) {
+    addFilteredMoments(builder, dipoles, { kappa: filter.kappa, center }, filter.order);
   } else {
-    addEmittedCounting(builder, request.dipoles);
-    if (request.thinning !== null) addThinnedCounting(builder, request.dipoles, request.thinning);
+    addEmittedCounting(builder, dipoles);
+    if (thinning !== null) addThinnedCounting(builder, dipoles, thinning);
   }
   return builder.build();
 }
 
 /** Mean transition frequency of the collected dipoles in the drive's frame, weighted by rate. */
-function lineFrequency(request: CountRequest, energies: readonly number[]): number {
+export function lineFrequency(request: CountRequest, energies: readonly number[]): number {
   const n = energies.length;
   let sum = 0;
   let weight = 0;
@@ -89,13 +106,8 @@ interface Entry {
 }
 
 /** Entries of K on lane·size + coordinate. */
-function kickEntries(
-  request: CountRequest,
-  hierarchy: Hierarchy,
-  offset: readonly number[],
-  size: number,
-): Entry[] {
-  const dissipators = buildGenerator(withoutEnergies(request.scheme), 0, 0).constant;
+function kickEntries(scheme: Scheme, hierarchy: Hierarchy, offset: readonly number[], size: number): Entry[] {
+  const dissipators = buildGenerator(withoutEnergies(scheme), 0, 0).constant;
   const out: Entry[] = [];
   const put = (m: SparseMatrix | null, factor: number, from: number, to: number): void => {
     if (!m)
@@ -125,7 +137,7 @@ function kickEntries(
 function connected(
   generator: Generator,
   parts: readonly SparseMatrix[],
-  energies: readonly number[],
+  distinct: readonly boolean[],
 ): number[] {
   const n = generator.levels;
   const size = n * n;
@@ -140,38 +152,65 @@ function connected(
     owner[Math.max(p, q)] = Math.min(p, q);
   };
   for (const m of parts) for (let e = 0; e < m.row.length; e++) join(m.row[e], m.col[e]);
-  let k = n;
-  for (let i = 0; i < n; i++) {
-    for (let j = i + 1; j < n; j++, k += 2) if (energies[i] !== energies[j]) join(k, k + 1);
-  }
+  distinct.forEach((different, pair) => {
+    if (different) join(n + 2 * pair, n + 2 * pair + 1);
+  });
   return owner.map((_, i) => find(i));
 }
 
+const memo = new Memo<KickedLayout>(8);
+
 /**
  * @param used which of Re Ω_c, Im Ω_c of each drive component ever differ from zero
+ * @param line frequency of the collected line in the drive's frame, 1/ps
  */
 export function kickedLayout(
   request: CountRequest,
   used: readonly (readonly [boolean, boolean])[],
+  line: number,
 ): KickedLayout {
+  const { scheme, dipoles, thinning, filter, frame, shift } = request;
   const energies = frameEnergies(request);
-  const generator = buildGenerator(request.scheme, request.frame, request.shift);
-  const hierarchy = hierarchyOf(request, request.filter ? request.filter.center : 0);
-  const quanta = request.filter
-    ? hierarchyOf(request, 1).blocks.map((b) => b.rotation)
+  const ingredients: Ingredients = {
+    scheme,
+    dipoles,
+    thinning,
+    filter: filter && { kappa: filter.kappa, order: filter.order },
+    offset: filter ? rounded(filter.center - line) : 0,
+    frame: filter ? rounded(frame + line - shift) : 0,
+    used,
+    distinct: coherencePairs(energies.length).map(([i, j]) => energies[i] !== energies[j]),
+    turning: line !== 0,
+  };
+  return memo.get(
+    JSON.stringify(ingredients, (_, v) => (ArrayBuffer.isView(v) ? Array.from(v as Float64Array) : v)),
+    () => build(ingredients),
+  );
+}
+
+function build(ingredients: Ingredients): KickedLayout {
+  const { scheme, filter, used, distinct } = ingredients;
+  // Everything here is the same in any frame: the figures have no charge under a change of frame.
+  const generator = buildGenerator(scheme, ingredients.frame, 0);
+  const hierarchy = hierarchyOf(ingredients, ingredients.offset);
+  const quanta = filter
+    ? hierarchyOf(ingredients, 1).blocks.map((b) => b.rotation)
     : hierarchy.blocks.map(() => 0);
-  const line = request.filter ? lineFrequency(request, energies) : 0;
   const size = generator.levels ** 2;
-  const offset = hierarchy.blocks.map((b, i) => b.rotation - quanta[i] * line);
-  const entries = kickEntries(request, hierarchy, offset, size);
+  const entries = kickEntries(
+    scheme,
+    hierarchy,
+    hierarchy.blocks.map((b) => b.rotation),
+    size,
+  );
   const parts = used.flatMap(([re, im], c) => [
     ...(re ? [generator.real[c]] : []),
     ...(im ? [generator.imaginary[c]] : []),
   ]);
-  const owner = connected(generator, parts, energies);
+  const owner = connected(generator, parts, distinct);
   const node = (index: number): number => Math.floor(index / size) * size + owner[index % size];
   const turning = hierarchy.blocks.flatMap((b, i) =>
-    b.hermitian || quanta[i] === 0 || line === 0 ? [] : [{ lane: b.lane, quanta: quanta[i] }],
+    b.hermitian || quanta[i] === 0 || !ingredients.turning ? [] : [{ lane: b.lane, quanta: quanta[i] }],
   );
   const edges: [number, number][] = entries.map((e) => [node(e.col), node(e.row)]);
   for (const { lane } of turning) {
@@ -191,7 +230,7 @@ export function kickedLayout(
     edges.map(([a, b]) => [b, a]),
   );
   const active = new Set([...reached].filter((v) => needed.has(v)));
-  return compact(generator, hierarchy, entries, owner, active, turning, line);
+  return compact(generator, hierarchy, entries, owner, active, turning);
 }
 
 function reach(starts: readonly number[], edges: readonly (readonly [number, number])[]): Set<number> {
@@ -221,7 +260,6 @@ function compact(
   owner: readonly number[],
   active: ReadonlySet<number>,
   turning: readonly { lane: number; quanta: number }[],
-  line: number,
 ): KickedLayout {
   const size = generator.levels ** 2;
   const roots = [...new Set(owner)];
@@ -247,20 +285,29 @@ function compact(
       quanta,
     })).filter((p) => p.x >= 0),
   );
+  const effects = tailEffects(generator, hierarchy);
   return {
-    hierarchy,
-    generator,
+    levels: generator.levels,
     components: roots
       .map((_, c) => ({ coordinates: members[c], offsets: Int32Array.from(offsets[c]) }))
       .filter((c) => c.offsets.length > 0),
     pairs,
-    line,
-    kicks: sparseRows(
-      places.length,
-      kept.map((e) => place[e.row]),
-      kept.map((e) => place[e.col]),
-      kept.map((e) => e.value),
+    kicks: new ExponentialFamily(
+      sparseRows(
+        places.length,
+        kept.map((e) => place[e.row]),
+        kept.map((e) => place[e.col]),
+        kept.map((e) => e.value),
+      ),
     ),
+    // Functionals lie on [coordinate·lanes + lane].
+    effects: effects.names.map((name, i) => ({
+      name,
+      row: Float64Array.from(
+        places,
+        (p) => effects.rows[i][(p % size) * hierarchy.lanes + Math.floor(p / size)],
+      ),
+    })),
     places: Int32Array.from(places),
     seeds: hierarchy.seeded.map((b) => place[hierarchy.blocks[b].lane * size]),
   };

@@ -1,13 +1,12 @@
-import { tailEffects } from '../../counting/tail.js';
 import type { Drive } from '../../pulse/drive.js';
 import { type CountRequest, type CountResult, countPhotons } from '../count.js';
 import { BlochStep } from './bloch-step.js';
 import type { FastKernel } from './contract.js';
 import { extrapolate } from './extrapolate.js';
-import { frameEnergies, type KickedLayout, kickedLayout } from './kicked-layout.js';
+import { frameEnergies, type KickedLayout, kickedLayout, lineFrequency } from './kicked-layout.js';
 import { smoothSpans } from './spans.js';
-import { applyRows, ExponentialFamily, type SparseRows } from './sparse.js';
-import { phaseIsSteady } from './step-rule.js';
+import { applyRows } from './sparse.js';
+import { coherentRate, phaseIsSteady } from './step-rule.js';
 import { SuperRotation } from './superrotation.js';
 import { asTwoLevel } from './two-level.js';
 import { UnitaryStep } from './unitary-step.js';
@@ -48,14 +47,21 @@ export const kicked: FastKernel = {
 /** Accepted error in units of the effort's tolerance per step. */
 const ACCEPT = 10;
 const MOST_STEPS = 60_000;
+/**
+ * First guesses above which the reference, with its larger steps of higher order, was measured to be as fast: two levels
+ * filtered, more levels filtered, more levels emitted.
+ */
+const MOST_FIRST = { two: 10_000, filtered: 1500, emitted: 400 };
 /** Damping per step above which the series in h² is not worth starting. */
 const MOST_DAMPING = 30;
 
 interface Problem {
   readonly request: CountRequest;
   readonly layout: KickedLayout;
-  readonly family: ExponentialFamily;
-  readonly effects: readonly { readonly name: string; readonly row: Float64Array }[];
+  /** Frequency of the collected line in the drive's frame, 1/ps. */
+  readonly line: number;
+  /** Drive components that ever differ from zero. */
+  readonly used: readonly boolean[];
   /** First guess. */
   readonly steps: number;
   readonly follow: boolean;
@@ -85,39 +91,28 @@ function usedParts(drive: Drive): [boolean, boolean][] {
 
 export function prepare(request: CountRequest): Problem | null {
   const { drive, scheme } = request;
-  const layout = kickedLayout(request, usedParts(drive));
   const { breakpoints, scales } = drive;
   const start = breakpoints[0];
   const end = breakpoints[breakpoints.length - 1];
   const energies = frameEnergies(request);
+  const line = request.filter ? lineFrequency(request, energies) : 0;
+  const used = usedParts(drive);
+  const layout = kickedLayout(request, used, line);
+  const { norm } = layout.kicks;
   const follow = scales.frequency > 0 && breakpoints.length === 2 && scheme.levels.length === 2;
   const steady = follow && phaseIsSteady(drive, [{ start, end, first: 0, last: 0, gap: false }]);
   const strength = Math.max(...scheme.transitions.map((t) => Math.hypot(t.weightH, t.weightV)));
   const rabi = scales.peakRabi * strength;
-  const fastest = Math.hypot(rabi, Math.max(...energies.map(Math.abs)) + scales.frequency);
-  const smooth = scheme.levels.length === 2 && (steady || scales.frequency === 0);
-  const rate = 1.4 / scales.time + (smooth ? 0.35 * rabi + 0.4 * fastest : 0.6 * rabi + 0.6 * fastest);
-  const family = new ExponentialFamily(layout.kicks);
-  if (family.norm > MOST_DAMPING * rate) return null;
-  const steps = Math.ceil((end - start) * Math.max(rate, family.norm / 1.5));
-  const effects = tailEffects(layout.generator, layout.hierarchy);
-  return {
-    request,
-    layout,
-    family,
-    effects: effects.names.map((name, i) => ({ name, row: gather(effects.rows[i], layout) })),
-    steps,
-    follow: steady,
-    start,
-    end,
-  };
-}
-
-/** A functional on [coordinate·lanes + lane] in the order of the layout. */
-function gather(row: Float64Array, layout: KickedLayout): Float64Array {
-  const size = layout.generator.levels ** 2;
-  const { lanes } = layout.hierarchy;
-  return Float64Array.from(layout.places, (p) => row[(p % size) * lanes + Math.floor(p / size)]);
+  const two = scheme.levels.length === 2;
+  const smooth = two && (steady || scales.frequency === 0);
+  const energy = Math.max(...energies.map(Math.abs));
+  const rate = two
+    ? coherentRate(drive, rabi, energy, smooth)
+    : 1.4 / scales.time + 0.6 * rabi + 0.6 * Math.hypot(rabi, energy + scales.frequency);
+  if (norm > MOST_DAMPING * rate) return null;
+  const steps = Math.ceil((end - start) * Math.max(rate, norm / 1.5));
+  if (steps > (two ? MOST_FIRST.two : request.filter ? MOST_FIRST.filtered : MOST_FIRST.emitted)) return null;
+  return { request, layout, line, used: used.map(([re, im]) => re || im), steps, follow: steady, start, end };
 }
 
 /** Advances the rotations of all components over one step. */
@@ -125,7 +120,7 @@ type Advance = (t: number, left: number, middle: number, right: number) => void;
 
 function rotations(problem: Problem, h: number): { advance: Advance; maps: readonly SuperRotation[] } {
   const { request, layout } = problem;
-  const { levels } = layout.generator;
+  const { levels } = layout;
   const maps = layout.components.map((c) => new SuperRotation(levels, c));
   const model = asTwoLevel(request);
   if (model) {
@@ -138,7 +133,7 @@ function rotations(problem: Problem, h: number): { advance: Advance; maps: reado
       },
     };
   }
-  const step = new UnitaryStep(request.scheme, frameEnergies(request), request.drive, h);
+  const step = new UnitaryStep(request.scheme, frameEnergies(request), request.drive, h, problem.used);
   return {
     maps,
     advance: (t, left, middle, right) => {
@@ -149,25 +144,20 @@ function rotations(problem: Problem, h: number): { advance: Advance; maps: reado
 }
 
 export function run(problem: Problem, count: number): CountResult | null {
-  const { layout, request, family } = problem;
+  const { layout, request } = problem;
   const { breakpoints } = request.drive;
   const h = (problem.end - problem.start) / count;
-  const kick = family.at(h);
-  const half = family.at(h / 2);
-  if (!kick || !half) return null;
+  const kick = layout.kicks.at(h);
+  if (!kick) return null;
   const { advance, maps } = rotations(problem, h);
   let y = new Float64Array(layout.places.length);
   let spare = new Float64Array(layout.places.length);
   for (const seed of layout.seeds) y[seed] = 1;
-  const scratch = new Float64Array(layout.generator.levels ** 2);
-  const turn = turner(layout, h);
+  const scratch = new Float64Array(layout.levels ** 2);
+  const turn = turner(layout, problem.line, h);
   const last = breakpoints.length - 2;
   let segment = 0;
-  const kickWith = (m: SparseRows): void => {
-    applyRows(m, y, spare);
-    [y, spare] = [spare, y];
-  };
-  kickWith(half);
+  // The first half kick does nothing to the ground state.
   for (let n = 0; n < count; n++) {
     const t = problem.start + (n + 0.5) * h;
     while (segment < last && t - 0.4 * h >= breakpoints[segment + 1]) segment++;
@@ -178,10 +168,13 @@ export function run(problem: Problem, count: number): CountResult | null {
     advance(t, segment, middle, right);
     for (const map of maps) map.apply(y, scratch);
     turn?.(y);
-    kickWith(n + 1 < count ? kick : half);
+    if (n + 1 === count) break;
+    applyRows(kick, y, spare);
+    [y, spare] = [spare, y];
   }
+  layout.kicks.apply(h / 2, y);
   const values: Record<string, number> = {};
-  for (const { name, row } of problem.effects) {
+  for (const { name, row } of layout.effects) {
     let sum = 0;
     for (let i = 0; i < row.length; i++) sum += row[i] * y[i];
     values[name] = sum;
@@ -194,8 +187,8 @@ export function run(problem: Problem, count: number): CountResult | null {
 }
 
 /** Turns every complex block by −(j − k)·line·h. */
-function turner(layout: KickedLayout, h: number): ((y: Float64Array) => void) | null {
-  const { pairs, line } = layout;
+function turner(layout: KickedLayout, line: number, h: number): ((y: Float64Array) => void) | null {
+  const { pairs } = layout;
   if (pairs.length === 0) return null;
   const xs = Int32Array.from(pairs, (p) => p.x);
   const ys = Int32Array.from(pairs, (p) => p.y);

@@ -72,19 +72,29 @@ function product(a: SparseRows, b: SparseRows, factor: number): SparseRows {
   return { size, start, col: Int32Array.from(col), value: Float64Array.from(value) };
 }
 
-/** Entries of an exponential below this are dropped. */
-const NEGLIGIBLE = 1e-20;
 /** Largest ‖hK‖ for which the power series keeps its digits. */
 const LARGEST_NORM = 6;
 
-/** Exponentials e^{hK} of one matrix for any step h, from its powers, which are made once. */
+/** Terms of the power series of e^x that reach rounding for |x| up to `reach`. */
+function termsFor(reach: number): number {
+  let terms = 0;
+  for (let bound = 1; bound > 1e-18; terms++) bound *= reach / (terms + 1);
+  return terms;
+}
+
+/** Exponentials e^{hK} of one matrix for any step h, from its powers, which are made once on one common pattern. */
 export class ExponentialFamily {
   /** Largest sum of magnitudes in a row of K, 1/ps. */
   readonly norm: number;
   private readonly powers: SparseRows[];
+  private pattern: {
+    readonly start: Int32Array;
+    readonly col: Int32Array;
+    readonly terms: Float64Array[];
+  } | null = null;
 
-  constructor(private readonly k: SparseRows) {
-    this.powers = [];
+  constructor(readonly matrix: SparseRows) {
+    const k = matrix;
     let norm = 0;
     for (let r = 0; r < k.size; r++) {
       let sum = 0;
@@ -92,50 +102,74 @@ export class ExponentialFamily {
       norm = Math.max(norm, sum);
     }
     this.norm = norm;
+    this.powers = [identity(k.size)];
   }
 
   /** e^{hK}, or null where the series would lose digits. */
   at(h: number): SparseRows | null {
     const reach = h * this.norm;
     if (!(reach <= LARGEST_NORM)) return null;
-    const { size } = this.k;
-    const sums = new Float64Array(size);
-    const seen = new Int32Array(size).fill(-1);
-    const start = new Int32Array(size + 1);
-    const col: number[] = [];
-    const value: number[] = [];
-    let terms = 0;
-    for (let bound = 1; bound > 1e-18; terms++) bound *= reach / (terms + 1);
-    for (let t = this.powers.length + 1; t <= terms; t++) {
-      this.powers.push(t === 1 ? this.k : product(this.powers[t - 2], this.k, 1 / t));
+    const count = termsFor(reach);
+    const { start, col, terms } = this.patterned(count);
+    // From the highest power down; the sum does not depend on how many more powers happen to be known.
+    const value = terms[count].slice();
+    for (let t = count - 1; t >= 0; t--) {
+      const term = terms[t];
+      for (let i = 0; i < value.length; i++) value[i] = value[i] * h + term[i];
     }
-    const scales = Float64Array.from({ length: terms }, (_, t) => h ** (t + 1));
-    for (let r = 0; r < size; r++) {
-      const used: number[] = [r];
-      seen[r] = r;
-      sums[r] = 1;
-      for (let t = 0; t < terms; t++) {
-        const p = this.powers[t];
-        for (let i = p.start[r]; i < p.start[r + 1]; i++) {
-          const c = p.col[i];
-          if (seen[c] !== r) {
-            seen[c] = r;
-            sums[c] = 0;
-            used.push(c);
-          }
-          sums[c] += scales[t] * p.value[i];
-        }
-      }
-      used.sort((x, y) => x - y);
-      for (const c of used) {
-        if (Math.abs(sums[c]) < NEGLIGIBLE) continue;
-        col.push(c);
-        value.push(sums[c]);
-      }
-      start[r + 1] = col.length;
-    }
-    return { size, start, col: Int32Array.from(col), value: Float64Array.from(value) };
+    return { size: this.matrix.size, start, col, value };
   }
+
+  /** y ← e^{hK} y. */
+  apply(h: number, y: Float64Array): void {
+    const term = y.slice();
+    const next = new Float64Array(y.length);
+    const count = termsFor(h * this.norm);
+    for (let t = 1; t <= count; t++) {
+      applyRows(this.matrix, term, next);
+      for (let i = 0; i < y.length; i++) {
+        term[i] = (next[i] * h) / t;
+        y[i] += term[i];
+      }
+    }
+  }
+
+  /** K^t/t! up to t = count, written on the places of all powers together. */
+  private patterned(count: number): NonNullable<ExponentialFamily['pattern']> {
+    if (this.pattern && this.pattern.terms.length > count) return this.pattern;
+    for (let t = this.powers.length; t <= count; t++) {
+      this.powers.push(product(this.powers[t - 1], this.matrix, 1 / t));
+    }
+    const { size } = this.matrix;
+    const start = new Int32Array(size + 1);
+    const columns: number[] = [];
+    const place = new Int32Array(size);
+    for (let r = 0; r < size; r++) {
+      const used = new Set<number>();
+      for (const p of this.powers) for (let i = p.start[r]; i < p.start[r + 1]; i++) used.add(p.col[i]);
+      for (const c of [...used].sort((a, b) => a - b)) columns.push(c);
+      start[r + 1] = columns.length;
+    }
+    const terms = this.powers.map((p) => {
+      const values = new Float64Array(columns.length);
+      for (let r = 0; r < size; r++) {
+        for (let k = start[r]; k < start[r + 1]; k++) place[columns[k]] = k;
+        for (let i = p.start[r]; i < p.start[r + 1]; i++) values[place[p.col[i]]] = p.value[i];
+      }
+      return values;
+    });
+    this.pattern = { start, col: Int32Array.from(columns), terms };
+    return this.pattern;
+  }
+}
+
+function identity(size: number): SparseRows {
+  return {
+    size,
+    start: Int32Array.from({ length: size + 1 }, (_, i) => i),
+    col: Int32Array.from({ length: size }, (_, i) => i),
+    value: new Float64Array(size).fill(1),
+  };
 }
 
 /** out = m · y. */

@@ -24,19 +24,28 @@ export function finer(plan: StepPlan, factor: number): StepPlan | null {
  * fitted to some hundred random pulses.
  */
 export function firstSteps(drive: Drive, model: TwoLevel, spans: readonly Span[]): StepPlan {
-  const { peakRabi, frequency, time } = drive.scales;
+  const { peakRabi, frequency } = drive.scales;
   const rabi = peakRabi * Math.abs(model.weight);
-  const fastest = Math.hypot(rabi, Math.abs(model.energy) + frequency);
   const follow = frequency > 0 && phaseIsSteady(drive, spans);
   const damping = model.decay + model.dephasing;
-  const smooth = follow || frequency === 0;
-  const coherent = 1.4 / time + (smooth ? 0.3 * rabi + 0.4 * fastest : 0.8 * rabi + 0.7 * fastest);
+  const coherent = coherentRate(drive, rabi, Math.abs(model.energy), follow || frequency === 0);
   const dissipative = 3 * (damping * rabi ** 5) ** (1 / 6) + 8 * damping;
   const rate = Math.max(coherent, dissipative);
   return {
     counts: spans.map((s) => (s.gap ? 0 : Math.max(4, Math.ceil((s.end - s.start) * rate)))),
     follow,
   };
+}
+
+/**
+ * Steps per ps for the coherent motion. Where the phase can be followed, a chirp matters little beyond the detuning of its
+ * centre (twice the level's energy, since the frame lies midway); else everything that turns must be resolved.
+ */
+export function coherentRate(drive: Drive, rabi: number, energy: number, smooth: boolean): number {
+  const { frequency, time } = drive.scales;
+  if (!smooth) return 1.4 / time + 1.4 * rabi + 1.2 * Math.hypot(rabi, energy + frequency);
+  const chirp = Math.max(0, frequency - energy);
+  return 1.4 / time + 0.3 * rabi + 0.4 * Math.hypot(rabi, 2 * energy) + 0.15 * chirp;
 }
 
 /** Places at which the turning rate of the drive is looked at. */

@@ -6,6 +6,9 @@ import type { Component } from './kicked-layout.js';
  */
 export class SuperRotation {
   readonly matrix: Float64Array;
+  /** For two levels: the map on all four coordinates, and the places of the component's entries in it. */
+  private readonly full = new Float64Array(16);
+  private readonly picks: Int32Array;
   private readonly m: number;
   /** Per coordinate: the two levels and whether it is a diagonal (0), real (1) or imaginary (2) part. */
   private readonly spots: readonly (readonly [number, number, 0 | 1 | 2])[];
@@ -22,6 +25,8 @@ export class SuperRotation {
     });
     this.m = component.coordinates.length;
     this.matrix = new Float64Array(this.m * this.m);
+    const { coordinates } = component;
+    this.picks = Int32Array.from(coordinates.flatMap((r) => coordinates.map((c) => 4 * r + c)));
   }
 
   /** Fills the matrix from the unitary. */
@@ -53,30 +58,22 @@ export class SuperRotation {
 
   /** Fills the matrix from a rotation of the Bloch vector (bloch-step.ts) of two levels. */
   setBloch(m: Float64Array): void {
-    const full = [
-      0.5 + 0.5 * m[8],
-      0.5 - 0.5 * m[8],
-      m[6],
-      m[7],
-      0.5 - 0.5 * m[8],
-      0.5 + 0.5 * m[8],
-      -m[6],
-      -m[7],
-      0.5 * m[2],
-      -0.5 * m[2],
-      m[0],
-      m[1],
-      0.5 * m[5],
-      -0.5 * m[5],
-      m[3],
-      m[4],
-    ];
-    const { coordinates } = this.component;
-    coordinates.forEach((row, r) => {
-      coordinates.forEach((col, c) => {
-        this.matrix[r * this.m + c] = full[4 * row + col];
-      });
-    });
+    const { full, picks, matrix } = this;
+    full[0] = full[5] = 0.5 + 0.5 * m[8];
+    full[1] = full[4] = 0.5 - 0.5 * m[8];
+    full[2] = m[6];
+    full[3] = m[7];
+    full[6] = -m[6];
+    full[7] = -m[7];
+    full[8] = 0.5 * m[2];
+    full[9] = -0.5 * m[2];
+    full[10] = m[0];
+    full[11] = m[1];
+    full[12] = 0.5 * m[5];
+    full[13] = -0.5 * m[5];
+    full[14] = m[3];
+    full[15] = m[4];
+    for (let k = 0; k < picks.length; k++) matrix[k] = full[picks[k]];
   }
 
   /** Applies the matrix to every lane's part of the state. */
@@ -108,7 +105,15 @@ export class SuperRotation {
     const { matrix: r, m } = this;
     const { offsets } = this.component;
     if (m === 3) {
-      const [a0, a1, a2, b0, b1, b2, c0, c1, c2] = r;
+      const a0 = r[0];
+      const a1 = r[1];
+      const a2 = r[2];
+      const b0 = r[3];
+      const b1 = r[4];
+      const b2 = r[5];
+      const c0 = r[6];
+      const c1 = r[7];
+      const c2 = r[8];
       for (let a = 0; a < offsets.length; a++) {
         const o = offsets[a];
         const p = y[o];
@@ -120,7 +125,22 @@ export class SuperRotation {
       }
       return;
     }
-    const [a0, a1, a2, a3, b0, b1, b2, b3, c0, c1, c2, c3, d0, d1, d2, d3] = r;
+    const a0 = r[0];
+    const a1 = r[1];
+    const a2 = r[2];
+    const a3 = r[3];
+    const b0 = r[4];
+    const b1 = r[5];
+    const b2 = r[6];
+    const b3 = r[7];
+    const c0 = r[8];
+    const c1 = r[9];
+    const c2 = r[10];
+    const c3 = r[11];
+    const d0 = r[12];
+    const d1 = r[13];
+    const d2 = r[14];
+    const d3 = r[15];
     for (let a = 0; a < offsets.length; a++) {
       const o = offsets[a];
       const p = y[o];

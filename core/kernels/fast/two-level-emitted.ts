@@ -78,7 +78,7 @@ export function run(
     const loss = -Math.expm1(-model.decay * h);
     const halfFade = Math.exp(-0.5 * model.coherence * h);
     const halfLoss = -Math.expm1(-0.5 * model.decay * h);
-    const correction = new LaneCorrection(model, lanes, sources, h);
+    const correction = new LaneCorrection(model, sources, h);
     kick(y, sources, halfFade, halfLoss);
     let segment = span.first;
     for (let n = 0; n < count; n++) {
@@ -189,61 +189,45 @@ function move(y: Float64Array, at: number, out: number, into: number): void {
 class LaneCorrection {
   private readonly first: Float64Array;
   private readonly second: Float64Array;
+  private readonly pull: Float64Array;
   private readonly sample = new Float64Array(2);
-  private readonly own: Float64Array;
-  private readonly share: Float64Array;
   private readonly quartic: number;
   private readonly quadratic: number;
   private readonly delta: number;
 
   constructor(
     private readonly model: TwoLevel,
-    private readonly lanes: number,
-    sources: Sources,
+    private readonly sources: Sources,
     private readonly h: number,
   ) {
     const { decay, dephasing } = model;
-    this.first = new Float64Array(3 * lanes);
-    this.second = new Float64Array(3 * lanes);
+    this.first = new Float64Array(3 * sources.lanes);
+    this.second = new Float64Array(3 * sources.lanes);
+    this.pull = new Float64Array(3 * sources.lanes);
     this.quadratic = (-h * h * decay * dephasing) / 48;
     this.quartic = (h ** 4 * decay * decay) / 1920;
     this.delta = dephasing / decay;
-    const { collected: q, surviving: e } = sources;
-    this.own = Float64Array.from({ length: lanes }, (_, l) =>
-      WHOLE.includes(l) ? 1 : l < LANES ? 1 - q : 1 - e,
-    );
-    this.share = Float64Array.from({ length: lanes }, (_, l) =>
-      FEEDS[l] < 0 ? 0 : l === 7 ? 2 * q : l < LANES ? q : e,
-    );
   }
 
   /** Applies the correction of one step at a grid point. */
   apply(y: Float64Array, drive: Drive, t: number, segment: number): void {
-    const { first, second, lanes, h, sample, model } = this;
+    const { first, second, pull, sources, h, sample, model } = this;
+    const { lanes } = sources;
     drive.sample(t, segment, sample);
     const br = model.weight * h * sample[1];
     const bm = model.weight * h * sample[0];
     const beta = this.quartic * model.weight ** 2 * (sample[0] * sample[0] + sample[1] * sample[1]);
     const base = this.quadratic - beta * this.delta;
     const linear = -this.quadratic + (8 / 3) * beta * this.delta;
-    for (let l = 0, i = 0, k = 0; l < lanes; l++, i += 4, k += 3) {
-      const f = FEEDS[l] < 0 ? 0 : 4 * FEEDS[l];
-      const own = this.own[l];
-      const share = this.share[l];
-      first[k] = own * y[i + 2] + share * y[f + 2];
-      first[k + 1] = own * y[i + 3] + share * y[f + 3];
-      first[k + 2] = own * (br * y[i] + bm * y[i + 1]) + share * (br * y[f] + bm * y[f + 1]);
+    for (let i = 0, k = 0; i < 4 * lanes; i += 4, k += 3) {
+      pull[k] = y[i + 2];
+      pull[k + 1] = y[i + 3];
+      pull[k + 2] = br * y[i] + bm * y[i + 1];
     }
-    for (let l = 0, k = 0; l < lanes; l++, k += 3) {
-      const f = FEEDS[l] < 0 ? 0 : 3 * FEEDS[l];
-      const own = this.own[l];
-      const share = this.share[l];
-      second[k] = own * first[k] + share * first[f];
-      second[k + 1] = own * first[k + 1] + share * first[f + 1];
-      second[k + 2] = own * first[k + 2] + share * first[f + 2];
-    }
+    feed(pull, first, sources);
+    feed(first, second, sources);
     for (let l = 0, i = 0, k = 0; l < lanes; l++, i += 4, k += 3) {
-      const q = br * y[i] + bm * y[i + 1];
+      const q = pull[k + 2];
       const into =
         linear * first[k] -
         beta * second[k] +
@@ -256,11 +240,27 @@ class LaneCorrection {
   }
 }
 
-/** Lanes whose every jump feeds themselves. */
-const WHOLE = [0, 5, 6, 7, 10];
-
-/** Lane that feeds each lane by a counted jump, besides itself. */
-const FEEDS = [-1, -1, 1, 2, 3, 2, 0, 6, -1, 8, 9];
+/** out = Z x on three numbers per lane: what each lane gains for one jump everywhere. */
+function feed(x: Float64Array, out: Float64Array, sources: Sources): void {
+  const { collected: q, surviving: e, lanes } = sources;
+  const uncounted = 1 - q;
+  for (let c = 0; c < 3; c++) {
+    out[c] = x[c];
+    out[3 + c] = uncounted * x[3 + c];
+    out[6 + c] = uncounted * x[6 + c] + q * x[3 + c];
+    out[9 + c] = uncounted * x[9 + c] + q * x[6 + c];
+    out[12 + c] = uncounted * x[12 + c] + q * x[9 + c];
+    out[15 + c] = x[15 + c] + q * x[6 + c];
+    out[18 + c] = x[18 + c] + q * x[c];
+    out[21 + c] = x[21 + c] + 2 * q * x[18 + c];
+  }
+  if (lanes === LANES) return;
+  for (let c = 24; c < 27; c++) {
+    out[c] = (1 - e) * x[c];
+    out[3 + c] = (1 - e) * x[3 + c] + e * x[c];
+    out[6 + c] = x[6 + c] + e * x[3 + c];
+  }
+}
 
 function named(y: Float64Array, thinned: boolean): Record<string, number> {
   const values: Record<string, number> = {

@@ -5,179 +5,243 @@ import type { Drive } from '../../pulse/drive.js';
 /** Nodes of three-point Gauss–Legendre quadrature on a step of length 1, from its middle. */
 const NODE = Math.sqrt(15) / 10;
 const ALPHA2 = Math.sqrt(15) / 3;
-/** Norm of a matrix up to which the exponential series is summed as it stands. */
-const SMALL = 0.5;
+/** Norm below which the exponential series of degree 9 is exact to rounding. */
+const SMALL = 0.15;
+const FACTORIALS = [1, 1, 2, 6, 24, 120, 720, 5040, 40320, 362880];
+
+/** Raising matrix element of one drive component. */
+interface Raising {
+  readonly component: number;
+  readonly upper: number;
+  readonly lower: number;
+  readonly value: number;
+}
 
 /**
  * Unitary of any level scheme over one step by the Magnus expansion of order 6 on Gauss nodes (Blanes, Casas, Oteo &
- * Ros, Phys. Rep. 470, 151 (2009), section 5). Matrices are dense complex n×n, as separate real and imaginary parts.
+ * Ros, Phys. Rep. 470, 151 (2009), section 5), exponentiated by scaling and squaring. Levels that the drive in use does
+ * not touch only turn.
  */
 export class UnitaryStep {
-  /** The unitary of the last step, row-major. */
+  /** The unitary of the last step, row-major over all levels. */
   readonly re: Float64Array;
   readonly im: Float64Array;
   private readonly n: number;
   private readonly sample: Float64Array;
-  private readonly raising: readonly {
-    readonly row: number;
-    readonly col: number;
-    readonly value: number;
-  }[][];
-  private readonly work: readonly { readonly re: Float64Array; readonly im: Float64Array }[];
+  private readonly raising: readonly Raising[];
+  /** Levels that the drive connects. */
+  private readonly driven: readonly number[];
+  private readonly own: Float64Array;
+  private readonly levels: number;
+  private readonly work: readonly Float64Array[];
 
-  /** @param energies of the levels in the drive's frame, 1/ps */
+  /**
+   * @param energies of the levels in the drive's frame, 1/ps
+   * @param used drive components that ever differ from zero
+   */
   constructor(
     scheme: Scheme,
-    private readonly energies: readonly number[],
+    energies: readonly number[],
     private readonly drive: Drive,
     private readonly h: number,
+    used: readonly boolean[],
   ) {
-    const n = scheme.levels.length;
-    this.n = n;
-    this.re = new Float64Array(n * n);
-    this.im = new Float64Array(n * n);
-    this.sample = new Float64Array(2 * drive.components);
-    this.raising = driveOperators(scheme).map((a) => {
-      const entries: { row: number; col: number; value: number }[] = [];
+    const levels = scheme.levels.length;
+    const all: Raising[] = [];
+    driveOperators(scheme).forEach((a, component) => {
+      if (!used[component]) return;
       a.re.forEach((value, k) => {
-        if (value !== 0) entries.push({ row: Math.floor(k / n), col: k % n, value });
+        if (value !== 0) all.push({ component, upper: Math.floor(k / levels), lower: k % levels, value });
       });
-      return entries;
     });
-    this.work = Array.from({ length: 10 }, () => ({
-      re: new Float64Array(n * n),
-      im: new Float64Array(n * n),
+    const touched = new Set(all.flatMap((r) => [r.upper, r.lower]));
+    this.driven = [...touched].sort((a, b) => a - b);
+    this.raising = all.map((r) => ({
+      ...r,
+      upper: this.driven.indexOf(r.upper),
+      lower: this.driven.indexOf(r.lower),
     }));
+    this.levels = levels;
+    this.n = this.driven.length;
+    this.own = Float64Array.from(this.driven, (i) => energies[i]);
+    this.re = new Float64Array(levels * levels);
+    this.im = new Float64Array(levels * levels);
+    for (let i = 0; i < levels; i++) {
+      this.re[i * levels + i] = Math.cos(energies[i] * h);
+      this.im[i * levels + i] = -Math.sin(energies[i] * h);
+    }
+    this.sample = new Float64Array(2 * drive.components);
+    this.work = Array.from({ length: 16 }, () => new Float64Array(this.n * this.n));
   }
 
   /** Unitary over the step about t (ps); `left`, `middle`, `right` are the segments of its nodes. */
   advance(t: number, left: number, middle: number, right: number): void {
-    const [a1, a2, a3, x2, x3, c1, c2, e, f, omega] = this.work;
-    this.hamiltonian(t - NODE * this.h, left, a1);
-    this.hamiltonian(t, middle, a2);
-    this.hamiltonian(t + NODE * this.h, right, a3);
-    const size = this.n * this.n;
-    for (const part of ['re', 'im'] as const) {
-      for (let k = 0; k < size; k++) {
-        x2[part][k] = ALPHA2 * (a3[part][k] - a1[part][k]);
-        x3[part][k] = (10 / 3) * (a3[part][k] - 2 * a2[part][k] + a1[part][k]);
-      }
+    const { n, h } = this;
+    const [ar, ai, br, bi, cr, ci, pr, pi, qr, qi, xr, xi, er, ei, fr, fi] = this.work;
+    this.hamiltonian(t - NODE * h, left, ar, ai);
+    this.hamiltonian(t, middle, br, bi);
+    this.hamiltonian(t + NODE * h, right, cr, ci);
+    const size = n * n;
+    for (let k = 0; k < size; k++) {
+      const x2r = ALPHA2 * (cr[k] - ar[k]);
+      const x2i = ALPHA2 * (ci[k] - ai[k]);
+      cr[k] = (10 / 3) * (cr[k] - 2 * br[k] + ar[k]);
+      ci[k] = (10 / 3) * (ci[k] - 2 * bi[k] + ai[k]);
+      ar[k] = x2r;
+      ai[k] = x2i;
     }
-    this.commutator(a2, x2, c1);
-    for (const part of ['re', 'im'] as const) {
-      for (let k = 0; k < size; k++) e[part][k] = 2 * x3[part][k] + c1[part][k];
+    // Now a = α2, b = α1, c = α3.
+    commutator(n, br, bi, ar, ai, pr, pi);
+    for (let k = 0; k < size; k++) {
+      er[k] = 2 * cr[k] + pr[k];
+      ei[k] = 2 * ci[k] + pi[k];
     }
-    this.commutator(a2, e, c2);
-    for (const part of ['re', 'im'] as const) {
-      for (let k = 0; k < size; k++) {
-        e[part][k] = -20 * a2[part][k] - x3[part][k] + c1[part][k];
-        f[part][k] = x2[part][k] - c2[part][k] / 60;
-      }
+    commutator(n, br, bi, er, ei, qr, qi);
+    for (let k = 0; k < size; k++) {
+      er[k] = -20 * br[k] - cr[k] + pr[k];
+      ei[k] = -20 * bi[k] - ci[k] + pi[k];
+      fr[k] = ar[k] - qr[k] / 60;
+      fi[k] = ai[k] - qi[k] / 60;
     }
-    this.commutator(e, f, omega);
-    for (const part of ['re', 'im'] as const) {
-      for (let k = 0; k < size; k++) {
-        omega[part][k] = a2[part][k] + x3[part][k] / 12 + omega[part][k] / 240;
-      }
+    commutator(n, er, ei, fr, fi, xr, xi);
+    for (let k = 0; k < size; k++) {
+      xr[k] = br[k] + cr[k] / 12 + xr[k] / 240;
+      xi[k] = bi[k] + ci[k] / 12 + xi[k] / 240;
     }
-    this.exponential(omega);
+    this.exponential(xr, xi);
   }
 
-  /** −i h H(t). */
-  private hamiltonian(t: number, segment: number, out: { re: Float64Array; im: Float64Array }): void {
-    const { n, h, sample } = this;
+  /** −i h H(t) on the driven levels. */
+  private hamiltonian(t: number, segment: number, re: Float64Array, im: Float64Array): void {
+    const { n, h, sample, own, raising } = this;
     this.drive.sample(t, segment, sample);
-    out.re.fill(0);
-    out.im.fill(0);
-    for (let i = 0; i < n; i++) out.im[i * n + i] = -h * this.energies[i];
-    this.raising.forEach((entries, c) => {
-      const a = 0.5 * h * sample[2 * c];
-      const b = 0.5 * h * sample[2 * c + 1];
-      for (const { row, col, value } of entries) {
-        out.re[row * n + col] += b * value;
-        out.im[row * n + col] -= a * value;
-        out.re[col * n + row] -= b * value;
-        out.im[col * n + row] -= a * value;
-      }
-    });
-  }
-
-  private product(a: Complex, b: Complex, out: Complex): void {
-    const { n } = this;
-    for (let i = 0; i < n * n; i += n) {
-      for (let j = 0; j < n; j++) {
-        let re = 0;
-        let im = 0;
-        for (let k = 0; k < n; k++) {
-          const ar = a.re[i + k];
-          const ai = a.im[i + k];
-          const br = b.re[k * n + j];
-          const bi = b.im[k * n + j];
-          re += ar * br - ai * bi;
-          im += ar * bi + ai * br;
-        }
-        out.re[i + j] = re;
-        out.im[i + j] = im;
-      }
+    re.fill(0);
+    im.fill(0);
+    for (let i = 0; i < n; i++) im[i * n + i] = -h * own[i];
+    for (let k = 0; k < raising.length; k++) {
+      const { component, upper, lower, value } = raising[k];
+      const a = 0.5 * h * value * sample[2 * component];
+      const b = 0.5 * h * value * sample[2 * component + 1];
+      re[upper * n + lower] += b;
+      im[upper * n + lower] -= a;
+      re[lower * n + upper] -= b;
+      im[lower * n + upper] -= a;
     }
   }
 
-  /** Of anti-Hermitian a and b: ab − (ab)†. */
-  private commutator(a: Complex, b: Complex, out: Complex): void {
+  private exponential(xr: Float64Array, xi: Float64Array): void {
     const { n } = this;
-    this.product(a, b, out);
-    for (let i = 0; i < n; i++) {
-      for (let j = i; j < n; j++) {
-        const re = out.re[i * n + j] - out.re[j * n + i];
-        const im = out.im[i * n + j] + out.im[j * n + i];
-        out.re[i * n + j] = re;
-        out.re[j * n + i] = -re;
-        out.im[i * n + j] = im;
-        out.im[j * n + i] = im;
-      }
-    }
-  }
-
-  private exponential(a: Complex): void {
-    const { n, re, im } = this;
+    const size = n * n;
     let norm = 0;
     for (let i = 0; i < n; i++) {
       let sum = 0;
-      for (let j = 0; j < n; j++) sum += Math.abs(a.re[i * n + j]) + Math.abs(a.im[i * n + j]);
+      for (let j = 0; j < n; j++) sum += Math.abs(xr[i * n + j]) + Math.abs(xi[i * n + j]);
       norm = Math.max(norm, sum);
     }
+    let scale = 1;
     let squarings = 0;
-    while (norm > SMALL) {
-      norm *= 0.5;
+    while (norm * scale > SMALL) {
+      scale *= 0.5;
       squarings++;
     }
-    const scale = 0.5 ** squarings;
-    const terms = Math.max(4, Math.ceil(13 + 3 * Math.log10(Math.max(norm, 1e-4) / SMALL)));
-    let [result, spare] = [this.work[0], this.work[1]];
-    // Horner: 1 + a(1 + a/2(1 + a/3(…))).
-    result.re.fill(0);
-    result.im.fill(0);
-    for (let i = 0; i < n; i++) result.re[i * n + i] = 1;
-    for (let k = terms; k >= 1; k--) {
-      this.product(a, result, spare);
-      const f = scale / k;
-      for (let i = 0; i < n * n; i++) {
-        spare.re[i] *= f;
-        spare.im[i] *= f;
+    for (let k = 0; k < size; k++) {
+      xr[k] *= scale;
+      xi[k] *= scale;
+    }
+    const [r2, i2, r3, i3, ur, ui, vr, vi] = this.work;
+    multiply(n, xr, xi, xr, xi, r2, i2);
+    multiply(n, r2, i2, xr, xi, r3, i3);
+    // Degree 9 in three groups of powers (Paterson & Stockmeyer, SIAM J. Comput. 2, 60 (1973)).
+    group(n, 6, xr, xi, r2, i2, ur, ui);
+    for (let k = 0; k < size; k++) {
+      ur[k] += r3[k] / FACTORIALS[9];
+      ui[k] += i3[k] / FACTORIALS[9];
+    }
+    for (let g = 3; g >= 0; g -= 3) {
+      multiply(n, ur, ui, r3, i3, vr, vi);
+      group(n, g, xr, xi, r2, i2, ur, ui);
+      for (let k = 0; k < size; k++) {
+        ur[k] += vr[k];
+        ui[k] += vi[k];
       }
-      for (let i = 0; i < n; i++) spare.re[i * n + i] += 1;
-      [result, spare] = [spare, result];
     }
     for (let k = 0; k < squarings; k++) {
-      this.product(result, result, spare);
-      [result, spare] = [spare, result];
+      multiply(n, ur, ui, ur, ui, vr, vi);
+      ur.set(vr);
+      ui.set(vi);
     }
-    re.set(result.re);
-    im.set(result.im);
+    const { driven, levels, re, im } = this;
+    for (let i = 0; i < n; i++) {
+      for (let j = 0; j < n; j++) {
+        re[driven[i] * levels + driven[j]] = ur[i * n + j];
+        im[driven[i] * levels + driven[j]] = ui[i * n + j];
+      }
+    }
   }
 }
 
-interface Complex {
-  readonly re: Float64Array;
-  readonly im: Float64Array;
+/** out = 1/g! + x/(g+1)! + x²/(g+2)!. */
+function group(
+  n: number,
+  g: number,
+  xr: Float64Array,
+  xi: Float64Array,
+  r2: Float64Array,
+  i2: Float64Array,
+  re: Float64Array,
+  im: Float64Array,
+): void {
+  const b = 1 / FACTORIALS[g + 1];
+  const c = 1 / FACTORIALS[g + 2];
+  for (let k = 0; k < n * n; k++) {
+    re[k] = b * xr[k] + c * r2[k];
+    im[k] = b * xi[k] + c * i2[k];
+  }
+  for (let i = 0; i < n; i++) re[i * n + i] += 1 / FACTORIALS[g];
+}
+
+function multiply(
+  n: number,
+  ar: Float64Array,
+  ai: Float64Array,
+  br: Float64Array,
+  bi: Float64Array,
+  re: Float64Array,
+  im: Float64Array,
+): void {
+  for (let i = 0; i < n * n; i += n) {
+    for (let j = 0; j < n; j++) {
+      let sr = 0;
+      let si = 0;
+      for (let k = 0, m = j; k < n; k++, m += n) {
+        sr += ar[i + k] * br[m] - ai[i + k] * bi[m];
+        si += ar[i + k] * bi[m] + ai[i + k] * br[m];
+      }
+      re[i + j] = sr;
+      im[i + j] = si;
+    }
+  }
+}
+
+/** Of anti-Hermitian a and b: ab − (ab)†. */
+function commutator(
+  n: number,
+  ar: Float64Array,
+  ai: Float64Array,
+  br: Float64Array,
+  bi: Float64Array,
+  re: Float64Array,
+  im: Float64Array,
+): void {
+  multiply(n, ar, ai, br, bi, re, im);
+  for (let i = 0; i < n; i++) {
+    for (let j = i; j < n; j++) {
+      const x = re[i * n + j] - re[j * n + i];
+      const y = im[i * n + j] + im[j * n + i];
+      re[i * n + j] = x;
+      re[j * n + i] = -x;
+      im[i * n + j] = y;
+      im[j * n + i] = y;
+    }
+  }
 }

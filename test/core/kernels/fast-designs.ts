@@ -1,7 +1,13 @@
 import { collectedDipoles } from '../../../core/emitter/generator.js';
 import type { Design, Tone } from '../../../core/index.js';
-import type { CountRequest, CountResult } from '../../../core/kernels/count.js';
+import {
+  type CountRequest,
+  type CountResult,
+  countByReference,
+  PropagationError,
+} from '../../../core/kernels/count.js';
 import { disagreement } from '../../../core/kernels/fast/estimate.js';
+import { fastKernels } from '../../../core/kernels/fast/registry.js';
 import { type Stream, stream } from '../../../core/numerics/stream.js';
 import { situation } from '../../../core/sample.js';
 import { RAD_PER_PS_PER_GHZ } from '../../../core/units/constants.js';
@@ -90,4 +96,80 @@ export function requestOf(d: Design, tolerance = 1e-10, parts = 1): CountRequest
 export function inPromises(a: CountResult, b: CountResult): number {
   const populations = Math.max(...a.populations.map((p, i) => Math.abs(p - b.populations[i])));
   return Math.max(disagreement(a.values, b.values), 0.1 * populations) / 1e-9;
+}
+
+export interface Agreement {
+  /** Designs that a fast kernel answered, that it left to the reference, and that were not compared. */
+  readonly fast: number;
+  readonly declined: number;
+  readonly skipped: number;
+  /** Largest error in units of the promise. */
+  readonly worst: number;
+  /** Command-like descriptions of designs whose error exceeds the promise. */
+  readonly wrong: readonly string[];
+}
+
+/**
+ * Compares the fast kernels with the reference at a hundredth of the usual tolerance. Where they differ the reference is
+ * refined once more, so that its own error is not taken for theirs.
+ * @param limits `most`: designs for which a kernel needs more steps are skipped (short test)
+ */
+export function agreement(
+  model: 'two-level' | 'cascade',
+  filtered: boolean,
+  count: number,
+  seed: number,
+  limits: { readonly most?: number },
+): Agreement {
+  const wrong: string[] = [];
+  let [fast, declined, skipped, worst] = [0, 0, 0, 0];
+  for (let index = 0; index < count; index++) {
+    const d = randomDesign(seed, index, model, filtered);
+    const most = limits.most ?? Number.POSITIVE_INFINITY;
+    if (effortOf(d) > most) {
+      skipped++;
+      continue;
+    }
+    const request = requestOf(d);
+    const found = fastKernels.find((k) => k.supports(request))?.count(request);
+    if (!found) {
+      declined++;
+      continue;
+    }
+    fast++;
+    const error = errorOf(found, request);
+    if (error === null) skipped++;
+    else {
+      worst = Math.max(worst, error);
+      if (error > 1) wrong.push(`seed ${seed}, index ${index}: ${error.toFixed(2)} times the promise`);
+    }
+  }
+  return { fast, declined, skipped, worst, wrong };
+}
+
+function errorOf(found: CountResult, request: CountRequest): number | null {
+  const effort = (tolerance: number, parts: number) => ({ ...request.effort, tolerance, parts });
+  try {
+    const error = inPromises(
+      found,
+      sameFigures(countByReference({ ...request, effort: effort(1e-12, 1) }), found),
+    );
+    if (error < 0.5) return error;
+    return inPromises(found, sameFigures(countByReference({ ...request, effort: effort(1e-12, 2) }), found));
+  } catch (cause) {
+    if (cause instanceof PropagationError) return null;
+    throw cause;
+  }
+}
+
+const sameFigures = (all: CountResult, like: CountResult): CountResult => ({
+  ...all,
+  values: Object.fromEntries(Object.keys(like.values).map((name) => [name, all.values[name]])),
+});
+
+/** Turns of the drive over the pulse: what a comparison costs, roughly. */
+function effortOf(d: Design): number {
+  const { drive } = requestOf(d);
+  const window = drive.breakpoints[drive.breakpoints.length - 1] - drive.breakpoints[0];
+  return window * (drive.scales.peakRabi + drive.scales.frequency + 1 / drive.scales.time);
 }
