@@ -16,7 +16,7 @@ export type CorrelationKind = 'bath' | 'even' | 'odd';
 
 const SAMPLES = 161;
 /** Level, relative to t = 0, below which a correlation no longer has to be fitted. */
-const NEGLIGIBLE = 1e-7;
+const NEGLIGIBLE = 1e-9;
 
 function series(bath: Bath, kind: CorrelationKind, times: Float64Array): ComplexSeries {
   if (kind === 'bath') return correlation(bath, times);

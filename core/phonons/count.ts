@@ -30,7 +30,17 @@ export function countWithPhonons(
   };
   checkRange(bath);
   const count = phononMethod(method).count(request, bath, quoted);
-  return { ...count, flags: [...count.flags, ...unphysical(count.values, method)] };
+  const strays = unphysical(count.values);
+  const cause = method === 'exact' ? 'hierarchy too small' : 'second-order method';
+  return {
+    ...count,
+    flags: [
+      ...count.flags,
+      ...strays.map(({ name, value }) => `${name} = ${value.toExponential(1)} is unphysical: ${cause}`),
+    ],
+    // Probabilities count a thousandfold in the error estimate of figures; no search can gain by going below zero.
+    error: strays.reduce((m, { excess }) => Math.max(m, 1000 * excess), count.error),
+  };
 }
 
 function checkRange({ coupling, cutoff, temperature }: Bath): void {
@@ -49,11 +59,12 @@ function checkRange({ coupling, cutoff, temperature }: Bath): void {
 /** Rounding and truncation may leave probabilities below zero by this much. */
 const ROUNDING = 1e-9;
 
-/** Probabilities below zero or above one, each with its value: never clamped. */
-function unphysical(values: Readonly<Record<string, number>>, method: string): string[] {
-  const cause = method === 'exact' ? 'hierarchy too small' : 'second-order method';
+/** Probabilities below zero or above one: flagged, never clamped. */
+function unphysical(
+  values: Readonly<Record<string, number>>,
+): { name: string; value: number; excess: number }[] {
   return Object.entries(values)
     .filter(([name]) => /^(p\d|multiphoton|thinned\w+)$/.test(name))
-    .filter(([, v]) => v < -ROUNDING || v > 1 + ROUNDING)
-    .map(([name, v]) => `${name} = ${v.toExponential(1)} is unphysical: ${cause}`);
+    .map(([name, value]) => ({ name, value, excess: Math.max(-value, value - 1) }))
+    .filter(({ excess }) => excess > ROUNDING);
 }

@@ -22,6 +22,8 @@ export interface SecondOrderModel {
   readonly baths: readonly CoupledBath[];
   /** Time after the drive during which the emitter still feels it through the bath, ps. */
   readonly afterglow: number;
+  /** Error of figures, in the measure of the error estimate, per error of the bath's fit; measured at 4 K. */
+  readonly fitSensitivity: number;
 }
 
 /** H/ħ in the rotating frame as a function of the drive values. */

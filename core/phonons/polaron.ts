@@ -26,6 +26,7 @@ export const polaron: PhononMethod = {
     const model: SecondOrderModel = {
       scheme,
       driveFactor: factor,
+      fitSensitivity: 60,
       // Both X vanish with the drive: nothing acts on the emitter after it.
       afterglow: 0,
       baths: [

@@ -10,6 +10,8 @@ import { sidebandTransmission } from './sideband.js';
 export const FIT_ERROR = 1e-9;
 export const MOST_TERMS = 16;
 
+/** Fit error from which the reader is told. */
+const COARSE_FIT = 1e-8;
 /** Runs a second-order model with the light split into zero-phonon line and sideband, and says what to know of it. */
 export function secondOrderCount(request: CountRequest, bath: Bath, model: SecondOrderModel): PhononCount {
   const { filter, frame } = request;
@@ -23,8 +25,14 @@ export function secondOrderCount(request: CountRequest, bath: Bath, model: Secon
     { amplitude: filter ? amplitude : 1, sideband },
     { time: 1 / bath.cutoff, settling: memoryTime(bath, 'bath', 1e-5) },
   );
-  const error = Math.max(...model.baths.map((b) => b.fit.error));
-  return { ...result, flags: [], error };
+  const fitted = Math.max(...model.baths.map((b) => b.fit.error));
+  const flags =
+    fitted > COARSE_FIT
+      ? [
+          `bath correlation fitted to ${fitted.toExponential(1)} only: its memory is long at so low a temperature`,
+        ]
+      : [];
+  return { ...result, flags, error: model.fitSensitivity * fitted };
 }
 
 /** Mean transition frequency of the collected dipoles relative to the nominal mean exciton line, 1/ps. */

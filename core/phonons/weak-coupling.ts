@@ -20,6 +20,7 @@ export const weakCoupling: PhononMethod = {
     const model: SecondOrderModel = {
       scheme: withRelaxationEnergy(scheme, relaxationShift(bath)),
       driveFactor: 1,
+      fitSensitivity: 1000,
       afterglow: memoryTime(bath, 'bath', 1e-5),
       baths: [
         {
