@@ -71,7 +71,68 @@ describe('scan', () => {
     expect(existsSync('study-scan.csv')).toBe(false);
   });
 
+  it('steps several parameters together', async () => {
+    const base = join(freshFolder(), 'line');
+    const argv = [
+      ...['scan', studyFile(FIXED), '--out', base, '--together', '--accuracy', 'search'],
+      ...['--over', 'tones.0.fwhm=2 ps..8 ps:3:log'],
+      ...['--over', 'tones.0.area=1 pi..0.5 pi:3'],
+      ...['--over', 'emitter.lifetime=100 ps..400 ps:3:log'],
+    ];
+    const { code, out } = await invoke(argv);
+    expect(code).toBe(0);
+    const [head, ...rows] = csvCells(readFileSync(`${base}.csv`, 'utf8'));
+    expect(head.slice(0, 3)).toEqual([
+      'pulse.tones.0.fwhm [ps]',
+      'pulse.tones.0.area [pi]',
+      'emitter.lifetime [ps]',
+    ]);
+    const values = rows.map((row) => row.slice(0, 3).map(Number));
+    [
+      [2, 1, 100],
+      [4, 0.75, 200],
+      [8, 0.5, 400],
+    ].forEach((row, i) => {
+      row.forEach((value, k) => {
+        expect(values[i][k]).toBeCloseTo(value, 9);
+      });
+    });
+    expect(out).toContain('tone 0 fwhm, tone 0 area, emitter lifetime');
+    const svg = readFileSync(`${base}.svg`, 'utf8');
+    expect(svg).toContain('tone 0 fwhm (ps); tone 0 area, emitter lifetime step along');
+    // Each point is the design that a single evaluation has.
+    const single = await invoke([
+      ...['evaluate', studyFile(FIXED), '--json', '--set', 'tones.0.fwhm=8 ps'],
+      ...['--set', 'tones.0.area=0.5 pi', '--set', 'emitter.lifetime=400 ps'],
+    ]);
+    const g2 = (JSON.parse(single.out) as { emitted: { g2: number } }).emitted.g2;
+    expect(Number(rows[2][head.indexOf('emitted.g2')]) / g2).toBeCloseTo(1, 5);
+  });
+
   it.each([
+    [
+      FIXED,
+      ['--together', '--over', 'tones.0.area=1 pi..2 pi:3', '--over', 'tones.0.fwhm=1 ps..2 ps:4'],
+      'got 4 values of pulse.tones.0.fwhm; needs 3',
+    ],
+    [
+      FIXED,
+      ['--together', '--over', 'tones.0.area=1 pi..2 pi:3', '--over', 'tones.0.fwhm=2 ps..2 ps:3'],
+      'needs two different ends',
+    ],
+    [
+      FIXED,
+      ['--together', '--over', 'tones.0.area=1 pi..2 pi:3', '--over', 'tones.0.detuning=1 meV..-1 meV:3:log'],
+      'got -1 meV with log; needs more than 0',
+    ],
+    [
+      FIXED,
+      ['area=1 pi..2 pi:3', 'fwhm=1 ps..2 ps:3', 'delay=1 ps..2 ps:3'].flatMap((o) => [
+        '--over',
+        `tones.0.${o}`,
+      ]),
+      'needs one or two, or --together',
+    ],
     [FIXED, ['--over', 'tones.0.area=0..4:5'], 'got 0 (no unit); needs a pulse area'],
     [FIXED, ['--over', 'tones.0.aera=0 pi..4 pi:5'], 'nearest: pulse.tones.0.area'],
     [FIXED, ['--over', 'tones.1.area=0 pi..4 pi:5'], 'needs one at which a quantity of this study stands'],

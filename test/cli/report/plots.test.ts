@@ -3,6 +3,7 @@ import { describe, expect, it } from 'vitest';
 import { type CurvesPlot, plotCurves } from '../../../cli/report/plots/curves.js';
 import { type FrontPlot, frontChart, plotFront } from '../../../cli/report/plots/front.js';
 import { type MapPlot, plotMap } from '../../../cli/report/plots/map.js';
+import { plotSeries, seriesChart } from '../../../cli/report/plots/series.js';
 
 const points = Array.from({ length: 40 }, (_, i) => ({
   brightness: 0.2 + i / 100,
@@ -94,6 +95,30 @@ describe('pictures', () => {
       expect(svg).not.toContain('NaN');
       expect(painted(svg).colours).toBeGreaterThan(3);
     }
+  });
+
+  it('name every line of a panel and leave out what a logarithm cannot show', async () => {
+    const series = {
+      title: 'Lines',
+      subtitle:
+        'a subtitle that is too long for the panel, broken at its commas, so that the right stays full',
+      xTitle: 'pulse width (ps)',
+      yTitle: 'g⁽²⁾[0]',
+      logX: true,
+      logY: true,
+      series: ['first', 'second'].map((name, k) => ({
+        name,
+        points: [0, 1, 2, 3].map((x) => ({ x, y: k + x * 1e-4 })),
+      })),
+    };
+    const svg = await plotSeries(series);
+    expect(await plotSeries(series)).toBe(svg);
+    for (const text of ['first', 'second', 'pulse width (ps)', 'g⁽²⁾[0]']) expect(svg).toContain(text);
+    expect(svg).not.toMatch(/NaN|Infinity|undefined/);
+    expect(painted(svg).width).toBeLessThan(700);
+    const drawn = JSON.stringify(seriesChart(series));
+    expect(drawn).not.toContain('"x":0,');
+    expect(drawn.match(/"name":"first"/g)).toHaveLength(3);
   });
 
   it('have a colour bar on a map and leave cells without a value white', async () => {
