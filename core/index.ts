@@ -20,6 +20,15 @@ export {
   PropagationError,
 } from './kernels/count.js';
 export * from './numerics/index.js';
+export { type Bath, correlation, displacement, relaxationShift, spectralDensity } from './phonons/bath.js';
+export { type Choice, chooseMethod, type DriveKind } from './phonons/choose.js';
+export type { PhononCount, PhononMethod } from './phonons/contract.js';
+export { correlationFit, frankCondon, memoryTime, settledFit } from './phonons/correlations.js';
+export { countWithPhonons, PhononRangeError } from './phonons/count.js';
+export { usualSize } from './phonons/exact.js';
+export { countWithHierarchy, type TowerSize } from './phonons/hierarchy-count.js';
+export { phononMethod, phononMethods } from './phonons/registry.js';
+export { sidebandTransmission } from './phonons/sideband.js';
 export * from './pulse/contract.js';
 export * from './pulse/index.js';
 export { type Situation, situation } from './sample.js';

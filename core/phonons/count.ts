@@ -43,17 +43,20 @@ export function countWithPhonons(
   };
 }
 
-function checkRange({ coupling, cutoff, temperature }: Bath): void {
+function checkRange(bath: Bath): void {
+  const problem = phononRangeProblem(bath);
+  if (problem !== null) throw new PhononRangeError(problem);
+}
+
+/** What is wrong with a bath, got and wanted; null when every method can take it. */
+export function phononRangeProblem({ coupling, cutoff, temperature }: Bath): string | null {
   if (!(temperature >= 0 && temperature <= HOTTEST)) {
-    throw new PhononRangeError(
-      `emitter.phonons.temperature: got ${temperature} K; the bath's correlation is fitted from 0 K to ${HOTTEST} K`,
-    );
+    return `emitter.phonons.temperature: got ${temperature} K; the bath's correlation is fitted from 0 K to ${HOTTEST} K`;
   }
   if (!(coupling > 0) || !(cutoff > 0)) {
-    throw new PhononRangeError(
-      `emitter.phonons: got coupling ${coupling} ps^2 and cutoff ${cutoff} 1/ps; both need more than 0`,
-    );
+    return `emitter.phonons: got coupling ${coupling} ps^2 and cutoff ${cutoff} 1/ps; both need more than 0`;
   }
+  return null;
 }
 
 /** Rounding and truncation may leave probabilities below zero by this much. */

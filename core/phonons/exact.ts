@@ -1,7 +1,7 @@
 import type { CountRequest } from '../kernels/count.js';
 import type { Bath } from './bath.js';
 import type { PhononCount, PhononMethod } from './contract.js';
-import { correlationFit } from './correlations.js';
+import { correlationFit, frankCondon } from './correlations.js';
 import { countWithHierarchy, type TowerCount, type TowerSize } from './hierarchy-count.js';
 
 /** Largest relative difference of any figure between a size and the next larger one, when quoted. */
@@ -30,12 +30,16 @@ export const exact: PhononMethod = {
   },
 };
 
-/** Depth 3 for at most one exciton, 4 for a biexciton (whose coupling is twice as strong), and as many terms as fit the bath. */
+/**
+ * Depth 3 for at most one exciton, 4 for a biexciton (whose coupling is twice as strong), more for a warm bath, which holds
+ * about φ(0) phonons per exciton; and as many terms as fit the bath.
+ */
 export function usualSize(request: CountRequest, bath: Bath): TowerSize {
   const excitons = Math.max(...request.scheme.levels.map((l) => l.excitons));
   let terms = FEWEST_TERMS;
   while (terms < MOST_TERMS && correlationFit(bath, 'bath', terms).error > USUAL_FIT) terms += 1;
-  return { terms, depth: 2 + excitons };
+  const warm = Math.max(0, Math.ceil(-4 * Math.log(frankCondon(bath)) - 0.3));
+  return { terms, depth: Math.min(2 + excitons + warm, MOST_DEPTH) };
 }
 
 function unsettled(request: CountRequest, bath: Bath, size: TowerSize): PhononCount {

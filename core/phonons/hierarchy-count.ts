@@ -1,7 +1,9 @@
+import { HierarchyBuilder } from '../counting/hierarchy.js';
 import { tailEffects } from '../counting/tail.js';
-import { buildGenerator } from '../emitter/generator.js';
+import { buildGenerator, type Generator } from '../emitter/generator.js';
 import { type CountRequest, type CountResult, meshFor, PropagationError } from '../kernels/count.js';
-import { type Mesh, propagate } from '../kernels/mesh.js';
+import { LinearSystem } from '../kernels/linear-system.js';
+import { type Mesh, propagate, uniformMesh } from '../kernels/mesh.js';
 import type { Drive } from '../pulse/drive.js';
 import { type Bath, relaxationShift } from './bath.js';
 import { correlationFit } from './correlations.js';
@@ -60,12 +62,36 @@ export function countWithHierarchy(request: CountRequest, bath: Bath, size: Towe
   });
   return {
     values,
-    populations: scheme.levels.map((_, i) => state[system.root(i, 0)]),
+    populations: decayed(system, generator, state, endOf(request.drive) - endOf(drive)),
     steps: mesh.segments.length,
     localErrors: base.localErrors,
     fitError: fit.error,
     operators: tower.operators,
   };
+}
+
+const endOf = (drive: Drive): number => drive.breakpoints[drive.breakpoints.length - 1];
+
+/** Populations a time (ps) later without drive: they decay as without a bath. */
+function decayed(system: TowerSystem, generator: Generator, state: Float64Array, time: number): number[] {
+  const rho = new LinearSystem(generator, new HierarchyBuilder().build());
+  const root = Float64Array.from({ length: system.size }, (_, c) => state[system.root(c, 0)]);
+  const levels = Array.from({ length: generator.levels }, (_, i) => i);
+  if (!(time > 0)) return levels.map((i) => root[i]);
+  // Coherences turn fast but feed no population: leave them out, so that a few steps suffice.
+  root.fill(0, generator.levels);
+  const silent = {
+    components: generator.real.length,
+    breakpoints: Float64Array.of(0, time),
+    scales: { peakRabi: 0, frequency: 0, time },
+    sample: (_t: number, _segment: number, out: Float64Array) => out.fill(0),
+  };
+  const later = propagate(
+    { length: rho.length, initial: () => root, derivative: (d, y, dy) => rho.derivative(d, y, dy) },
+    silent,
+    uniformMesh(silent, 4),
+  );
+  return levels.map((i) => later[i]);
 }
 
 /** Steps no longer than `longest`; shorter ones when the state nevertheless grows, as a density operator never does. */

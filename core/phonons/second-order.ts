@@ -44,7 +44,12 @@ export function countSecondOrder(
     TRANSIENT_STEP * bath.time,
   );
   const drive = dressedDrive(request.drive, table, model.driveFactor);
-  const state = propagate(system, drive, effort.parts > 1 ? refineMesh(mesh, effort.parts) : mesh);
+  const driveEnd = request.drive.breakpoints[request.drive.breakpoints.length - 1];
+  let populations: readonly number[] = [];
+  const steps = effort.parts > 1 ? refineMesh(mesh, effort.parts) : mesh;
+  const state = propagate(system, drive, steps, (t, y) => {
+    if (t <= driveEnd) populations = scheme.levels.map((_, i) => y[i * system.inner.lanes]);
+  });
   const effects = tailEffects(buildGenerator(scheme, frame, shift), hierarchy);
   const values: Record<string, number> = {};
   effects.names.forEach((name, i) => {
@@ -52,7 +57,7 @@ export function countSecondOrder(
   });
   return {
     values,
-    populations: scheme.levels.map((_, i) => state[i * system.inner.lanes]),
+    populations,
     steps: mesh.segments.length * effort.parts,
     localErrors: mesh.localErrors,
   };

@@ -1,5 +1,5 @@
 import { describe, expect, it } from 'vitest';
-import { evaluate } from '../../../core/evaluate.js';
+import { evaluate, UnsupportedDesign } from '../../../core/evaluate.js';
 import { countByReference } from '../../../core/kernels/count.js';
 import { correlationFit, frankCondon } from '../../../core/phonons/correlations.js';
 import { countWithPhonons } from '../../../core/phonons/count.js';
@@ -99,6 +99,8 @@ describe('flags and choices', () => {
   it('refuses what the fits were not made for, and holds the whole range it names', () => {
     const request = twoLevelRequest([{ fwhm: 5 }], 500);
     expect(() => countWithPhonons(request, phonons(301), 'polaron')).toThrow(/301 K.*0 K to 300 K/);
+    const hot = design(twoLevelEmitter({ phonons: phonons(301) }), [tone()]);
+    expect(() => evaluate(hot, 'search')).toThrow(UnsupportedDesign);
     expect(() => countWithPhonons(request, phonons(4, { cutoff: 0 }), 'polaron')).toThrow(/cutoff 0/);
     for (const temperature of slow ? [0, 0.5, 1, 4, 20, 77, 300] : [0, 1, 300]) {
       const bath = phonons(temperature);
