@@ -47,11 +47,16 @@ export const kicked: FastKernel = {
 /** Accepted error in units of the effort's tolerance per step. */
 const ACCEPT = 10;
 const MOST_STEPS = 60_000;
+/** Shares of the emitted kernel's steps: a few more runs of the extrapolation cost less than a fine first one. */
+const SMOOTH = 0.9;
+const UNEVEN = 0.35;
+/** Largest ‖hK‖ of the first run. */
+const RESOLVED = 4;
 /**
  * First guesses above which the reference, with its larger steps of higher order, was measured to be as fast: two levels
  * filtered, more levels filtered, more levels emitted.
  */
-const MOST_FIRST = { two: 10_000, filtered: 1500, emitted: 400 };
+const MOST_FIRST = { two: 4000, filtered: 1500, emitted: 400 };
 /** Damping per step above which the series in h² is not worth starting. */
 const MOST_DAMPING = 30;
 
@@ -107,10 +112,10 @@ export function prepare(request: CountRequest): Problem | null {
   const smooth = two && (steady || scales.frequency === 0);
   const energy = Math.max(...energies.map(Math.abs));
   const rate = two
-    ? coherentRate(drive, rabi, energy, smooth)
+    ? (smooth ? SMOOTH : UNEVEN) * coherentRate(drive, rabi, energy, smooth)
     : 1.4 / scales.time + 0.6 * rabi + 0.6 * Math.hypot(rabi, energy + scales.frequency);
   if (norm > MOST_DAMPING * rate) return null;
-  const steps = Math.ceil((end - start) * Math.max(rate, norm / 1.5));
+  const steps = Math.ceil((end - start) * Math.max(rate, norm / RESOLVED));
   if (steps > (two ? MOST_FIRST.two : request.filter ? MOST_FIRST.filtered : MOST_FIRST.emitted)) return null;
   return { request, layout, line, used: used.map(([re, im]) => re || im), steps, follow: steady, start, end };
 }
