@@ -1,9 +1,8 @@
 import { figureDifference } from './accuracy.js';
 import type { Design } from './design.js';
 import { weightedMean } from './drift/mean.js';
-import { type DriftAxes, driftAxes, driftNodes } from './drift/nodes.js';
-import { driftQuantiles } from './drift/quantile.js';
-import type { Figures, FigureTree, Note, QuantileFigures } from './figures.js';
+import { driftNodes } from './drift/nodes.js';
+import type { Figures, FigureTree, Note } from './figures.js';
 import type { Effort } from './kernels/count.js';
 import { phononRangeProblem } from './phonons/count.js';
 import { pulseFigures } from './pulse/figures.js';
@@ -33,8 +32,7 @@ export function evaluate(design: Design, accuracy: Accuracy): Figures {
   checkSupport(design);
   const tree = evaluateTree(design, accuracy);
   if (!design.drift) return { ...tree, nominal: null };
-  const { quantile: _none, ...nominal } = evaluateTree({ ...design, drift: null }, accuracy);
-  return { ...tree, nominal };
+  return { ...tree, nominal: evaluateTree({ ...design, drift: null }, accuracy) };
 }
 
 function checkSupport(design: Design): void {
@@ -53,10 +51,7 @@ export class UnsupportedDesign extends Error {
   override readonly name = 'UnsupportedDesign';
 }
 
-/** The means with the quantiles, where a design asks for them. */
-type DriftTree = FigureTree & Pick<Figures, 'quantile'>;
-
-function evaluateTree(design: Design, accuracy: Accuracy): DriftTree {
+function evaluateTree(design: Design, accuracy: Accuracy): FigureTree {
   if (accuracy === 'search') return evaluateOnce(design, SEARCH);
   // The exact phonon method settles by its own size; what finer steps could add lies far below that.
   if (hasPhonons(design) && design.emitter.phonons?.method === 'exact') {
@@ -72,7 +67,7 @@ function evaluateTree(design: Design, accuracy: Accuracy): DriftTree {
   }
 }
 
-function withEstimate(tree: DriftTree, estimate: number): DriftTree {
+function withEstimate(tree: FigureTree, estimate: number): FigureTree {
   const notes: Note[] = [...tree.notes];
   if (estimate > PROMISED) {
     notes.push({
@@ -83,10 +78,9 @@ function withEstimate(tree: DriftTree, estimate: number): DriftTree {
   return { ...tree, notes, accuracy: { ...tree.accuracy, error_estimate: estimate } };
 }
 
-function evaluateOnce(design: Design, effort: Effort): DriftTree {
+function evaluateOnce(design: Design, effort: Effort): FigureTree {
   const duration = design.drift ? pulseFigures(design.pulse).duration_ps : 0;
-  const axes = driftAxes(design, duration, effort.nodes);
-  const nodes = driftNodes(design, axes);
+  const nodes = driftNodes(design, duration, effort.nodes);
   const runs = nodes.map((node) => sampleDesign(design, node, effort));
   const mean = weightedMean(
     runs.map((r) => r.sample),
@@ -94,7 +88,7 @@ function evaluateOnce(design: Design, effort: Effort): DriftTree {
   );
   const { method } = runs[0].phonons;
   const flags = [...new Set(runs.flatMap((r) => r.phonons.flags))];
-  const tree = figureTree(
+  return figureTree(
     mean,
     { method, flags },
     {
@@ -102,35 +96,7 @@ function evaluateOnce(design: Design, effort: Effort): DriftTree {
       error_estimate: runs.reduce((m, r) => Math.max(m, r.error), 0),
     },
   );
-  const share = design.drift?.quantile ?? null;
-  const samples = runs.map((r) => r.sample);
-  return { ...tree, quantile: share === null ? null : quantileFigures(samples, axes, share) };
 }
-
-/** Brightness that a share of the drift reaches, and impurity that it does not exceed. */
-function quantileFigures(samples: readonly Sample[], axes: DriftAxes, share: number): QuantileFigures {
-  const over = (of: (s: Sample) => number | null, below: number): number | null => {
-    const values = samples.map(of);
-    return values.includes(null)
-      ? null
-      : driftQuantiles(axes, [{ values: values as number[], share: below }])[0];
-  };
-  return {
-    share,
-    signal: {
-      single: over((s) => s.signal.single, 1 - share),
-      any: over((s) => anyOf(s.signal), 1 - share),
-      mean: over((s) => s.signal.mean, 1 - share),
-    },
-    collected: {
-      multiphoton: over((s) => s.collected.multiphoton, share),
-      g2: over((s) => ratio(s.collected.factorial2, s.collected.mean), share),
-    },
-  };
-}
-
-const anyOf = (c: Sample['signal']): number | null =>
-  c.single === null || c.multiphoton === null ? null : c.single + c.multiphoton;
 
 function ratio(factorial2: number, mean: number): number | null {
   return mean > 0 ? factorial2 / (mean * mean) : null;
@@ -154,7 +120,7 @@ function figureTree(s: Sample, phonons: FigureTree['phonons'], accuracy: FigureT
   const count = (c: Sample['signal']) => ({
     mean: c.mean,
     single: c.single,
-    any: anyOf(c),
+    any: c.single === null || c.multiphoton === null ? null : c.single + c.multiphoton,
     multiphoton: c.multiphoton,
     g2: ratio(c.factorial2, c.mean),
   });
