@@ -95,7 +95,10 @@ function specOf(instance: Instance, evaluations: number, seed: number): ProblemS
       pulse: { reference: 'exciton', tones: Array.from({ length: instance.tones }, () => tone) },
       collection: { line: 'exciton', polarization: 'all', efficiency: 1, filter: null },
       laser: null,
-      drift: instance.areaDrift > 0 ? { area: instance.areaDrift, width: 0, detuning: 0 } : null,
+      drift:
+        instance.areaDrift > 0
+          ? { area: instance.areaDrift, width: 0, detuning: 0, filterCenter: 0, quantile: null }
+          : null,
     },
     parameters: instance.parameters,
     ties: [],
@@ -104,8 +107,9 @@ function specOf(instance: Instance, evaluations: number, seed: number): ProblemS
       brightness: 'single',
       atLeast: 0.95,
       front: { from: 0.5, to: 0.999, points: 100 },
+      limits: [],
     },
-    search: { evaluations, seed },
+    search: { evaluations, seed, method: 'auto' },
   };
 }
 

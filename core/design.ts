@@ -61,6 +61,10 @@ export interface DriftSpec {
   readonly width: number;
   /** Rms of the emitter's line, meV. */
   readonly detuning: number;
+  /** Rms of the filter's centre, GHz. */
+  readonly filterCenter: number;
+  /** Null: a goal is judged on means. Else the share of the drift for which brightness and impurity must hold. */
+  readonly quantile: number | null;
 }
 
 /** A complete design: every number is fixed and in internal units. `evaluate` takes this and nothing else. */

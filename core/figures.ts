@@ -77,7 +77,16 @@ export interface FigureTree {
   readonly notes: readonly Note[];
 }
 
+/** Figures over a stated share of the drift: brightness at least, impurity at most that high. */
+export interface QuantileFigures {
+  readonly share: number;
+  readonly signal: Readonly<Record<'single' | 'any' | 'mean', number | null>>;
+  readonly collected: Readonly<Record<'multiphoton' | 'g2', number | null>>;
+}
+
 export interface Figures extends FigureTree {
+  /** What goals are judged on where `drift.judge` is `quantile`; null otherwise. */
+  readonly quantile: QuantileFigures | null;
   /** With drift: the same tree without it; null without drift. */
   readonly nominal: FigureTree | null;
 }

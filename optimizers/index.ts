@@ -15,6 +15,7 @@ export * from './local/session.js';
 export { type SqpOptions, sqp } from './local/sqp.js';
 export * from './problem/contract.js';
 export * from './problem/judge.js';
+export * from './problem/limits.js';
 export * from './problem/path.js';
 export * from './problem/problem.js';
 export * from './problem/space.js';

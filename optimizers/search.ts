@@ -36,8 +36,13 @@ export interface SearchOptions {
 
 /** Takes in a task's points; its evaluations count when its stage is over. */
 function absorb(known: Knowledge, result: TaskResult): void {
-  for (const point of result.points)
-    known.archive.add({ ...point, ...judge(point.figures, known.spec.goal) });
+  const { goal } = known.spec;
+  for (const { values, figures } of result.points) {
+    const { impurity, brightness } = judge(figures, goal);
+    known.archive.add({ values, figures, impurity, brightness });
+  }
+  const { nearest } = result;
+  if (nearest !== undefined) known.nearest.offer(nearest, judge(nearest.figures, goal).violation);
 }
 
 /** State of the run that progress and the outcome are told from. */

@@ -1,6 +1,8 @@
 import { join } from 'node:path';
 import { evaluate, UnsupportedDesign } from '../../core/index.js';
+import { judge } from '../../optimizers/index.js';
 import { frontText, levelList } from '../report/front-text.js';
+import { infeasibleText } from '../report/limits-text.js';
 import type { RunResult } from '../run/contract.js';
 import { openRun } from '../run/directory.js';
 import { frontDocument } from '../run/front-json.js';
@@ -14,12 +16,12 @@ import { loadStudy } from './study-file.js';
 
 /** Designs whose brightness, evaluated anew, misses the level that the search had them at. */
 function shortfalls(result: RunResult): string[] {
-  const { brightness } = result.study.goal;
+  const { goal } = result.study;
   const points = result.best === null ? result.front : [...result.front, result.best];
   return points.flatMap(({ file, level, figures }) => {
-    const value = figures.signal[brightness] ?? 0;
+    const value = judge(figures, goal).brightness;
     if (result.study.parameters.length === 0 || value >= level * (1 - 1e-6)) return [];
-    return [`${file}: signal.${brightness} is ${value} at accuracy quoted; the level is ${level}`];
+    return [`${file}: signal.${goal.brightness} is ${value} at accuracy quoted; the level is ${level}`];
   });
 }
 
@@ -28,6 +30,10 @@ function conclude(result: RunResult, directory: string, json: boolean, context: 
   for (const line of missed) context.note(line);
   if (json) context.print(JSON.stringify(frontDocument(result), null, 2));
   else context.print(frontText(result, directory, context.color));
+  if (result.nearest !== null) {
+    context.note(infeasibleText(result.nearest, result.study, result.outcome.evaluations));
+    return 1;
+  }
   if (result.outOfReach.length > 0) {
     if (json) context.note(`brightness levels out of reach: ${levelList(result.outOfReach)}`);
     return 1;

@@ -35,6 +35,13 @@ export function outOfReach(study: Study, outcome: SearchOutcome): number[] {
   return levels.sort((a, b) => a - b);
 }
 
+/** The evaluation nearest to limits that none met, evaluated anew. */
+export function quoteNearest(study: Study, { nearest }: SearchOutcome): EvaluatedPoint | null {
+  if (nearest === null) return null;
+  const { values } = nearest;
+  return { values, figures: evaluate(applyParameters(study, values), 'quoted') };
+}
+
 export interface Quoted {
   readonly front: readonly FrontDesign[];
   readonly best: FrontDesign | null;

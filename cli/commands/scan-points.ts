@@ -84,7 +84,12 @@ function shownFigures(asked: readonly string[], study: Study, shape: FigureShape
 
 function shapeFor({ emitter, collection, drift }: Design): FigureShape {
   const { levels } = emitterModel(emitter.model).scheme(emitter);
-  return { filtered: collection.filter !== null, drift: drift !== null, levels: levels.map((l) => l.name) };
+  return {
+    filtered: collection.filter !== null,
+    drift: drift !== null,
+    quantile: drift !== null && drift.quantile !== null,
+    levels: levels.map((l) => l.name),
+  };
 }
 
 async function evaluatePoints(plan: Plan, context: Context): Promise<(Figures | null)[]> {

@@ -7,7 +7,7 @@ import type { Run } from '../run/directory.js';
 import { packageVersion } from '../run/package.js';
 import { writeResults } from '../run/results.js';
 import type { Context } from './contract.js';
-import { outOfReach, quoteFront } from './quote.js';
+import { outOfReach, quoteFront, quoteNearest } from './quote.js';
 import type { StudyFile } from './study-file.js';
 
 /** What one session of a run works with. */
@@ -57,7 +57,12 @@ async function work(session: Session): Promise<RunResult | null> {
   if (quoted === null) return null;
   const result: RunResult = {
     ...{ study, hash, version: packageVersion(), wall },
-    ...{ front: quoted.front, best: quoted.best, outOfReach: outOfReach(study, outcome) },
+    ...{
+      front: quoted.front,
+      best: quoted.best,
+      nearest: quoteNearest(study, outcome),
+      outOfReach: outOfReach(study, outcome),
+    },
     ...{ archive: outcome.archive, outcome },
   };
   await writeResults(session.run.directory, result, await frontPicture(result));

@@ -27,9 +27,11 @@ function cleaned(value: number, parameter: FreeParameter): number {
 function table(result: RunResult, points: readonly FrontDesign[], color: boolean): string {
   const { goal, parameters } = result.study;
   const others = ['multiphoton', 'g2'].filter((name) => name !== goal.impurity);
+  // What the goal was judged on comes first.
+  const judged = (result.study.design.drift?.quantile ?? null) === null ? '' : 'quantile.';
   const figures = [
-    `signal.${goal.brightness}`,
-    `collected.${goal.impurity}`,
+    `${judged}signal.${goal.brightness}`,
+    `${judged}collected.${goal.impurity}`,
     ...others.map((name) => `collected.${name}`),
   ];
   const { study } = result;
@@ -37,7 +39,11 @@ function table(result: RunResult, points: readonly FrontDesign[], color: boolean
     const voltage = biasOf(study, applyParameters(study, values));
     return voltage === null ? [] : [formatQuantity(voltage, 'voltage', 4)];
   };
-  const head = (path: string) => `${symbolOf(path.slice(path.indexOf('.') + 1))}\n${path.split('.')[0]}`;
+  const head = (path: string) => {
+    const parts = path.split('.');
+    const basis = parts[parts.length - 2];
+    return `${symbolOf(parts[parts.length - 1])}\n${parts.length > 2 ? `${basis}, quantile` : basis}`;
+  };
   return tableText(
     {
       head: [

@@ -33,6 +33,8 @@ export function symbolOf(name: string): string {
 /** Title of a figure for axes and headings: symbol and basis, or unit. */
 export function figureLabel(path: string): string {
   if (path.startsWith('nominal.')) return `${figureLabel(path.slice('nominal.'.length))}, without drift`;
+  if (path.startsWith('quantile.'))
+    return `${figureLabel(path.slice('quantile.'.length))}, quantile of the drift`;
   if (OTHERS[path] !== undefined) return OTHERS[path];
   const [head, ...rest] = path.split('.');
   if (head === 'populations') return `population of ${rest.join('.')} after the pulse`;

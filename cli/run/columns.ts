@@ -1,9 +1,11 @@
-import type { Figures, FigureTree } from '../../core/index.js';
+import type { Figures } from '../../core/index.js';
 
 /** What decides which figures exist: the same for every point of a run or scan. */
 export interface FigureShape {
   readonly filtered: boolean;
   readonly drift: boolean;
+  /** Goals are judged on a quantile of the drift. */
+  readonly quantile?: boolean;
   readonly levels: readonly string[];
 }
 
@@ -18,6 +20,8 @@ export function figureAt(figures: Figures, path: string): number | null {
 }
 
 const SIGNAL = ['single', 'any', 'mean', 'multiphoton', 'g2'];
+
+const QUANTILES = ['signal.single', 'signal.any', 'signal.mean', 'collected.multiphoton', 'collected.g2'];
 
 function treePaths(shape: FigureShape): string[] {
   return [
@@ -38,14 +42,16 @@ function treePaths(shape: FigureShape): string[] {
 /** Paths of all figures, in column order; under drift also those without it. */
 export function figurePaths(shape: FigureShape): string[] {
   const paths = treePaths(shape);
-  return shape.drift ? [...paths, ...paths.map((path) => `nominal.${path}`)] : paths;
+  const quantiles = shape.quantile === true ? QUANTILES.map((name) => `quantile.${name}`) : [];
+  return shape.drift ? [...quantiles, ...paths, ...paths.map((path) => `nominal.${path}`)] : paths;
 }
 
 /** The shape of one evaluated point. */
-export function shapeOf(figures: FigureTree & { readonly nominal: FigureTree | null }): FigureShape {
+export function shapeOf(figures: Figures): FigureShape {
   return {
     filtered: figures.filtered !== null,
     drift: figures.nominal !== null,
+    quantile: figures.quantile !== null,
     levels: Object.keys(figures.populations),
   };
 }

@@ -28,6 +28,8 @@ export interface RunResult extends RunIdentity {
   readonly best: FrontDesign | null;
   /** Brightness levels asked for that no design reaches. */
   readonly outOfReach: readonly number[];
+  /** Where no evaluation met the limits of the goal: the nearest one, evaluated anew. */
+  readonly nearest: EvaluatedPoint | null;
   readonly archive: readonly EvaluatedPoint[];
   readonly outcome: Pick<SearchOutcome, 'evaluations' | 'hypervolume' | 'stages'>;
   /** Wall time of the search, all sessions together, s. */

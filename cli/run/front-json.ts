@@ -7,10 +7,12 @@ import { columnOf, inColumn } from './parameters.js';
 export function frontDocument(result: RunResult): unknown {
   const { study, hash, version, outcome } = result;
   const { goal, search, parameters } = study;
+  const parametersOf = (values: readonly number[]) =>
+    Object.fromEntries(parameters.map((p, i) => [columnOf(p.path), inColumn(values[i], p.path)]));
   const point = ({ level, file, values, figures }: FrontDesign) => ({
     level,
     design: file,
-    parameters: Object.fromEntries(parameters.map((p, i) => [columnOf(p.path), inColumn(values[i], p.path)])),
+    parameters: parametersOf(values),
     bias_mv: biasOf(study, applyParameters(study, values)),
     figures,
   });
@@ -22,10 +24,19 @@ export function frontDocument(result: RunResult): unknown {
       impurity: `collected.${goal.impurity}`,
       brightness: `signal.${goal.brightness}`,
       at_least: goal.atLeast,
+      limits: goal.limits.map(({ figure, atMost, atLeast }) => ({
+        figure,
+        at_most: atMost,
+        at_least: atLeast,
+      })),
     },
     accuracy: 'quoted',
     points: result.front.map(point),
     best: result.best && point(result.best),
+    nearest_to_limits: result.nearest && {
+      parameters: parametersOf(result.nearest.values),
+      figures: result.nearest.figures,
+    },
     out_of_reach: result.outOfReach,
     archive_points: result.archive.length,
     evaluations: outcome.evaluations,

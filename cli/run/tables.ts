@@ -24,7 +24,12 @@ function identityLines({ study, hash, version }: RunIdentity): string[] {
 function figureShape({ study }: RunIdentity, points: readonly EvaluatedPoint[]): FigureShape {
   const { collection, drift } = study.design;
   const levels = points.length > 0 ? Object.keys(points[0].figures.populations) : [];
-  return { filtered: collection.filter !== null, drift: drift !== null, levels };
+  return {
+    filtered: collection.filter !== null,
+    drift: drift !== null,
+    quantile: drift !== null && drift.quantile !== null,
+    levels,
+  };
 }
 
 /** Parameter cells, the bias to set where the line can be tuned, and figure cells of points, with their columns. */

@@ -2,15 +2,20 @@ import type { Design } from '../design.js';
 import { gaussHermite } from '../numerics/index.js';
 import { HBAR, RAD_PER_PS_PER_GHZ } from '../units/constants.js';
 
-/** One point of a drift average. Relative changes of every area and width in common; shift of the emitter, meV. */
+/**
+ * One point of a drift average. Relative changes of every area and width in common; shift of the emitter, meV; shift of
+ * the filter's centre, GHz (0 when left out).
+ */
 export interface DriftNode {
   readonly weight: number;
   readonly area: number;
   readonly width: number;
   readonly shift: number;
+  readonly center?: number;
 }
 
-interface Rule {
+/** Nodes and weights for the mean over a standard normal variable. */
+export interface Rule {
   readonly nodes: readonly number[];
   readonly weights: readonly number[];
 }
@@ -55,14 +60,22 @@ function trapezoid(step: number, half: number): Rule {
 
 const SINGLE: Rule = { nodes: [0], weights: [1] };
 
+/** The rules of every drift of a design: area, width, detuning, filter centre; one node where there is none. */
+export interface DriftAxes {
+  readonly area: Rule;
+  readonly width: Rule;
+  readonly shift: Rule;
+  readonly center: Rule;
+}
+
 /**
- * The tensor product of the rules of every drift of a design, chosen from the pulse and the filter.
- * @param effort 1 for a search; larger for a check with more nodes
+ * The rule of each drift, chosen from the pulse and the filter.
  * @param duration time in which the drive acts, ps
+ * @param effort 1 for a search; larger for a check with more nodes
  */
-export function driftNodes(design: Design, duration: number, effort: number): DriftNode[] {
+export function driftAxes(design: Design, duration: number, effort: number): DriftAxes {
   const { drift, pulse, collection, emitter } = design;
-  if (!drift) return [{ weight: 1, area: 0, width: 0, shift: 0 }];
+  if (!drift) return { area: SINGLE, width: SINGLE, shift: SINGLE, center: SINGLE };
   const rotation = pulse.tones.reduce((s, t) => s + Math.abs(t.area), 0);
   const area = drift.area > 0 ? normalRule(drift.area * rotation, Number.POSITIVE_INFINITY, effort) : SINGLE;
   const width = drift.width > 0 ? normalRule(drift.width * (rotation + 2), 1 / drift.width, effort) : SINGLE;
@@ -73,29 +86,41 @@ export function driftNodes(design: Design, duration: number, effort: number): Dr
   const pulsePole = 1.763 / Math.max(...pulse.tones.map((t) => t.fwhm));
   const pole = Math.min(filterPole, pulsePole) / spread;
   const shift = spread > 0 ? normalRule(spread * duration, pole, effort) : SINGLE;
-  const out: DriftNode[] = [];
-  area.nodes.forEach((a, i) => {
-    width.nodes.forEach((w, j) => {
-      shift.nodes.forEach((d, k) => {
-        out.push({
-          weight: area.weights[i] * width.weights[j] * shift.weights[k],
-          area: a * drift.area,
-          width: w * drift.width,
-          shift: d * drift.detuning,
-        });
-      });
-    });
-  });
+  // What passes is the light's spectrum convolved with the filter: analytic up to the filter's own pole at κ/2.
+  const wander = collection.filter ? drift.filterCenter * RAD_PER_PS_PER_GHZ : 0;
+  const center = wander > 0 ? normalRule(0, kappa / 2 / wander, effort) : SINGLE;
+  return { area, width, shift, center };
+}
+
+/** The tensor product of the rules of a design's drifts; the last axis runs fastest. */
+export function driftNodes(design: Design, axes: DriftAxes): DriftNode[] {
+  const { drift } = design;
+  if (!drift) return [{ weight: 1, area: 0, width: 0, shift: 0 }];
+  let out: DriftNode[] = [{ weight: 1, area: 0, width: 0, shift: 0, center: 0 }];
+  const scales = { area: drift.area, width: drift.width, shift: drift.detuning, center: drift.filterCenter };
+  for (const key of ['area', 'width', 'shift', 'center'] as const) {
+    const { nodes, weights } = axes[key];
+    out = out.flatMap((node) =>
+      nodes.map((x, i) => ({ ...node, weight: node.weight * weights[i], [key]: x * scales[key] })),
+    );
+  }
   return out;
 }
 
 /** The design as it stands at a drift node (the shift of the emitter is the propagator's business). */
 export function driftedDesign(design: Design, node: DriftNode): Design {
-  if (node.area === 0 && node.width === 0) return design;
+  const center = node.center ?? 0;
+  if (node.area === 0 && node.width === 0 && center === 0) return design;
   const tones = design.pulse.tones.map((t) => ({
     ...t,
     area: t.area * (1 + node.area),
     fwhm: t.fwhm * (1 + node.width),
   }));
-  return { ...design, pulse: { ...design.pulse, tones } };
+  const { filter } = design.collection;
+  const moved = filter && { ...filter, center: filter.center + center };
+  return {
+    ...design,
+    pulse: { ...design.pulse, tones },
+    collection: { ...design.collection, filter: moved },
+  };
 }

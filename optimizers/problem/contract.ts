@@ -17,6 +17,13 @@ export interface Tie {
   readonly sameAs: string;
 }
 
+/** Bounds of a figure, by its path in the tree of figures, such as `pulse.energy_pi_units`; null = no bound. */
+export interface Limit {
+  readonly figure: string;
+  readonly atMost: number | null;
+  readonly atLeast: number | null;
+}
+
 export interface Goal {
   /** Minimised: of what is collected per pulse. */
   readonly impurity: 'multiphoton' | 'g2';
@@ -26,6 +33,8 @@ export interface Goal {
   readonly atLeast: number | null;
   /** Brightness levels of the front; from/to null = the reachable range. */
   readonly front: { readonly from: number | null; readonly to: number | null; readonly points: number };
+  /** Every one must be met by each design of the front. Judged, like all figures, on the mean over drift. */
+  readonly limits: readonly Limit[];
 }
 
 /** The whole search problem as plain data (structured-cloneable, JSON-able): a worker rebuilds everything from it. */
@@ -36,7 +45,12 @@ export interface ProblemSpec {
   readonly parameters: readonly FreeParameter[];
   readonly ties: readonly Tie[];
   readonly goal: Goal;
-  readonly search: { readonly evaluations: number; readonly seed: number };
+  readonly search: {
+    readonly evaluations: number;
+    readonly seed: number;
+    /** `auto` = the default strategy; else the name of one method of the registries. */
+    readonly method: string;
+  };
 }
 
 /** One evaluated candidate. */

@@ -1,15 +1,15 @@
 import type { Design, Figures } from '../../core/index.js';
 import { PropagationError } from '../../core/kernels/count.js';
 import type { ProblemSpec } from './contract.js';
-import { INFEASIBLE, type Judgement, judge } from './judge.js';
+import { infeasible, judge, type Verdict } from './judge.js';
 import { applyParameters } from './path.js';
 import { type Space, transformOf } from './space.js';
 
 /** Figures of a design; `core`'s `evaluate` at the search's accuracy, or a stand-in. */
 export type Evaluate = (design: Design) => Figures;
 
-/** One evaluated candidate with the two numbers of the goal read from its figures. */
-export interface Candidate extends Judgement {
+/** One evaluated candidate judged by the goal. */
+export interface Candidate extends Verdict {
   /** Free-parameter values, internal units. */
   readonly values: readonly number[];
   /** Null when the pulse is beyond what can be integrated; the candidate is then infeasible. */
@@ -45,7 +45,7 @@ export function createProblem(spec: ProblemSpec, evaluate: Evaluate): Problem {
         return { values, figures, ...judge(figures, spec.goal) };
       } catch (error) {
         if (!(error instanceof PropagationError)) throw error;
-        return { values, figures: null, ...INFEASIBLE };
+        return { values, figures: null, ...infeasible(spec.goal) };
       }
     },
   };

@@ -1,7 +1,7 @@
 import type { ProblemSpec } from '../problem/contract.js';
 import type { Problem } from '../problem/problem.js';
 import type { Task, TaskResult } from '../tasks/contract.js';
-import { type JudgedPoint, PointArchive } from '../tasks/recorder.js';
+import { type JudgedPoint, NearestPoint, PointArchive } from '../tasks/recorder.js';
 import type { Solution } from '../tasks/solve.js';
 
 /** Tasks that may run side by side. */
@@ -21,6 +21,8 @@ export class Knowledge {
   readonly spec: ProblemSpec;
   readonly problem: Problem;
   readonly archive = new PointArchive();
+  /** The evaluation nearest to the limits of the goal among tasks in which none met them. */
+  readonly nearest = new NearestPoint();
   /** Ends of all solves. */
   readonly solutions: Solution[] = [];
   /** Populations of the islands, by island. */

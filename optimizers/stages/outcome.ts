@@ -26,6 +26,8 @@ export interface SearchOutcome {
   /** Every non-dominated evaluation, sorted by brightness. */
   readonly archive: readonly EvaluatedPoint[];
   readonly front: readonly FrontLevel[];
+  /** Where no evaluation meets the limits of the goal: the one that comes nearest; null otherwise. */
+  readonly nearest: EvaluatedPoint | null;
   /** At `goal.atLeast`; null when no level is set or it is out of reach. */
   readonly best: EvaluatedPoint | null;
   readonly hypervolume: {
@@ -78,6 +80,7 @@ export function outcomeOf(
     evaluations: known.spent,
     archive: front.map((point) => ({ values: point.values, figures: point.figures })),
     front: levels.map((level) => ({ level, point: plain(atLevel(front, level)) })),
+    nearest: front.length > 0 ? null : known.nearest.point,
     best: goal.atLeast === null ? null : plain(atLevel(front, goal.atLeast)),
     hypervolume: {
       value: volume(front, reference),

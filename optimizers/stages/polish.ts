@@ -54,7 +54,10 @@ const unitOf = (known: Knowledge, point: JudgedPoint) => known.problem.unitOf(po
 function memberAt(known: Knowledge, level: number): readonly number[] | null {
   const { front } = known;
   const member = atLevel(front, level) ?? front[front.length - 1];
-  return member === undefined ? null : unitOf(known, member);
+  if (member !== undefined) return unitOf(known, member);
+  // Nothing meets the limits yet: a solve goes on from what comes nearest to them.
+  const { point } = known.nearest;
+  return point === null ? null : known.problem.unitOf(point.values);
 }
 
 /** A solution is beaten when the archive has less than this share of its impurity at its level. */
@@ -81,7 +84,7 @@ export function* polishLevels(
 export function bestSolutions(known: Knowledge): Solution[] {
   const best = new Map<number, Solution>();
   for (const solution of known.solutions) {
-    if (solution.brightness < solution.level - 1e-4) continue;
+    if (solution.brightness < solution.level - 1e-4 || solution.violation > 1e-4) continue;
     const old = best.get(solution.level);
     if (old === undefined || solution.impurity < old.impurity) best.set(solution.level, solution);
   }

@@ -20,8 +20,10 @@ export interface Task {
 export interface TaskResult {
   readonly id: string;
   readonly evaluations: number;
-  /** The non-dominated ones of the task's own evaluations, by brightness. */
+  /** The non-dominated ones of the task's own evaluations, by brightness; limits are met. */
   readonly points: readonly EvaluatedPoint[];
+  /** The evaluation nearest to the limits of the goal; only where there was one and none met them all. */
+  readonly nearest?: EvaluatedPoint;
   /** Plain JSON that later stages need. */
   readonly summary: unknown;
 }

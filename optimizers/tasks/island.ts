@@ -1,5 +1,6 @@
 import { nsga2, select } from '../global/nsga2.js';
 import { optimize } from '../local/session.js';
+import { constraintCount } from '../problem/limits.js';
 import type { TaskRunner } from './contract.js';
 
 /** Some generations of NSGA-II. */
@@ -16,14 +17,15 @@ export interface IslandSummary {
   readonly population: readonly (readonly number[])[];
 }
 
-export const islandTask: TaskRunner = (task, { problem, recorder, seed }): IslandSummary => {
+export const islandTask: TaskRunner = (task, { spec, problem, recorder, seed }): IslandSummary => {
   const { population, start, floor } = task.input as IslandInput;
   const evaluate = (x: readonly number[]) => {
-    const { impurity, brightness } = recorder.evaluate(x);
-    return { objectives: [impurity, -brightness], constraints: floor === null ? [] : [floor - brightness] };
+    const { impurity, brightness, constraints: limits } = recorder.evaluate(x);
+    const constraints = floor === null ? limits : [floor - brightness, ...limits];
+    return { objectives: [impurity, -brightness], constraints };
   };
   const { space } = problem;
-  const constraints = floor === null ? 0 : 1;
+  const constraints = constraintCount(spec.goal.limits) + (floor === null ? 0 : 1);
   const setup = { space, objectives: 2, constraints, start, seed, budget: task.budget };
   const { trace } = optimize(nsga2({ population }), setup, evaluate);
   return { population: select(trace, population).map((member) => member.x) };

@@ -28,5 +28,6 @@ export function runTask(spec: ProblemSpec, problem: Problem, task: Task): TaskRe
   if (recorder.evaluations > task.budget) {
     throw new Error(`task ${task.id}: spent ${recorder.evaluations} evaluations of ${task.budget}`);
   }
-  return { id: task.id, evaluations: recorder.evaluations, points: recorder.points, summary };
+  const { evaluations, points, nearest } = recorder;
+  return { id: task.id, evaluations, points, ...(nearest === null ? {} : { nearest }), summary };
 }

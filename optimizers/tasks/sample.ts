@@ -7,14 +7,19 @@ export interface SampleInput {
 
 /** What each point gave, in order; impurity is null where the candidate was infeasible. */
 export interface SampleSummary {
-  readonly replies: readonly { readonly impurity: number | null; readonly brightness: number }[];
+  readonly replies: readonly {
+    readonly impurity: number | null;
+    readonly brightness: number;
+    readonly constraints: readonly number[];
+  }[];
 }
 
 export const sampleTask: TaskRunner = (task, { recorder }): SampleSummary => {
   const { points } = task.input as SampleInput;
   const replies = points.slice(0, task.budget).map((x) => {
-    const { impurity, brightness } = recorder.evaluate(x);
-    return { impurity: Number.isFinite(impurity) ? impurity : null, brightness };
+    const { impurity, brightness, constraints } = recorder.evaluate(x);
+    if (!Number.isFinite(impurity)) return { impurity: null, brightness: 0, constraints: [] };
+    return { impurity, brightness, constraints };
   });
   return { replies };
 };

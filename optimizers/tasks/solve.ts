@@ -1,5 +1,6 @@
 import { optimize } from '../local/session.js';
 import { sqp } from '../local/sqp.js';
+import { constraintCount } from '../problem/limits.js';
 import type { TaskRunner } from './contract.js';
 
 /** Least impurity at a brightness of at least `level`, from one start. */
@@ -17,7 +18,12 @@ export interface Solution {
   readonly x: readonly number[];
   readonly impurity: number;
   readonly brightness: number;
+  /** Sum of the violated limits of the goal. */
+  readonly violation: number;
 }
+
+/** Distance to keep from the limits of the goal: a design that misses one by rounding is lost. */
+const MARGIN = 2e-6;
 
 /** Weight of a missing brightness against the relative impurity, when the best of a solve is chosen. */
 const SHORTFALL = 100;
@@ -25,24 +31,28 @@ const SHORTFALL = 100;
 /** Relative gain in impurity that is not worth another iteration. */
 const TOLERANCE = 1e-6;
 
-export const solveTask: TaskRunner = (task, { problem, recorder, seed }): Solution | null => {
+export const solveTask: TaskRunner = (task, { spec, problem, recorder, seed }): Solution | null => {
   const { level, start, radius } = task.input as SolveInput;
   let best: Solution | null = null;
   let scale = 0;
-  const merit = (s: Solution) => s.impurity / scale + SHORTFALL * Math.max(0, level - s.brightness);
+  const merit = (s: Solution) =>
+    s.impurity / scale + SHORTFALL * (Math.max(0, level - s.brightness) + s.violation);
   const evaluate = (x: readonly number[]) => {
-    const { impurity, brightness } = recorder.evaluate(x);
+    const { impurity, brightness, constraints, violation } = recorder.evaluate(x);
     if (Number.isFinite(impurity)) {
       scale ||= impurity || 1;
-      const next = { level, x: [...x], impurity, brightness };
+      const next = { level, x: [...x], impurity, brightness, violation };
       if (best === null || merit(next) < merit(best)) best = next;
     }
-    return { objectives: [impurity], constraints: [level - brightness] };
+    return {
+      objectives: [impurity],
+      constraints: [level - brightness, ...constraints.map((c) => c + MARGIN)],
+    };
   };
   const setup = {
     space: problem.space,
     objectives: 1,
-    constraints: 1,
+    constraints: 1 + constraintCount(spec.goal.limits),
     start: [start],
     seed,
     budget: task.budget,

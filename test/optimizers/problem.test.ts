@@ -1,7 +1,7 @@
 import fc from 'fast-check';
 import { describe, expect, it } from 'vitest';
 import type { Figures } from '../../core/index.js';
-import { applyParameters, createProblem, INFEASIBLE, judge, transformOf } from '../../optimizers/index.js';
+import { applyParameters, createProblem, infeasible, judge, transformOf } from '../../optimizers/index.js';
 import { GOAL, range, toyEvaluate, toySpec } from './toy.js';
 
 describe('parameters of a design', () => {
@@ -110,14 +110,18 @@ describe('judgement', () => {
   it.each([null, Number.NaN, Number.POSITIVE_INFINITY, -1e-4, 1.5])(
     'never takes %s for an impurity',
     (impurity) => {
-      expect(judge(collected(impurity), GOAL)).toEqual(INFEASIBLE);
+      expect(judge(collected(impurity), GOAL)).toEqual(infeasible(GOAL));
     },
   );
 
   it('does not trust flagged figures, useless error estimates and impossible brightness', () => {
-    expect(judge({ ...good, phonons: { method: 'polaron', flags: ['p_0 < 0'] } }, GOAL)).toEqual(INFEASIBLE);
-    expect(judge({ ...good, accuracy: { steps: 1, error_estimate: Number.NaN } }, GOAL)).toEqual(INFEASIBLE);
-    expect(judge({ ...good, accuracy: { steps: 1, error_estimate: 0.5 } }, GOAL)).toEqual(INFEASIBLE);
-    expect(judge({ ...good, signal: { ...good.signal, single: 1.01 } }, GOAL)).toEqual(INFEASIBLE);
+    expect(judge({ ...good, phonons: { method: 'polaron', flags: ['p_0 < 0'] } }, GOAL)).toEqual(
+      infeasible(GOAL),
+    );
+    expect(judge({ ...good, accuracy: { steps: 1, error_estimate: Number.NaN } }, GOAL)).toEqual(
+      infeasible(GOAL),
+    );
+    expect(judge({ ...good, accuracy: { steps: 1, error_estimate: 0.5 } }, GOAL)).toEqual(infeasible(GOAL));
+    expect(judge({ ...good, signal: { ...good.signal, single: 1.01 } }, GOAL)).toEqual(infeasible(GOAL));
   });
 });

@@ -34,6 +34,7 @@ export function toyEvaluate(design: Design): Figures {
     accuracy: { steps: 1, error_estimate: 0 },
     notes: [],
     nominal: null,
+    quantile: null,
   };
 }
 
@@ -68,6 +69,7 @@ export const GOAL: Goal = {
   brightness: 'single',
   atLeast: 0.9,
   front: { from: 0.3, to: 0.99, points: 25 },
+  limits: [],
 };
 
 /** Two-level emitter without filter or laser; the bare instance A of the search benchmarks with its four parameters. */
@@ -97,6 +99,6 @@ export function toySpec(
     parameters,
     ties: [],
     goal: { ...GOAL, ...goal },
-    search: { evaluations, seed },
+    search: { evaluations, seed, method: 'auto' },
   };
 }

@@ -67,7 +67,13 @@ const design: fc.Arbitrary<Design> = fc.boolean().chain((cascade) =>
       }),
     ),
     drift: nullable(
-      fc.record({ area: positive, width: fc.double({ noNaN: true, min: 0, max: 0.15 }), detuning: zeroUp }),
+      fc.record({
+        area: positive,
+        width: fc.double({ noNaN: true, min: 0, max: 0.15 }),
+        detuning: zeroUp,
+        filterCenter: zeroUp,
+        quantile: nullable(fc.double({ noNaN: true, min: 0.5, max: 0.999 })),
+      }),
     ),
   }),
 ) as fc.Arbitrary<Design>;
@@ -104,10 +110,14 @@ const parts = {
       to: nullable(positive.map((x) => x + 1)),
       points: fc.integer({ min: 2, max: 1000 }),
     }),
+    limits: nullable(positive).map((atMost) =>
+      atMost === null ? [] : [{ figure: 'pulse.duration_ps', atMost, atLeast: null }],
+    ),
   }),
   search: fc.record({
     evaluations: fc.integer({ min: 1, max: 1e9 }),
     seed: fc.integer({ min: 1, max: Number.MAX_SAFE_INTEGER }),
+    method: fc.constantFrom('auto', 'nsga2'),
   }),
 };
 const study = studyWith(tuningFor);

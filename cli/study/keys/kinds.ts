@@ -66,6 +66,8 @@ type Camel<S extends string> = S extends `${infer A}_${infer B}` ? `${A}${Capita
 export const camelCase = (key: string): string =>
   key.replace(/_([a-z])/g, (_, letter: string) => letter.toUpperCase());
 
+export const snakeCase = (field: string): string => field.replace(/[A-Z]/g, (c) => `_${c.toLowerCase()}`);
+
 /** What reading a key gives: undefined where it is faulty. */
 export type ReadOf<K> =
   K extends Leaf<infer T>

@@ -20,6 +20,26 @@ function* walk(keys: Keys, prefix: string): Generator<KeyEntry> {
 /** Every key in the order of the table. */
 export const keyEntries: readonly KeyEntry[] = [...walk(studyKeys.keys, '')];
 
+/** Names of keys that hold a dot themselves: figures under goal.limits. */
+const dottedNames = new Set(
+  keyEntries.flatMap(({ key }) =>
+    key.kind === 'section' ? Object.keys(key.keys).filter((name) => name.includes('.')) : [],
+  ),
+);
+
+/** The keys along a path; a figure under goal.limits is one key, though it holds a dot. */
+export function keysOf(path: string): string[] {
+  const keys: string[] = [];
+  const parts = path.split('.');
+  for (let i = 0; i < parts.length; i++) {
+    const pair = `${parts[i]}.${parts[i + 1]}`;
+    const dotted = keys[keys.length - 1] === 'limits' && dottedNames.has(pair);
+    keys.push(dotted ? pair : parts[i]);
+    if (dotted) i++;
+  }
+  return keys;
+}
+
 /** The tones may be named without `pulse.` before them. */
 export const fullPath = (path: string): string => (/^tones(\.|$)/.test(path) ? `pulse.${path}` : path);
 

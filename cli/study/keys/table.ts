@@ -1,4 +1,5 @@
 import { emitterModels, pulseShapes } from '../../../core/index.js';
+import { globalMethods, localMethods } from '../../../optimizers/index.js';
 import {
   biexcitonOnly,
   choice,
@@ -11,6 +12,7 @@ import {
   quantity,
   section,
 } from './kinds.js';
+import { limits } from './limits.js';
 
 export const FORMAT_VERSION = 1;
 
@@ -146,17 +148,37 @@ const goal = section('what is sought', 'empty', {
     to: optionalQuantity('fraction', 'highest level; the reachable range unless given', positive),
     points: integer('number of levels', 2, 1000, 25),
   }),
+  limits,
 });
 
 const drift = optionalSection('rms of slow Gaussian drifts; the goal is then the mean over them', {
   area: quantity('percent', 'of every area in common', { ...notNegative, default: '0 %' }),
   width: quantity('percent', 'of every width in common', { bounds: { from: 0, to: 0.15 }, default: '0 %' }),
   detuning: quantity('energy', 'of the emitter line', { ...notNegative, default: '0 ueV' }),
+  filter_center: quantity('frequency', "of the filter's centre", { ...notNegative, default: '0 GHz' }),
+  judge: choice(
+    'what a goal is judged on: means over the drift, or a quantile',
+    ['mean', 'quantile'],
+    'mean',
+  ),
+  quantile: quantity(
+    'fraction',
+    'with judge: quantile, the share of the drift that brightness and impurity hold for',
+    {
+      bounds: { from: 0.5, to: 0.999 },
+      default: '0.9',
+    },
+  ),
 });
 
 const search = section('how long and from where to search', 'empty', {
   evaluations: integer('hard cap on the number of objective values', 1, 1_000_000_000, 20_000),
   seed: integer('seed of every random choice', 1, Number.MAX_SAFE_INTEGER, 1),
+  method: choice(
+    'auto: the default strategy; else one method, for many objectives as it is, else level by level',
+    ['auto', ...localMethods.keys(), ...globalMethods.keys()],
+    'auto',
+  ),
 });
 
 /** Every key of a study file: the reader, the writer, the JSON Schema, the docs and the nearest-key search use this. */

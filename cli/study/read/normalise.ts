@@ -2,6 +2,7 @@ import { createHash } from 'node:crypto';
 import type { Design } from '../../../core/index.js';
 import type { FreeParameter, Tie } from '../../../optimizers/index.js';
 import type { Study } from '../contract.js';
+import { snakeCase } from '../keys/kinds.js';
 import type { RawStudy } from './rules.js';
 
 /** Every value present: what a raw study is once no fault was found in it. */
@@ -21,7 +22,7 @@ export function normaliseStudy(
 ): Study {
   const { title, emitter, pulse, collection, laser, goal, drift, search } = raw as Complete<RawStudy>;
   const { tuning, ...dot } = emitter;
-  const still = drift !== null && drift.area === 0 && drift.width === 0 && drift.detuning === 0;
+  const moving = (['area', 'width', 'detuning', 'filterCenter'] as const).some((key) => drift?.[key] !== 0);
   const design: Design = {
     emitter: {
       ...dot,
@@ -30,9 +31,17 @@ export function normaliseStudy(
     pulse,
     collection,
     laser,
-    drift: still ? null : drift,
+    drift: drift !== null && moving ? driftOf(drift) : null,
   };
-  return { title, tuning, design, parameters: free.parameters, ties: free.ties, goal, search };
+  const limits = Object.entries(goal.limits).flatMap(([name, limit]) =>
+    limit === null ? [] : [{ figure: snakeCase(name), atMost: limit.atMost, atLeast: limit.atLeast }],
+  );
+  const { parameters, ties } = free;
+  return { title, tuning, design, parameters, ties, goal: { ...goal, limits }, search };
+}
+
+function driftOf({ judge, quantile, ...rms }: NonNullable<Complete<RawStudy>['drift']>): Design['drift'] {
+  return { ...rms, quantile: judge === 'quantile' ? quantile : null };
 }
 
 /** SHA-256 (hex) of a study's content; the order of its keys is that of the key table, so it depends on nothing else. */

@@ -1,7 +1,7 @@
 import { quoteFound } from '../../../core/index.js';
 import type { Fault, Override, Place } from '../contract.js';
 import type { Key } from '../keys/kinds.js';
-import { fullPath, keyAt, keyEntries, patternOf } from '../keys/paths.js';
+import { fullPath, keyAt, keyEntries, keysOf, patternOf } from '../keys/paths.js';
 import { nearestName } from '../nearest.js';
 import { readDocument } from '../source/document.js';
 import { locate, type Placed, type PlacedMap } from '../source/placed.js';
@@ -30,7 +30,7 @@ function applyOne(root: Placed, override: Override): readonly Fault[] {
   }
   const { root: value, faults } = readDocument(override.value, OVERRIDE_FILE, override.path.length + 1);
   if (value === null || faults.length > 0) return faults.map((f) => ({ ...f, path }));
-  return put(root, path.split('.'), value, start) ? [] : fault(`the path ${path}`, whatIsThere(root, path));
+  return put(root, keysOf(path), value, start) ? [] : fault(`the path ${path}`, whatIsThere(root, path));
 }
 
 /** False when the path leads through something that is not there and cannot be made, such as a tone too many. */

@@ -1,5 +1,5 @@
 import { type EmitterModel, emitterModels, exactQuantity } from '../../../core/index.js';
-import type { ReadOf } from '../keys/kinds.js';
+import { type ReadOf, snakeCase } from '../keys/kinds.js';
 import { keyEntries } from '../keys/paths.js';
 import type { studyKeys } from '../keys/table.js';
 import { describeFound, locate } from '../source/placed.js';
@@ -104,6 +104,21 @@ const frontOrder: Rule = (raw, report) => {
   }
 };
 
+const limits: Rule = (raw, report) => {
+  for (const [name, limit] of Object.entries(raw.goal?.limits ?? {})) {
+    if (!limit) continue;
+    const path = `goal.limits.${snakeCase(name)}`;
+    const { atMost, atLeast } = limit;
+    if (atMost === null && atLeast === null) report(path, 'at_most, at_least or both');
+    if (typeof atMost === 'number' && typeof atLeast === 'number' && atLeast > atMost) {
+      report(path, 'at_least not above at_most', `at_least ${atLeast} and at_most ${atMost}`);
+    }
+    if (name.startsWith('filtered.') && raw.collection?.filter === null) {
+      report(path, 'a study with collection.filter: without one there is no filtered light', 'a limit');
+    }
+  }
+};
+
 const leakage: Rule = (raw, report) => {
   const { laser } = raw;
   if (laser && typeof laser.rejection === 'number' && laser.rejection > 0 && laser.piPulse === null) {
@@ -120,4 +135,13 @@ const nominalBias: Rule = (raw, report) => {
   report('emitter.tuning.bias', `a voltage inside emitter.tuning.range, ${low} to ${high}`);
 };
 
-const RULES: readonly Rule[] = [biexcitonKeys, reference, collected, reach, frontOrder, leakage, nominalBias];
+const RULES: readonly Rule[] = [
+  biexcitonKeys,
+  reference,
+  collected,
+  reach,
+  frontOrder,
+  limits,
+  leakage,
+  nominalBias,
+];

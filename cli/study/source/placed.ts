@@ -56,9 +56,14 @@ export function* placedPaths(node: Placed, path = ''): Generator<string> {
 export function locate(root: Placed, path: string): { at: Place; node: Placed; exact: boolean } {
   let node = root;
   let at = root.at;
-  for (const key of path.split('.')) {
+  const keys = path.split('.');
+  for (let i = 0; i < keys.length; i++) {
+    // A key may hold a dot itself.
+    const dotted = `${keys[i]}.${keys[i + 1]}`;
+    const key = i + 1 < keys.length && child(node, keys[i]) === undefined ? dotted : keys[i];
     const next = child(node, key);
     if (!next) return { at, node, exact: false };
+    if (key === dotted) i++;
     at = next.kind === 'scalar' || node.kind === 'list' ? next.at : keyPlace(node, key);
     node = next;
   }

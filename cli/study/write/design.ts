@@ -16,11 +16,23 @@ export function writeDesign(study: Study, values: readonly number[], title: stri
 export function writeStudyFile(study: Study, design: Design, title: string): string {
   const { goal, search, tuning } = study;
   const emitter = { ...design.emitter, tuning };
-  const content = { pulsewright: FORMAT_VERSION, title, ...design, emitter, goal, search };
+  const limits = Object.fromEntries(goal.limits.map((limit) => [camelCase(limit.figure), limit]));
+  const content = {
+    pulsewright: FORMAT_VERSION,
+    title,
+    ...{ ...design, emitter, drift: design.drift && driftValues(design.drift) },
+    goal: { ...goal, limits: goal.limits.length > 0 ? limits : null },
+    search,
+  };
   const biexciton = emitterModels.find(({ name }) => name === design.emitter.model)?.hasBiexciton ?? false;
   const lines = ['# A design with fixed values; every number is exact to the last bit.'];
   lines.push(...sectionLines(studyKeys, content as unknown as Values, biexciton));
   return `${lines.join('\n')}\n`;
+}
+
+/** The drift in the keys of a study file. */
+function driftValues({ quantile, ...rms }: NonNullable<Design['drift']>): Values {
+  return quantile === null ? { ...rms, judge: 'mean' } : { ...rms, judge: 'quantile', quantile };
 }
 
 type Values = Readonly<Record<string, unknown>>;
@@ -28,7 +40,7 @@ type Values = Readonly<Record<string, unknown>>;
 function sectionLines(section: Section, values: Values, biexciton: boolean): string[] {
   return Object.entries(section.keys).flatMap(([name, key]) => {
     const value = values[camelCase(name)];
-    const left = value === null || (key.kind === 'leaf' && key.only === 'biexciton' && !biexciton);
+    const left = (value ?? null) === null || (key.kind === 'leaf' && key.only === 'biexciton' && !biexciton);
     return left ? [] : keyLines(name, key, value, biexciton);
   });
 }

@@ -202,7 +202,11 @@ const single: [string, string, string][] = [
     MINIMAL.replace(/ {4}- [\s\S]*$/, '    []\n'),
     '7:5 pulse.tones: got an empty list; needs a list of 1 to 16 (each begins with "- ")',
   ],
-  ['empty section', after('drift:'), '9:7 drift: got nothing; needs a mapping with area, width, detuning'],
+  [
+    'empty section',
+    after('drift:'),
+    '9:7 drift: got nothing; needs a mapping with area, width, detuning, filter_center, judge, quantile',
+  ],
   [
     'missing key',
     MINIMAL.replace('  lifetime: 400 ps\n', ''),

@@ -46,8 +46,9 @@ describe('a valid study', () => {
         brightness: 'single',
         atLeast: null,
         front: { from: null, to: null, points: 25 },
+        limits: [],
       },
-      search: { evaluations: 20000, seed: 1 },
+      search: { evaluations: 20000, seed: 1, method: 'auto' },
     });
     expect(remarks).toEqual([]);
   });
@@ -79,9 +80,12 @@ search: {}
       piPulse: { energy: 1000, fwhm: 5 },
       rejection: 0,
     });
-    expect(study.design.drift).toEqual({ area: 0.02, width: 0, detuning: 0 });
+    expect(study.design.drift).toEqual({
+      ...{ area: 0.02, width: 0, detuning: 0 },
+      ...{ filterCenter: 0, quantile: null },
+    });
     expect(study.goal.front).toEqual({ from: null, to: null, points: 3 });
-    expect(study.search).toEqual({ evaluations: 20000, seed: 1 });
+    expect(study.search).toEqual({ evaluations: 20000, seed: 1, method: 'auto' });
   });
 
   it('reads every key into internal units', () => {
@@ -131,14 +135,22 @@ search: {}
       filter: { fwhm: 30, center: -5 },
     });
     expect(study.design.laser).toEqual({ repetition: 76, piPulse: { energy: 12, fwhm: 5 }, rejection: 1e-6 });
-    expect(study.design.drift).toEqual({ area: 0.02, width: 0.01, detuning: 0.005 });
+    expect(study.design.drift).toEqual({
+      ...{ area: 0.02, width: 0.01, detuning: 0.005 },
+      ...{ filterCenter: 1, quantile: 0.95 },
+    });
     expect(study.goal).toEqual({
       impurity: 'g2',
       brightness: 'any',
       atLeast: 0.6,
       front: { from: 0.4, to: 0.64, points: 9 },
+      limits: [
+        { figure: 'pulse.energy_pi_units', atMost: 12, atLeast: null },
+        { figure: 'pulse.duration_ps', atMost: 30, atLeast: 2 },
+        { figure: 'collected.leakage', atMost: 1e-3, atLeast: null },
+      ],
     });
-    expect(study.search).toEqual({ evaluations: 200, seed: 7 });
+    expect(study.search).toEqual({ evaluations: 200, seed: 7, method: 'nsga2' });
   });
 
   it('lists free parameters and ties in the order of the file', () => {

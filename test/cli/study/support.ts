@@ -82,9 +82,16 @@ goal:
   brightness: any
   at_least: 0.60
   front: { from: 0.40, to: 0.64, points: 9 }
+  limits:
+    pulse.energy_pi_units: { at_most: 12 }
+    collected.leakage: { at_most: 0.1 % }
+    pulse.duration_ps: { at_least: 2 ps, at_most: 30 ps }
 drift:
   area: 2 %
   width: 1 %
   detuning: 5 ueV
-search: { evaluations: 200, seed: 7 }
+  filter_center: 1 GHz
+  judge: quantile
+  quantile: 95 %
+search: { evaluations: 200, seed: 7, method: nsga2 }
 `;

@@ -14,7 +14,9 @@ describe('means over drift', () => {
   ])('area %s π with %s rms follows the averaged Rabi law', (pis, rms) => {
     const area = pis * Math.PI;
     const f = evaluate(
-      design(FOREVER, [tone({ area })], { drift: { area: rms, width: 0, detuning: 0 } }),
+      design(FOREVER, [tone({ area })], {
+        drift: { area: rms, width: 0, detuning: 0, filterCenter: 0, quantile: null },
+      }),
       'quoted',
     );
     const law = 0.5 * (1 - Math.exp(-((rms * area) ** 2) / 2) * Math.cos(area));
@@ -32,7 +34,7 @@ describe('means over drift', () => {
     const T = fwhm / (2 * Math.acosh(Math.SQRT2));
     const f = evaluate(
       design(FOREVER, [tone({ shape: 'sech', fwhm, area: 2, detuning: 0.05 })], {
-        drift: { area: 0, width: 0, detuning: rms },
+        drift: { area: 0, width: 0, detuning: rms, filterCenter: 0, quantile: null },
       }),
       'quoted',
     );
@@ -49,7 +51,9 @@ describe('means over drift', () => {
 
   it('width drift alone leaves a resonant pulse without decay as it is', () => {
     const f = evaluate(
-      design(FOREVER, [tone({ area: 2 })], { drift: { area: 0, width: 0.1, detuning: 0 } }),
+      design(FOREVER, [tone({ area: 2 })], {
+        drift: { area: 0, width: 0.1, detuning: 0, filterCenter: 0, quantile: null },
+      }),
       'quoted',
     );
     expect(f.populations['x']).toBeCloseTo(Math.sin(1) ** 2, 9);
@@ -58,7 +62,7 @@ describe('means over drift', () => {
   it('g2 under drift is ⟨M₂⟩/⟨M₁⟩², not the mean of ratios', () => {
     const f = evaluate(
       design(twoLevelEmitter(), [tone({ area: 1.7 * Math.PI })], {
-        drift: { area: 0.1, width: 0, detuning: 0 },
+        drift: { area: 0.1, width: 0, detuning: 0, filterCenter: 0, quantile: null },
       }),
       'search',
     );
