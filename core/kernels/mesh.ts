@@ -45,7 +45,7 @@ export function buildMesh(rho: LinearFlow, drive: SampledDrive, options: MeshOpt
     while (t < end) {
       const remaining = end - t;
       const last = h >= remaining * (1 - 1e-12);
-      const step = last ? remaining : h > 0.5 * remaining ? 0.5 * remaining : h;
+      const step = last ? remaining : Math.min(h, 0.5 * remaining);
       stepper.advance(t, step, segment, y, next);
       const error = stepper.localError(step);
       if (!Number.isFinite(error))

@@ -60,8 +60,7 @@ function polarizationWeights(angle: number): readonly [number, number] {
 
 function placeTone(tone: Tone, options: DriveOptions): PlacedTone {
   const envelope = toneEnvelope(tone);
-  const weights =
-    options.projection === 'full' ? [1] : polarizationWeights(tone.polarization);
+  const weights = options.projection === 'full' ? [1] : polarizationWeights(tone.polarization);
   const place = {
     area: tone.area,
     phase: tone.phase,

@@ -98,14 +98,14 @@ describe('evaluate', () => {
     expect(bad.err).toContain('/nowhere/at/all.csv: no such file or directory');
   });
 
-  it('says that phonons are not modelled instead of leaving them out', async () => {
+  it('names the phonon method beside the figures', async () => {
     const text = FIXED.replace(
       '930 nm }',
       '930 nm, phonons: { coupling: 0.03 ps^2, cutoff: 2.2 1/ps, temperature: 4 K } }',
     );
-    const { code, err } = await invoke(['evaluate', studyFile(text)]);
-    expect(code).toBe(2);
-    expect(err).toContain('phonons');
-    expect(err).not.toContain('internal');
+    const { code, out } = await invoke(['evaluate', studyFile(text)]);
+    expect(code).toBe(0);
+    expect(out).toMatch(/phonons +polaron/);
+    expect(out).toContain('auto: polaron');
   });
 });
