@@ -58,7 +58,7 @@ export class PropagationError extends Error {
 /** Counts photons of one design without drift: by the first fast kernel that reaches the accuracy, else by the reference. */
 export function countPhotons(request: CountRequest): CountResult {
   for (const kernel of fastKernels) {
-    const result = kernel.supports(request) ? kernel.count(request) : null;
+    const result = kernel.supports(request) ? kernel.count(request, countPhotons) : null;
     if (result) return result;
   }
   return countByReference(request);

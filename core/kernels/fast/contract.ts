@@ -8,6 +8,9 @@ export interface FastKernel {
   readonly name: string;
   /** Whether the request has the traits that the kernel is made for; cheap. */
   supports(request: CountRequest): boolean;
-  /** The figures, or null where the kernel's rule or its own estimate says that it cannot reach the accuracy. */
-  count(request: CountRequest): CountResult | null;
+  /**
+   * The figures, or null where the kernel's rule or its own estimate says that it cannot reach the accuracy.
+   * @param countPart counts a part of the request that another kernel or the reference does better
+   */
+  count(request: CountRequest, countPart: (request: CountRequest) => CountResult): CountResult | null;
 }

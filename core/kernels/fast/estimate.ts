@@ -20,7 +20,6 @@ export function disagreement(a: Values, b: Values): number {
     if (!(d <= worst)) worst = d;
   };
   for (const name of Object.keys(b)) {
-    if (name.startsWith('population')) continue;
     const scale = ABSOLUTE.has(name) ? 1 : Math.max(Math.abs(b[name]), FLOOR) / RELATIVE;
     take(a[name] - b[name], LOOSE.has(name) ? LOOSENESS * scale : scale);
   }

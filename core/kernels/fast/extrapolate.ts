@@ -8,7 +8,8 @@ const FEWEST = 3;
 /** The last extrapolated value is better than its difference from the one before by at least this. */
 const GAIN = 1.5;
 
-type Values = Readonly<Record<string, number>>;
+/** A failed series is begun once more with this many times the steps. */
+const AGAIN = 2.2;
 
 /**
  * Extrapolates results with an error series in h² (Aitken–Neville) over runs on more and more steps, until the value from
@@ -21,9 +22,14 @@ export function extrapolate(
   run: (steps: number) => CountResult | null,
   parts: number,
 ): CountResult | null {
-  const found = series(steps, accept, run, null);
+  let first = steps;
+  let found = series(first, accept, run, null);
+  if (!found) {
+    first = Math.ceil(AGAIN * steps);
+    found = series(first, accept, run, null);
+  }
   if (!found || parts === 1) return found?.result ?? null;
-  const fine = series(steps * parts, accept, run, found.runs);
+  const fine = series(first * parts, accept, run, found.runs);
   return fine && { ...fine.result, localErrors: found.result.localErrors };
 }
 
@@ -44,41 +50,27 @@ function series(
     inverse.push(1 / count ** 2);
     total += count;
     if (results.length < (exactly ?? FEWEST)) continue;
-    const all = atZero(inverse, results.map(flat));
-    const fewer = atZero(inverse.slice(1), results.slice(1).map(flat));
-    const error = disagreement(fewer, all) / GAIN;
+    const all = atZero(inverse, results, 0);
+    const error = disagreement(atZero(inverse, results, 1).values, all.values) / GAIN;
     if (!Number.isFinite(error)) return null;
     if (exactly === null && error > accept) continue;
-    return { result: { ...unflat(all, result), steps: total, localErrors: error }, runs: results.length };
+    return { result: { ...all, steps: total, localErrors: error }, runs: results.length };
   }
   return null;
 }
 
-const POPULATION = 'population ';
-
-function flat(result: CountResult): Values {
-  const out: Record<string, number> = { ...result.values };
-  result.populations.forEach((p, i) => {
-    out[POPULATION + i] = p;
-  });
-  return out;
-}
-
-function unflat(values: Values, like: CountResult): CountResult {
-  const names = Object.keys(like.values);
-  return {
-    ...like,
-    values: Object.fromEntries(names.map((name) => [name, values[name]])),
-    populations: like.populations.map((_, i) => values[POPULATION + i]),
-  };
-}
-
-/** Value at x = 0 of the polynomial through (x_i, values_i). */
-function atZero(x: readonly number[], values: readonly Values[]): Values {
-  const weights = x.map((xi, i) => x.reduce((w, xj, j) => (j === i ? w : (w * xj) / (xj - xi)), 1));
-  const out: Record<string, number> = {};
-  for (const name of Object.keys(values[0])) {
-    out[name] = values.reduce((sum, v, i) => sum + weights[i] * v[name], 0);
+/** Value at x = 0 of the polynomials through the results from number `from` on, at x. */
+function atZero(x: readonly number[], results: readonly CountResult[], from: number): CountResult {
+  const used = x.slice(from);
+  const weights = used.map((xi, i) => used.reduce((w, xj, j) => (j === i ? w : (w * xj) / (xj - xi)), 1));
+  const values: Record<string, number> = {};
+  for (const name of Object.keys(results[0].values)) {
+    let sum = 0;
+    for (let k = 0; k < weights.length; k++) sum += weights[k] * results[from + k].values[name];
+    values[name] = sum;
   }
-  return out;
+  const populations = results[0].populations.map((_, i) =>
+    weights.reduce((sum, w, k) => sum + w * results[from + k].populations[i], 0),
+  );
+  return { ...results[0], values, populations };
 }

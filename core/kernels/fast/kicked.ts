@@ -1,5 +1,5 @@
 import type { Drive } from '../../pulse/drive.js';
-import { type CountRequest, type CountResult, countPhotons } from '../count.js';
+import type { CountRequest, CountResult } from '../count.js';
 import { BlochStep } from './bloch-step.js';
 import type { FastKernel } from './contract.js';
 import { extrapolate } from './extrapolate.js';
@@ -20,7 +20,7 @@ import { UnitaryStep } from './unitary-step.js';
 export const kicked: FastKernel = {
   name: 'kicked',
   supports: (request) => request.filter !== null || request.scheme.levels.length > 2,
-  count(request) {
+  count(request, countPart) {
     const spans = smoothSpans(request.drive);
     if (!spans) return null;
     const problem = prepare(request);
@@ -34,7 +34,7 @@ export const kicked: FastKernel = {
     if (!outcome) return null;
     if (!request.filter) return { ...outcome, populations: outcome.populations };
     // Light before the filter does not see it: the cheaper problem has its own steps.
-    const emitted = countPhotons({ ...request, filter: null });
+    const emitted = countPart({ ...request, filter: null });
     return {
       values: { ...emitted.values, ...outcome.values },
       populations: emitted.populations,
@@ -112,7 +112,7 @@ export function prepare(request: CountRequest): Problem | null {
   const smooth = two && (steady || scales.frequency === 0);
   const energy = Math.max(...energies.map(Math.abs));
   const rate = two
-    ? (smooth ? SMOOTH : UNEVEN) * coherentRate(drive, rabi, energy, smooth)
+    ? (smooth ? SMOOTH : UNEVEN) * coherentRate(drive, rabi, energies[1] - energies[0], smooth)
     : 1.4 / scales.time + 0.6 * rabi + 0.6 * Math.hypot(rabi, energy + scales.frequency);
   if (norm > MOST_DAMPING * rate) return null;
   const steps = Math.ceil((end - start) * Math.max(rate, norm / RESOLVED));
@@ -177,7 +177,9 @@ export function run(problem: Problem, count: number): CountResult | null {
     applyRows(kick, y, spare);
     [y, spare] = [spare, y];
   }
-  layout.kicks.apply(h / 2, y);
+  // Without drive the figures do not change in time. Where the free motion is nothing but the charge that every figure
+  // conserves (two levels), that holds for the last half kick by itself; it is left out when only figures are asked for.
+  if (!request.filter || request.scheme.levels.length > 2) layout.kicks.apply(h / 2, y);
   const values: Record<string, number> = {};
   for (const { name, row } of layout.effects) {
     let sum = 0;

@@ -28,7 +28,7 @@ export function firstSteps(drive: Drive, model: TwoLevel, spans: readonly Span[]
   const rabi = peakRabi * Math.abs(model.weight);
   const follow = frequency > 0 && phaseIsSteady(drive, spans);
   const damping = model.decay + model.dephasing;
-  const coherent = coherentRate(drive, rabi, Math.abs(model.energy), follow || frequency === 0);
+  const coherent = coherentRate(drive, rabi, model.energy, follow || frequency === 0);
   const dissipative = 3 * (damping * rabi ** 5) ** (1 / 6) + 8 * damping;
   const rate = Math.max(coherent, dissipative);
   return {
@@ -38,14 +38,30 @@ export function firstSteps(drive: Drive, model: TwoLevel, spans: readonly Span[]
 }
 
 /**
- * Steps per ps for the coherent motion. Where the phase can be followed, a chirp matters little beyond the detuning of its
- * centre (twice the level's energy, since the frame lies midway); else everything that turns must be resolved.
+ * Steps per ps for the coherent motion. Where the phase can be followed, a chirp matters little beyond the detuning at the
+ * strongest moment; else everything that turns must be resolved.
+ * @param energy of the upper level in the drive's frame, 1/ps
  */
 export function coherentRate(drive: Drive, rabi: number, energy: number, smooth: boolean): number {
   const { frequency, time } = drive.scales;
-  if (!smooth) return 1.4 / time + 1.4 * rabi + 1.2 * Math.hypot(rabi, energy + frequency);
-  const chirp = Math.max(0, frequency - energy);
-  return 1.4 / time + 0.3 * rabi + 0.4 * Math.hypot(rabi, 2 * energy) + 0.15 * chirp;
+  if (!smooth) return 1.4 / time + 1.4 * rabi + 1.2 * Math.hypot(rabi, Math.abs(energy) + frequency);
+  const turning = frequency > 0 ? rateAtPeak(drive) : 0;
+  const chirp = Math.max(0, frequency - Math.abs(turning));
+  return 1.4 / time + 0.3 * rabi + 0.4 * Math.hypot(rabi, energy + turning) + 0.15 * chirp;
+}
+
+/** Rate of the drive's phase where it is strongest, 1/ps. */
+function rateAtPeak(drive: Drive): number {
+  const { frequency, time } = drive.scales;
+  let peak = drive.cells[0];
+  for (const cell of drive.cells) if (cell.bound > peak.bound) peak = cell;
+  const t = 0.5 * (peak.from + peak.to);
+  const d = Math.min(0.01 * time, 0.5 / frequency);
+  const out = new Float64Array(2 * drive.components);
+  drive.sample(t, peak.segment, out);
+  const [a, b] = out;
+  drive.sample(t + d, peak.segment, out);
+  return Math.atan2(out[1] * a - out[0] * b, out[0] * a + out[1] * b) / d;
 }
 
 /** Places at which the turning rate of the drive is looked at. */

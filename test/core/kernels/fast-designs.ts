@@ -131,7 +131,7 @@ export function agreement(
       continue;
     }
     const request = requestOf(d);
-    const found = fastKernels.find((k) => k.supports(request))?.count(request);
+    const found = fastKernels.find((k) => k.supports(request))?.count(request, countPhotons);
     if (!found) {
       declined++;
       continue;
