@@ -1,8 +1,9 @@
 import { figureDifference } from './accuracy.js';
 import type { Design } from './design.js';
 import { weightedMean } from './drift/mean.js';
-import { driftNodes } from './drift/nodes.js';
-import type { Figures, FigureTree, Note } from './figures.js';
+import { type DriftAxes, driftAxes, driftNodes } from './drift/nodes.js';
+import { driftQuantiles } from './drift/quantile.js';
+import type { Figures, FigureTree, Note, QuantileFigures } from './figures.js';
 import type { Effort } from './kernels/count.js';
 import { phononRangeProblem } from './phonons/count.js';
 import { pulseFigures } from './pulse/figures.js';
@@ -32,7 +33,8 @@ export function evaluate(design: Design, accuracy: Accuracy): Figures {
   checkSupport(design);
   const tree = evaluateTree(design, accuracy);
   if (!design.drift) return { ...tree, nominal: null };
-  return { ...tree, nominal: evaluateTree({ ...design, drift: null }, accuracy) };
+  const { quantile: _none, ...nominal } = evaluateTree({ ...design, drift: null }, accuracy);
+  return { ...tree, nominal };
 }
 
 function checkSupport(design: Design): void {
@@ -51,7 +53,10 @@ export class UnsupportedDesign extends Error {
   override readonly name = 'UnsupportedDesign';
 }
 
-function evaluateTree(design: Design, accuracy: Accuracy): FigureTree {
+/** The means with the quantiles, where a design asks for them. */
+type DriftTree = FigureTree & Pick<Figures, 'quantile'>;
+
+function evaluateTree(design: Design, accuracy: Accuracy): DriftTree {
   if (accuracy === 'search') return evaluateOnce(design, SEARCH);
   // The exact phonon method settles by its own size; what finer steps could add lies far below that.
   if (hasPhonons(design) && design.emitter.phonons?.method === 'exact') {
@@ -67,7 +72,7 @@ function evaluateTree(design: Design, accuracy: Accuracy): FigureTree {
   }
 }
 
-function withEstimate(tree: FigureTree, estimate: number): FigureTree {
+function withEstimate(tree: DriftTree, estimate: number): DriftTree {
   const notes: Note[] = [...tree.notes];
   if (estimate > PROMISED) {
     notes.push({
@@ -78,9 +83,10 @@ function withEstimate(tree: FigureTree, estimate: number): FigureTree {
   return { ...tree, notes, accuracy: { ...tree.accuracy, error_estimate: estimate } };
 }
 
-function evaluateOnce(design: Design, effort: Effort): FigureTree {
+function evaluateOnce(design: Design, effort: Effort): DriftTree {
   const duration = design.drift ? pulseFigures(design.pulse).duration_ps : 0;
-  const nodes = driftNodes(design, duration, effort.nodes);
+  const axes = driftAxes(design, duration, effort.nodes);
+  const nodes = driftNodes(design, axes);
   const runs = nodes.map((node) => sampleDesign(design, node, effort));
   const mean = weightedMean(
     runs.map((r) => r.sample),
@@ -88,7 +94,7 @@ function evaluateOnce(design: Design, effort: Effort): FigureTree {
   );
   const { method } = runs[0].phonons;
   const flags = [...new Set(runs.flatMap((r) => r.phonons.flags))];
-  return figureTree(
+  const tree = figureTree(
     mean,
     { method, flags },
     {
@@ -96,7 +102,35 @@ function evaluateOnce(design: Design, effort: Effort): FigureTree {
       error_estimate: runs.reduce((m, r) => Math.max(m, r.error), 0),
     },
   );
+  const share = design.drift?.quantile ?? null;
+  const samples = runs.map((r) => r.sample);
+  return { ...tree, quantile: share === null ? null : quantileFigures(samples, axes, share) };
 }
+
+/** Brightness that a share of the drift reaches, and impurity that it does not exceed. */
+function quantileFigures(samples: readonly Sample[], axes: DriftAxes, share: number): QuantileFigures {
+  const over = (of: (s: Sample) => number | null, below: number): number | null => {
+    const values = samples.map(of);
+    return values.includes(null)
+      ? null
+      : driftQuantiles(axes, [{ values: values as number[], share: below }])[0];
+  };
+  return {
+    share,
+    signal: {
+      single: over((s) => s.signal.single, 1 - share),
+      any: over((s) => anyOf(s.signal), 1 - share),
+      mean: over((s) => s.signal.mean, 1 - share),
+    },
+    collected: {
+      multiphoton: over((s) => s.collected.multiphoton, share),
+      g2: over((s) => ratio(s.collected.factorial2, s.collected.mean), share),
+    },
+  };
+}
+
+const anyOf = (c: Sample['signal']): number | null =>
+  c.single === null || c.multiphoton === null ? null : c.single + c.multiphoton;
 
 function ratio(factorial2: number, mean: number): number | null {
   return mean > 0 ? factorial2 / (mean * mean) : null;
@@ -120,7 +154,7 @@ function figureTree(s: Sample, phonons: FigureTree['phonons'], accuracy: FigureT
   const count = (c: Sample['signal']) => ({
     mean: c.mean,
     single: c.single,
-    any: c.single === null || c.multiphoton === null ? null : c.single + c.multiphoton,
+    any: anyOf(c),
     multiphoton: c.multiphoton,
     g2: ratio(c.factorial2, c.mean),
   });

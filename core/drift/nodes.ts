@@ -1,6 +1,6 @@
 import type { Design } from '../design.js';
 import { gaussHermite } from '../numerics/index.js';
-import { HBAR, RAD_PER_PS_PER_GHZ } from '../units/constants.js';
+import { GHZ_PER_MEV, HBAR, RAD_PER_PS_PER_GHZ } from '../units/constants.js';
 
 /**
  * One point of a drift average. Relative changes of every area and width in common; shift of the emitter, meV; shift of
@@ -122,5 +122,21 @@ export function driftedDesign(design: Design, node: DriftNode): Design {
     ...design,
     pulse: { ...design.pulse, tones },
     collection: { ...design.collection, filter: moved },
+  };
+}
+
+/**
+ * The fixed design at a point of the drift, itself without drift. The emitter stands still in a design, so laser and
+ * filter move against it; a filter's own drift comes on top.
+ */
+export function designAtDrift(nominal: Design, node: Omit<DriftNode, 'weight'>): Design {
+  const { pulse, collection, ...rest } = driftedDesign({ ...nominal, drift: null }, { ...node, weight: 1 });
+  const tones = pulse.tones.map((t) => ({ ...t, detuning: t.detuning - node.shift }));
+  const { filter } = collection;
+  const center = filter === null ? 0 : filter.center - node.shift * GHZ_PER_MEV;
+  return {
+    ...rest,
+    pulse: { ...pulse, tones },
+    collection: { ...collection, filter: filter && { ...filter, center } },
   };
 }
