@@ -96,7 +96,7 @@ def random_two_level(seed):
                 design(two_level(300), swing_up, polarization="crossed", efficiency=0.6, filter=40, laser=draw.laser()), {}))
     out.append(("two-level: many photons a pulse", design(two_level(50), [tone(fwhm=200, area=18 * pi)], filter=60), {}))
     drifts = [
-        ({"area": 0.03, "width": 0, "detuning": 0.008}, 12, {"area": 10, "detuning": 14}),
+        ({"area": 0.03, "width": 0, "detuning": 0.008}, 12, {"area": 8, "detuning": 20}),
         ({"area": 0.02, "width": 0.04, "detuning": 0}, None, {"area": 10, "width": 12}),
         ({"area": 0, "width": 0, "detuning": 0.02}, 80, {"detuning": 24}),
     ]
@@ -104,7 +104,7 @@ def random_two_level(seed):
         tones = [tone(fwhm=draw.log(4, 15), area=draw.linear(0.8, 2.2) * pi)]
         one = design(two_level(draw.log(150, 600)), tones, polarization="crossed", efficiency=draw.linear(0.4, 0.9),
                      filter=width, laser=draw.laser(), drift=drift)
-        out.append((f"two-level, drift of {', '.join(k for k, v in drift.items() if v)}", one, {"moments": 4, "nodes": nodes}))
+        out.append((f"two-level, drift of {', '.join(k for k, v in drift.items() if v)}", one, {"nodes": nodes}))
     return out
 
 
@@ -151,8 +151,9 @@ def random_cascade(seed):
                      0 if width is None else draw.pick(0, draw.linear(-0.5, 0.5) * width),
                      draw.laser() if k % 2 == 0 else None)
         out.append((f"cascade {k}: {line}, {polarization}", one, {"moments": 4} if polarization == "all" else {}))
-    name, one, options = out[0]
+    one = out[0][1]
+    collection = {**one["collection"], "filter": {"fwhm": 40, "center": 0}}
     out.append(("cascade, drift of area, detuning",
-                {**one, "drift": {"area": 0.02, "width": 0, "detuning": 0.006}},
-                {"moments": 4, "nodes": {"area": 7, "detuning": 8}}))
+                {**one, "collection": collection, "drift": {"area": 0.02, "width": 0, "detuning": 0.004}},
+                {"moments": 4, "nodes": {"area": 8, "detuning": 10}}))
     return out
