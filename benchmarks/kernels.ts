@@ -3,7 +3,7 @@
  * C (peers/two-level.c, built here with gcc -O3 -march=native): one count of each case, error estimate included,
  * interleaved; minima, spread and ratios. Prints markdown.
  *
- *   npm run bench:kernels [-- rounds [seconds]]        default 7 rounds of 0.05 s
+ *   npm run build && npm run bench:kernels [-- rounds [seconds]]        default 7 rounds of 0.1 s
  */
 import { type ChildProcessWithoutNullStreams, spawn, spawnSync } from 'node:child_process';
 import { mkdtempSync } from 'node:fs';
@@ -12,77 +12,35 @@ import { join } from 'node:path';
 import { createInterface } from 'node:readline';
 import { fileURLToPath } from 'node:url';
 import type { Design } from '../core/index.js';
-import { collectedDipoles } from '../dist/core/emitter/generator.js';
-import { type CountRequest, countByReference, countPhotons } from '../dist/core/kernels/count.js';
-import { disagreement } from '../dist/core/kernels/fast/estimate.js';
-import { smoothSpans } from '../dist/core/kernels/fast/spans.js';
-import { firstSteps } from '../dist/core/kernels/fast/step-rule.js';
-import { asTwoLevel } from '../dist/core/kernels/fast/two-level.js';
-import { situation } from '../dist/core/sample.js';
-import { HBAR, RAD_PER_PS_PER_GHZ } from '../dist/core/units/constants.js';
+import { disagreement } from '../core/kernels/fast/estimate.js';
+import type { TwoLevel } from '../core/kernels/fast/two-level.js';
+import { HBAR } from '../core/units/constants.js';
 import { CASES } from './cases.js';
-import { machineLine, markdownTable, seconds, sink, summarise, timeOnce } from './timing.js';
+import { machineLine, markdownTable, seconds, summarise } from './timing.js';
 
 const rounds = Number(process.argv[2] ?? 7);
-const least = Number(process.argv[3] ?? 0.05);
+const least = Number(process.argv[3] ?? 0.1);
 
-function requestOf(design: Design): CountRequest {
-  const { scheme, drive, frame, line } = situation(design);
-  const { filter, polarization } = design.collection;
-  return {
-    scheme,
-    dipoles: collectedDipoles(scheme, 'exciton', polarization === 'h' ? 0 : 'all'),
-    drive,
-    frame,
-    shift: 0,
-    thinning: null,
-    filter: filter && {
-      kappa: filter.fwhm * RAD_PER_PS_PER_GHZ,
-      center: line + filter.center * RAD_PER_PS_PER_GHZ - frame,
-      order: 3,
-    },
-    effort: { tolerance: 1e-10, parts: 1, nodes: 1, series: 'estimate' },
-  };
-}
-
-/** A C process that times the two-level kernel on one case. */
-class CPeer {
+/** A process that answers line by line. */
+class LineProcess {
   readonly #child: ChildProcessWithoutNullStreams;
   readonly #lines: AsyncIterator<string>;
 
-  constructor(program: string, request: CountRequest, design: Design) {
-    const model = asTwoLevel(request);
-    const spans = smoothSpans(request.drive);
-    if (!model || !spans) throw new Error('the C peer knows smooth pulses on two levels only');
-    const plan = firstSteps(request.drive, model, spans);
-    const { breakpoints } = request.drive;
-    const ends = [breakpoints[0], breakpoints[breakpoints.length - 1]];
-    const tones = design.pulse.tones.flatMap((t) => {
-      if (t.shape !== 'gaussian') throw new Error('the C peer knows Gaussian tones only');
-      return [
-        t.area,
-        t.fwhm / (2 * Math.sqrt(Math.LN2)),
-        t.gdd,
-        t.detuning / HBAR - request.frame,
-        t.delay,
-        t.phase,
-      ];
-    });
-    this.#child = spawn(program);
+  constructor(program: string, args: readonly string[]) {
+    this.#child = spawn(program, args);
     this.#child.stderr.pipe(process.stderr);
     this.#lines = createInterface({ input: this.#child.stdout })[Symbol.asyncIterator]();
-    const steps = plan.counts.reduce((a, b) => a + b, 0);
-    const numbers = [model.decay, model.dephasing, model.energy, ...ends, steps, plan.follow ? 1 : 0];
-    this.#child.stdin.write(`${[...numbers, design.pulse.tones.length, ...tones].join(' ')}\n`);
   }
 
-  async time(): Promise<number> {
-    this.#child.stdin.write(`${least}\n`);
+  tell(line: string): void {
+    this.#child.stdin.write(`${line}\n`);
+  }
+
+  async ask(line: string): Promise<string> {
+    this.tell(line);
     const { value, done } = await this.#lines.next();
-    if (done) throw new Error('the C peer ended');
-    const [elapsed, total] = String(value).split(' ').map(Number);
-    if (!(total > 0)) throw new Error('the C peer did not reach its accuracy');
-    return elapsed;
+    if (done) throw new Error(`${this.#child.spawnfile} ended`);
+    return String(value);
   }
 
   close(): void {
@@ -90,48 +48,106 @@ class CPeer {
   }
 }
 
-function buildPeer(): string | null {
+interface Plan {
+  readonly model: TwoLevel;
+  readonly frame: number;
+  readonly start: number;
+  readonly end: number;
+  readonly steps: number;
+  readonly follow: boolean;
+}
+
+interface Answer {
+  readonly elapsed: number;
+  readonly steps: number;
+  readonly values: Readonly<Record<string, number>>;
+  readonly plan: Plan | null;
+}
+
+/** Moments behind a filter. */
+const ORDER = 3;
+
+const counter = new LineProcess(process.execPath, [
+  fileURLToPath(new URL('./peers/counter.mjs', import.meta.url)),
+]);
+
+async function count(
+  kernel: 'fast' | 'reference',
+  design: Design,
+  duration: number,
+  tolerance = 1e-10,
+): Promise<Answer> {
+  const request = { design, order: ORDER, kernel, seconds: duration, tolerance };
+  return JSON.parse(await counter.ask(JSON.stringify(request))) as Answer;
+}
+
+/** The C program on one case, started from the same steps. */
+function startPeer(
+  program: string,
+  { model, frame, start, end, steps, follow }: Plan,
+  design: Design,
+): LineProcess {
+  const tones = design.pulse.tones.flatMap((t) => {
+    if (t.shape !== 'gaussian') throw new Error('the C peer knows Gaussian tones only');
+    return [t.area, t.fwhm / (2 * Math.sqrt(Math.LN2)), t.gdd, t.detuning / HBAR - frame, t.delay, t.phase];
+  });
+  const numbers = [model.decay, model.dephasing, model.energy, start, end, steps, follow ? 1 : 0];
+  const peer = new LineProcess(program, []);
+  peer.tell([...numbers, design.pulse.tones.length, ...tones].join(' '));
+  return peer;
+}
+
+async function timePeer(peer: LineProcess): Promise<number> {
+  const [elapsed, total] = (await peer.ask(String(least))).split(' ').map(Number);
+  if (!(total > 0)) throw new Error('the C peer did not reach its accuracy');
+  return elapsed;
+}
+
+function buildPeer(): string {
   const source = fileURLToPath(new URL('./peers/two-level.c', import.meta.url));
   const program = join(mkdtempSync(join(tmpdir(), 'kernel-peer-')), 'two-level');
   const built = spawnSync('gcc', ['-O3', '-march=native', '-o', program, source, '-lm'], {
     stdio: 'inherit',
   });
-  return built.status === 0 ? program : null;
+  if (built.status !== 0) throw new Error('gcc could not build benchmarks/peers/two-level.c');
+  return program;
 }
 
 const program = buildPeer();
-const entries = CASES.map(({ name, design }) => {
-  const request = requestOf(design);
-  const inC = program && !request.filter && asTwoLevel(request) ? new CPeer(program, request, design) : null;
-  return { name, request, inC, fast: [] as number[], reference: [] as number[], c: [] as number[] };
-});
-for (const { request } of entries) timeOnce(() => countPhotons(request).steps, 0.3);
+const entries = [];
+for (const { name, design } of CASES) {
+  const { plan } = await count('fast', design, 0.3);
+  const peer = plan ? startPeer(program, plan, design) : null;
+  entries.push({ name, design, peer, fast: [] as number[], reference: [] as number[], c: [] as number[] });
+}
 for (let round = 0; round < rounds; round++) {
-  for (const { request, inC, fast, reference, c } of entries) {
-    fast.push(timeOnce(() => countPhotons(request).steps, least));
-    if (inC) c.push(await inC.time());
-    reference.push(timeOnce(() => countByReference(request).steps, least));
+  for (const { design, peer, fast, reference, c } of entries) {
+    fast.push((await count('fast', design, least)).elapsed);
+    if (peer) c.push(await timePeer(peer));
+    reference.push((await count('reference', design, least)).elapsed);
   }
 }
-const rows = entries.map(({ name, request, inC, fast, reference, c }) => {
-  inC?.close();
-  const [us, them] = [summarise(fast), summarise(reference)];
-  const peer = c.length > 0 ? summarise(c) : null;
-  const found = countPhotons(request);
-  const exact = countByReference({ ...request, effort: { ...request.effort, tolerance: 1e-12 } });
+const rows: string[][] = [];
+for (const { name, design, peer, fast, reference, c } of entries) {
+  peer?.close();
+  const found = await count('fast', design, 0);
+  const exact = await count('reference', design, 0, 1e-12);
   const values = Object.fromEntries(Object.keys(found.values).map((k) => [k, exact.values[k]]));
-  return [
+  const [us, them] = [summarise(fast), summarise(reference)];
+  const inC = c.length > 0 ? summarise(c) : null;
+  rows.push([
     name,
     seconds(us.least),
     us.spread.toFixed(2),
-    peer ? seconds(peer.least) : '–',
-    peer ? (us.least / peer.least).toFixed(2) : '–',
+    inC ? seconds(inC.least) : '–',
+    inC ? (us.least / inC.least).toFixed(2) : '–',
     seconds(them.least),
     (them.least / us.least).toPrecision(3),
     String(found.steps),
     (disagreement(found.values, values) / 1e-9).toPrecision(1),
-  ];
-});
+  ]);
+}
+counter.close();
 console.log(`${machineLine()}; ${rounds} rounds, minima; spread = median / minimum\n`);
 console.log(
   markdownTable(
@@ -139,4 +155,3 @@ console.log(
     rows,
   ),
 );
-console.log(`\n(sink ${sink.total})`);

@@ -4,6 +4,7 @@ import {
   type CountRequest,
   type CountResult,
   countByReference,
+  countPhotons,
   PropagationError,
 } from '../../../core/kernels/count.js';
 import { disagreement } from '../../../core/kernels/fast/estimate.js';
