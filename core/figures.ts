@@ -48,7 +48,7 @@ export interface PulseFigures {
 }
 
 export interface Note {
-  /** Path of the figure the note is about, such as `filtered.multiphoton`, or `accuracy`. */
+  /** Path of the figure the note is about, such as `filtered.multiphoton`, or `accuracy` or `phonons`. */
   readonly path: string;
   readonly reason: string;
 }
@@ -63,6 +63,7 @@ export interface FigureTree {
   readonly pulse: PulseFigures;
   readonly phonons: {
     readonly method: 'none' | 'polaron' | 'weak-coupling' | 'exact';
+    /** What is wrong with the figures, such as an unphysical probability; empty for sound ones. */
     readonly flags: readonly string[];
   };
   readonly accuracy: {

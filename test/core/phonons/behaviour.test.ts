@@ -114,7 +114,14 @@ describe('flags and choices', () => {
     const emitter = twoLevelEmitter({ lifetime: 1e9, phonons: phonons(4, { method: 'auto' }) });
     const resonant = evaluate(design(emitter, [tone()]), 'search');
     expect(resonant.phonons.method).toBe('polaron');
-    expect(resonant.phonons.flags[0]).toMatch(/^auto: polaron, for a resonant drive .*measured error/);
+    expect(resonant.notes).toEqual([
+      {
+        path: 'phonons',
+        reason: expect.stringMatching(/^auto: polaron, for a resonant drive .*measured error/),
+      },
+    ]);
+    // What only says how the figures were made is no flag: no goal may refuse a sound design for it.
+    expect(resonant.phonons.flags).toEqual([]);
     const pair = evaluate(design(emitter, ROWS[8].tones.map(tone)), 'search');
     expect(pair.phonons.method).toBe('weak-coupling');
     expect(pair.populations['x']).toBeCloseTo(0.978, 2);
@@ -123,7 +130,8 @@ describe('flags and choices', () => {
   it('states terms, depth and difference of a quoted exact result', () => {
     const emitter = twoLevelEmitter({ phonons: phonons(4), lifetime: 300 });
     const figures = evaluate(design(emitter, [tone({ fwhm: 1 })]), 'quoted');
-    expect(figures.phonons.flags[0]).toMatch(/exact: \d+ terms, depth \d; one more of either changes/);
+    expect(figures.notes[0].reason).toMatch(/exact: \d+ terms, depth \d; one more of either changes/);
+    expect(figures.phonons.flags).toEqual([]);
     expect(figures.accuracy.error_estimate).toBeLessThan(1e-3);
     const polaron = countWithPhonons(requestOf(design(emitter, [tone({ fwhm: 1 })])), phonons(4), 'polaron');
     expect(Math.abs(figures.emitted.mean - polaron.values['mean'])).toBeLessThan(3e-3);
