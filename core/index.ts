@@ -6,7 +6,7 @@ export { addFilteredMoments, type RotatingFilter } from './counting/filtered.js'
 export * from './counting/hierarchy.js';
 export * from './counting/tail.js';
 export * from './design.js';
-export { type DriftNode, driftNodes, normalRule } from './drift/nodes.js';
+export { type DriftNode, designAtDrift, driftNodes, normalRule } from './drift/nodes.js';
 export type * from './emitter/contract.js';
 export { buildGenerator, collectedDipoles, driveOperators, type Generator } from './emitter/generator.js';
 export { emitterModel, emitterModels } from './emitter/registry.js';

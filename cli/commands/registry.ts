@@ -38,4 +38,10 @@ export const commands: readonly CommandEntry[] = [
     summary: 'fronts of finished runs in one picture and one table',
     load: async () => (await import('./compare.js')).compare,
   },
+  {
+    name: 'tolerance',
+    positionals: '<study>',
+    summary: 'what drift does to a design, and the largest drift that still meets the goal',
+    load: async () => (await import('./tolerance.js')).tolerance,
+  },
 ];

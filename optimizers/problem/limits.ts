@@ -37,8 +37,8 @@ export function limitStates(figures: Figures, limits: readonly Limit[]): LimitSt
     const state = (side: 'atMost' | 'atLeast'): LimitState[] => {
       const bound = limit[side];
       if (bound === null) return [];
-      const sign = side === 'atMost' ? 1 : -1;
-      const constraint = value === null ? 2 : sign * excess(value, bound);
+      const [above, below] = side === 'atMost' ? [value, bound] : [bound, value];
+      const constraint = above === null || below === null ? 2 : excess(above, below);
       return [{ limit, side, bound, value, constraint }];
     };
     return [...state('atMost'), ...state('atLeast')];

@@ -6,12 +6,14 @@ import { islandTask } from './island.js';
 import { Recorder } from './recorder.js';
 import { sampleTask } from './sample.js';
 import { solveTask } from './solve.js';
+import { verifyTask } from './verify.js';
 
 /** Every kind of task, by name. */
 export const taskRunners: ReadonlyMap<string, TaskRunner> = new Map([
   ['sample', sampleTask],
   ['island', islandTask],
   ['solve', solveTask],
+  ['verify', verifyTask],
 ]);
 
 /** Runs a task to its end on this thread. Throws for an unknown kind. */

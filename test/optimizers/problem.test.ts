@@ -1,6 +1,7 @@
 import fc from 'fast-check';
 import { describe, expect, it } from 'vitest';
 import type { Figures } from '../../core/index.js';
+import type { Goal } from '../../optimizers/index.js';
 import { applyParameters, createProblem, infeasible, judge, transformOf } from '../../optimizers/index.js';
 import { GOAL, range, toyEvaluate, toySpec } from './toy.js';
 
@@ -104,7 +105,10 @@ describe('judgement', () => {
 
   it('reads impurity from what is collected and brightness from the signal', () => {
     const figures = { ...collected(0.125), signal: { ...good.signal, mean: 0.75 } };
-    expect(judge(figures, { ...GOAL, brightness: 'mean' })).toEqual({ impurity: 0.125, brightness: 0.75 });
+    expect(judge(figures, { ...GOAL, brightness: 'mean' })).toMatchObject({
+      impurity: 0.125,
+      brightness: 0.75,
+    });
   });
 
   it.each([null, Number.NaN, Number.POSITIVE_INFINITY, -1e-4, 1.5])(
@@ -123,5 +127,26 @@ describe('judgement', () => {
     );
     expect(judge({ ...good, accuracy: { steps: 1, error_estimate: 0.5 } }, GOAL)).toEqual(infeasible(GOAL));
     expect(judge({ ...good, signal: { ...good.signal, single: 1.01 } }, GOAL)).toEqual(infeasible(GOAL));
+  });
+});
+
+describe('limits', () => {
+  const figures = toyEvaluate(toySpec(1, 1).design);
+  const goal = (limits: Goal['limits']): Goal => ({ ...GOAL, limits });
+  const bound = (figure: string, atMost: number | null, atLeast: number | null = null) => ({
+    ...{ figure, atMost, atLeast },
+  });
+
+  it('are constraints of relative size, one for each bound, and met at the bound itself', () => {
+    const { duration_ps: duration } = figures.pulse;
+    const met = judge(figures, goal([bound('pulse.duration_ps', duration, duration)]));
+    expect(met).toMatchObject({ constraints: [0, 0], violation: 0 });
+    const missed = judge(figures, goal([bound('pulse.duration_ps', duration / 1.01, 0)]));
+    expect(missed.violation).toBeCloseTo(0.01, 4);
+    expect(missed.constraints[1]).toBeLessThan(0);
+  });
+
+  it('are missed by a figure that does not exist', () => {
+    expect(judge(figures, goal([bound('filtered.g2', 1)])).violation).toBe(2);
   });
 });

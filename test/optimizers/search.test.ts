@@ -159,6 +159,28 @@ describe('front', () => {
     expect(outcome.front.every(({ point }) => point === null)).toBe(true);
   });
 
+  it('keeps every limit, and reaches the best design that one of them allows', async () => {
+    const limits = [{ figure: 'pulse.duration_ps', atMost: null, atLeast: 6 }];
+    const free = await run(toySpec(1200, 4));
+    expect(free.best?.figures.pulse.duration_ps).toBeLessThan(5);
+    const { archive, best, nearest } = await run(toySpec(1200, 4, FOUR, { limits }));
+    expect(archive.length).toBeGreaterThan(20);
+    for (const { figures } of archive) expect(figures.pulse.duration_ps).toBeGreaterThanOrEqual(6);
+    expect(best?.figures.pulse.duration_ps).toBeLessThan(6 * (1 + 1e-3));
+    expect(nearest).toBeNull();
+  });
+
+  it('names the evaluation nearest to limits that nothing meets', async () => {
+    const limits = [
+      { figure: 'pulse.duration_ps', atMost: 1, atLeast: null },
+      { figure: 'collected.multiphoton', atMost: 1, atLeast: null },
+    ];
+    const outcome = await run(toySpec(600, 4, FOUR, { limits }));
+    expect(outcome.archive).toEqual([]);
+    // In the stand-in the duration is τ + 5/τ for an undispersed pulse: 2√5 at the least.
+    expect(outcome.nearest?.figures.pulse.duration_ps).toBeCloseTo(2 * Math.sqrt(5), 1);
+  });
+
   it('does not fall for a flaw that is flagged or undefined', async () => {
     const evaluate: Evaluate = (design) => {
       const figures = toyEvaluate(design);

@@ -335,6 +335,36 @@ const single: [string, string, string][] = [
     '9:17 drift.width: got 16 %; needs at least 0 % and at most 15 %',
   ],
   [
+    'drift judged on too small a share',
+    after('drift: { area: 2 %, judge: quantile, quantile: 0.4 }'),
+    '9:48 drift.quantile: got 0.4; needs at least 0.5 and at most 0.999',
+  ],
+  [
+    'limit without a bound',
+    after('goal: { limits: { pulse.duration_ps: {} } }'),
+    '9:19 goal.limits.pulse.duration_ps: got an empty mapping; needs at_most, at_least or both',
+  ],
+  [
+    'limit without its unit',
+    after('goal: { limits: { pulse.duration_ps: { at_most: 12 } } }'),
+    '9:49 goal.limits.pulse.duration_ps.at_most: got 12 (no unit); needs a time in fs, ps, ns or us, such as 5 ps',
+  ],
+  [
+    'limit that nothing meets',
+    after('goal: { limits: { collected.g2: { at_least: 0.2, at_most: 0.1 } } }'),
+    '9:19 goal.limits.collected.g2: got at_least 0.2 and at_most 0.1; needs at_least not above at_most',
+  ],
+  [
+    'limit of filtered light without a filter',
+    after('goal: { limits: { filtered.g2: { at_most: 0.1 } } }'),
+    '9:19 goal.limits.filtered.g2: got a limit; needs a study with collection.filter: without one there is no filtered light',
+  ],
+  [
+    'limit of a misspelt figure',
+    after('goal: { limits: { pulse.duration: { at_most: 1 ps } } }'),
+    '9:19 goal.limits.pulse.duration: got the unknown key pulse.duration; needs pulse.duration_ps (the nearest key here)',
+  ],
+  [
     'drift without unit',
     after('drift: { area: 0.02 }'),
     '9:16 drift.area: got 0.02 (no unit); needs a percentage in %, such as 2 %',
