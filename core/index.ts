@@ -31,6 +31,6 @@ export { phononMethod, phononMethods } from './phonons/registry.js';
 export { sidebandTransmission } from './phonons/sideband.js';
 export * from './pulse/contract.js';
 export * from './pulse/index.js';
-export { type Situation, situation } from './sample.js';
+export { phononChoice, type Situation, situation } from './sample.js';
 export * from './trace.js';
 export * from './units/index.js';

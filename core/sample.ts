@@ -15,6 +15,7 @@ import { emitterModel } from './emitter/registry.js';
 import type { FigureTree, PulseFigures } from './figures.js';
 import { type Effort, PropagationError } from './kernels/count.js';
 import { type Resonance, schemeResonances, slowestFrame } from './kernels/frame.js';
+import { type Choice, chooseMethod, type DriveKind } from './phonons/choose.js';
 import type { PhononCount } from './phonons/contract.js';
 import { type PhononPlan, phononPlan } from './phonons/plan.js';
 import { DispersionError } from './pulse/dispersed.js';
@@ -159,16 +160,30 @@ export function sampleDesign(nominal: Design, node: DriftNode, wanted: Effort): 
   };
 }
 
-/** With which phonon method the design is counted; `auto` goes by how far each tone lies from what it can drive. */
+/** With which phonon method the design is counted. */
 function planOf(design: Design, where: Situation, shift: number, effort: Effort): PhononPlan {
-  const { scheme, reference, drive } = where;
+  const kind = driveKind(design, where, shift);
+  return phononPlan(design.emitter.phonons, where.drive, kind, effort.series === 'bound');
+}
+
+/** The second-order phonon method that `auto` would take for a design without drift; null without phonons. */
+export function phononChoice(design: Design): Choice | null {
+  const { phonons } = design.emitter;
+  if (phonons === null || phonons.coupling === 0) return null;
+  const where = situation(design);
+  return chooseMethod(where.drive, phonons, driveKind(design, where, 0));
+}
+
+/** How far each tone lies from what it can drive. */
+function driveKind(design: Design, where: Situation, shift: number): DriveKind {
+  const { scheme, reference } = where;
   const resonances = [0, ...(scheme.twoPhoton === null ? [] : [scheme.twoPhoton])];
   const { tones } = design.pulse;
   const offsets = tones.map((t) =>
     Math.min(...resonances.map((r) => Math.abs(reference + t.detuning / HBAR - shift - r))),
   );
   const chirped = tones.some((t) => t.gdd !== 0 || t.tod !== 0);
-  return phononPlan(design.emitter.phonons, drive, { offsets, chirped }, effort.series === 'bound');
+  return { offsets, chirped };
 }
 
 interface CountRun {

@@ -10,7 +10,10 @@ export const LEDGER = 'ledger.jsonl';
 export const STUDY = 'study.yaml';
 export const DESIGNS = 'designs';
 /** Everything that can be rebuilt from study and ledger, besides the designs. */
-const RESULTS: readonly string[] = ['front.csv', 'archive.csv', 'front.json', 'front.svg', 'report.html'];
+const RESULTS: readonly string[] = [
+  ...['front.csv', 'archive.csv', 'front.json', 'front.svg', 'report.html'],
+  ...['verify.jsonl', 'verify.csv', 'verify.json'],
+];
 const DESIGN_FILE = /^(\d{2,}|best)\.yaml$/;
 
 /** An open run directory. */

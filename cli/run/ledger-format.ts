@@ -20,10 +20,10 @@ export interface LedgerEntry {
   readonly wall: number;
 }
 
-export interface LedgerContent {
+export interface LedgerContent<Entry = LedgerEntry> {
   /** Null: torn or missing. */
   readonly header: LedgerHeader | null;
-  readonly entries: readonly LedgerEntry[];
+  readonly entries: readonly Entry[];
   /** Length in bytes up to the end of the last line that is sound. */
   readonly sound: number;
   /** Number of the first line that is damaged although it is not the last one; null when there is none. */
@@ -62,7 +62,15 @@ function entryOf(value: unknown): LedgerEntry | null {
 
 /** Reads the bytes of a ledger. A line counts only with its line feed: a kill can tear the last one. */
 export function parseLedger(bytes: Buffer): LedgerContent {
-  const entries: LedgerEntry[] = [];
+  return parseLines(bytes, entryOf);
+}
+
+/** The same for lines of another kind: `read` gives the entry of a parsed line, null for a damaged one. */
+export function parseLines<Entry>(
+  bytes: Buffer,
+  read: (value: unknown) => Entry | null,
+): LedgerContent<Entry> {
+  const entries: Entry[] = [];
   let header: LedgerHeader | null = null;
   let sound = 0;
   for (let number = 1, end = bytes.indexOf(10); end >= 0; number++, end = bytes.indexOf(10, sound)) {
@@ -71,7 +79,7 @@ export function parseLedger(bytes: Buffer): LedgerContent {
       header = headerOf(value);
       if (header === null) return { header, entries, sound: 0, damaged: null };
     } else {
-      const entry = entryOf(value);
+      const entry = read(value);
       if (entry === null) {
         const last = bytes.indexOf(10, end + 1) < 0;
         return { header, entries, sound, damaged: last ? null : number };

@@ -3,7 +3,7 @@ import type { LedgerEntry, LedgerHeader } from './ledger-format.js';
 import { fileError } from './user-error.js';
 
 /** Append-only record of a run: each line is on the disk before anything depends on it. */
-export class Ledger {
+export class Ledger<Entry extends object = LedgerEntry> {
   readonly #file: FileHandle;
   readonly #path: string;
   /** Workers end when they like: lines must not run into each other. */
@@ -15,29 +15,29 @@ export class Ledger {
   }
 
   /** A new ledger in place of whatever was there. */
-  static async begin(path: string, header: LedgerHeader): Promise<Ledger> {
-    const ledger = await Ledger.#open(path, 'w');
+  static async begin<E extends object = LedgerEntry>(path: string, header: LedgerHeader): Promise<Ledger<E>> {
+    const ledger = await Ledger.#open<E>(path, 'w');
     await ledger.#line(header);
     return ledger;
   }
 
   /** Goes on after the first `sound` bytes; the rest, a torn line, is cut off. */
-  static async continue(path: string, sound: number): Promise<Ledger> {
+  static async continue<E extends object = LedgerEntry>(path: string, sound: number): Promise<Ledger<E>> {
     const ledger = await Ledger.#open(path, 'r+');
     await ledger.#file.truncate(sound);
     await ledger.#file.close();
-    return Ledger.#open(path, 'a');
+    return Ledger.#open<E>(path, 'a');
   }
 
-  static async #open(path: string, flags: string): Promise<Ledger> {
+  static async #open<E extends object>(path: string, flags: string): Promise<Ledger<E>> {
     try {
-      return new Ledger(await open(path, flags), path);
+      return new Ledger<E>(await open(path, flags), path);
     } catch (error) {
       throw fileError(error, path);
     }
   }
 
-  append(entry: LedgerEntry): Promise<void> {
+  append(entry: Entry): Promise<void> {
     this.#queue = this.#queue.then(() => this.#line(entry));
     return this.#queue;
   }

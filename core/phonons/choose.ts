@@ -5,6 +5,8 @@ export interface Choice {
   readonly method: 'polaron' | 'weak-coupling';
   /** Which, why, and what error was measured for such drives, as one phrase. */
   readonly reason: string;
+  /** Largest error of populations that was measured for such drives. */
+  readonly error: number;
 }
 
 /** What the choice needs to know of a pulse. */
@@ -37,15 +39,23 @@ export function chooseMethod(drive: Drive, bath: Bath, kind: DriveKind): Choice 
   const method = detuned && fast ? 'weak-coupling' : 'polaron';
   const what = kind.chirped ? 'a chirped drive' : detuned ? 'a detuned drive' : 'a resonant drive';
   const pace = detuned ? (fast ? ' faster than the bath' : ' slower than the bath') : '';
+  const { error, where } = errorClass(bath.temperature, kind.chirped, detuned, speed);
   return {
     method,
-    reason: `auto: ${method}, for ${what}${pace} (peak Rabi frequency ${speed.toFixed(2)} of the bath's cutoff); measured error of populations for this kind: ${errorClass(bath.temperature, kind.chirped, detuned)}`,
+    reason: `auto: ${method}, for ${what}${pace} (peak Rabi frequency ${speed.toFixed(2)} of the bath's cutoff); measured error of populations for this kind: up to ${error}${where}`,
+    error,
   };
 }
 
-function errorClass(temperature: number, chirped: boolean, detuned: boolean): string {
-  if (temperature > COOL) return 'up to 6e-2 (77 K)';
-  if (temperature > COLD) return 'up to 4e-2 (20 K)';
-  if (detuned) return 'up to 1e-2';
-  return chirped ? 'up to 4e-3' : 'up to 2e-3 (1.6e-2 at a peak beyond the cutoff)';
+function errorClass(
+  temperature: number,
+  chirped: boolean,
+  detuned: boolean,
+  speed: number,
+): { error: number; where: string } {
+  if (temperature > COOL) return { error: 6e-2, where: ' (77 K)' };
+  if (temperature > COLD) return { error: 4e-2, where: ' (20 K)' };
+  if (detuned) return { error: 1e-2, where: '' };
+  if (chirped) return { error: 4e-3, where: '' };
+  return speed > 1 ? { error: 1.6e-2, where: ' (peak beyond the cutoff)' } : { error: 2e-3, where: '' };
 }
