@@ -5,6 +5,7 @@ import { gridOf, samplePoints } from './enumerate.js';
 import { explore, scatter } from './explore.js';
 import { aimAtLevels, fillBetween } from './fill.js';
 import { evenLevels, polishLevels, polishOthers, refine, sweep, tighten } from './polish.js';
+import { single } from './single.js';
 
 /** Shares of a round's budget. */
 const SHARES = { explore: 0.2, polish: 0.6 };
@@ -63,6 +64,7 @@ function* round(known: Knowledge, number: number, budget: number, tried: Set<str
 /** The strategy: see `search`. */
 export function* plan(known: Knowledge): Plan {
   const { categories } = known.problem.space;
+  if (known.spec.search.method !== 'auto' && categories.length > 0) return yield* single(known);
   const continuous = categories.filter((count) => count === 0).length;
   if (continuous === 0) {
     const all = gridOf(categories, 1, known.left);

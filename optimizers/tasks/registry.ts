@@ -3,6 +3,7 @@ import type { ProblemSpec } from '../problem/contract.js';
 import type { Problem } from '../problem/problem.js';
 import type { Task, TaskResult, TaskRunner } from './contract.js';
 import { islandTask } from './island.js';
+import { methodTask } from './method.js';
 import { Recorder } from './recorder.js';
 import { sampleTask } from './sample.js';
 import { solveTask } from './solve.js';
@@ -13,6 +14,7 @@ export const taskRunners: ReadonlyMap<string, TaskRunner> = new Map([
   ['sample', sampleTask],
   ['island', islandTask],
   ['solve', solveTask],
+  ['method', methodTask],
   ['verify', verifyTask],
 ]);
 

@@ -2,6 +2,8 @@ import { describe, expect, it } from 'vitest';
 import { stream } from '../../core/numerics/stream.js';
 import {
   type Evaluate,
+  globalMethods,
+  localMethods,
   type ProblemSpec,
   type SearchOptions,
   type SearchOutcome,
@@ -230,6 +232,28 @@ describe('determinism', () => {
 
   it('another seed searches elsewhere', async () => {
     expect(result(await run(toySpec(300, 1)))).not.toBe(result(await run(toySpec(300, 2))));
+  });
+});
+
+describe('one method in place of the strategy', () => {
+  const methods = [...localMethods.keys(), ...globalMethods.keys()];
+  const named = (method: string, evaluations: number): ProblemSpec => {
+    const spec = toySpec(evaluations, 3);
+    return { ...spec, search: { ...spec.search, method } };
+  };
+
+  it.each(methods)('%s keeps the cap, finds a front, and goes on after interruptions', async (method) => {
+    const { evaluate, count } = counting();
+    const whole = await run(named(method, 700), { evaluate });
+    expect(count()).toBe(whole.evaluations);
+    expect(whole.evaluations).toBeLessThanOrEqual(700);
+    expect(whole.archive.length).toBeGreaterThan(5);
+    const { outcome } = await interrupted(named(method, 700), 5);
+    expect(result(outcome)).toBe(result(whole));
+  });
+
+  it('refuses a name that is none', async () => {
+    await expect(run(named('gradient', 100))).rejects.toThrow('search.method: got gradient');
   });
 });
 
