@@ -33,6 +33,12 @@ export const commands: readonly CommandEntry[] = [
     load: async () => (await import('./optimize.js')).optimize,
   },
   {
+    name: 'verify',
+    positionals: '<dir>',
+    summary: 'recompute every design of a finished run independently; say which points hold',
+    load: async () => (await import('./verify.js')).verify,
+  },
+  {
     name: 'compare',
     positionals: '<dir..>',
     summary: 'fronts of finished runs in one picture and one table',

@@ -31,12 +31,20 @@ export interface FrontFile {
   readonly points: readonly FrontFilePoint[];
 }
 
-interface Content {
+interface ContentPoint {
+  readonly level: number;
+  readonly design: string;
+  readonly figures: Figures;
+}
+
+/** The part of front.json that is read back. */
+export interface Content {
   readonly format: string;
   readonly version: string;
   readonly study: { readonly title: string; readonly hash: string };
   readonly goal: { readonly impurity: string; readonly brightness: string };
-  readonly points: readonly { readonly level: number; readonly design: string; readonly figures: Figures }[];
+  readonly points: readonly ContentPoint[];
+  readonly best: ContentPoint | null;
 }
 
 async function textOf(directory: string, path: string): Promise<string> {
@@ -54,7 +62,7 @@ async function textOf(directory: string, path: string): Promise<string> {
 
 function isContent(value: unknown): value is Content {
   if (value === null || typeof value !== 'object') return false;
-  const { version, study, goal, points } = value as Record<string, unknown>;
+  const { version, study, goal, points, best } = value as Record<string, unknown>;
   const texts = (node: unknown, ...keys: string[]) =>
     node !== null &&
     typeof node === 'object' &&
@@ -68,7 +76,8 @@ function isContent(value: unknown): value is Content {
     texts(study, 'title', 'hash') &&
     texts(goal, 'impurity', 'brightness') &&
     Array.isArray(points) &&
-    points.every(isPoint)
+    points.every(isPoint) &&
+    (best === null || best === undefined || isPoint(best))
   );
 }
 
@@ -85,7 +94,16 @@ function contentOf(text: string, path: string): Content {
     throw new UserError(`${path}: has ${found}; this version reads ${FRONT_FORMAT}`);
   }
   if (!isContent(value)) throw new UserError(`${path}: is damaged; --resume of its run writes it anew`);
-  return value;
+  return { ...value, best: value.best ?? null };
+}
+
+/**
+ * What front.json of a finished run says.
+ * @throws UserError when there is none, or one of another format
+ */
+export async function frontContent(directory: string): Promise<Content> {
+  const path = join(directory, 'front.json');
+  return contentOf(await textOf(directory, path), path);
 }
 
 /**
@@ -93,8 +111,7 @@ function contentOf(text: string, path: string): Content {
  * @throws UserError when there is none, or one of another format
  */
 export async function readFront(directory: string): Promise<FrontFile> {
-  const path = join(directory, 'front.json');
-  const { study, goal, version, points } = contentOf(await textOf(directory, path), path);
+  const { study, goal, version, points } = await frontContent(directory);
   const read = points.flatMap(({ design, level, figures }): FrontFilePoint[] => {
     const [brightness, impurity] = [figureAt(figures, goal.brightness), figureAt(figures, goal.impurity)];
     return brightness === null || impurity === null ? [] : [{ design, level, brightness, impurity }];
