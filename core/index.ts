@@ -26,6 +26,7 @@ export type { PhononCount, PhononMethod } from './phonons/contract.js';
 export { correlationFit, frankCondon, memoryTime, settledFit } from './phonons/correlations.js';
 export { countWithPhonons, PhononRangeError } from './phonons/count.js';
 export { usualSize } from './phonons/exact.js';
+export { type BathFit, methodFit } from './phonons/fits.js';
 export { countWithHierarchy, type TowerSize } from './phonons/hierarchy-count.js';
 export { phononMethod, phononMethods } from './phonons/registry.js';
 export { sidebandTransmission } from './phonons/sideband.js';

@@ -3,6 +3,7 @@ import type { Study } from '../study/index.js';
 import type { DesignFacts, ToneFacts } from './derived.js';
 import { lineText } from './lines.js';
 import { threeDigits } from './numbers.js';
+import { choiceReasons, PHONON_ROWS } from './phonon-facts.js';
 import { bold, tableText } from './table.js';
 
 /** Facts of a study: of its one design, or at both ends of its free parameters. */
@@ -80,6 +81,19 @@ function reachWarnings(corners: readonly Corner[]): string[] {
   );
 }
 
+/** The bath, and why `auto` takes the method that it takes; nothing without phonons. */
+function phononParts(
+  corners: readonly Corner[],
+  section: (title: string, rows: readonly Row[]) => string,
+): string[] {
+  const known = corners.flatMap(({ facts }) => facts.phonons ?? []);
+  if (known.length === 0) return [];
+  const rows = PHONON_ROWS.map(
+    ([label, value]): Row => [label, (f) => (f.phonons === null ? '–' : value(f.phonons))],
+  );
+  return [[section('phonons', rows), ...choiceReasons(known).map((reason) => `  ${reason}`)].join('\n')];
+}
+
 /** Everything that follows from a study, in sections. */
 export function checkText(
   study: Study,
@@ -98,6 +112,7 @@ export function checkText(
     section(`emitter (${study.design.emitter.model})`, study.tuning === null ? EMITTER : [...EMITTER, BIAS]),
     ...tones.map((tone, i) => section(`tone ${i} (${tone.shape})`, toneRows(i, lines))),
     section('whole pulse', WHOLE),
+    ...phononParts(corners, section),
     section('propagator', PROPAGATOR),
   ];
   const warnings = reachWarnings(corners);

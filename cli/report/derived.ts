@@ -14,6 +14,7 @@ import {
 } from '../../core/index.js';
 import { biasOf, type Study } from '../study/index.js';
 import { type ToneLines, toneLines } from './lines.js';
+import { type PhononFacts, phononFacts } from './phonon-facts.js';
 
 /** What follows from one tone. */
 export interface ToneFacts extends ToneLines {
@@ -52,6 +53,8 @@ export interface DesignFacts {
     /** Bias to set, mV; null without tuning. */
     readonly bias_mv: number | null;
   };
+  /** Null without phonons. */
+  readonly phonons: PhononFacts | null;
   readonly propagator: {
     /** Start and end of the drive window, ps. */
     readonly window_ps: readonly [number, number];
@@ -143,6 +146,7 @@ export function designFacts(study: Pick<Study, 'tuning'>, design: Design): Desig
       linewidth_ghz: ((1 / emitter.lifetime + emitter.dephasing) * 1000) / (2 * Math.PI),
       bias_mv: biasOf(study, design),
     },
+    phonons: phononFacts(design),
     propagator: propagatorFacts(design),
   };
 }

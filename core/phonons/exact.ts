@@ -36,10 +36,15 @@ export const exact: PhononMethod = {
  */
 export function usualSize(request: CountRequest, bath: Bath): TowerSize {
   const excitons = Math.max(...request.scheme.levels.map((l) => l.excitons));
+  const warm = Math.max(0, Math.ceil(-4 * Math.log(frankCondon(bath)) - 0.3));
+  return { terms: usualTerms(bath), depth: Math.min(2 + excitons + warm, MOST_DEPTH) };
+}
+
+/** As many exponentials as fit the bath to what a hierarchy of usual depth is worth. */
+export function usualTerms(bath: Bath): number {
   let terms = FEWEST_TERMS;
   while (terms < MOST_TERMS && correlationFit(bath, 'bath', terms).error > USUAL_FIT) terms += 1;
-  const warm = Math.max(0, Math.ceil(-4 * Math.log(frankCondon(bath)) - 0.3));
-  return { terms, depth: Math.min(2 + excitons + warm, MOST_DEPTH) };
+  return terms;
 }
 
 function unsettled(request: CountRequest, bath: Bath, size: TowerSize): PhononCount {

@@ -136,4 +136,32 @@ pulse: { reference: two-photon, tones: [{ fwhm: 8 ps, area: 3 pi, detuning: 0.25
     expect(json.code).toBe(2);
     expect((JSON.parse(json.out) as Facts).faults.map(({ line }) => line).sort()).toEqual([3, 3, 4, 4]);
   });
+
+  it('describes the phonon bath and says which method auto takes and why', async () => {
+    const bath = 'phonons: { coupling: 0.03 ps^2, cutoff: 2.2 1/ps, temperature: TEMPERATURE }';
+    const study = (temperature: string) =>
+      FIXED.replace('wavelength', `${bath.replace('TEMPERATURE', temperature)}, wavelength`);
+    const read = async (temperature: string) => {
+      const { out } = await invoke(['check', studyFile(study(temperature)), '--json']);
+      return (JSON.parse(out) as { designs: { phonons: Record<string, number> }[] }).designs[0].phonons;
+    };
+    // Independent-boson model (Mahan, Many-Particle Physics): φ(0) = Aω_c²/2 at T = 0, and ħA√πω_c³/4.
+    const cold = await read('0 K');
+    expect(cold['zero_phonon_share']).toBeCloseTo(Math.exp((-0.03 * 2.2 ** 2) / 2), 9);
+    expect(cold['relaxation_energy_mev']).toBeCloseTo(
+      (0.6582119569 * 0.03 * Math.sqrt(Math.PI) * 2.2 ** 3) / 4,
+      9,
+    );
+    const warm = await read('20 K');
+    expect(warm['zero_phonon_share']).toBeLessThan(cold['zero_phonon_share']);
+    expect(warm['memory_time_ps']).toBeGreaterThan(1);
+    expect(warm['memory_time_ps']).toBeLessThan(5);
+    expect(warm['auto']).toMatchObject({ method: 'polaron' });
+    const { out } = await invoke(['check', studyFile(study('4 K'))]);
+    expect(out).toMatch(/zero-phonon share ⟨B⟩² +0\.9\d/);
+    expect(out).toMatch(/relaxation energy \(polaron shift\) +0\.0932 meV/);
+    expect(out).toMatch(/fit error, exact method \(usual size\) +\d\.\de-\d \(\d terms\)/);
+    expect(out).toContain('auto: polaron, for a resonant drive');
+    expect((await invoke(['check', studyFile(FIXED)])).out).not.toContain('phonons');
+  });
 });
