@@ -19,14 +19,16 @@ export type Accuracy = 'search' | 'quoted' | 'verified';
 const SEARCH: Effort = { tolerance: 1e-10, parts: 1, nodes: 1, series: 'estimate' };
 const LADDER: readonly Effort[] = [
   { tolerance: 1e-10, parts: 1, nodes: 1, series: 'bound' },
-  { tolerance: 1e-10, parts: 2, nodes: 1.5, series: 'bound' },
-  { tolerance: 1e-11, parts: 4, nodes: 2.2, series: 'bound' },
-  { tolerance: 1e-11, parts: 8, nodes: 3.3, series: 'bound' },
+  { tolerance: 1e-10, parts: 2, nodes: 1, series: 'bound' },
+  { tolerance: 1e-11, parts: 4, nodes: 1, series: 'bound' },
+  { tolerance: 1e-11, parts: 8, nodes: 1, series: 'bound' },
 ];
+/** Multiples of the drift nodes that a search takes. */
+const NODE_EFFORTS = [1, 1.4, 2, 3];
 /** By the reference alone: what a fast kernel got wrong would otherwise be wrong again. */
 const VERIFICATION: readonly Effort[] = [
-  { tolerance: 1e-11, parts: 2, nodes: 2.2, series: 'bound', kernel: 'reference' },
-  { tolerance: 1e-11, parts: 4, nodes: 3.3, series: 'bound', kernel: 'reference' },
+  { tolerance: 1e-11, parts: 2, nodes: 1, series: 'bound', kernel: 'reference' },
+  { tolerance: 1e-11, parts: 4, nodes: 1, series: 'bound', kernel: 'reference' },
 ];
 /** Promised accuracy in the measure of `FigureTree.accuracy.error_estimate`. */
 export const PROMISED = 1e-6;
@@ -73,15 +75,36 @@ function evaluateTree(design: Design, accuracy: Accuracy): DriftTree {
   if (accuracy === 'search') return evaluateOnce(design, SEARCH);
   // The exact phonon method settles by its own size; what finer steps could add lies far below that.
   if (hasPhonons(design) && design.emitter.phonons?.method === 'exact') {
-    return evaluateOnce(design, { ...LADDER[0], nodes: LADDER[1].nodes });
+    return evaluateOnce(design, { ...LADDER[0], nodes: NODE_EFFORTS[1] });
   }
   const ladder = accuracy === 'verified' ? VERIFICATION : LADDER;
+  const still = climb({ ...design, drift: null }, ladder);
+  if (!design.drift) return withEstimate(still.tree, still.estimate);
+  return settleNodes(design, { ...still.enough, checked: true }, still.estimate);
+}
+
+/** Finer steps until two runs agree; `enough` is the coarser effort of the two, whose error the estimate bounds. */
+function climb(
+  design: Design,
+  ladder: readonly Effort[],
+): { tree: DriftTree; estimate: number; enough: Effort } {
   let coarse = evaluateOnce(design, ladder[0]);
   for (let rung = 1; ; rung++) {
-    const fine = evaluateOnce(design, ladder[rung]);
-    const floor = fine.accuracy.error_estimate;
-    const estimate = Math.max(figureDifference(coarse, fine), floor);
-    if (estimate <= PROMISED || rung === ladder.length - 1) return withEstimate(fine, estimate);
+    const tree = evaluateOnce(design, ladder[rung]);
+    const estimate = Math.max(figureDifference(coarse, tree), tree.accuracy.error_estimate);
+    if (estimate <= PROMISED || rung === ladder.length - 1)
+      return { tree, estimate, enough: ladder[rung - 1] };
+    coarse = tree;
+  }
+}
+
+/** More drift nodes until two means agree. The steps were judged on the design without drift. */
+function settleNodes(design: Design, effort: Effort, stepError: number): DriftTree {
+  let coarse = evaluateOnce(design, { ...effort, nodes: NODE_EFFORTS[0] });
+  for (let k = 1; ; k++) {
+    const fine = evaluateOnce(design, { ...effort, nodes: NODE_EFFORTS[k] });
+    const estimate = Math.max(figureDifference(coarse, fine), stepError, fine.accuracy.error_estimate);
+    if (estimate <= PROMISED || k === NODE_EFFORTS.length - 1) return withEstimate(fine, estimate);
     coarse = fine;
   }
 }

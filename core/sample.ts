@@ -152,7 +152,7 @@ export function sampleDesign(nominal: Design, node: DriftNode, wanted: Effort): 
     steps: run.result.steps,
     // A refined mesh no longer has the errors that were measured while it was built.
     error: Math.max(
-      effort.parts > 1 ? 0 : run.result.localErrors * 1000,
+      effort.parts > 1 || effort.checked ? 0 : run.result.localErrors * 1000,
       where.drive.error,
       run.seriesError,
       run.result.error,

@@ -20,8 +20,8 @@ export interface Rule {
   readonly weights: readonly number[];
 }
 
-/** Error that a rule may leave on a smooth figure of order one. */
-const LOG_TARGET = Math.log(1e-10);
+/** Error that a rule of effort 1 may leave on a smooth figure of order one. */
+const LOG_TARGET = Math.log(1e-8);
 
 /**
  * Nodes and weights for the mean over a standard normal variable of a function with oscillations up to e^{iax} and
@@ -30,10 +30,13 @@ const LOG_TARGET = Math.log(1e-10);
  */
 export function normalRule(phase: number, pole: number, effort: number): Rule {
   const hermite = Math.ceil(hermiteCount(phase, pole) * effort);
-  const step = Math.min((2 * Math.PI) / (phase + 6.8), (2 * Math.PI * pole) / -LOG_TARGET) / effort;
-  const half = Math.ceil(6.8 / step);
+  const step = Math.min((2 * Math.PI) / (phase + REACH), (2 * Math.PI * pole) / -LOG_TARGET) / effort;
+  const half = Math.ceil((REACH * Math.sqrt(effort)) / step);
   return hermite <= 2 * half + 1 && hermite <= 64 ? gaussHermite(hermite) : trapezoid(step, half);
 }
+
+/** Standard deviations after which a normal law has nothing left at the target. */
+const REACH = 6.1;
 
 function hermiteCount(phase: number, pole: number): number {
   let n = 2;
@@ -45,10 +48,9 @@ function hermiteCount(phase: number, pole: number): number {
   return Math.max(n, poleCount(pole), 3);
 }
 
-/** Nodes that bring 1/(1 + x²/d²) to 1e-10: a fit, safe by up to two nodes, to counts found numerically for d ≥ 2. */
+/** Nodes that bring 1/(1 + x²/d²) to the target: a fit to counts found numerically for d ≥ 2. */
 function poleCount(d: number): number {
-  if (d > 60) return 3;
-  return Math.ceil((LOG_TARGET / (2 * d)) ** 2 + 4 + 18 / (d + 2));
+  return Math.max(3, Math.ceil((LOG_TARGET / (2 * d)) ** 2 + 3 + 14 / (d + 2) - 0.3));
 }
 
 function trapezoid(step: number, half: number): Rule {

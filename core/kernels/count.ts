@@ -36,6 +36,8 @@ export interface Effort {
   readonly nodes: number;
   /** How the number of filtered moments is judged. */
   readonly series: SeriesRule;
+  /** The steps were compared with finer ones elsewhere: their own error estimate says nothing new. */
+  readonly checked?: boolean;
   /** `reference` leaves the fast kernels out, for a check that shares no code with them; `any` when left out. */
   readonly kernel?: 'any' | 'reference';
 }
