@@ -18,6 +18,7 @@ export function figureDifference(a: FigureTree, b: FigureTree): number {
   absolute(a.emitted.p[0], b.emitted.p[0]);
   absolute(a.emitted.p[1], b.emitted.p[1]);
   relative(a.emitted.p[2], b.emitted.p[2]);
+  relative(a.emitted.p[3], b.emitted.p[3]);
   if (a.filtered?.p && b.filtered?.p) {
     absolute(a.filtered.p[0], b.filtered.p[0]);
     absolute(a.filtered.p[1], b.filtered.p[1]);

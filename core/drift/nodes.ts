@@ -89,7 +89,7 @@ export function driftAxes(design: Design, duration: number, effort: number): Dri
   const pole = Math.min(filterPole, pulsePole) / spread;
   const shift = spread > 0 ? normalRule(spread * duration, pole, effort) : SINGLE;
   // What passes is the light's spectrum convolved with the filter: analytic up to the filter's own pole at κ/2.
-  const wander = collection.filter ? drift.filterCenter * RAD_PER_PS_PER_GHZ : 0;
+  const wander = collection.filter ? (drift.filterCenter ?? 0) * RAD_PER_PS_PER_GHZ : 0;
   const center = wander > 0 ? normalRule(0, kappa / 2 / wander, effort) : SINGLE;
   return { area, width, shift, center };
 }
@@ -99,7 +99,7 @@ export function driftNodes(design: Design, axes: DriftAxes): DriftNode[] {
   const { drift } = design;
   if (!drift) return [{ weight: 1, area: 0, width: 0, shift: 0 }];
   let out: DriftNode[] = [{ weight: 1, area: 0, width: 0, shift: 0, center: 0 }];
-  const scales = { area: drift.area, width: drift.width, shift: drift.detuning, center: drift.filterCenter };
+  const scales = { area: drift.area, width: drift.width, shift: drift.detuning, center: drift.filterCenter ?? 0 };
   for (const key of ['area', 'width', 'shift', 'center'] as const) {
     const { nodes, weights } = axes[key];
     out = out.flatMap((node) =>
