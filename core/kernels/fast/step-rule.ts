@@ -65,13 +65,13 @@ function rateAtPeak(drive: Drive): number {
 }
 
 /** Places at which the turning rate of the drive is looked at. */
-const PROBES = 48;
+const PROBES = 400;
 
 /** False where tones overlap or beat: their common phase turns too unevenly to be followed. */
 export function phaseIsSteady(drive: Drive, spans: readonly Span[]): boolean {
   const { peakRabi, frequency, time } = drive.scales;
   const out = new Float64Array(2);
-  const small = 1e-3 * peakRabi;
+  const small = 1e-6 * peakRabi;
   for (const span of spans) {
     if (span.gap) continue;
     if (span.last > span.first) return false;
@@ -98,4 +98,4 @@ export function phaseIsSteady(drive: Drive, spans: readonly Span[]): boolean {
 }
 
 /** Change of the turning rate between probes, relative to the drive's frequency scale, that a single tone stays below. */
-const UNEVEN = 0.3;
+const UNEVEN = 0.1;
