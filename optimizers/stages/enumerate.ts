@@ -1,20 +1,32 @@
 import { binCenter } from '../problem/space.js';
+import type { SampleSummary } from '../tasks/sample.js';
 import { type Knowledge, type Plan, split } from './contract.js';
 
-/** Largest number of evaluations in a sampling task. */
-const CHUNK = 100;
+/** Largest number of evaluations in a sampling task, and the smallest that is worth a task. */
+const CHUNK = 50;
+const LEAST = 5;
+/** Tasks of a stage that keep several workers busy to its end. */
+const TASKS = 8;
+
+const chunks = (count: number): number =>
+  Math.max(Math.ceil(count / CHUNK), Math.min(TASKS, Math.ceil(count / LEAST)));
 
 /** Evaluates points of the unit cube, in tasks of a bounded size; never more than what is left of the budget. */
-export function* samplePoints(known: Knowledge, name: string, points: readonly (readonly number[])[]): Plan {
+export function* samplePoints(
+  known: Knowledge,
+  name: string,
+  points: readonly (readonly number[])[],
+): Plan<SampleSummary['replies']> {
   const affordable = points.slice(0, known.left);
-  if (affordable.length === 0) return;
+  if (affordable.length === 0) return [];
   const tasks = [];
   let begin = 0;
-  for (const size of split(affordable.length, Math.ceil(affordable.length / CHUNK))) {
+  for (const size of split(affordable.length, chunks(affordable.length))) {
     tasks.push(known.task(name, 'sample', size, { points: affordable.slice(begin, begin + size) }));
     begin += size;
   }
-  yield { name, tasks };
+  const results = yield { name, tasks };
+  return results.flatMap(({ summary }) => (summary as SampleSummary).replies);
 }
 
 /** Every combination of the lists, with `steps` even steps along each continuous coordinate; null when over `limit`. */

@@ -5,10 +5,11 @@ import { gridOf, samplePoints } from './enumerate.js';
 import { explore, scatter } from './explore.js';
 import { aimAtLevels, fillBetween } from './fill.js';
 import { evenLevels, polishLevels, polishOthers, refine, sweep, tighten } from './polish.js';
+import { race, raceBudget } from './race.js';
 import { single } from './single.js';
 
 /** Shares of a round's budget. */
-const SHARES = { explore: 0.2, polish: 0.6 };
+const SHARES = { explore: 0.2, exploreAfterRace: 0.08, polish: 0.6 };
 /** Share of what is left for filling that goes to the levels asked for. */
 const LEVEL_SHARE = 0.4;
 /** Share of a round for the look along the coordinates. */
@@ -24,12 +25,18 @@ const LEVELS = 5;
 const WORTH = 10;
 
 /** One round: look around, solve at levels, continue from neighbour to neighbour, fill in between. */
-function* round(known: Knowledge, number: number, budget: number, tried: Set<string>): Plan {
+function* round(
+  known: Knowledge,
+  number: number,
+  budget: number,
+  exploring: number,
+  tried: Set<string>,
+): Plan {
   const name = (what: string) => `${what}-${number}`;
   const end = known.spent + budget;
   const left = () => Math.max(0, end - known.spent);
   // A last round of a few evaluations goes to what is known already.
-  if (budget >= TINY) yield* explore(known, name('explore'), Math.floor(SHARES.explore * budget));
+  if (budget >= TINY) yield* explore(known, name('explore'), Math.floor(exploring * budget));
   const polishEnd = known.spent + Math.floor(SHARES.polish * budget);
   const polishLeft = () => Math.max(0, polishEnd - known.spent);
   const { atLeast } = known.spec.goal;
@@ -68,8 +75,9 @@ export function* plan(known: Knowledge): Plan {
   const continuous = categories.filter((count) => count === 0).length;
   if (continuous === 0) {
     const all = gridOf(categories, 1, known.left);
-    if (all !== null) return yield* samplePoints(known, 'enumerate', all);
-    return yield* explore(known, 'explore', known.left);
+    if (all === null) yield* explore(known, 'explore', known.left);
+    else yield* samplePoints(known, 'enumerate', all);
+    return;
   }
   if (continuous === 1) {
     const lists = categories.reduce((product, count) => product * Math.max(1, count), 1);
@@ -78,11 +86,14 @@ export function* plan(known: Knowledge): Plan {
     if (grid !== null) yield* samplePoints(known, 'scan', grid);
   }
   if (known.left < TINY) return yield* scatter(known, 'scatter', known.left);
+  const contest = raceBudget(known);
+  if (contest > 0) yield* race(known, 'race', contest);
+  const exploring = contest > 0 ? SHARES.exploreAfterRace : SHARES.explore;
   const tried = new Set<string>();
   for (let number = 1, size = FIRST_ROUND; known.left > 0; number++, size *= 2) {
     const before = known.spent;
     // The last round takes what would be too little for another one.
-    yield* round(known, number, known.left < 1.5 * size ? known.left : size, tried);
+    yield* round(known, number, known.left < 1.5 * size ? known.left : size, exploring, tried);
     if (known.spent === before) return;
   }
 }
