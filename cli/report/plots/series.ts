@@ -49,7 +49,7 @@ export function seriesChart(plot: SeriesPlot): TopLevelSpec {
     type: 'quantitative',
     title,
     scale: log ? { type: 'log', nice: false, padding: 14 } : { zero: false, nice: false, padding: 14 },
-    axis: field === 'y' ? { format: '.0~e', tickCount: 6 } : { format: '.3~g', tickCount: 8 },
+    axis: field === 'y' ? { format: log ? '.0~e' : '.3~g', tickCount: 6 } : { format: '.3~g', tickCount: 8 },
   });
   const looks = { domain, range: SERIES.slice(0, domain.length).map(({ color }) => color) };
   const shapes = { domain, range: SERIES.slice(0, domain.length).map(({ shape }) => shape) };
