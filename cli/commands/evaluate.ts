@@ -25,7 +25,7 @@ export function figuresDocument(figures: Figures, bias: number | null): unknown 
   const nominal = figures.nominal && { ...treeDocument(figures.nominal), notes: figures.nominal.notes };
   return {
     format: FIGURES_FORMAT,
-    ...{ emitted, filtered, signal, collected, nominal },
+    ...{ emitted, filtered, signal, collected, nominal, quantile: figures.quantile },
     ...rest,
     bias_mv: bias,
     notes: figures.notes,

@@ -1,4 +1,4 @@
-import { type Figures, type FigureTree, formatQuantity } from '../../core/index.js';
+import { type Figures, type FigureTree, formatQuantity, type QuantileFigures } from '../../core/index.js';
 import { symbolOf } from './labels.js';
 import { threeDigits } from './numbers.js';
 import { bold, tableText } from './table.js';
@@ -45,6 +45,16 @@ function otherLines(tree: FigureTree): string[] {
   ];
 }
 
+/** Brightness and impurity that a share of the drift keeps. */
+function quantileLine({ share, signal, collected }: QuantileFigures): string {
+  const bright = (['single', 'any', 'mean'] as const).map(
+    (n) => `${symbolOf(n)} ≥ ${threeDigits(signal[n])}`,
+  );
+  const dark = (['multiphoton', 'g2'] as const).map((n) => `${symbolOf(n)} ≤ ${threeDigits(collected[n])}`);
+  const held = `held by ${Number((100 * share).toPrecision(3))} % of the drift`;
+  return `${held}: signal ${bright.join(', ')}; collected ${dark.join(', ')}`;
+}
+
 /**
  * Figures as a physicist reads them: the basis over each column, three significant digits.
  * @param bias bias to set, mV; null without tuning
@@ -55,6 +65,7 @@ export function figuresText(title: string, figures: Figures, bias: number | null
   parts.push(countTable(figures, color), '', ...otherLines(figures));
   if (bias !== null)
     parts.push(`bias         ${formatQuantity(bias, 'voltage', 4)} to be set for the first tone's detuning`);
+  if (figures.quantile) parts.push('', quantileLine(figures.quantile));
   if (figures.nominal) parts.push('', 'without drift', countTable(figures.nominal, color));
   parts.push(
     '',

@@ -97,7 +97,14 @@ export function cmaEs(options: { readonly population?: number } = {}): Method {
   return {
     name: 'cma-es',
     source: 'Hansen & Ostermeier, Evol. Comput. 9, 159 (2001); Hansen, arXiv:1604.00772 (2016)',
-    traits: { objectives: 'one', constraints: true, discrete: false, batch: true, stochastic: true },
+    traits: {
+      objectives: 'one',
+      constraints: true,
+      discrete: false,
+      batch: true,
+      gradient: false,
+      stochastic: true,
+    },
     *run(setup: Setup, random) {
       const { dimension, categories } = setup.space;
       const given = setup.start[0] ?? new Array<number>(dimension).fill(0.5);

@@ -19,7 +19,14 @@ export function controlledRandomSearch(options: { readonly population?: number }
   return {
     name: 'controlled-random-search',
     source: 'Kaelo & Ali, J. Optim. Theory Appl. 130, 253 (2006)',
-    traits: { objectives: 'one', constraints: true, discrete: true, batch: false, stochastic: true },
+    traits: {
+      objectives: 'one',
+      constraints: true,
+      discrete: true,
+      batch: false,
+      gradient: false,
+      stochastic: true,
+    },
     *run(setup: Setup, random) {
       const { dimension, categories } = setup.space;
       const size = options.population ?? 10 * (dimension + 1);

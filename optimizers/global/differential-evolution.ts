@@ -14,7 +14,14 @@ export function differentialEvolution(
   return {
     name: 'differential-evolution',
     source: 'Storn & Price, J. Global Optim. 11, 341 (1997)',
-    traits: { objectives: 'one', constraints: true, discrete: true, batch: true, stochastic: true },
+    traits: {
+      objectives: 'one',
+      constraints: true,
+      discrete: true,
+      batch: true,
+      gradient: false,
+      stochastic: true,
+    },
     *run(setup: Setup, random) {
       const { dimension, categories } = setup.space;
       const size = options.population ?? Math.max(12, Math.min(10 * dimension, Math.ceil(setup.budget / 10)));

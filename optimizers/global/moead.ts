@@ -107,7 +107,14 @@ export function moead(options: Partial<MoeadOptions> = {}): Method {
   return {
     name: 'moead',
     source: 'Zhang & Li, IEEE Trans. Evol. Comput. 11, 712 (2007)',
-    traits: { objectives: 'many', constraints: true, discrete: true, batch: false, stochastic: true },
+    traits: {
+      objectives: 'many',
+      constraints: true,
+      discrete: true,
+      batch: false,
+      gradient: false,
+      stochastic: true,
+    },
     *run(setup: Setup, random) {
       const weights = simplexLattice(setup.objectives, all.population);
       const near = neighbourhoods(weights, all.neighbours);

@@ -47,7 +47,14 @@ export const mutationSearch: Method = {
   name: 'mutation-search',
   source:
     'optimization-js, OMGOptimizer; an evolution strategy (1+1) after Rechenberg, Evolutionsstrategie (1973)',
-  traits: { objectives: 'one', constraints: true, discrete: true, batch: false, stochastic: true },
+  traits: {
+    objectives: 'one',
+    constraints: true,
+    discrete: true,
+    batch: false,
+    gradient: false,
+    stochastic: true,
+  },
   *run(setup: Setup, random) {
     const { categories } = setup.space;
     const { Real, Categorical, OMGOptimizer } = load();

@@ -90,7 +90,14 @@ export function nsga2(options: Partial<Nsga2Options> = {}): Method {
   return {
     name: 'nsga2',
     source: 'Deb, Pratap, Agarwal & Meyarivan, IEEE Trans. Evol. Comput. 6, 182 (2002)',
-    traits: { objectives: 'many', constraints: true, discrete: true, batch: true, stochastic: true },
+    traits: {
+      objectives: 'many',
+      constraints: true,
+      discrete: true,
+      batch: true,
+      gradient: false,
+      stochastic: true,
+    },
     *run(setup: Setup, random) {
       const first = firstGeneration(setup, all.population, random);
       const replies = yield first;

@@ -8,6 +8,8 @@ export type Trial = readonly number[];
 export interface Reply {
   readonly objectives: readonly number[];
   readonly constraints: readonly number[];
+  /** Exact first derivatives by each coordinate, where the evaluation has them: objectives, then constraints, in rows. */
+  readonly gradients?: readonly (readonly number[])[];
 }
 
 /** What a value that is NaN or infinite is taken for: finite, so that it survives JSON, and worse than every real one. */
@@ -22,6 +24,8 @@ export interface MethodTraits {
   readonly discrete: boolean;
   /** Asks for several trials at once. */
   readonly batch: boolean;
+  /** Uses first derivatives: those of the replies, or else differences of its own. */
+  readonly gradient: boolean;
   /** Draws random numbers. */
   readonly stochastic: boolean;
 }

@@ -65,7 +65,14 @@ function* descend(start: Trial, free: readonly number[], edge: number) {
 export const nelderMeadMethod: Method = {
   name: 'nelder-mead',
   source: 'Nelder & Mead, Comput. J. 7, 308 (1965)',
-  traits: { objectives: 'one', constraints: false, discrete: false, batch: false, stochastic: false },
+  traits: {
+    objectives: 'one',
+    constraints: false,
+    discrete: false,
+    batch: false,
+    gradient: false,
+    stochastic: false,
+  },
   *run(setup: Setup) {
     const { dimension, categories } = setup.space;
     const start = setup.start[0] ?? new Array<number>(dimension).fill(0.5);

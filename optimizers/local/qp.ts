@@ -21,6 +21,8 @@ const dot = (a: readonly number[], b: readonly number[]) =>
   a.reduce((sum, value, i) => sum + value * b[i], 0);
 
 const BISECTIONS = 60;
+/** Residual of an active constraint that is as good as none. */
+const SETTLED = 1e-12;
 /** Rounds over several constraints, whose multipliers depend on one another. */
 const ROUNDS = 200;
 
@@ -116,6 +118,9 @@ export function solveQuadratic(program: QuadraticProgram): { step: number[]; mul
   };
   const residual = (j: number) => values[j] + dot(normals[j], step);
   const settle = (j: number) => {
+    const now = residual(j);
+    // Settled already, as most are from the second round on.
+    if (multipliers[j] === 0 ? now <= 0 : multipliers[j] < penalty && Math.abs(now) <= SETTLED) return;
     multipliers[j] = 0;
     solve();
     if (residual(j) <= 0) return;

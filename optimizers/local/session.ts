@@ -61,6 +61,7 @@ export class Session {
     const cleaned = replies.map((reply) => ({
       objectives: reply.objectives.map(clean),
       constraints: reply.constraints.map(clean),
+      ...(reply.gradients?.every((row) => row.every(Number.isFinite)) ? { gradients: reply.gradients } : {}),
     }));
     for (const reply of cleaned) this.#replies.push(reply);
     if (this.#replies.length >= this.#setup.budget) this.#pending = [];

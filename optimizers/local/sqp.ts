@@ -140,6 +140,11 @@ function* iterate(start: Trial, free: readonly number[], options: SqpOptions): S
   if (free.length === 0 || failed(first)) return;
   const scale = Math.abs(first.objectives[0]) || 1;
   function* expansionAt(x: Trial, reply: Reply): Steps<Expansion> {
+    const { gradients: exact } = reply;
+    if (exact !== undefined) {
+      const gradients = exact.map((row, r) => free.map((k) => row[k] / (r === 0 ? scale : 1)));
+      return { reply, gradients };
+    }
     const trials = differenceTrials(x, free, options.differenceStep);
     const replies = yield trials;
     const scaledReplies = replies.map((r) => scaledReply(r, scale));
@@ -200,7 +205,7 @@ function* iterate(start: Trial, free: readonly number[], options: SqpOptions): S
 
 /**
  * Sequential quadratic programming with an l1 merit function, a trust region in the maximum norm and damped BFGS
- * (Nocedal & Wright, *Numerical Optimization*, 2nd ed., chapter 18); derivatives by one-sided differences. For smooth
+ * (Nocedal & Wright, *Numerical Optimization*, 2nd ed., chapter 18); derivatives by one-sided differences where the replies bring none. For smooth
  * problems with few constraints. The objective should enter linearly: with the logarithm of a probability the first
  * step runs towards zero light.
  */
@@ -209,7 +214,14 @@ export function sqp(options: Partial<SqpOptions> = {}): Method {
   return {
     name: 'sqp',
     source: 'Nocedal & Wright, Numerical Optimization, 2nd ed. (2006), chapter 18',
-    traits: { objectives: 'one', constraints: true, discrete: false, batch: true, stochastic: false },
+    traits: {
+      objectives: 'one',
+      constraints: true,
+      discrete: false,
+      batch: true,
+      gradient: true,
+      stochastic: false,
+    },
     *run(setup: Setup) {
       const { dimension, categories } = setup.space;
       const start = setup.start[0] ?? new Array<number>(dimension).fill(0.5);

@@ -200,6 +200,12 @@ describe('front', () => {
 });
 
 describe('determinism', () => {
+  const SEVEN = [
+    ...FOUR,
+    range('pulse.tones.0.phase', 0, 1),
+    range('pulse.tones.1.delay', -10, 10),
+    range('pulse.tones.1.area', 0, 9),
+  ];
   const mixed = [
     ...FOUR.slice(0, 3),
     { kind: 'list', path: 'pulse.tones.0.gdd', values: [-20, 0, 10, 25] } as const,
@@ -209,6 +215,7 @@ describe('determinism', () => {
     ['four ranges', toySpec(1200, 9)],
     ['ranges and a list', toySpec(700, 9, mixed)],
     ['one range', toySpec(150, 9, [range('pulse.tones.0.area', 0, 20)])],
+    ['seven ranges, which begin with a race', toySpec(2400, 9, SEVEN)],
   ])('%s: random interruptions and resumption change nothing', async (_name, spec) => {
     const whole = await run(spec);
     for (const seed of [1, 2, 3]) {

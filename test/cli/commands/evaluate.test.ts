@@ -11,7 +11,7 @@ describe('evaluate', () => {
     expect(err).toBe('');
     const document = JSON.parse(out) as Figures & { format: string };
     expect(Object.keys(document)).toEqual(
-      'format emitted filtered signal collected nominal populations pulse phonons accuracy bias_mv notes'.split(
+      'format emitted filtered signal collected nominal quantile populations pulse phonons accuracy bias_mv notes'.split(
         ' ',
       ),
     );
@@ -44,6 +44,21 @@ describe('evaluate', () => {
     const { out } = await invoke(['evaluate', studyFile(`${FIXED}drift: { area: 5 % }\n`), '--json']);
     const { nominal, signal } = JSON.parse(out) as Figures;
     expect(nominal?.signal.single).toBeGreaterThan(signal.single!);
+  });
+
+  it('holds the quantiles where a goal is judged on them', async () => {
+    const drift = 'drift: { area: 5 %, judge: quantile, quantile: 0.8 }\n';
+    const { out } = await invoke(['evaluate', studyFile(FIXED + drift), '--json']);
+    const { quantile, signal } = JSON.parse(out) as Figures;
+    expect(quantile?.share).toBe(0.8);
+    // sin²(Θ/2) at 1.2816 rms from π: P(|z| < 1.2816) = 0.8 (tables of the normal law).
+    expect(quantile?.signal.single).toBeCloseTo(
+      (signal.single! * Math.cos((1.2816 * 0.05 * Math.PI) / 2) ** 2) /
+        (0.5 * (1 + Math.exp(-((0.05 * Math.PI) ** 2) / 2))),
+      3,
+    );
+    const { out: text } = await invoke(['evaluate', studyFile(FIXED + drift)]);
+    expect(text).toContain('held by 80 % of the drift');
     const { out: table } = await invoke(['evaluate', studyFile(`${FIXED}drift: { area: 5 % }\n`)]);
     expect(table).toContain('mean over drift');
     expect(table).toContain('without drift');
