@@ -102,6 +102,7 @@ def random_two_level(seed):
     ]
     for drift, width, nodes in drifts:
         tones = [tone(fwhm=draw.log(4, 15), area=draw.linear(0.8, 2.2) * pi)]
+        drift = {**drift, "filterCenter": 0, "quantile": None}
         one = design(two_level(draw.log(150, 600)), tones, polarization="crossed", efficiency=draw.linear(0.4, 0.9),
                      filter=width, laser=draw.laser(), drift=drift)
         out.append((f"two-level, drift of {', '.join(k for k, v in drift.items() if v)}", one, {"nodes": nodes}))
@@ -154,6 +155,6 @@ def random_cascade(seed):
     one = out[0][1]
     collection = {**one["collection"], "filter": {"fwhm": 40, "center": 0}}
     out.append(("cascade, drift of area, detuning",
-                {**one, "collection": collection, "drift": {"area": 0.02, "width": 0, "detuning": 0.004}},
+                {**one, "collection": collection, "drift": {"area": 0.02, "width": 0, "detuning": 0.004, "filterCenter": 0, "quantile": None}},
                 {"moments": 4, "nodes": {"area": 8, "detuning": 10}}))
     return out
