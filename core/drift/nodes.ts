@@ -99,7 +99,12 @@ export function driftNodes(design: Design, axes: DriftAxes): DriftNode[] {
   const { drift } = design;
   if (!drift) return [{ weight: 1, area: 0, width: 0, shift: 0 }];
   let out: DriftNode[] = [{ weight: 1, area: 0, width: 0, shift: 0, center: 0 }];
-  const scales = { area: drift.area, width: drift.width, shift: drift.detuning, center: drift.filterCenter ?? 0 };
+  const scales = {
+    area: drift.area,
+    width: drift.width,
+    shift: drift.detuning,
+    center: drift.filterCenter ?? 0,
+  };
   for (const key of ['area', 'width', 'shift', 'center'] as const) {
     const { nodes, weights } = axes[key];
     out = out.flatMap((node) =>
