@@ -1,30 +1,9 @@
 import type { Design, EmitterSpec, FilterSpec, Tone } from '../core/index.js';
+import { tone, twoLevelEmitter } from '../test/support.js';
 
 const FIELD = 2 * Math.sqrt(Math.LN2);
 
-const tone = (changes: Partial<Tone>): Tone => ({
-  shape: 'gaussian',
-  fwhm: 5,
-  area: Math.PI,
-  detuning: 0,
-  gdd: 0,
-  tod: 0,
-  delay: 0,
-  phase: 0,
-  polarization: 0,
-  ...changes,
-});
-
-const TWO_LEVEL: EmitterSpec = {
-  model: 'two-level',
-  wavelength: 0.93,
-  lifetime: 500,
-  biexcitonLifetime: null,
-  binding: null,
-  splitting: 0,
-  dephasing: 0,
-  phonons: null,
-};
+const TWO_LEVEL = twoLevelEmitter();
 
 const CASCADE: EmitterSpec = { ...TWO_LEVEL, model: 'cascade', biexcitonLifetime: 250, binding: 2 };
 

@@ -4,6 +4,7 @@
  *
  *   npx tsx benchmarks/search.ts [instances] [budgets] [seeds]     e.g. A,C 1600,3200 1,2,3
  */
+
 import { evaluate } from '../core/evaluate.js';
 import {
   type Evaluate,
@@ -12,8 +13,7 @@ import {
   type ProblemSpec,
   search,
 } from '../optimizers/index.js';
-
-const FIXED = { shape: 'gaussian', tod: 0, phase: 0, polarization: 0 };
+import { design, tone, twoLevelEmitter } from '../test/support.js';
 
 interface Instance {
   readonly parameters: readonly FreeParameter[];
@@ -79,27 +79,13 @@ const INSTANCES: Readonly<Record<string, Instance>> = {
 };
 
 function specOf(instance: Instance, evaluations: number, seed: number): ProblemSpec {
-  const tone = { ...FIXED, fwhm: 1, area: 0, detuning: 0, gdd: 0, delay: 0 };
+  const tones = Array.from({ length: instance.tones }, () => tone({ fwhm: 1, area: 0 }));
+  const drift =
+    instance.areaDrift > 0
+      ? { area: instance.areaDrift, width: 0, detuning: 0, filterCenter: 0, quantile: null }
+      : null;
   return {
-    design: {
-      emitter: {
-        model: 'two-level',
-        wavelength: 0.93,
-        lifetime: 500,
-        biexcitonLifetime: null,
-        binding: null,
-        splitting: 0,
-        dephasing: 0,
-        phonons: null,
-      },
-      pulse: { reference: 'exciton', tones: Array.from({ length: instance.tones }, () => tone) },
-      collection: { line: 'exciton', polarization: 'all', efficiency: 1, filter: null },
-      laser: null,
-      drift:
-        instance.areaDrift > 0
-          ? { area: instance.areaDrift, width: 0, detuning: 0, filterCenter: 0, quantile: null }
-          : null,
-    },
+    design: design(twoLevelEmitter(), tones, { drift }),
     parameters: instance.parameters,
     ties: [],
     goal: {

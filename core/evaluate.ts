@@ -40,10 +40,10 @@ export const PROMISED = 1e-6;
 export function evaluate(design: Design, accuracy: Accuracy): Figures {
   checkSupport(design);
   const wanted = accuracy === 'verified' ? withExactPhonons(design) : design;
-  const tree = evaluateTree(wanted, accuracy);
-  if (!design.drift) return { ...tree, nominal: null };
-  const { quantile: _none, ...nominal } = evaluateTree({ ...wanted, drift: null }, accuracy);
-  return { ...tree, nominal };
+  const still = evaluateStill({ ...wanted, drift: null }, accuracy);
+  if (!wanted.drift) return { ...still.tree, nominal: null };
+  const { quantile: _none, ...nominal } = still.tree;
+  return { ...evaluateDrifting(wanted, accuracy, still), nominal };
 }
 
 function withExactPhonons(design: Design): Design {
@@ -71,16 +71,33 @@ export class UnsupportedDesign extends Error {
 /** The means with the quantiles, where a design asks for them. */
 type DriftTree = FigureTree & Pick<Figures, 'quantile'>;
 
-function evaluateTree(design: Design, accuracy: Accuracy): DriftTree {
-  if (accuracy === 'search') return evaluateOnce(design, SEARCH);
-  // The exact phonon method settles by its own size; what finer steps could add lies far below that.
-  if (hasPhonons(design) && design.emitter.phonons?.method === 'exact') {
-    return evaluateOnce(design, { ...LADDER[0], nodes: NODE_EFFORTS[1] });
-  }
-  const ladder = accuracy === 'verified' ? VERIFICATION : LADDER;
-  const still = climb({ ...design, drift: null }, ladder);
-  if (!design.drift) return withEstimate(still.tree, still.estimate);
-  return settleNodes(design, { ...still.enough, checked: true }, still.estimate);
+/** A design without drift, and the effort that was enough for it. */
+interface Still {
+  readonly tree: DriftTree;
+  readonly effort: Effort;
+}
+
+/** The exact phonon method settles by its own size; what finer steps could add lies far below that. */
+const EXACT: Effort = { ...LADDER[0], nodes: NODE_EFFORTS[1] };
+
+/** The one effort of an accuracy that does not compare two; null where two must agree. */
+function singleEffort(design: Design, accuracy: Accuracy): Effort | null {
+  if (accuracy === 'search') return SEARCH;
+  return hasPhonons(design) && design.emitter.phonons?.method === 'exact' ? EXACT : null;
+}
+
+function evaluateStill(design: Design, accuracy: Accuracy): Still {
+  const effort = singleEffort(design, accuracy);
+  if (effort) return { tree: evaluateOnce(design, effort), effort };
+  const { tree, estimate, enough } = climb(design, accuracy === 'verified' ? VERIFICATION : LADDER);
+  return { tree: withEstimate(tree, estimate), effort: { ...enough, checked: true } };
+}
+
+/** Steps are judged by the design without drift, which is evaluated anyway. */
+function evaluateDrifting(design: Design, accuracy: Accuracy, still: Still): DriftTree {
+  const effort = singleEffort(design, accuracy);
+  if (effort) return evaluateOnce(design, effort);
+  return settleNodes(design, still.effort, still.tree.accuracy.error_estimate);
 }
 
 /** Finer steps until two runs agree; `enough` is the coarser effort of the two, whose error the estimate bounds. */

@@ -1,5 +1,6 @@
-import type { Design, Figures, Tone } from '../../core/index.js';
+import type { Design, Figures } from '../../core/index.js';
 import type { FreeParameter, Goal, ProblemSpec } from '../../optimizers/index.js';
+import { design, tone, twoLevelEmitter } from '../support.js';
 
 /** A stand-in for `evaluate`: cheap closed forms with several branches (odd multiples of π), not physics to rely on. */
 export function toyEvaluate(design: Design): Figures {
@@ -38,17 +39,7 @@ export function toyEvaluate(design: Design): Figures {
   };
 }
 
-const TONE: Tone = {
-  shape: 'gaussian',
-  fwhm: 3,
-  area: Math.PI,
-  detuning: 0,
-  gdd: 0,
-  tod: 0,
-  delay: 0,
-  phase: 0,
-  polarization: 0,
-};
+const TONE = tone({ fwhm: 3 });
 
 export const range = (
   path: string,
@@ -80,22 +71,7 @@ export function toySpec(
   goal: Partial<Goal> = {},
 ): ProblemSpec {
   return {
-    design: {
-      emitter: {
-        model: 'two-level',
-        wavelength: 0.93,
-        lifetime: 500,
-        biexcitonLifetime: null,
-        binding: null,
-        splitting: 0,
-        dephasing: 0,
-        phonons: null,
-      },
-      pulse: { reference: 'exciton', tones: [TONE, { ...TONE, delay: 5 }] },
-      collection: { line: 'exciton', polarization: 'all', efficiency: 1, filter: null },
-      laser: null,
-      drift: null,
-    },
+    design: design(twoLevelEmitter(), [TONE, { ...TONE, delay: 5 }]),
     parameters,
     ties: [],
     goal: { ...GOAL, ...goal },
