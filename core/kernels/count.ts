@@ -24,6 +24,8 @@ export interface CountRequest {
   /** Filter in the rotating frame and the number of factorial moments; null for none. */
   readonly filter: (RotatingFilter & { readonly order: number }) | null;
   readonly effort: Effort;
+  /** Figures asked for, by target name; all when left out. A kernel may leave others out of its answer. */
+  readonly wanted?: readonly string[];
 }
 
 /** How hard the propagator tries. */

@@ -1,4 +1,5 @@
 import type { CountRequest, CountResult } from '../count.js';
+import type { CountWithGradient } from '../gradient.js';
 
 /**
  * A specialised way to answer a count request. It gives the same figures as the reference propagator to the promised
@@ -13,4 +14,11 @@ export interface FastKernel {
    * @param countPart counts a part of the request that another kernel or the reference does better
    */
   count(request: CountRequest, countPart: (request: CountRequest) => CountResult): CountResult | null;
+  /** The same with exact derivatives; left out by kernels that have none. */
+  readonly countWithGradient?: CountWithGradient;
+  /**
+   * Many requests that differ in numbers only, such as the nodes of a drift or a population: shared tables, and lanes
+   * where they pay. One answer per request, null as in `count`.
+   */
+  countMany?(requests: readonly CountRequest[]): readonly (CountResult | null)[];
 }
