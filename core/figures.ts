@@ -45,6 +45,10 @@ export interface PulseFigures {
   readonly duration_ps: number;
   /** Between the outermost half-maximum crossings of |Ω(ω)|², GHz. */
   readonly bandwidth_ghz: number;
+  /** Pulse energy, fJ; null unless the design has a measured π pulse (`laser.piPulse`). */
+  readonly energy_fj: number | null;
+  /** Largest Rabi frequency √(|Ω_h|² + |Ω_v|²), 1/ps (angular). */
+  readonly peak_rabi_per_ps: number;
 }
 
 export interface Note {

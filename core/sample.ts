@@ -145,7 +145,7 @@ export function sampleDesign(nominal: Design, node: DriftNode, wanted: Effort): 
       collected: addPoisson(signal, leakage),
       leakage,
       populations: Object.fromEntries(scheme.levels.map((l, i) => [l.name, run.result.populations[i]])),
-      pulse: pulseFigures(design.pulse, where.drive),
+      pulse: pulseFigures(design.pulse, where.drive, design.laser?.piPulse ?? null),
     },
     phonons: { method: plan.method, flags: run.result.flags },
     remarks: [...plan.remarks, ...run.result.remarks],

@@ -101,10 +101,11 @@ function outermost(cells: readonly Cell[], level: number, fromRight: boolean): n
 }
 
 /**
- * Distance between the outermost points at which a function, given on ascending adjacent cells, reaches half its
- * maximum; jumps between cells count as crossings. 0 for a function that is zero everywhere.
+ * Maximum of a function, given on ascending adjacent cells, and the distance between the outermost points at which it
+ * reaches half of that; jumps between cells count as crossings. 0 for a function that is zero everywhere.
  */
-export function halfMaximumWidth(cells: readonly Cell[]): number {
-  const half = 0.5 * highest(cells);
-  return half > 0 ? outermost(cells, half, true) - outermost(cells, half, false) : 0;
+export function halfMaximum(cells: readonly Cell[]): { readonly top: number; readonly width: number } {
+  const top = highest(cells);
+  const half = 0.5 * top;
+  return { top, width: half > 0 ? outermost(cells, half, true) - outermost(cells, half, false) : 0 };
 }

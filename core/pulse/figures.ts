@@ -1,6 +1,6 @@
 import type { PulseFigures } from '../figures.js';
 import type { Pulse, Tone } from './contract.js';
-import { type Cell, halfMaximumWidth } from './crossings.js';
+import { type Cell, halfMaximum } from './crossings.js';
 import { createDrive, type Drive } from './drive.js';
 import { pulseEnergy } from './energy.js';
 import { pulseShape } from './shapes/registry.js';
@@ -94,30 +94,47 @@ function inFrequency(tones: readonly Tone[]): Cell[] {
   });
 }
 
-/** Half-maximum duration of one tone, ps, where the shape itself knows it; null otherwise. */
-function knownDuration(tone: Tone): number | null {
+/** Half-maximum duration of one tone, ps, and its largest field, 1/ps, where the shape itself knows them; null otherwise. */
+function knownInTime(tone: Tone): { readonly duration: number; readonly peak: number } | null {
   const shape = pulseShape(tone.shape);
   if (tone.tod !== 0) return null;
-  if (tone.gdd === 0) return tone.fwhm;
-  return shape.dispersed ? shape.dispersed(tone.fwhm, tone.gdd).fwhm : null;
+  if (tone.gdd === 0) return { duration: tone.fwhm, peak: tone.area * shape.envelope(0, tone.fwhm) };
+  const dispersed = shape.dispersed?.(tone.fwhm, tone.gdd);
+  return dispersed === undefined ? null : { duration: dispersed.fwhm, peak: tone.area * dispersed.peak };
+}
+
+function scannedInTime(pulse: Pulse, drive: Drive | null): { duration: number; peak: number } {
+  const { top, width } = halfMaximum(inTime(polarizedDrive(pulse, drive)));
+  return { duration: width, peak: Math.sqrt(top) };
 }
 
 /**
- * Energy, duration and bandwidth of a pulse. Duration and bandwidth lie between the outermost points at which
- * |Ω_h|² + |Ω_v|² reaches half its maximum, in time and in frequency; of a pulse without any area they are 0 unless
- * it has a single tone, whose shape fixes them.
+ * Energy, duration, bandwidth and largest Rabi frequency of a pulse. Duration and bandwidth lie between the outermost
+ * points at which |Ω_h|² + |Ω_v|² reaches half its maximum, in time and in frequency; of a pulse without any area they
+ * are 0 unless it has a single tone, whose shape fixes them.
  * @param drive a drive of the same pulse, if there is one already: saves dispersing it again
+ * @param piPulse measured resonant transform-limited Gaussian π pulse: energy in fJ, FWHM in ps
  * @throws DispersionError when a dispersed tone is spread over more samples than a transform can hold
  */
-export function pulseFigures(pulse: Pulse, drive: Drive | null = null): PulseFigures {
+export function pulseFigures(
+  pulse: Pulse,
+  drive: Drive | null = null,
+  piPulse: { readonly energy: number; readonly fwhm: number } | null = null,
+): PulseFigures {
   const [first] = pulse.tones;
-  const reference = Math.PI ** 2 * pulseShape('gaussian').energy(first.fwhm);
-  const energy = pulseEnergy(pulse) / reference;
+  const gaussian = pulseShape('gaussian');
+  const energy = pulseEnergy(pulse);
   const single = pulse.tones.length === 1;
-  const known = single ? knownDuration(first) : null;
-  const duration = known ?? halfMaximumWidth(inTime(polarizedDrive(pulse, drive)));
+  const known = single ? knownInTime(first) : null;
+  const { duration, peak } = known ?? scannedInTime(pulse, drive);
   const bandwidth = single
     ? (1000 * pulseShape(first.shape).timeBandwidth) / first.fwhm
-    : GHZ_PER_RADIAN * halfMaximumWidth(inFrequency(pulse.tones));
-  return { energy_pi_units: energy, duration_ps: duration, bandwidth_ghz: bandwidth };
+    : GHZ_PER_RADIAN * halfMaximum(inFrequency(pulse.tones)).width;
+  return {
+    energy_pi_units: energy / (Math.PI ** 2 * gaussian.energy(first.fwhm)),
+    duration_ps: duration,
+    bandwidth_ghz: bandwidth,
+    energy_fj: piPulse && (piPulse.energy * energy) / (Math.PI ** 2 * gaussian.energy(piPulse.fwhm)),
+    peak_rabi_per_ps: peak,
+  };
 }

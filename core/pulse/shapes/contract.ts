@@ -18,6 +18,13 @@ export interface ClosedEnvelope {
   reach(eps: number): number;
 }
 
+/**
+ * Writes the derivatives of an envelope of area 1 over the envelope itself, as re, im pairs: by time (1/ps), by FWHM (1/ps),
+ * by GDD (1/ps²), by TOD (1/ps³). Dispersion multiplies the spectrum by a phase, so ∂/∂GDD = −(i/2)∂²/∂t² and
+ * ∂/∂TOD = ⅙ ∂³/∂t³ hold for every shape.
+ */
+export type EnvelopeSlopes = (t: number, out: Float64Array) => void;
+
 /** A transform-limited pulse shape, scaled to area 1, with the FWHM (ps) of its intensity as only parameter. */
 export interface PulseShape {
   readonly name: string;
@@ -28,6 +35,8 @@ export interface PulseShape {
   envelope(t: number, fwhm: number): number;
   /** ∫ env e^{iωt} dt (real and even, 1 at ω = 0); ω in 1/ps. */
   spectrum(omega: number, fwhm: number): number;
+  /** Derivative of the spectrum by ω, ps. */
+  spectrumSlope(omega: number, fwhm: number): number;
   /** Characteristic time of the envelope, ps: field σ, T of sech(t/T), or the whole width of a square. */
   timeScale(fwhm: number): number;
   /** |t| beyond which the envelope is below eps times its peak, ps. */
@@ -42,6 +51,8 @@ export interface PulseShape {
   readonly flat: boolean;
   /** Dispersed by `gdd` (ps²) alone, where a closed form exists. */
   readonly dispersed?: (fwhm: number, gdd: number) => ClosedEnvelope;
-  /** ∫ env² dt, 1/ps. */
+  /** Derivatives of the envelope dispersed by `gdd` (ps²) alone; null where there is no closed form or there are edges. */
+  slopes(fwhm: number, gdd: number): EnvelopeSlopes | null;
+  /** ∫ env² dt, 1/ps; inversely proportional to the FWHM. */
   energy(fwhm: number): number;
 }

@@ -1,4 +1,4 @@
-import type { ClosedEnvelope, PulseShape } from './contract.js';
+import type { ClosedEnvelope, EnvelopeSlopes, PulseShape } from './contract.js';
 
 /** FWHM of |Ω|² over the field σ: 2√ln 2. */
 const FWHM_PER_SIGMA = 2 * Math.sqrt(Math.LN2);
@@ -28,6 +28,34 @@ function dispersed(fwhm: number, gdd: number): ClosedEnvelope {
   };
 }
 
+/** With z = σ² − i·GDD: env'/env = −t/z, env″/env = (t²/z − 1)/z, env‴/env = −(t/z)(t²/z − 3)/z; ∂/∂σ² = ½ ∂²/∂t². */
+function slopes(fwhm: number, gdd: number): EnvelopeSlopes {
+  const sigma = sigmaOf(fwhm);
+  const variance = sigma * sigma;
+  const modulus = variance * variance + gdd * gdd;
+  const ir = variance / modulus;
+  const ii = gdd / modulus;
+  const byWidth = variance / fwhm;
+  return (t, out) => {
+    const ar = -t * ir;
+    const ai = -t * ii;
+    const square = ar * ar - ai * ai;
+    const cross = 2 * ar * ai;
+    const br = square - ir;
+    const bi = cross - ii;
+    const cr = square - 3 * ir;
+    const ci = cross - 3 * ii;
+    out[0] = ar;
+    out[1] = ai;
+    out[2] = byWidth * br;
+    out[3] = byWidth * bi;
+    out[4] = 0.5 * bi;
+    out[5] = -0.5 * br;
+    out[6] = (ar * cr - ai * ci) / 6;
+    out[7] = (ar * ci + ai * cr) / 6;
+  };
+}
+
 /** exp(−t²/2σ²)/(√(2π) σ), FWHM = 2√(ln 2) σ. */
 export const gaussian: PulseShape = {
   name: 'gaussian',
@@ -41,6 +69,10 @@ export const gaussian: PulseShape = {
     const x = omega * sigmaOf(fwhm);
     return Math.exp(-0.5 * x * x);
   },
+  spectrumSlope(omega, fwhm) {
+    const sigma = sigmaOf(fwhm);
+    return -sigma * sigma * omega * this.spectrum(omega, fwhm);
+  },
   timeScale: sigmaOf,
   spectralBound(omega, fwhm) {
     return this.spectrum(omega, fwhm);
@@ -50,5 +82,6 @@ export const gaussian: PulseShape = {
   flat: false,
   edges: () => [],
   dispersed,
+  slopes,
   energy: (fwhm) => 1 / (2 * Math.sqrt(Math.PI) * sigmaOf(fwhm)),
 };

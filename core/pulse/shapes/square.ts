@@ -13,11 +13,17 @@ export const square: PulseShape = {
     const x = 0.5 * omega * fwhm;
     return Math.abs(x) < 1e-4 ? 1 - (x * x) / 6 : Math.sin(x) / x;
   },
+  spectrumSlope(omega, fwhm) {
+    const x = 0.5 * omega * fwhm;
+    const slope = Math.abs(x) < 1e-2 ? -x / 3 + x ** 3 / 30 - x ** 5 / 840 : (Math.cos(x) - Math.sin(x) / x) / x;
+    return 0.5 * fwhm * slope;
+  },
   timeScale: (fwhm) => fwhm,
   spectralBound: (omega, fwhm) => Math.min(1, 2 / (omega * fwhm)),
   reach: (fwhm) => 0.5 * fwhm,
   spectralReach: () => Number.POSITIVE_INFINITY,
   flat: true,
   edges: (fwhm) => [-0.5 * fwhm, 0.5 * fwhm],
+  slopes: () => null,
   energy: (fwhm) => 1 / fwhm,
 };

@@ -80,7 +80,45 @@ describe('figures of a pulse', () => {
 
   it('no area at all', () => {
     const none = pulseFigures(pulse({ area: 0 }, { area: 0 }));
-    expect(none).toEqual({ energy_pi_units: 0, duration_ps: 0, bandwidth_ghz: 0 });
+    expect(none).toEqual({
+      energy_pi_units: 0,
+      duration_ps: 0,
+      bandwidth_ghz: 0,
+      energy_fj: null,
+      peak_rabi_per_ps: 0,
+    });
     expect(pulseFigures(pulse({ area: 0 })).duration_ps).toBe(5);
+  });
+
+  // Ω₀ = A/(√(2π)σ) with FWHM = 2√(ln 2)σ, A/(πT) with FWHM = 2 arccosh(√2)T, A/T: the definitions of the shapes.
+  it.each([
+    ['gaussian', (2 * Math.sqrt(Math.LN2)) / Math.sqrt(2 * Math.PI)],
+    ['sech', (2 * Math.acosh(Math.SQRT2)) / Math.PI],
+    ['square', 1],
+  ])(
+    '%s: the largest Rabi frequency is the area times %f over the width, also where it is scanned',
+    (shape, k) => {
+      const tone = { shape, fwhm: 4, area: 3, detuning: -0.8, delay: 11 };
+      expect(pulseFigures(pulse(tone)).peak_rabi_per_ps).toBeCloseTo((3 * k) / 4, 12);
+      const half = { ...tone, area: 1.5 };
+      expect(pulseFigures(pulse(half, half)).peak_rabi_per_ps).toBeCloseTo((3 * k) / 4, 8);
+    },
+  );
+
+  it('dispersion lowers the largest Rabi frequency by the root of the stretch (Diels & Rudolph)', () => {
+    const stretch = Math.hypot(1, (4 * Math.LN2 * 25) / 9);
+    const [plain, chirped] = [0, 25].map((gdd) => pulseFigures(pulse({ fwhm: 3, gdd })).peak_rabi_per_ps);
+    expect(plain / chirped).toBeCloseTo(Math.sqrt(stretch), 12);
+    const table = pulseFigures(pulse({ fwhm: 3, gdd: 25, tod: 1e-7 })).peak_rabi_per_ps;
+    expect(table / chirped).toBeCloseTo(1, 6);
+  });
+
+  it('gives the energy in fJ by the measured π pulse: half the width takes twice the energy', () => {
+    const measured = { energy: 12, fwhm: 5 };
+    const energy = (tone: Parameters<typeof pulse>[0]) => pulseFigures(pulse(tone), null, measured).energy_fj;
+    expect(energy({ fwhm: 5 })).toBeCloseTo(12, 12);
+    expect(energy({ fwhm: 2.5 })).toBeCloseTo(24, 12);
+    expect(energy({ fwhm: 5, area: 2 * Math.PI })).toBeCloseTo(48, 12);
+    expect(pulseFigures(pulse({ fwhm: 5 })).energy_fj).toBeNull();
   });
 });
