@@ -1,6 +1,6 @@
 import type { Stream } from '../../core/numerics/stream.js';
 import { compareReplies } from '../local/compare.js';
-import type { Method, Reply, Setup, Trial } from '../local/contract.js';
+import type { Method, Reply, Setup, Steps } from '../local/contract.js';
 import { fold } from '../local/fold.js';
 import { bestIndex } from './contract.js';
 import { symmetricEigen } from './eigen.js';
@@ -9,8 +9,6 @@ import { symmetricEigen } from './eigen.js';
 const SIGMA = 0.25;
 /** Sampling that has shrunk below this has converged. */
 const SMALLEST = 1e-12;
-
-type Steps<T> = Generator<readonly Trial[], T, readonly Reply[]>;
 
 /** Weights and learning rates of Hansen, arXiv:1604.00772 (2016), table 1, without negative weights. */
 function ratesOf(n: number, lambda: number) {

@@ -1,6 +1,15 @@
 import { stream } from '../../core/numerics/stream.js';
 import { compareReplies } from './compare.js';
-import { FAILED, type Method, type Reply, type Setup, type Trial } from './contract.js';
+import {
+  FAILED,
+  GRADIENT_COST,
+  type Method,
+  type Reply,
+  type Request,
+  type Setup,
+  type Steps,
+  type Trial,
+} from './contract.js';
 
 /** A search under way: plain data, JSON without loss. */
 export interface SessionState {
@@ -34,8 +43,10 @@ export class Session {
   readonly #method: Method;
   readonly #setup: Setup;
   readonly #replies: Reply[] = [];
-  readonly #steps: Generator<readonly Trial[], void, readonly Reply[]>;
+  readonly #steps: Steps<void>;
   #pending: readonly Trial[] = [];
+  #gradient = false;
+  #spent = 0;
 
   constructor(method: Method, setup: Setup) {
     checkSetup(method, setup);
@@ -50,31 +61,53 @@ export class Session {
     return this.#pending;
   }
 
-  /** The replies to all trials of the last `ask`, in their order. */
-  tell(replies: readonly Reply[]): void {
+  /** Whether exact derivatives are wanted at the trial asked for, whose value is known already. */
+  get gradient(): boolean {
+    return this.#gradient;
+  }
+
+  /** Evaluations that the trials asked for count as. */
+  get cost(): number {
+    return this.#gradient ? GRADIENT_COST : this.#pending.length;
+  }
+
+  /** Evaluations told so far. */
+  get spent(): number {
+    return this.#spent;
+  }
+
+  /** The replies to all trials of the last `ask`, in their order. Returns them with failures made finite. */
+  tell(replies: readonly Reply[]): readonly Reply[] {
     if (replies.length !== this.#pending.length) {
       throw new Error(
         `${this.#method.name}: got ${replies.length} replies to ${this.#pending.length} trials`,
       );
     }
-    if (replies.length === 0) return;
+    if (replies.length === 0) return [];
+    this.#spent += this.cost;
     const cleaned = replies.map((reply) => ({
       objectives: reply.objectives.map(clean),
       constraints: reply.constraints.map(clean),
       ...(reply.gradients?.every((row) => row.every(Number.isFinite)) ? { gradients: reply.gradients } : {}),
     }));
     for (const reply of cleaned) this.#replies.push(reply);
-    if (this.#replies.length >= this.#setup.budget) this.#pending = [];
+    if (this.#spent >= this.#setup.budget) this.#pending = [];
     else this.#take(this.#steps.next(cleaned));
+    return cleaned;
   }
 
   state(): SessionState {
     return { method: this.#method.name, setup: this.#setup, replies: [...this.#replies] };
   }
 
-  #take(step: IteratorResult<readonly Trial[], void>): void {
-    const left = this.#setup.budget - this.#replies.length;
-    this.#pending = step.done === true ? [] : step.value.slice(0, left).map((trial) => [...trial]);
+  #take(step: IteratorResult<Request, void>): void {
+    const left = this.#setup.budget - this.#spent;
+    this.#gradient = false;
+    if (step.done === true) this.#pending = [];
+    else if ('gradientAt' in step.value) {
+      this.#gradient = left >= GRADIENT_COST;
+      this.#pending = this.#gradient ? [[...step.value.gradientAt]] : [];
+    } else this.#pending = step.value.slice(0, left).map((trial) => [...trial]);
   }
 }
 
@@ -98,24 +131,37 @@ export interface TrialResult {
   readonly reply: Reply;
 }
 
+/** What a run of a method leaves behind. */
+export interface Optimized {
+  /** Every evaluation in order, gradients left out. */
+  readonly trace: readonly TrialResult[];
+  /** The best one by the feasibility rules (of the first objective); null when nothing was evaluated. */
+  readonly best: TrialResult | null;
+  /** Gradients included. */
+  readonly evaluations: number;
+}
+
 /**
- * Runs a method to its end or to the end of its budget. Returns every evaluation in order and the best one by the
- * feasibility rules (of the first objective); null when nothing was evaluated.
+ * Runs a method to its end or to the end of its budget.
+ * @param evaluate is told whether exact derivatives are wanted; only where `setup.gradient` allows them
  */
 export function optimize(
   method: Method,
   setup: Setup,
-  evaluate: (x: Trial) => Reply,
-): { readonly trace: readonly TrialResult[]; readonly best: TrialResult | null } {
+  evaluate: (x: Trial, gradient: boolean) => Reply,
+): Optimized {
   const session = new Session(method, setup);
-  const trials: Trial[] = [];
-  for (let asked = session.ask(); asked.length > 0; asked = session.ask()) {
-    trials.push(...asked);
-    session.tell(asked.map((x) => evaluate([...x])));
-  }
-  const trace = session.state().replies.map((reply, i) => ({ x: trials[i], reply }));
+  const trace: TrialResult[] = [];
   let best: TrialResult | null = null;
-  for (const result of trace)
-    if (best === null || compareReplies(result.reply, best.reply) < 0) best = result;
-  return { trace, best };
+  for (let asked = session.ask(); asked.length > 0; asked = session.ask()) {
+    const { gradient } = session;
+    const replies = session.tell(asked.map((x) => evaluate([...x], gradient)));
+    if (gradient) continue;
+    for (const [i, reply] of replies.entries()) {
+      const result = { x: asked[i], reply };
+      trace.push(result);
+      if (best === null || compareReplies(reply, best.reply) < 0) best = result;
+    }
+  }
+  return { trace, best, evaluations: session.spent };
 }

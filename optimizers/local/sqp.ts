@@ -1,5 +1,5 @@
-import type { Method, Reply, Setup, Trial } from './contract.js';
-import { differenceTrials, type Expansion, expand, failed, rowOf } from './differences.js';
+import type { Method, Reply, Setup, Steps, Trial } from './contract.js';
+import { Expander, type Expansion, failed, rowOf, scaledReply } from './differences.js';
 import { dampedUpdate, type Matrix, solveQuadratic } from './qp.js';
 
 /** Step of the differences and trust radii, in units of the cube; tolerance relative to the objective. */
@@ -25,8 +25,6 @@ const GOOD = 0.7;
 const LEAST_PENALTY = 1;
 const MOST_PENALTY = 1e6;
 
-type Steps<T> = Generator<readonly Trial[], T, readonly Reply[]>;
-
 interface State {
   readonly x: Trial;
   readonly at: Expansion;
@@ -36,10 +34,6 @@ interface State {
   readonly radius: number;
   readonly penalty: number;
 }
-
-/** Divides the objective by its start value, so that tolerances and multipliers have a scale; the order stays. */
-const scaledReply = (reply: Reply, scale: number): Reply =>
-  failed(reply) ? reply : { ...reply, objectives: [reply.objectives[0] / scale] };
 
 const merit = (row: readonly number[], penalty: number) =>
   row.slice(1).reduce((sum, c) => sum + penalty * Math.max(0, c), row[0]);
@@ -135,22 +129,12 @@ function firstPenalty({ reply, gradients }: Expansion): number {
 }
 
 /** The iteration itself, on the free coordinates; ends when the model promises nothing or the radius is spent. */
-function* iterate(start: Trial, free: readonly number[], options: SqpOptions): Steps<void> {
+function* iterate(start: Trial, free: readonly number[], options: SqpOptions, exact: boolean): Steps<void> {
   const [first] = yield [start];
   if (free.length === 0 || failed(first)) return;
   const scale = Math.abs(first.objectives[0]) || 1;
-  function* expansionAt(x: Trial, reply: Reply): Steps<Expansion> {
-    const { gradients: exact } = reply;
-    if (exact !== undefined) {
-      const gradients = exact.map((row, r) => free.map((k) => row[k] / (r === 0 ? scale : 1)));
-      return { reply, gradients };
-    }
-    const trials = differenceTrials(x, free, options.differenceStep);
-    const replies = yield trials;
-    const scaledReplies = replies.map((r) => scaledReply(r, scale));
-    return expand(x, reply, free, trials, scaledReplies);
-  }
-  const begin = yield* expansionAt(start, scaledReply(first, scale));
+  const expander = new Expander(free, scale, options.differenceStep, exact);
+  const begin = yield* expander.at(start, scaledReply(first, scale));
   const steepest = Math.max(...begin.gradients.flat().map(Math.abs));
   if (!(steepest > 0)) return;
   const hessian = identity(free.length, steepest / options.radius);
@@ -193,7 +177,7 @@ function* iterate(start: Trial, free: readonly number[], options: SqpOptions): S
       continue;
     }
     const x = moved(step);
-    const at = yield* expansionAt(x, reply);
+    const at = yield* expander.at(x, reply);
     const wider =
       length > 0.8 * state.radius ? Math.min(2 * state.radius, options.largestRadius) : state.radius;
     const radius = ratio > GOOD ? wider : ratio < 0.25 ? 0.5 * length : state.radius;
@@ -226,7 +210,7 @@ export function sqp(options: Partial<SqpOptions> = {}): Method {
       const { dimension, categories } = setup.space;
       const start = setup.start[0] ?? new Array<number>(dimension).fill(0.5);
       const free = start.flatMap((_, i) => (categories[i] === 0 ? [i] : []));
-      yield* iterate(start, free, all);
+      yield* iterate(start, free, all, setup.gradient ?? false);
     },
   };
 }

@@ -28,7 +28,7 @@ export function getPath(design: Design, path: string): number {
 }
 
 /** Follows ties to the path that is not tied itself; throws on a circle. */
-function rootOf(tie: Tie, ties: ReadonlyMap<string, Tie>): string {
+export function rootOf(tie: Tie, ties: ReadonlyMap<string, Tie>): string {
   const seen = new Set<string>([tie.path]);
   let path = tie.sameAs;
   for (let next = ties.get(path); next !== undefined; next = ties.get(path)) {

@@ -1,6 +1,8 @@
+import type { EvaluateGradient } from '../../core/gradient.js';
 import type { Design, Figures } from '../../core/index.js';
 import { PropagationError } from '../../core/kernels/count.js';
-import type { ProblemSpec } from './contract.js';
+import type { Goal, ProblemSpec } from './contract.js';
+import { type Differentiated, differentiator } from './gradient.js';
 import { infeasible, judge, type Verdict } from './judge.js';
 import { applyParameters } from './path.js';
 import { type Space, transformOf } from './space.js';
@@ -23,30 +25,52 @@ export interface Problem {
   readonly valuesAt: (x: readonly number[]) => number[];
   /** From parameter values to the unit cube. */
   readonly unitOf: (values: readonly number[]) => number[];
+  /** The same parameters and figures judged by another goal. */
+  readonly withGoal: (goal: Goal) => Problem;
   /** One objective value. */
   readonly evaluate: (x: readonly number[]) => Candidate;
+  /** The verdict with exact derivatives; null where the problem has none. */
+  readonly differentiate: ((x: readonly number[]) => Differentiated) | null;
 }
 
-/** Builds the problem of a specification. Throws when a path does not exist, a tie is circular or a range is empty. */
-export function createProblem(spec: ProblemSpec, evaluate: Evaluate): Problem {
+/**
+ * Builds the problem of a specification. Throws when a path does not exist, a tie is circular or a range is empty.
+ * @param evaluateGradient figures with exact derivatives, or null for none
+ */
+export function createProblem(
+  spec: ProblemSpec,
+  evaluate: Evaluate,
+  evaluateGradient: EvaluateGradient | null = null,
+): Problem {
   const transforms = spec.parameters.map(transformOf);
   const valuesAt = (x: readonly number[]) => transforms.map((transform, i) => transform.value(x[i]));
   // A wrong path or a circular tie is a fault of the study, not of a candidate: found before the search.
   applyParameters(spec, valuesAt(transforms.map(() => 0)));
+  const attempt = <T extends object>(act: () => T) => {
+    try {
+      return act();
+    } catch (error) {
+      if (!(error instanceof PropagationError)) throw error;
+      return null;
+    }
+  };
+  const slopes = evaluateGradient && differentiator(spec, transforms, evaluateGradient);
   return {
     space: { dimension: transforms.length, categories: transforms.map((transform) => transform.categories) },
     valuesAt,
+    withGoal: (goal) => createProblem({ ...spec, goal }, evaluate, evaluateGradient),
     unitOf: (values) => transforms.map((transform, i) => transform.unit(values[i])),
     evaluate: (x) => {
       const values = valuesAt(x);
       const design = applyParameters(spec, values);
-      try {
-        const figures = evaluate(design);
-        return { values, figures, ...judge(figures, spec.goal) };
-      } catch (error) {
-        if (!(error instanceof PropagationError)) throw error;
-        return { values, figures: null, ...infeasible(spec.goal) };
-      }
+      const figures = attempt(() => evaluate(design));
+      return { values, figures, ...(figures ? judge(figures, spec.goal) : infeasible(spec.goal)) };
     },
+    differentiate:
+      slopes &&
+      ((x) => {
+        const design = applyParameters(spec, valuesAt(x));
+        return attempt(() => slopes(x, design)) ?? { ...infeasible(spec.goal), gradients: null };
+      }),
   };
 }

@@ -13,6 +13,8 @@ export interface Transform {
   readonly value: (unit: number) => number;
   /** From internal units to [0, 1] (the middle of its bin for a list entry). */
   readonly unit: (value: number) => number;
+  /** Derivative of `value`; 0 along a list. */
+  readonly slope: (unit: number) => number;
   readonly categories: number;
 }
 
@@ -33,6 +35,7 @@ function through(
   to: number,
   there: (v: number) => number,
   back: (w: number) => number,
+  slope: (w: number) => number,
 ): Transform {
   const low = there(from);
   const span = there(to) - low;
@@ -40,6 +43,7 @@ function through(
     // The ends are exact, so that a bound in the study is a bound to the bit.
     value: (u) => (u <= 0 ? from : u >= 1 ? to : clamp(back(low + u * span), from, to)),
     unit: (v) => (span > 0 ? clamp((there(v) - low) / span, 0, 1) : 0),
+    slope: (u) => span * slope(low + clamp(u, 0, 1) * span),
     categories: 0,
   };
 }
@@ -64,6 +68,7 @@ export function transformOf(parameter: FreeParameter): Transform {
         if (index < 0) throw new Error(`${path}: got ${v}; allowed are ${values.join(', ')}`);
         return binCenter(index, values.length);
       },
+      slope: () => 0,
       categories: values.length,
     };
   }
@@ -72,15 +77,17 @@ export function transformOf(parameter: FreeParameter): Transform {
   if (scale === 'log' && !(from > 0))
     throw new Error(`${path}: a logarithmic range must start above 0, got ${from}`);
   const key = lastKey(path);
-  if (scale === 'log' || (key === 'fwhm' && from > 0)) return through(from, to, Math.log, Math.exp);
+  if (scale === 'log' || (key === 'fwhm' && from > 0)) return through(from, to, Math.log, Math.exp, Math.exp);
   if (key === 'gdd' || key === 'tod') {
     const there = (v: number) => Math.asinh(v / DISPERSION_SCALE);
-    return through(from, to, there, (w) => DISPERSION_SCALE * Math.sinh(w));
+    const back = (w: number) => DISPERSION_SCALE * Math.sinh(w);
+    return through(from, to, there, back, (w) => DISPERSION_SCALE * Math.cosh(w));
   }
   return through(
     from,
     to,
     (v) => v,
     (w) => w,
+    () => 1,
   );
 }

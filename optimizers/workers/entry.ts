@@ -3,11 +3,11 @@ import type { ProblemSpec } from '../problem/contract.js';
 import { createProblem } from '../problem/problem.js';
 import type { Task } from '../tasks/contract.js';
 import { runTask } from '../tasks/registry.js';
-import { evaluateForSearch } from './evaluate.js';
+import { evaluateForSearch, gradientForSearch } from './evaluate.js';
 import type { WorkerMessage } from './pool.js';
 
 const spec = workerData as ProblemSpec;
-const problem = createProblem(spec, evaluateForSearch);
+const problem = createProblem(spec, evaluateForSearch, gradientForSearch);
 const port = parentPort;
 if (port === null) throw new Error('this module is the entry of a worker thread');
 
