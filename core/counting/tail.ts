@@ -50,29 +50,7 @@ class TailSolver {
       if (c.from === c.to) this.selfLoops[c.from].push(c);
       else this.outflow[c.from].push(c);
     }
-    this.order = this.reverseOrder();
-  }
-
-  /** Blocks so that whatever a block feeds comes before it. */
-  private reverseOrder(): number[] {
-    const { blocks } = this.hierarchy;
-    const owner: number[] = [];
-    blocks.forEach((b, i) => {
-      owner[b.lane] = i;
-      if (!b.hermitian) owner[b.lane + 1] = i;
-    });
-    const done = new Set<number>();
-    const order: number[] = [];
-    const visit = (block: number): void => {
-      if (done.has(block)) return;
-      done.add(block);
-      for (const lane of this.lanesOf(block)) for (const o of this.outflow[lane]) visit(owner[o.to]);
-      order.push(block);
-    };
-    blocks.forEach((_, i) => {
-      visit(i);
-    });
-    return order;
+    this.order = reverseOrder(hierarchy);
   }
 
   private lanesOf(block: number): number[] {
@@ -198,3 +176,26 @@ class TailSolver {
 }
 
 type Coupling = Hierarchy['couplings'][number];
+
+/** Blocks so that whatever a block feeds comes before it. */
+export function reverseOrder({ blocks, couplings }: Hierarchy): number[] {
+  const owner: number[] = [];
+  blocks.forEach((b, i) => {
+    owner[b.lane] = i;
+    if (!b.hermitian) owner[b.lane + 1] = i;
+  });
+  const fed: number[][] = blocks.map(() => []);
+  for (const c of couplings) if (c.from !== c.to) fed[owner[c.from]].push(owner[c.to]);
+  const done = new Set<number>();
+  const order: number[] = [];
+  const visit = (block: number): void => {
+    if (done.has(block)) return;
+    done.add(block);
+    fed[block].forEach(visit);
+    order.push(block);
+  };
+  blocks.forEach((_, i) => {
+    visit(i);
+  });
+  return order;
+}
