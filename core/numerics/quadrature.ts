@@ -32,11 +32,16 @@ export interface QuadratureResult {
   readonly error: number;
   /** False when the sub-intervals ran out before the wanted error was reached. */
   readonly converged: boolean;
+  /** The sub-intervals of the sum, in no order. */
+  readonly pieces: readonly Interval[];
 }
 
-interface Piece {
+export interface Interval {
   readonly a: number;
   readonly b: number;
+}
+
+interface Piece extends Interval {
   readonly value: number;
   readonly error: number;
   /** Error that rounding alone leaves. */
@@ -115,7 +120,23 @@ export function integrate(
     }
     const signed = a <= b ? value : -value;
     const target = Math.max(absolute, relative * Math.abs(value));
-    if (error <= target) return { value: signed, error, converged: true };
-    if (!refine(f, pieces, target, intervals)) return { value: signed, error, converged: false };
+    if (error <= target) return { value: signed, error, converged: true, pieces };
+    if (!refine(f, pieces, target, intervals)) return { value: signed, error, converged: false, pieces };
+  }
+}
+
+/**
+ * Abscissae and weights of the 21-point rule on each piece: sums of functions that are as smooth as the one for which the
+ * pieces were chosen, such as its derivatives by parameters.
+ */
+export function overPieces(pieces: readonly Interval[], at: (x: number, weight: number) => void): void {
+  for (const { a, b } of pieces) {
+    const center = 0.5 * (a + b);
+    const half = 0.5 * (b - a);
+    at(center, KRONROD[10] * half);
+    for (let i = 0; i < 10; i++) {
+      at(center - half * NODES[i], KRONROD[i] * half);
+      at(center + half * NODES[i], KRONROD[i] * half);
+    }
   }
 }

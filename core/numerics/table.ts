@@ -69,4 +69,25 @@ export class UniformTable {
     out[0] = re / norm;
     out[1] = im / norm;
   }
+
+  /** The transpose of `read`: adds (re, im) times each point's share of the value at x to that point of `into`. */
+  spread(x: number, re: number, im: number, into: Float64Array): void {
+    const position = (x - this.start) / this.step;
+    const first = Math.max(0, Math.min(this.length - STENCIL, Math.floor(position) - (STENCIL / 2 - 1)));
+    const local = position - first;
+    let norm = 0;
+    for (let j = 0; j < STENCIL; j++) {
+      if (local === j) {
+        into[2 * (first + j)] += re;
+        into[2 * (first + j) + 1] += im;
+        return;
+      }
+      norm += WEIGHTS[j] / (local - j);
+    }
+    for (let j = 0, k = 2 * first; j < STENCIL; j++, k += 2) {
+      const share = WEIGHTS[j] / ((local - j) * norm);
+      into[k] += share * re;
+      into[k + 1] += share * im;
+    }
+  }
 }

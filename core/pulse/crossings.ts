@@ -57,15 +57,17 @@ function isCrest(samples: readonly Point[], i: number): boolean {
   return (i === 0 || samples[i - 1].y <= y) && (i + 1 === samples.length || samples[i + 1].y <= y);
 }
 
-/** Maximum over all cells; those whose bound cannot beat what is known already are never sampled. */
-function highest(cells: readonly Cell[]): number {
-  let best = 0;
+/** Highest point of all cells; those whose bound cannot beat what is known already are never sampled. */
+function highest(cells: readonly Cell[]): Point {
+  let best = { x: Number.NaN, y: 0 };
   for (const cell of [...cells].sort((a, b) => b.bound - a.bound)) {
-    if (cell.bound <= best) break;
+    if (cell.bound <= best.y) break;
     const samples = samplesOf(cell);
-    const top = samples.reduce((largest, { y }) => Math.max(largest, y), best);
+    const top = samples.reduce((largest, { y }) => Math.max(largest, y), best.y);
     for (let i = 0; i < samples.length; i++) {
-      if (samples[i].y > 0.9 * top && isCrest(samples, i)) best = Math.max(best, crest(cell, samples, i).y);
+      if (!(samples[i].y > 0.9 * top && isCrest(samples, i))) continue;
+      const found = crest(cell, samples, i);
+      if (found.y > best.y) best = found;
     }
   }
   return best;
@@ -100,12 +102,25 @@ function outermost(cells: readonly Cell[], level: number, fromRight: boolean): n
   throw new Error(`no cell reaches ${level}, half of the maximum of the same cells`);
 }
 
-/**
- * Maximum of a function, given on ascending adjacent cells, and the distance between the outermost points at which it
- * reaches half of that; jumps between cells count as crossings. 0 for a function that is zero everywhere.
- */
-export function halfMaximum(cells: readonly Cell[]): { readonly top: number; readonly width: number } {
-  const top = highest(cells);
-  const half = 0.5 * top;
-  return { top, width: half > 0 ? outermost(cells, half, true) - outermost(cells, half, false) : 0 };
+/** Where a function is highest, how high, and the outermost points at which it reaches half of that; NaN where it is 0. */
+export interface HalfMaximum {
+  readonly top: number;
+  readonly at: number;
+  readonly left: number;
+  readonly right: number;
 }
+
+/** Half maximum of a function given on ascending adjacent cells; jumps between cells count as crossings. */
+export function halfMaximum(cells: readonly Cell[]): HalfMaximum {
+  const { x: at, y: top } = highest(cells);
+  if (!(top > 0)) return { top: 0, at: Number.NaN, left: Number.NaN, right: Number.NaN };
+  return {
+    top,
+    at,
+    left: outermost(cells, 0.5 * top, false),
+    right: outermost(cells, 0.5 * top, true),
+  };
+}
+
+/** Distance between the crossings; 0 for a function that is zero everywhere. */
+export const halfMaximumWidth = ({ top, left, right }: HalfMaximum): number => (top > 0 ? right - left : 0);

@@ -26,8 +26,21 @@ export interface DispersedEnvelope {
   bound(from: number, to: number): number;
   /** |ν| up to which the spectrum was kept, 1/ps. */
   readonly reach: number;
+  /** The transform that the table was cut from. */
+  readonly origin: TransformGrid;
   /** Estimated error relative to the peak, with the price of the band. */
   readonly error: number;
+}
+
+/** Grid of a transform, and where a table cut from it begins. */
+export interface TransformGrid {
+  readonly band: Band;
+  /** Time of the first sample, ps, and the step. */
+  readonly start: number;
+  readonly step: number;
+  readonly size: number;
+  /** Index of the sample with which the table begins. */
+  readonly first: number;
 }
 
 /** Field below which tails are dropped from the grid. */
@@ -86,23 +99,35 @@ function chooseGrid(shape: PulseShape, fwhm: number, dispersion: Dispersion, are
   );
 }
 
-/** Samples of the envelope from its spectrum: env(t) = ∫ S(ν) e^{iφ(ν)} e^{−iνt} dν/2π. */
-function transform(shape: PulseShape, fwhm: number, dispersion: Dispersion, grid: Grid): Float64Array {
-  const { size, step, band } = grid;
+/**
+ * Calls `at` for every frequency of a transform's band: ν (1/ps), index into interleaved data, weight and phase such that
+ * env(start + j·step) = Σ_ν weight · S(ν) e^{i·phase} e^{−2πi jk/N}, the sum for env(t) = ∫ S(ν) e^{iφ(ν)} e^{−iνt} dν/2π.
+ */
+export function overBand(
+  { band, start, step, size }: Omit<TransformGrid, 'first'>,
+  dispersion: Dispersion,
+  at: (nu: number, index: number, weight: number, phase: number) => void,
+): void {
   const spacing = (2 * Math.PI) / (size * step);
-  const data = new Float64Array(2 * size);
-  // The grid starts 2 stencils before the support, so that reading near its ends stays central.
-  const origin = grid.start - 2 * STENCIL * step;
   const last = Math.min(Math.floor(band.reach / spacing), size / 2 - 1);
   for (let j = -last; j <= last; j++) {
     const nu = j * spacing;
-    const amplitude = (shape.spectrum(nu, fwhm) * bandWeight(band, nu) * spacing) / (2 * Math.PI);
-    const angle = dispersionPhase(dispersion, nu) - nu * origin;
-    const k = 2 * (j < 0 ? j + size : j);
-    data[k] = amplitude * Math.cos(angle);
-    data[k + 1] = amplitude * Math.sin(angle);
+    const weight = (bandWeight(band, nu) * spacing) / (2 * Math.PI);
+    at(nu, 2 * (j < 0 ? j + size : j), weight, dispersionPhase(dispersion, nu) - nu * start);
   }
-  return new FourierPlan(size).forward(data);
+}
+
+/** Samples of the envelope from its spectrum. */
+function transform(shape: PulseShape, fwhm: number, dispersion: Dispersion, grid: Grid): Float64Array {
+  const data = new Float64Array(2 * grid.size);
+  // The grid starts 2 stencils before the support, so that reading near its ends stays central.
+  const start = grid.start - 2 * STENCIL * grid.step;
+  overBand({ ...grid, start }, dispersion, (nu, k, weight, phase) => {
+    const amplitude = shape.spectrum(nu, fwhm) * weight;
+    data[k] = amplitude * Math.cos(phase);
+    data[k + 1] = amplitude * Math.sin(phase);
+  });
+  return new FourierPlan(grid.size).forward(data);
 }
 
 /**
@@ -164,6 +189,7 @@ export function disperse(
     peak,
     bound: binnedBound(magnitude, origin, step),
     reach: grid.band.reach,
+    origin: { band: grid.band, start: origin, step, size, first: from },
     error:
       grid.band.error +
       roundingOf(dispersion, grid.band.reach) +

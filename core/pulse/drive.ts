@@ -1,6 +1,9 @@
 import { HBAR } from '../units/constants.js';
 import type { Pulse, Tone } from './contract.js';
+import { type SampleDerivatives, toneDerivatives } from './derivatives/drive.js';
 import { type Envelope, toneEnvelope } from './envelope.js';
+import { type GaussianTone, gaussianTones } from './gaussians.js';
+import { polarizationWeights } from './polarization.js';
 import { type ToneSampler, toneSampler } from './tones.js';
 import { type PlacedWindow, type Segments, segments } from './window.js';
 
@@ -37,6 +40,17 @@ export interface Drive {
    * that no grid can hold count with the excited-state admixture that they would have caused.
    */
   readonly error: number;
+  /** The same drive as a sum of Gaussians where it is one, for tables by recurrence; with one component only. */
+  readonly gaussians?: readonly GaussianTone[] | null;
+}
+
+/** A drive that knows the tones it is made of. */
+export interface PulseDrive extends Drive {
+  /**
+   * Adds the derivatives of scalars by all parameters of the tones to one vector per scalar (derivatives/layout.ts).
+   * @returns false, and adds nothing, where there are none at fixed sample times
+   */
+  differentiate(samples: SampleDerivatives, into: readonly Float64Array[]): boolean;
 }
 
 export interface DriveOptions {
@@ -50,12 +64,6 @@ interface PlacedTone {
   readonly envelope: Envelope;
   readonly sampler: ToneSampler;
   readonly window: PlacedWindow;
-}
-
-/** cos and sin of the polarisation; 6e-17 instead of 0 along an axis would couple what must stay dark. */
-function polarizationWeights(angle: number): readonly [number, number] {
-  const snap = (x: number): number => (Math.abs(x) < 1e-15 ? 0 : x);
-  return [snap(Math.cos(angle)), snap(Math.sin(angle))];
 }
 
 function placeTone(tone: Tone, options: DriveOptions): PlacedTone {
@@ -118,7 +126,7 @@ function highestFrequency(tones: readonly PlacedTone[], frame: number): number {
  * do not overlap leave gaps in it, in which the drive is exactly zero.
  * @throws DispersionError when a dispersed tone is spread over more samples than a transform can hold
  */
-export function createDrive(pulse: Pulse, options: DriveOptions): Drive {
+export function createDrive(pulse: Pulse, options: DriveOptions): PulseDrive {
   if (pulse.tones.length === 0) throw new RangeError('pulse.tones: got none; needs at least one tone');
   const tones = pulse.tones.map((tone) => placeTone(tone, options));
   const cut = segments(tones.map((tone) => tone.window));
@@ -142,6 +150,8 @@ export function createDrive(pulse: Pulse, options: DriveOptions): Drive {
         if (active[row + k] !== 0) samplers[k].add(t, out);
       }
     },
+    differentiate: (samples, into) =>
+      toneDerivatives(tones, active, { frame: options.frame, components }, samples, into),
     get cells() {
       return allCells();
     },
@@ -151,5 +161,6 @@ export function createDrive(pulse: Pulse, options: DriveOptions): Drive {
       time: Math.min(...tones.map((tone) => tone.envelope.timeScale)),
     },
     error: Math.max(...tones.map((tone) => tone.envelope.error)),
+    gaussians: components === 1 ? gaussianTones(pulse.tones, options.frame) : null,
   };
 }

@@ -1,4 +1,4 @@
-import { integrate } from '../numerics/index.js';
+import { type Interval, integrate } from '../numerics/index.js';
 import { bandWeight } from './band.js';
 import type { Pulse, Tone } from './contract.js';
 import { flatPair, type SpectralFilter } from './flat.js';
@@ -26,7 +26,7 @@ const PHASE_PER_PIECE = 6;
 /** Largest number of starting intervals. */
 const PIECES = 20_000;
 
-const lorentzian = ({ kappa, center }: SpectralFilter, omega: number): number =>
+export const lorentzian = ({ kappa, center }: SpectralFilter, omega: number): number =>
   1 / (1 + ((omega - center) / (kappa / 2)) ** 2);
 
 function filterBreaks(filter: SpectralFilter | null): number[] {
@@ -38,7 +38,7 @@ function filterBreaks(filter: SpectralFilter | null): number[] {
   return breaks;
 }
 
-interface Interval {
+interface SharedBand {
   readonly low: number;
   readonly high: number;
   readonly weight: (omega: number) => number;
@@ -48,7 +48,7 @@ interface Interval {
  * Frequencies that two tones share. If neither spectrum ever ends, the interval grows until their relative phase turns
  * many times, and fades out there: what is left out then cancels itself.
  */
-function sharedBand(a: ToneSpectrum, b: ToneSpectrum, fwhm: number): Interval {
+function sharedBand(a: ToneSpectrum, b: ToneSpectrum, fwhm: number): SharedBand {
   const low = Math.max(a.center - a.reach(FIELD_FLOOR), b.center - b.reach(FIELD_FLOOR));
   const high = Math.min(a.center + a.reach(FIELD_FLOOR), b.center + b.reach(FIELD_FLOOR));
   if (Number.isFinite(high)) return { low, high, weight: () => 1 };
@@ -81,6 +81,25 @@ function fringeBreaks(a: ToneSpectrum, b: ToneSpectrum, low: number, high: numbe
   return breaks;
 }
 
+/** An integral over frequencies with the intervals that its quadrature chose, and what fades its integrand out. */
+export interface SpectralIntegral {
+  readonly value: number;
+  readonly pieces: readonly Interval[];
+  readonly weight: (omega: number) => number;
+}
+
+/** ∫ S² T dω/2π of one tone of area 1 behind the filter, by quadrature. */
+export function ownIntegral(tone: Tone, filter: SpectralFilter): SpectralIntegral {
+  const spectrum = toneSpectrum({ ...tone, area: 1 });
+  const reach = spectrum.reach(FIELD_FLOOR);
+  const { center } = spectrum;
+  const integrand = (omega: number) => spectrum.amplitude(omega - center) ** 2 * lorentzian(filter, omega);
+  const breaks = [center - reach / 4, center, center + reach / 4, ...filterBreaks(filter)];
+  const options = { relative: 1e-10, breaks };
+  const { value, pieces } = integrate(integrand, center - reach, center + reach, options);
+  return { value: value / (2 * Math.PI), pieces, weight: () => 1 };
+}
+
 /** ∫|Ω|² of one tone behind the filter. */
 function ownEnergy(tone: Tone, filter: SpectralFilter | null): number {
   if (tone.area === 0) return 0;
@@ -88,14 +107,7 @@ function ownEnergy(tone: Tone, filter: SpectralFilter | null): number {
   if (!filter) return tone.area * tone.area * shape.energy(tone.fwhm);
   // Dispersion only turns phases, and one tone has nothing to interfere with.
   if (shape.flat) return flatPair(tone, tone, filter);
-  const spectrum = toneSpectrum(tone);
-  const reach = spectrum.reach(FIELD_FLOOR);
-  const { center } = spectrum;
-  const integrand = (omega: number) => spectrum.amplitude(omega - center) ** 2 * lorentzian(filter, omega);
-  const breaks = [center - reach / 4, center, center + reach / 4, ...filterBreaks(filter)];
-  return (
-    integrate(integrand, center - reach, center + reach, { relative: 1e-10, breaks }).value / (2 * Math.PI)
-  );
+  return tone.area * tone.area * ownIntegral(tone, filter).value;
 }
 
 /** Interference of tones k ≠ l behind the filter: Re ∫ E_k E_l* T dω/2π, known to 1e-12 of `scale`. */
@@ -104,10 +116,20 @@ function crossEnergy(a: Tone, b: Tone, filter: SpectralFilter | null, scale: num
   const alike = a.gdd === b.gdd && a.tod === b.tod && a.detuning === b.detuning;
   const plain = a.gdd === 0 && a.tod === 0 && b.gdd === 0 && b.tod === 0;
   if (pulseShape(a.shape).flat && pulseShape(b.shape).flat && (alike || plain)) return flatPair(a, b, filter);
+  return crossIntegral(a, b, filter, scale)?.value ?? 0;
+}
+
+/** The same by quadrature; null where the tones share no frequency. */
+export function crossIntegral(
+  a: Tone,
+  b: Tone,
+  filter: SpectralFilter | null,
+  scale: number,
+): SpectralIntegral | null {
   const one = toneSpectrum(a);
   const two = toneSpectrum(b);
   const { low, high, weight } = sharedBand(one, two, Math.min(a.fwhm, b.fwhm));
-  if (low >= high) return 0;
+  if (low >= high) return null;
   const integrand = (omega: number) => {
     const nu = omega - one.center;
     const mu = omega - two.center;
@@ -118,11 +140,12 @@ function crossEnergy(a: Tone, b: Tone, filter: SpectralFilter | null, scale: num
   };
   const breaks = [...fringeBreaks(one, two, low, high), one.center, two.center, ...filterBreaks(filter)];
   const options = { relative: 0, absolute: 1e-12 * 2 * Math.PI * scale, breaks, intervals: 2 * PIECES };
-  return integrate(integrand, low, high, options).value / (2 * Math.PI);
+  const { value, pieces } = integrate(integrand, low, high, options);
+  return { value: value / (2 * Math.PI), pieces, weight };
 }
 
 /** Weights of the product of two polarised fields behind an analyser along the axis and across it. */
-function projections(a: number, b: number, axis: number | null): { along: number; across: number } {
+export function projections(a: number, b: number, axis: number | null): { along: number; across: number } {
   if (axis === null) return { along: Math.cos(a - b), across: 0 };
   return {
     along: Math.cos(a - axis) * Math.cos(b - axis),

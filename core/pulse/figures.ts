@@ -1,7 +1,7 @@
 import type { PulseFigures } from '../figures.js';
 import type { Pulse, Tone } from './contract.js';
-import { type Cell, halfMaximum } from './crossings.js';
-import { createDrive, type Drive } from './drive.js';
+import { type Cell, halfMaximum, halfMaximumWidth } from './crossings.js';
+import { createDrive, type Drive, type PulseDrive } from './drive.js';
 import { pulseEnergy } from './energy.js';
 import { pulseShape } from './shapes/registry.js';
 import { type ToneSpectrum, toneSpectrum } from './spectrum.js';
@@ -14,10 +14,10 @@ const SPECTRAL_FLOOR = 1e-3;
 /** The same for spectra that fall as 1/ω only, 1/fwhm. */
 const FLAT_REACH = 60;
 /** 1/ps as an ordinary frequency, GHz. */
-const GHZ_PER_RADIAN = 1000 / (2 * Math.PI);
+export const GHZ_PER_RADIAN = 1000 / (2 * Math.PI);
 
 /** A drive whose components show every polarisation apart: the given one if it does, else a new one. */
-function polarizedDrive(pulse: Pulse, given: Drive | null): Drive {
+export function polarizedDrive<D extends Drive>(pulse: Pulse, given: D | null): D | PulseDrive {
   const one = pulse.tones.every((tone) => tone.polarization === pulse.tones[0].polarization);
   if (given !== null && (given.components === 2 || one)) return given;
   const centers = pulse.tones.map((tone) => toneSpectrum(tone).center);
@@ -26,7 +26,7 @@ function polarizedDrive(pulse: Pulse, given: Drive | null): Drive {
 }
 
 /** |Ω_h|² + |Ω_v|² over the drive window. */
-function inTime({ cells, scales, sample }: Drive): Cell[] {
+export function inTime({ cells, scales, sample }: Drive): Cell[] {
   const out = new Float64Array(4);
   const step = 1 / (PER_TIME / scales.time + PER_RADIAN * scales.frequency);
   return cells.map(({ from, to, segment, bound }) => ({
@@ -58,7 +58,7 @@ function delaySpread(tones: readonly Tone[], spectra: readonly ToneSpectrum[]): 
 }
 
 /** |E_h|² + |E_v|² over the bands of all tones. */
-function inFrequency(tones: readonly Tone[]): Cell[] {
+export function inFrequency(tones: readonly Tone[]): Cell[] {
   const spectra = tones.map(toneSpectrum);
   const low = Math.min(...spectra.map((s, k) => s.center - spectralReach(tones[k], s)));
   const high = Math.max(...spectra.map((s, k) => s.center + spectralReach(tones[k], s)));
@@ -104,8 +104,8 @@ function knownInTime(tone: Tone): { readonly duration: number; readonly peak: nu
 }
 
 function scannedInTime(pulse: Pulse, drive: Drive | null): { duration: number; peak: number } {
-  const { top, width } = halfMaximum(inTime(polarizedDrive(pulse, drive)));
-  return { duration: width, peak: Math.sqrt(top) };
+  const half = halfMaximum(inTime(polarizedDrive(pulse, drive)));
+  return { duration: halfMaximumWidth(half), peak: Math.sqrt(half.top) };
 }
 
 /**
@@ -129,7 +129,7 @@ export function pulseFigures(
   const { duration, peak } = known ?? scannedInTime(pulse, drive);
   const bandwidth = single
     ? (1000 * pulseShape(first.shape).timeBandwidth) / first.fwhm
-    : GHZ_PER_RADIAN * halfMaximum(inFrequency(pulse.tones)).width;
+    : GHZ_PER_RADIAN * halfMaximumWidth(halfMaximum(inFrequency(pulse.tones)));
   return {
     energy_pi_units: energy / (Math.PI ** 2 * gaussian.energy(first.fwhm)),
     duration_ps: duration,

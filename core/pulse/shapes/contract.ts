@@ -16,6 +16,8 @@ export interface ClosedEnvelope {
   readonly timeScale: number;
   /** |t| beyond which |env| < eps·peak, ps. */
   reach(eps: number): number;
+  /** Where the magnitude is a Gaussian peak·exp(−fall·t²): its fall, 1/ps². */
+  readonly fall?: number;
 }
 
 /**

@@ -25,6 +25,7 @@ function dispersed(fwhm: number, gdd: number): ClosedEnvelope {
     absoluteArea: Math.sqrt(stretched / sigma),
     timeScale: stretched,
     reach: (eps) => stretched * Math.sqrt(-2 * Math.log(eps)),
+    fall: decay,
   };
 }
 

@@ -15,7 +15,8 @@ export const square: PulseShape = {
   },
   spectrumSlope(omega, fwhm) {
     const x = 0.5 * omega * fwhm;
-    const slope = Math.abs(x) < 1e-2 ? -x / 3 + x ** 3 / 30 - x ** 5 / 840 : (Math.cos(x) - Math.sin(x) / x) / x;
+    const slope =
+      Math.abs(x) < 1e-2 ? -x / 3 + x ** 3 / 30 - x ** 5 / 840 : (Math.cos(x) - Math.sin(x) / x) / x;
     return 0.5 * fwhm * slope;
   },
   timeScale: (fwhm) => fwhm,
