@@ -10,6 +10,9 @@ import { type Space, transformOf } from './space.js';
 /** Figures of a design; `core`'s `evaluate` at the search's accuracy, or a stand-in. */
 export type Evaluate = (design: Design) => Figures;
 
+/** Figures of independent designs, in their order; null where a pulse is beyond what can be integrated. */
+export type EvaluateMany = (designs: readonly Design[]) => readonly (Figures | null)[];
+
 /** One evaluated candidate judged by the goal. */
 export interface Candidate extends Verdict {
   /** Free-parameter values, internal units. */
@@ -29,43 +32,57 @@ export interface Problem {
   readonly withGoal: (goal: Goal) => Problem;
   /** One objective value. */
   readonly evaluate: (x: readonly number[]) => Candidate;
+  /** The same of a whole batch, in its order: threads may share it out. */
+  readonly evaluateMany: (points: readonly (readonly number[])[]) => Candidate[];
   /** The verdict with exact derivatives; null where the problem has none. */
   readonly differentiate: ((x: readonly number[]) => Differentiated) | null;
 }
 
+function attempt<T extends object>(act: () => T): T | null {
+  try {
+    return act();
+  } catch (error) {
+    if (!(error instanceof PropagationError)) throw error;
+    return null;
+  }
+}
+
+export const evaluateOneByOne =
+  (evaluate: Evaluate): EvaluateMany =>
+  (designs) =>
+    designs.map((design) => attempt(() => evaluate(design)));
+
 /**
  * Builds the problem of a specification. Throws when a path does not exist, a tie is circular or a range is empty.
  * @param evaluateGradient figures with exact derivatives, or null for none
+ * @param evaluateMany gives the figures of `evaluate`
  */
 export function createProblem(
   spec: ProblemSpec,
   evaluate: Evaluate,
   evaluateGradient: EvaluateGradient | null = null,
+  evaluateMany: EvaluateMany = evaluateOneByOne(evaluate),
 ): Problem {
   const transforms = spec.parameters.map(transformOf);
   const valuesAt = (x: readonly number[]) => transforms.map((transform, i) => transform.value(x[i]));
   // A wrong path or a circular tie is a fault of the study, not of a candidate: found before the search.
   applyParameters(spec, valuesAt(transforms.map(() => 0)));
-  const attempt = <T extends object>(act: () => T) => {
-    try {
-      return act();
-    } catch (error) {
-      if (!(error instanceof PropagationError)) throw error;
-      return null;
-    }
+  const evaluatePoints = (points: readonly (readonly number[])[]): Candidate[] => {
+    const all = points.map(valuesAt);
+    const answers = evaluateMany(all.map((values) => applyParameters(spec, values)));
+    return all.map((values, i) => {
+      const figures = answers[i];
+      return { values, figures, ...(figures ? judge(figures, spec.goal) : infeasible(spec.goal)) };
+    });
   };
   const slopes = evaluateGradient && differentiator(spec, transforms, evaluateGradient);
   return {
     space: { dimension: transforms.length, categories: transforms.map((transform) => transform.categories) },
     valuesAt,
-    withGoal: (goal) => createProblem({ ...spec, goal }, evaluate, evaluateGradient),
+    withGoal: (goal) => createProblem({ ...spec, goal }, evaluate, evaluateGradient, evaluateMany),
     unitOf: (values) => transforms.map((transform, i) => transform.unit(values[i])),
-    evaluate: (x) => {
-      const values = valuesAt(x);
-      const design = applyParameters(spec, values);
-      const figures = attempt(() => evaluate(design));
-      return { values, figures, ...(figures ? judge(figures, spec.goal) : infeasible(spec.goal)) };
-    },
+    evaluate: (x) => evaluatePoints([x])[0],
+    evaluateMany: evaluatePoints,
     differentiate:
       slopes &&
       ((x) => {

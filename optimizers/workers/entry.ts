@@ -1,23 +1,42 @@
 import { parentPort, workerData } from 'node:worker_threads';
-import type { ProblemSpec } from '../problem/contract.js';
-import { createProblem } from '../problem/problem.js';
-import type { Task } from '../tasks/contract.js';
+import type { Design } from '../../core/index.js';
+import { createProblem, evaluateOneByOne, type Problem } from '../problem/problem.js';
 import { runTask } from '../tasks/registry.js';
 import { evaluateForSearch, gradientForSearch } from './evaluate.js';
-import type { WorkerMessage } from './pool.js';
+import { failureOf } from './failure.js';
+import type { WorkerMessage, WorkerOrder, WorkerSetup } from './messages.js';
+import { helpWith, type SharedBatch } from './shared-batch.js';
+import { sharingMap } from './sharing.js';
 
-const spec = workerData as ProblemSpec;
-const problem = createProblem(spec, evaluateForSearch, gradientForSearch);
+const { spec, idle } = workerData as WorkerSetup;
+if (parentPort === null) throw new Error('this module is the entry of a worker thread');
 const port = parentPort;
-if (port === null) throw new Error('this module is the entry of a worker thread');
+const say = (message: WorkerMessage) => port.postMessage(message);
 
-port.on('message', (task: Task) => {
-  let answer: WorkerMessage;
+const evaluateOne = (design: Design) => evaluateOneByOne(evaluateForSearch)([design])[0];
+
+function problemHere(): Problem | null {
   try {
-    answer = { kind: 'done', result: runTask(spec, problem, task) };
+    const publish = (batch: SharedBatch<Design>) => say({ kind: 'share', batch });
+    const evaluateMany = sharingMap(idle, publish, evaluateOne);
+    return createProblem(spec, evaluateForSearch, gradientForSearch, evaluateMany);
   } catch (error) {
-    const message = error instanceof Error ? error.message : String(error);
-    answer = { kind: 'failed', id: task.id, message: `task ${task.id}: ${message}` };
+    say({ kind: 'broken', failure: failureOf(error) });
+    return null;
   }
-  port.postMessage(answer);
-});
+}
+
+function obey(problem: Problem, order: WorkerOrder): WorkerMessage {
+  if (order.kind === 'help') {
+    helpWith(order.batch as SharedBatch<Design>, evaluateOne);
+    return { kind: 'helped' };
+  }
+  try {
+    return { kind: 'done', result: runTask(spec, problem, order.task) };
+  } catch (error) {
+    return { kind: 'failed', failure: failureOf(error) };
+  }
+}
+
+const problem = problemHere();
+if (problem !== null) port.on('message', (order: WorkerOrder) => say(obey(problem, order)));

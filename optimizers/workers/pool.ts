@@ -5,11 +5,9 @@ import { Worker } from 'node:worker_threads';
 import type { ProblemSpec } from '../problem/contract.js';
 import type { Task, TaskResult } from '../tasks/contract.js';
 import type { TaskPool } from './contract.js';
-
-/** What a worker answers. */
-export type WorkerMessage =
-  | { readonly kind: 'done'; readonly result: TaskResult }
-  | { readonly kind: 'failed'; readonly id: string; readonly message: string };
+import { errorOf } from './failure.js';
+import type { WorkerMessage, WorkerOrder, WorkerSetup } from './messages.js';
+import { OpenBatches } from './sharing.js';
 
 /** A thread cannot load TypeScript: from the sources the built entry is taken. */
 function entryUrl(): URL {
@@ -29,57 +27,94 @@ interface Job {
   readonly reject: (error: Error) => void;
 }
 
+/**
+ * Threads of one problem. Tasks wait in a queue; a worker that finds it empty helps another one with the designs that
+ * its task has still to evaluate.
+ */
+class Pool implements TaskPool {
+  readonly size: number;
+  readonly #queue: Job[] = [];
+  readonly #running = new Map<Worker, Job>();
+  readonly #waiting: Worker[] = [];
+  readonly #batches = new OpenBatches<Worker>();
+  readonly #idle = new Int32Array(new SharedArrayBuffer(4));
+  readonly #workers: readonly Worker[];
+  #broken: Error | null = null;
+
+  constructor(spec: ProblemSpec, size: number) {
+    const url = entryUrl();
+    const workerData: WorkerSetup = { spec, idle: this.#idle };
+    this.size = size;
+    this.#workers = Array.from({ length: size }, () => {
+      const worker = new Worker(url, { workerData });
+      worker.on('message', (message: WorkerMessage) => this.#hear(worker, message));
+      worker.on('error', (error) => this.#break(new Error(`a worker thread failed: ${error.message}`)));
+      worker.on('exit', (code) =>
+        this.#break(new Error(`a worker thread ended unexpectedly (exit code ${code})`)),
+      );
+      return worker;
+    });
+    this.#waiting.push(...this.#workers);
+  }
+
+  run(task: Task): Promise<TaskResult> {
+    return new Promise((resolve, reject) => {
+      if (this.#broken !== null) return reject(this.#broken);
+      this.#queue.push({ task, resolve, reject });
+      this.#feed();
+    });
+  }
+
+  async close(): Promise<void> {
+    this.#break(new Error('the pool is closed'));
+    await Promise.all(this.#workers.map((worker) => worker.terminate()));
+  }
+
+  #hear(worker: Worker, message: WorkerMessage): void {
+    const job = this.#running.get(worker);
+    switch (message.kind) {
+      case 'done':
+        job?.resolve(message.result);
+        break;
+      case 'failed':
+        job?.reject(errorOf(message.failure, `task ${job.task.id}`));
+        break;
+      case 'broken':
+        this.#break(errorOf(message.failure, 'a worker thread failed'));
+        return;
+      case 'share':
+        this.#batches.open(worker, message.batch);
+        this.#feed();
+        return;
+    }
+    this.#running.delete(worker);
+    this.#waiting.push(worker);
+    this.#feed();
+  }
+
+  /** Tasks first, then help. */
+  #feed(): void {
+    while (this.#waiting.length > 0 && this.#broken === null) {
+      const job = this.#queue.shift();
+      const batch = job === undefined ? this.#batches.any() : null;
+      if (job === undefined && batch === null) break;
+      const worker = this.#waiting.pop()!;
+      if (job !== undefined) this.#running.set(worker, job);
+      const order: WorkerOrder =
+        job !== undefined ? { kind: 'run', task: job.task } : { kind: 'help', batch: batch! };
+      worker.postMessage(order);
+    }
+    Atomics.store(this.#idle, 0, this.#waiting.length);
+  }
+
+  #break(error: Error): void {
+    this.#broken ??= error;
+    for (const job of [...this.#running.values(), ...this.#queue.splice(0)]) job.reject(this.#broken);
+    this.#running.clear();
+  }
+}
+
 /** Runs tasks on `size` worker threads, each with its own copy of the problem. */
 export function workerPool(spec: ProblemSpec, size: number): TaskPool {
-  const url = entryUrl();
-  const queue: Job[] = [];
-  const running = new Map<Worker, Job>();
-  const idle: Worker[] = [];
-  let broken: Error | null = null;
-
-  const breakAll = (error: Error) => {
-    broken ??= error;
-    for (const job of [...running.values(), ...queue.splice(0)]) job.reject(broken);
-    running.clear();
-  };
-  const feed = () => {
-    while (idle.length > 0 && queue.length > 0) {
-      const worker = idle.pop()!;
-      const job = queue.shift()!;
-      running.set(worker, job);
-      worker.postMessage(job.task);
-    }
-  };
-  const workers = Array.from({ length: size }, () => {
-    const worker = new Worker(url, { workerData: spec });
-    worker.on('message', (message: WorkerMessage) => {
-      const job = running.get(worker);
-      if (job === undefined) return;
-      running.delete(worker);
-      idle.push(worker);
-      if (message.kind === 'done') job.resolve(message.result);
-      else job.reject(new Error(message.message));
-      feed();
-    });
-    worker.on('error', (error) => breakAll(new Error(`a worker thread failed: ${error.message}`)));
-    worker.on('exit', (code) =>
-      breakAll(new Error(`a worker thread ended unexpectedly (exit code ${code})`)),
-    );
-    idle.push(worker);
-    return worker;
-  });
-
-  return {
-    size,
-    run: (task) =>
-      new Promise((resolve, reject) => {
-        if (broken !== null) return reject(broken);
-        queue.push({ task, resolve, reject });
-        feed();
-      }),
-    async close() {
-      breakAll(new Error('the pool is closed'));
-      await Promise.all(workers.map((worker) => worker.terminate()));
-    },
-  };
+  return new Pool(spec, size);
 }
