@@ -150,12 +150,22 @@ export function optimize(
   setup: Setup,
   evaluate: (x: Trial, gradient: boolean) => Reply,
 ): Optimized {
+  return optimizeInBatches(method, setup, (trials, gradient) => trials.map((x) => evaluate(x, gradient)));
+}
+
+/** The same for an evaluation that takes all trials of a request at once, and gives their replies in their order. */
+export function optimizeInBatches(
+  method: Method,
+  setup: Setup,
+  evaluateMany: (trials: readonly Trial[], gradient: boolean) => readonly Reply[],
+): Optimized {
   const session = new Session(method, setup);
   const trace: TrialResult[] = [];
   let best: TrialResult | null = null;
   for (let asked = session.ask(); asked.length > 0; asked = session.ask()) {
     const { gradient } = session;
-    const replies = session.tell(asked.map((x) => evaluate([...x], gradient)));
+    const copies = asked.map((x) => [...x]);
+    const replies = session.tell(evaluateMany(copies, gradient));
     if (gradient) continue;
     for (const [i, reply] of replies.entries()) {
       const result = { x: asked[i], reply };
