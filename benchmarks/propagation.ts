@@ -98,6 +98,7 @@ function problem(): ProblemSpec {
       brightness: 'single',
       atLeast: 0.9,
       front: { from: 0.5, to: 0.98, points: 25 },
+      third: null,
       limits: [],
     },
     search: { evaluations: 6000, seed: 7, method: 'auto' },

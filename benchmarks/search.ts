@@ -93,6 +93,7 @@ function specOf(instance: Instance, evaluations: number, seed: number): ProblemS
       brightness: 'single',
       atLeast: 0.95,
       front: { from: 0.5, to: 0.999, points: 100 },
+      third: null,
       limits: [],
     },
     search: { evaluations, seed, method: 'auto' },

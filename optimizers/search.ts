@@ -1,3 +1,4 @@
+import type { EvaluateGradient } from '../core/gradient.js';
 import type { ProblemSpec } from './problem/contract.js';
 import { judge } from './problem/judge.js';
 import { createProblem, type Evaluate } from './problem/problem.js';
@@ -6,7 +7,7 @@ import { type Milestone, outcomeOf, type SearchOutcome } from './stages/outcome.
 import { plan } from './stages/plan.js';
 import type { Task, TaskResult } from './tasks/contract.js';
 import type { TaskPool } from './workers/contract.js';
-import { evaluateForSearch } from './workers/evaluate.js';
+import { evaluateForSearch, gradientForSearch } from './workers/evaluate.js';
 import { workerPool } from './workers/pool.js';
 import { serialPool } from './workers/serial.js';
 
@@ -32,17 +33,8 @@ export interface SearchOptions {
   readonly signal?: AbortSignal;
   /** Stand-in for `core`'s `evaluate`; only in this thread. */
   readonly evaluate?: Evaluate;
-}
-
-/** Takes in a task's points; its evaluations count when its stage is over. */
-function absorb(known: Knowledge, result: TaskResult): void {
-  const { goal } = known.spec;
-  for (const { values, figures } of result.points) {
-    const { impurity, brightness } = judge(figures, goal);
-    known.archive.add({ values, figures, impurity, brightness });
-  }
-  const { nearest } = result;
-  if (nearest !== undefined) known.nearest.offer(nearest, judge(nearest.figures, goal).violation);
+  /** Stand-in for `core`'s exact derivatives beside `evaluate`; left out: a stand-in has none. */
+  readonly evaluateGradient?: EvaluateGradient;
 }
 
 /** State of the run that progress and the outcome are told from. */
@@ -111,7 +103,7 @@ async function runStage(run: Run, stage: Stage): Promise<(TaskResult | null)[]> 
 function merge(known: Knowledge, results: readonly (TaskResult | null)[]): void {
   for (const result of results) {
     if (result === null) continue;
-    absorb(known, result);
+    known.absorb(result);
     known.spent += result.evaluations;
   }
 }
@@ -132,7 +124,12 @@ async function carryOut(run: Run): Promise<'finished' | 'interrupted'> {
     const results = await runStage(run, stage);
     merge(known, results);
     const evaluations = known.spent - before;
-    milestones.push({ name: stage.name, tasks: stage.tasks.length, evaluations, front: known.front });
+    milestones.push({
+      name: stage.name,
+      tasks: stage.tasks.length,
+      evaluations,
+      front: known.archive.points,
+    });
     const complete = results.filter((result) => result !== null);
     if (complete.length < results.length) return 'interrupted';
     step = steps.next(complete);
@@ -146,7 +143,10 @@ async function carryOut(run: Run): Promise<'finished' | 'interrupted'> {
  * when a task fails and when a worker dies.
  */
 export async function search(spec: ProblemSpec, options: SearchOptions): Promise<SearchOutcome> {
-  const problem = createProblem(spec, options.evaluate ?? evaluateForSearch);
+  const problem =
+    options.evaluate === undefined
+      ? createProblem(spec, evaluateForSearch, gradientForSearch)
+      : createProblem(spec, options.evaluate, options.evaluateGradient ?? null);
   const threads = options.evaluate === undefined && options.workers > 1;
   const pool = threads ? workerPool(spec, options.workers) : serialPool(spec, problem);
   const run: Run = { known: new Knowledge(spec, problem), pool, options, milestones: [] };

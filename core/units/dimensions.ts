@@ -111,6 +111,14 @@ export const dimensions = {
     display: ['1/ns', '1/ps'],
     example: '0.1 1/ns',
   },
+  /** Angular: the radian counts as a pure number. */
+  rabi: {
+    name: 'a Rabi frequency',
+    internal: '1/ps',
+    units: decimal({ '1/ps': 0, 'rad/ps': 0, '1/ns': -3, 'rad/ns': -3 }),
+    display: ['1/ns', '1/ps'],
+    example: '0.4 1/ps',
+  },
   temperature: {
     name: 'a temperature',
     internal: 'K',

@@ -1,11 +1,13 @@
 import type { Goal } from '../problem/contract.js';
 import type { Judgement } from '../problem/judge.js';
 
+type Point = Pick<Judgement, 'impurity' | 'brightness'>;
+
 /**
  * The member with the least impurity among those of at least the brightness `level`, null when the level is out of
  * reach. `front` is non-dominated and sorted by brightness, so impurity rises along it.
  */
-export function atLevel<T extends Judgement>(front: readonly T[], level: number): T | null {
+export function atLevel<T extends Point>(front: readonly T[], level: number): T | null {
   let low = 0;
   let high = front.length;
   while (low < high) {
@@ -17,7 +19,7 @@ export function atLevel<T extends Judgement>(front: readonly T[], level: number)
 }
 
 /** Evenly spaced brightness levels, ends included; an open end is the end of what `front` reaches. */
-export function levelsOf(wanted: Goal['front'], front: readonly Judgement[]): number[] {
+export function levelsOf(wanted: Goal['front'], front: readonly Point[]): number[] {
   if (front.length === 0 && (wanted.from === null || wanted.to === null)) return [];
   const from = wanted.from ?? Math.min(front[0].brightness, wanted.to ?? Number.POSITIVE_INFINITY);
   const to = wanted.to ?? Math.max(front[front.length - 1].brightness, from);

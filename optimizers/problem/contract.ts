@@ -24,6 +24,9 @@ export interface Limit {
   readonly atLeast: number | null;
 }
 
+/** Pulse energy (fJ, minimised), leaked laser photons (minimised) or collected mean (maximised). */
+export type ThirdAxis = 'energy' | 'leakage' | 'mean';
+
 export interface Goal {
   /** Minimised: of what is collected per pulse. */
   readonly impurity: 'multiphoton' | 'g2';
@@ -33,6 +36,8 @@ export interface Goal {
   readonly atLeast: number | null;
   /** Brightness levels of the front; from/to null = the reachable range. */
   readonly front: { readonly from: number | null; readonly to: number | null; readonly points: number };
+  /** Third objective; the front is then given as that many slices, each a front within a bound. Null for two objectives. */
+  readonly third: { readonly axis: ThirdAxis; readonly slices: number } | null;
   /** Every one must be met by each design of the front. Judged, like all figures, on the mean over drift. */
   readonly limits: readonly Limit[];
 }

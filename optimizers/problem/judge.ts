@@ -1,13 +1,21 @@
 import type { Figures } from '../../core/index.js';
 import type { Goal } from './contract.js';
 import { constraintCount, limitStates } from './limits.js';
+import { thirdNumber } from './third.js';
 
-/** The two numbers of the goal. Impurity is minimised, brightness maximised. */
+/** The numbers of the goal. Impurity is minimised, brightness maximised. */
 export interface Judgement {
   /** +∞ when the candidate is infeasible. */
   readonly impurity: number;
   /** 0 when the candidate is infeasible. */
   readonly brightness: number;
+  /** Third number as it is minimised, see `thirdNumber`; null for a goal of two. +∞ when the candidate is infeasible. */
+  readonly third: number | null;
+}
+
+/** What a search minimises: impurity, −brightness and, where there is one, the third number. */
+export function objectivesOf({ impurity, brightness, third }: Judgement): number[] {
+  return third === null ? [impurity, -brightness] : [impurity, -brightness, third];
 }
 
 /** A judgement with the limits of the goal as constraints. */
@@ -22,7 +30,8 @@ export interface Verdict extends Judgement {
 export function infeasible(goal: Goal): Verdict {
   const constraints = new Array<number>(constraintCount(goal.limits)).fill(Number.POSITIVE_INFINITY);
   const violation = Number.POSITIVE_INFINITY;
-  return { impurity: Number.POSITIVE_INFINITY, brightness: 0, constraints, violation };
+  const third = goal.third === null ? null : Number.POSITIVE_INFINITY;
+  return { impurity: Number.POSITIVE_INFINITY, brightness: 0, third, constraints, violation };
 }
 
 /** Above this estimated error (`accuracy.error_estimate`) the figures are no basis for a decision. */
@@ -32,7 +41,7 @@ const USELESS_ERROR = 1e-2;
 const ROUNDING = 1e-9;
 
 /**
- * The two numbers of the goal: impurity of `collected`, brightness of `signal`; null where one is null, NaN, infinite or
+ * The numbers of the goal: impurity of `collected`, brightness of `signal`; null where one is null, NaN, infinite or
  * unphysical. Means over drift, or the quantiles where the design asks for them.
  */
 function numbersOf(figures: Figures, goal: Goal): Judgement | null {
@@ -44,7 +53,8 @@ function numbersOf(figures: Figures, goal: Goal): Judgement | null {
   if (impurity < 0 || brightness < 0) return null;
   if (goal.impurity === 'multiphoton' && impurity > 1 + ROUNDING) return null;
   if (goal.brightness !== 'mean' && brightness > 1 + ROUNDING) return null;
-  return { impurity, brightness };
+  const third = goal.third && thirdNumber(figures, goal.third.axis);
+  return goal.third !== null && third === null ? null : { impurity, brightness, third };
 }
 
 /**

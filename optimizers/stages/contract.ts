@@ -1,5 +1,8 @@
+import { GRADIENT_COST } from '../local/contract.js';
 import type { ProblemSpec } from '../problem/contract.js';
+import { judge } from '../problem/judge.js';
 import type { Problem } from '../problem/problem.js';
+import { goalWithin } from '../problem/third.js';
 import type { Task, TaskResult } from '../tasks/contract.js';
 import { type JudgedPoint, NearestPoint, PointArchive } from '../tasks/recorder.js';
 import type { Solution } from '../tasks/solve.js';
@@ -20,7 +23,10 @@ export type Plan<T = void> = Generator<Stage, T, readonly TaskResult[]>;
 export class Knowledge {
   readonly spec: ProblemSpec;
   readonly problem: Problem;
-  readonly archive = new PointArchive();
+  /** Non-dominated in every objective of the goal. */
+  readonly archive: PointArchive;
+  /** Bounds of the slices of a front with three objectives, once they are chosen: see `sliceBounds`. */
+  bounds: readonly (number | null)[] | null = null;
   /** The evaluation nearest to the limits of the goal among tasks in which none met them. */
   readonly nearest = new NearestPoint();
   /** Ends of all solves. */
@@ -29,23 +35,78 @@ export class Knowledge {
   islands: (readonly (readonly number[])[])[] = [];
   /** Evaluations spent in finished stages. */
   spent = 0;
+  /** Whether exact derivatives are worth asking for: the problem has them, and solves have had them. */
+  exact: boolean;
+  /** The archive by impurity and brightness alone. */
+  readonly #flat: PointArchive;
   #tasks = 0;
+  #parent: { readonly known: Knowledge; readonly name: string } | null = null;
 
   constructor(spec: ProblemSpec, problem: Problem) {
     this.spec = spec;
     this.problem = problem;
+    this.#flat = new PointArchive(true);
+    this.archive = spec.goal.third === null ? this.#flat : new PointArchive();
+    this.exact = problem.differentiate !== null;
+  }
+
+  /** Evaluations of one iteration of a solve: a value and its derivatives. */
+  get iterationCost(): number {
+    return 1 + (this.exact ? GRADIENT_COST : this.problem.space.dimension);
+  }
+
+  /** Takes in where solves ended. */
+  learn(solutions: readonly Solution[]): void {
+    this.solutions.push(...solutions);
+    if (solutions.length > 0) this.exact &&= solutions.some(({ exact }) => exact);
   }
 
   get left(): number {
     return this.spec.search.evaluations - this.spent;
   }
 
+  /** The members of the archive that none beats in impurity and brightness, by brightness. */
   get front(): JudgedPoint[] {
-    return this.archive.points;
+    return this.#flat.points;
+  }
+
+  /** Takes in what a task found; its evaluations count when its stage is over. */
+  absorb({ id, points, nearest }: TaskResult): void {
+    const { goal } = this.spec;
+    const stage = id.slice(id.indexOf('-') + 1);
+    for (const { values, figures } of points) {
+      const { impurity, brightness, third, violation } = judge(figures, goal);
+      // Tasks know the limits of the whole search only.
+      if (violation === 0) this.add({ values, figures, impurity, brightness, third, stage });
+    }
+    if (nearest !== undefined) this.nearest.offer(nearest, judge(nearest.figures, goal).violation);
+  }
+
+  private add(point: JudgedPoint): void {
+    this.#flat.add(point);
+    if (this.archive !== this.#flat) this.archive.add(point);
+  }
+
+  /** What is known within a slice, for a search of its own on two objectives with `budget` evaluations. */
+  within(bound: number | null, name: string, budget: number, seed: number): Knowledge {
+    const { spec, problem } = this;
+    const goal = goalWithin(spec.goal, bound);
+    const search = { ...spec.search, evaluations: budget, seed };
+    const inner = new Knowledge({ ...spec, goal, search }, problem.withGoal(goal));
+    inner.#parent = { known: this, name };
+    inner.exact = this.exact;
+    for (const point of this.archive.points) {
+      if (judge(point.figures, goal).violation === 0) inner.add({ ...point, third: null });
+    }
+    return inner;
   }
 
   /** A task with the next stable index. */
   task(stage: string, kind: string, budget: number, input: unknown): Task {
+    if (this.#parent !== null) {
+      const { known, name } = this.#parent;
+      return known.task(`${name}/${stage}`, kind, budget, input);
+    }
     const index = this.#tasks++;
     return { id: `${index}-${stage}`, kind, index, budget, input };
   }

@@ -1,15 +1,26 @@
 import { hypervolume } from '../front/hypervolume.js';
 import { atLevel, levelsOf } from '../front/levels.js';
+import { sliceBounds, sliceOf } from '../front/slices.js';
 import type { EvaluatedPoint, Goal } from '../problem/contract.js';
-import type { Judgement } from '../problem/judge.js';
+import { type Judgement, objectivesOf } from '../problem/judge.js';
+import { thirdAxes, turned } from '../problem/third.js';
 import type { JudgedPoint } from '../tasks/recorder.js';
+import type { Solution } from '../tasks/solve.js';
 import type { Knowledge } from './contract.js';
+
+/** A member of the archive. */
+export interface FoundPoint extends EvaluatedPoint {
+  /** Stage that found it first. */
+  readonly stage: string;
+}
 
 export interface FrontLevel {
   /** Brightness asked for. */
   readonly level: number;
-  /** Least impurity with at least that brightness; null when the level is out of reach. */
-  readonly point: EvaluatedPoint | null;
+  /** Bound of the third axis, in the unit of its figure; null for none. */
+  readonly slice: number | null;
+  /** Least impurity with at least that brightness within the slice; null when the level is out of reach. */
+  readonly point: FoundPoint | null;
 }
 
 export interface StageReport {
@@ -24,18 +35,26 @@ export interface SearchOutcome {
   readonly kind: 'finished' | 'interrupted';
   readonly evaluations: number;
   /** Every non-dominated evaluation, sorted by brightness. */
-  readonly archive: readonly EvaluatedPoint[];
+  readonly archive: readonly FoundPoint[];
+  /** Slice after slice, the tightest first; by brightness within each. */
   readonly front: readonly FrontLevel[];
   /** Where no evaluation meets the limits of the goal: the one that comes nearest; null otherwise. */
   readonly nearest: EvaluatedPoint | null;
   /** At `goal.atLeast`; null when no level is set or it is out of reach. */
-  readonly best: EvaluatedPoint | null;
+  readonly best: FoundPoint | null;
   readonly hypervolume: {
     readonly value: number;
-    readonly reference: { readonly impurity: number; readonly brightness: number };
+    readonly reference: {
+      readonly impurity: number;
+      readonly brightness: number;
+      /** In the unit of the figure; null for two objectives. */
+      readonly third: number | null;
+    };
     readonly meaning: string;
   };
   readonly stages: readonly StageReport[];
+  /** Where every solve at a level ended, in the order of the search; empty for methods that make none. */
+  readonly solutions: readonly Solution[];
 }
 
 /** The archive after a stage. */
@@ -46,24 +65,66 @@ export interface Milestone {
   readonly front: readonly Judgement[];
 }
 
-const plain = (point: JudgedPoint | null): EvaluatedPoint | null =>
-  point === null ? null : { values: point.values, figures: point.figures };
+const plain = (point: JudgedPoint | null): FoundPoint | null =>
+  point === null ? null : { values: point.values, figures: point.figures, stage: point.stage };
 
 /**
- * The corner that hypervolumes count from: the lowest level of the front, and the impurity at its highest level that
- * was reached.
+ * The corner that hypervolumes count from: the lowest level of the front, the impurity at its highest level that was
+ * reached, and the largest third number that the front has.
  */
-function referenceOf(goal: Goal, front: readonly JudgedPoint[], levels: readonly number[]): Judgement {
+function referenceOf(
+  goal: Goal,
+  front: readonly JudgedPoint[],
+  chosen: readonly (JudgedPoint | null)[],
+  levels: readonly number[],
+): Judgement {
+  const third = goal.third === null ? null : 0;
   const brightest = front[front.length - 1];
-  if (brightest === undefined) return { impurity: 0, brightness: goal.front.from ?? 0 };
+  if (brightest === undefined) return { impurity: 0, brightness: goal.front.from ?? 0, third };
   const top = atLevel(front, levels[levels.length - 1]) ?? brightest;
-  return { impurity: top.impurity, brightness: levels[0] };
+  const reached = [top, ...chosen.filter((point) => point !== null)];
+  return {
+    impurity: Math.max(...reached.map(({ impurity }) => impurity)),
+    brightness: levels[0],
+    third:
+      third === null ? null : Math.max(...reached.map((point) => point.third ?? Number.NEGATIVE_INFINITY)),
+  };
 }
 
-function volume(front: readonly Judgement[], reference: Judgement): number {
-  const points = front.map(({ impurity, brightness }) => [impurity, -brightness]);
-  return hypervolume(points, [reference.impurity, -reference.brightness]);
+const volume = (points: readonly Judgement[], reference: Judgement): number =>
+  hypervolume(points.map(objectivesOf), objectivesOf(reference));
+
+function meaningOf(goal: Goal, { impurity, brightness }: Judgement, third: number | null): string {
+  const corner = [
+    `collected.${goal.impurity} = ${impurity}`,
+    ...(goal.third === null ? [] : [`${thirdAxes[goal.third.axis].figure} = ${third}`]),
+    `signal.${goal.brightness} = ${brightness}`,
+  ];
+  const what = goal.third === null ? 'area' : 'volume';
+  return `${what} between the front and the corner at ${listed(corner)}, in the units of the figures`;
 }
+
+const listed = (parts: readonly string[]): string => `${parts.slice(0, -1).join(', ')} and ${parts.at(-1)}`;
+
+/** The front slice by slice: the least impurity at each level within each bound. */
+function levelsWithin(
+  known: Knowledge,
+  levels: readonly number[],
+): (FrontLevel & { judged: JudgedPoint | null })[] {
+  const { third } = known.spec.goal;
+  const points = known.archive.points;
+  const bounds = known.bounds ?? sliceBounds(known.spec.goal, points);
+  return bounds.flatMap((slice) => {
+    const front = sliceOf(points, slice === null || third === null ? null : turned(slice, third.axis));
+    return levels.map((level) => {
+      const judged = atLevel(front, level);
+      return { level, slice, judged, point: plain(judged) };
+    });
+  });
+}
+
+const byBrightness = (a: Judgement, b: Judgement): number =>
+  a.brightness - b.brightness || a.impurity - b.impurity;
 
 /** What a search hands over, finished or not. */
 export function outcomeOf(
@@ -74,20 +135,28 @@ export function outcomeOf(
   const { goal } = known.spec;
   const { front } = known;
   const levels = levelsOf(goal.front, front);
-  const reference = referenceOf(goal, front, levels);
+  const chosen = levelsWithin(known, levels);
+  const reference = referenceOf(
+    goal,
+    front,
+    chosen.map(({ judged }) => judged),
+    levels,
+  );
+  const third = goal.third && reference.third !== null ? turned(reference.third, goal.third.axis) : null;
+  const archive = known.archive.points;
   return {
     kind,
     evaluations: known.spent,
-    archive: front.map((point) => ({ values: point.values, figures: point.figures })),
-    front: levels.map((level) => ({ level, point: plain(atLevel(front, level)) })),
+    archive: [...archive]
+      .sort(byBrightness)
+      .map(({ values, figures, stage }) => ({ values, figures, stage })),
+    front: chosen.map(({ level, slice, point }) => ({ level, slice, point })),
     nearest: front.length > 0 ? null : known.nearest.point,
     best: goal.atLeast === null ? null : plain(atLevel(front, goal.atLeast)),
     hypervolume: {
-      value: volume(front, reference),
-      reference,
-      meaning:
-        `area between the front and the corner at collected.${goal.impurity} = ${reference.impurity} and ` +
-        `signal.${goal.brightness} = ${reference.brightness}, in the units of the two figures`,
+      value: volume(archive, reference),
+      reference: { impurity: reference.impurity, brightness: reference.brightness, third },
+      meaning: meaningOf(goal, reference, third),
     },
     stages: milestones.map(({ name, tasks, evaluations, front: then }) => ({
       name,
@@ -95,5 +164,6 @@ export function outcomeOf(
       evaluations,
       hypervolume: volume(then, reference),
     })),
+    solutions: known.solutions,
   };
 }

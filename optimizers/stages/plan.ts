@@ -7,6 +7,7 @@ import { aimAtLevels, fillBetween } from './fill.js';
 import { evenLevels, polishLevels, polishOthers, refine, sweep, tighten } from './polish.js';
 import { race, raceBudget } from './race.js';
 import { single } from './single.js';
+import { slices } from './slices.js';
 
 /** Shares of a round's budget. */
 const SHARES = { explore: 0.2, exploreAfterRace: 0.08, polish: 0.6 };
@@ -79,6 +80,7 @@ export function* plan(known: Knowledge): Plan {
     else yield* samplePoints(known, 'enumerate', all);
     return;
   }
+  if (known.spec.goal.third !== null) return yield* slices(known, plan);
   if (continuous === 1) {
     const lists = categories.reduce((product, count) => product * Math.max(1, count), 1);
     const steps = Math.min(200, Math.floor((0.5 * known.left) / lists));

@@ -15,7 +15,7 @@ const CONTINUE_RADIUS = 0.05;
 const NEIGHBOUR_RADIUS = 0.02;
 
 /** Evaluations a solve may take: some iterations of one value and one gradient each. */
-const allowance = (known: Knowledge, iterations = 16) => iterations * (known.problem.space.dimension + 1);
+const allowance = (known: Knowledge, iterations = 16) => iterations * known.iterationCost;
 /** Iterations of a solve that begins next to its end. */
 const SHORT = 6;
 /** Iterations of a solve that begins on the right branch, perhaps. */
@@ -33,10 +33,10 @@ function* solveAll(
   const affordable = each > 0 ? starts.slice(0, Math.floor(Math.min(budget, known.left) / each)) : [];
   if (affordable.length === 0) return;
   const tasks = affordable.map(({ level, x, radius }) =>
-    known.task(name, 'solve', each, { level, start: x, radius }),
+    known.task(name, 'solve', each, { level, start: x, radius, exact: known.exact }),
   );
   const results = yield { name, tasks };
-  for (const result of results) if (result.summary !== null) known.solutions.push(result.summary as Solution);
+  known.learn(results.flatMap(({ summary }) => (summary === null ? [] : [summary as Solution])));
 }
 
 /** Evenly spaced levels over the range of interest, ends included. */

@@ -38,7 +38,7 @@ const SHORTFALL = 100;
 /** Evaluations of a race for what is left of the budget; 0 where none is worth while. */
 export function raceBudget(known: Knowledge): number {
   const continuous = known.problem.space.categories.filter((count) => count === 0).length;
-  const full = FULL * (known.problem.space.dimension + 1);
+  const full = FULL * known.iterationCost;
   const budget = Math.floor(Math.min(MOST * known.left, Math.max(full, LARGE * known.left)));
   return continuous >= FEWEST_VARIABLES && budget >= LEAST * full ? budget : 0;
 }
@@ -76,7 +76,7 @@ function byMerit(solutions: readonly Solution[], level: number): Solution[] {
  * & Talwalkar, AISTATS 2016) over local solves. For problems whose best branch is one narrow basin among dozens.
  */
 export function* race(known: Knowledge, name: string, budget: number): Plan {
-  const size = known.problem.space.dimension + 1;
+  const size = known.iterationCost;
   const scale = budget / (FULL * size);
   const end = known.spent + budget;
   let starts = yield* look(known, `${name}-look`, Math.floor(scale * LOOK * size));
@@ -88,12 +88,17 @@ export function* race(known: Knowledge, name: string, budget: number): Plan {
     const affordable = Math.floor((end - known.spent) / each);
     const count = Math.min(Math.max(1, Math.round(scale * rung.starts)), affordable, starts.length);
     if (count === 0) return;
-    const tasks = starts
-      .slice(0, count)
-      .map((start) => known.task(`${name}-${i + 1}`, 'solve', each, { level, start, radius: rung.radius }));
+    const tasks = starts.slice(0, count).map((start) =>
+      known.task(`${name}-${i + 1}`, 'solve', each, {
+        level,
+        start,
+        radius: rung.radius,
+        exact: known.exact,
+      }),
+    );
     const results = yield { name: `${name}-${i + 1}`, tasks };
     const fresh = results.flatMap(({ summary }) => (summary === null ? [] : [summary as Solution]));
-    known.solutions.push(...fresh);
+    known.learn(fresh);
     // A restart can lose ground: what was better before stays in the race.
     standing = byMerit([...fresh, ...standing.slice(0, 2)], level);
     starts = standing.map(({ x }) => x);

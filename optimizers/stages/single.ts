@@ -6,6 +6,7 @@ import { type MethodSummary, methodNamed } from '../tasks/method.js';
 import { type Knowledge, type Plan, split } from './contract.js';
 import { scatter } from './explore.js';
 import { evenLevels } from './polish.js';
+import { slices } from './slices.js';
 
 /** Evaluations of one task, so that it ends soon. */
 const CHUNK = 200;
@@ -19,6 +20,7 @@ interface Track {
   readonly setup: Setup;
   readonly replies: Reply[];
   chunk: number;
+  spent: number;
   ended: boolean;
 }
 
@@ -29,13 +31,14 @@ function track(known: Knowledge, level: number | null, budget: number, index: nu
   const member = level === null ? null : (atLevel(known.front, level) ?? known.front[known.front.length - 1]);
   const setup: Setup = {
     space: problem.space,
-    objectives: level === null ? 2 : 1,
+    objectives: level !== null ? 1 : spec.goal.third === null ? 2 : 3,
     constraints: level === null ? limits : traits.constraints ? limits + 1 : 0,
     start: member === null || member === undefined ? [] : [problem.unitOf(member.values)],
     seed: stream(spec.search.seed, index).int(2 ** 32),
     budget,
+    gradient: traits.gradient && traits.constraints && problem.differentiate !== null,
   };
-  return { level, setup, replies: [], chunk: CHUNK, ended: budget === 0 };
+  return { level, setup, replies: [], chunk: CHUNK, spent: 0, ended: budget === 0 };
 }
 
 /** Carries every track on, side by side, until each has ended or spent its budget. */
@@ -44,15 +47,16 @@ function* advance(known: Knowledge, tracks: readonly Track[]): Plan {
   for (let stage = 1; tracks.some(({ ended }) => !ended); stage++) {
     const open = tracks.filter(({ ended }) => !ended);
     const name = `${method}-${stage}`;
-    const tasks = open.map(({ level, setup, replies, chunk }) => {
-      const budget = Math.min(chunk, setup.budget - replies.length);
+    const tasks = open.map(({ level, setup, replies, chunk, spent }) => {
+      const budget = Math.min(chunk, setup.budget - spent);
       return known.task(name, 'method', budget, { method, level, setup, replies: [...replies] });
     });
     const results = yield { name, tasks };
     open.forEach((own, i) => {
-      const { replies, ended } = results[i].summary as MethodSummary;
+      const { replies, ended, spent } = results[i].summary as MethodSummary;
       own.replies.push(...replies);
-      own.ended = ended || own.replies.length >= own.setup.budget;
+      own.spent += spent;
+      own.ended = ended || own.spent >= own.setup.budget;
       // A batch larger than the task: the next one is given room for it.
       if (replies.length === 0) own.chunk *= 2;
     });
@@ -69,6 +73,7 @@ export function* single(known: Knowledge): Plan {
   if (methodNamed(search.method).traits.objectives === 'many') {
     return yield* advance(known, [track(known, null, known.left, 0)]);
   }
+  if (known.spec.goal.third !== null) return yield* slices(known, single);
   yield* scatter(known, 'look', Math.ceil(LOOK * known.left));
   const even = evenLevels(known, Math.min(goal.front.points, MOST_LEVELS));
   const levels = [...new Set([...even, ...(goal.atLeast === null ? [] : [goal.atLeast])])];

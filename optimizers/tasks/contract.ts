@@ -14,6 +14,8 @@ export interface Task {
   readonly budget: number;
   /** What the runner needs besides; plain JSON. */
   readonly input: unknown;
+  /** Works within a slice of a front with three objectives: on two of them, with the bound (null: none) as a limit. */
+  readonly within?: { readonly bound: number | null };
 }
 
 /** What a finished task leaves behind: plain JSON, the unit of the run ledger. */

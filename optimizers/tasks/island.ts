@@ -1,5 +1,6 @@
 import { nsga2, select } from '../global/nsga2.js';
 import { optimize } from '../local/session.js';
+import { objectivesOf } from '../problem/judge.js';
 import { constraintCount } from '../problem/limits.js';
 import type { TaskRunner } from './contract.js';
 
@@ -20,13 +21,15 @@ export interface IslandSummary {
 export const islandTask: TaskRunner = (task, { spec, problem, recorder, seed }): IslandSummary => {
   const { population, start, floor } = task.input as IslandInput;
   const evaluate = (x: readonly number[]) => {
-    const { impurity, brightness, constraints: limits } = recorder.evaluate(x);
+    const candidate = recorder.evaluate(x);
+    const { brightness, constraints: limits } = candidate;
     const constraints = floor === null ? limits : [floor - brightness, ...limits];
-    return { objectives: [impurity, -brightness], constraints };
+    return { objectives: objectivesOf(candidate), constraints };
   };
   const { space } = problem;
   const constraints = constraintCount(spec.goal.limits) + (floor === null ? 0 : 1);
-  const setup = { space, objectives: 2, constraints, start, seed, budget: task.budget };
+  const objectives = spec.goal.third === null ? 2 : 3;
+  const setup = { space, objectives, constraints, start, seed, budget: task.budget };
   const { trace } = optimize(nsga2({ population }), setup, evaluate);
   return { population: select(trace, population).map((member) => member.x) };
 };

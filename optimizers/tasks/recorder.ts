@@ -1,17 +1,30 @@
 import { Archive, lexicographic } from '../front/archive.js';
-import type { EvaluatedPoint } from '../problem/contract.js';
-import type { Judgement } from '../problem/judge.js';
+import { GRADIENT_COST } from '../local/contract.js';
+import type { EvaluatedPoint, Goal } from '../problem/contract.js';
+import type { GradientRows } from '../problem/gradient.js';
+import { type Judgement, judge, objectivesOf } from '../problem/judge.js';
 import type { Candidate, Problem } from '../problem/problem.js';
 
-/** A point of the front with the two numbers of the goal read from its figures. */
-export interface JudgedPoint extends EvaluatedPoint, Judgement {}
+/** A point of the front with the numbers of the goal read from its figures. */
+export interface JudgedPoint extends EvaluatedPoint, Judgement {
+  /** Stage that found it; empty where that is not told apart. */
+  readonly stage: string;
+}
 
-/** Archive of designs for least impurity and most brightness; sorted by brightness, contents free of order. */
+/**
+ * Archive of designs for least impurity, most brightness and, where points have one and it is not to be `flat`, the
+ * least third number; contents free of order. Sorted by impurity, which without a third number is by brightness.
+ */
 export class PointArchive {
   readonly #archive = new Archive<JudgedPoint>((a, b) => lexicographic(a.values, b.values));
+  readonly #flat: boolean;
+
+  constructor(flat = false) {
+    this.#flat = flat;
+  }
 
   add(point: JudgedPoint): boolean {
-    return this.#archive.add([point.impurity, -point.brightness], point);
+    return this.#archive.add(objectivesOf(this.#flat ? { ...point, third: null } : point), point);
   }
 
   get points(): JudgedPoint[] {
@@ -36,25 +49,40 @@ export class NearestPoint {
   }
 }
 
-/** Counts and archives the evaluations of a task. */
+/** Counts and archives the evaluations of a task, and counts its gradients. */
 export class Recorder {
   readonly #problem: Problem;
+  readonly #goal: Goal;
   readonly #archive = new PointArchive();
   readonly #nearest = new NearestPoint();
   #evaluations = 0;
 
-  constructor(problem: Problem) {
+  /** @param goal of the whole search: `problem` may be that of a slice, what is archived is not */
+  constructor(problem: Problem, goal: Goal) {
     this.#problem = problem;
+    this.#goal = goal;
   }
 
   evaluate(x: readonly number[]): Candidate {
     this.#evaluations++;
     const candidate = this.#problem.evaluate(x);
-    const { figures, values, impurity, brightness, violation } = candidate;
+    const { figures, values } = candidate;
     if (figures === null) return candidate;
-    if (violation === 0) this.#archive.add({ values, figures, impurity, brightness });
+    const { impurity, brightness, third, violation } = judge(figures, this.#goal);
+    if (violation === 0) this.#archive.add({ values, figures, impurity, brightness, third, stage: '' });
     else this.#nearest.offer({ values, figures }, violation);
     return candidate;
+  }
+
+  /** Whether exact derivatives can be asked for. */
+  get differentiable(): boolean {
+    return this.#problem.differentiate !== null;
+  }
+
+  /** Exact derivatives at a point that was evaluated, at the cost of two evaluations; null where there are none. */
+  differentiate(x: readonly number[]): GradientRows | null {
+    this.#evaluations += GRADIENT_COST;
+    return this.#problem.differentiate?.(x).gradients ?? null;
   }
 
   get evaluations(): number {

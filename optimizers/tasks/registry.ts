@@ -1,6 +1,7 @@
 import { stream } from '../../core/numerics/stream.js';
 import type { ProblemSpec } from '../problem/contract.js';
 import type { Problem } from '../problem/problem.js';
+import { goalWithin } from '../problem/third.js';
 import type { Task, TaskResult, TaskRunner } from './contract.js';
 import { islandTask } from './island.js';
 import { methodTask } from './method.js';
@@ -26,9 +27,12 @@ export function runTask(spec: ProblemSpec, problem: Problem, task: Task): TaskRe
       `task ${task.id}: unknown kind ${task.kind}; known are ${[...taskRunners.keys()].join(', ')}`,
     );
   }
-  const recorder = new Recorder(problem);
+  const goal = task.within === undefined ? spec.goal : goalWithin(spec.goal, task.within.bound);
+  const own = task.within === undefined ? problem : problem.withGoal(goal);
+  const recorder = new Recorder(own, spec.goal);
   const seed = stream(spec.search.seed, task.index).int(2 ** 32);
-  const summary = task.budget > 0 ? runner(task, { spec, problem, recorder, seed }) : null;
+  const summary =
+    task.budget > 0 ? runner(task, { spec: { ...spec, goal }, problem: own, recorder, seed }) : null;
   if (recorder.evaluations > task.budget) {
     throw new Error(`task ${task.id}: spent ${recorder.evaluations} evaluations of ${task.budget}`);
   }

@@ -1,3 +1,4 @@
+import type { Reply } from '../local/contract.js';
 import { optimize } from '../local/session.js';
 import { sqp } from '../local/sqp.js';
 import { constraintCount } from '../problem/limits.js';
@@ -10,6 +11,8 @@ export interface SolveInput {
   readonly start: readonly number[];
   /** First trust radius, in units of the cube. */
   readonly radius: number;
+  /** Whether exact derivatives are worth asking for. */
+  readonly exact: boolean;
 }
 
 /** Where the solve ended; null when every candidate was infeasible. */
@@ -20,6 +23,8 @@ export interface Solution {
   readonly brightness: number;
   /** Sum of the violated limits of the goal. */
   readonly violation: number;
+  /** Whether exact derivatives were had. */
+  readonly exact: boolean;
 }
 
 /** Distance to keep from the limits of the goal: a design that misses one by rounding is lost. */
@@ -32,16 +37,24 @@ const SHORTFALL = 100;
 const TOLERANCE = 1e-6;
 
 export const solveTask: TaskRunner = (task, { spec, problem, recorder, seed }): Solution | null => {
-  const { level, start, radius } = task.input as SolveInput;
+  const { level, start, radius, exact } = task.input as SolveInput;
   let best: Solution | null = null;
   let scale = 0;
+  let had = false;
   const merit = (s: Solution) =>
     s.impurity / scale + SHORTFALL * (Math.max(0, level - s.brightness) + s.violation);
-  const evaluate = (x: readonly number[]) => {
+  const evaluate = (x: readonly number[], gradient: boolean): Reply => {
+    if (gradient) {
+      const rows = recorder.differentiate(x);
+      had ||= rows !== null;
+      // The brightness is a constraint from below.
+      const gradients = rows?.map((row, i) => (i === 1 ? row.map((d) => -d) : row));
+      return { objectives: [], constraints: [], ...(gradients ? { gradients } : {}) };
+    }
     const { impurity, brightness, constraints, violation } = recorder.evaluate(x);
     if (Number.isFinite(impurity)) {
       scale ||= impurity || 1;
-      const next = { level, x: [...x], impurity, brightness, violation };
+      const next = { level, x: [...x], impurity, brightness, violation, exact };
       if (best === null || merit(next) < merit(best)) best = next;
     }
     return {
@@ -56,7 +69,8 @@ export const solveTask: TaskRunner = (task, { spec, problem, recorder, seed }): 
     start: [start],
     seed,
     budget: task.budget,
+    gradient: exact && recorder.differentiable,
   };
   optimize(sqp({ radius, tolerance: TOLERANCE }), setup, evaluate);
-  return best;
+  return best === null ? null : { ...(best as Solution), exact: had };
 };

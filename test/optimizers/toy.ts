@@ -66,6 +66,7 @@ export const GOAL: Goal = {
   brightness: 'single',
   atLeast: 0.9,
   front: { from: 0.3, to: 0.99, points: 25 },
+  third: null,
   limits: [],
 };
 

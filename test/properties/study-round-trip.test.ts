@@ -110,6 +110,9 @@ const parts = {
       to: nullable(positive.map((x) => x + 1)),
       points: fc.integer({ min: 2, max: 1000 }),
     }),
+    third: nullable(
+      fc.record({ axis: fc.constant('mean' as const), slices: fc.integer({ min: 2, max: 6 }) }),
+    ),
     limits: nullable(positive).map((atMost) =>
       atMost === null ? [] : [{ figure: 'pulse.duration_ps', atMost, atLeast: null }],
     ),

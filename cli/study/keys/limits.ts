@@ -26,6 +26,8 @@ const counts = (basis: string, where: string, names: readonly (keyof typeof COUN
 /** Every figure that can be bounded, by its path in the figures; its unit is that of the figure. */
 const bounded: Readonly<Record<string, LimitSection>> = Object.fromEntries([
   ['pulse.energy_pi_units', limit('fraction', 'pulse energy, over that of a π pulse of the first width')],
+  ['pulse.energy_fj', limit('pulseEnergy', 'pulse energy; needs laser.pi_pulse')],
+  ['pulse.peak_rabi_per_ps', limit('rabi', 'largest Rabi frequency Ω of the pulse (angular)')],
   ['pulse.duration_ps', limit('time', 'duration between the outermost half maxima')],
   ['pulse.bandwidth_ghz', limit('frequency', 'bandwidth between the outermost half maxima')],
   ['collected.leakage', limit('fraction', 'leaked laser photons per pulse')],

@@ -139,6 +139,9 @@ const laser = optionalSection('the laser, for leakage; leave out for none', {
   }),
 });
 
+/** More lines than this cannot be told apart in a picture. */
+const MOST_SLICES = 6;
+
 const goal = section('what is sought', 'empty', {
   impurity: choice('minimised, of what is collected per pulse', ['multiphoton', 'g2'], 'multiphoton'),
   brightness: choice('maximised, of the signal per pulse', ['single', 'any', 'mean'], 'single'),
@@ -147,6 +150,14 @@ const goal = section('what is sought', 'empty', {
     from: optionalQuantity('fraction', 'lowest level; the reachable range unless given', positive),
     to: optionalQuantity('fraction', 'highest level; the reachable range unless given', positive),
     points: integer('number of levels', 2, 1000, 25),
+  }),
+  third: optionalSection('third axis of the front, shown as slices; leave out for none', {
+    axis: choice(
+      'energy: of the pulse, in fJ, minimised (needs laser.pi_pulse); leakage: leaked laser photons per pulse, minimised; mean: ⟨n⟩ of what is collected, maximised',
+      ['energy', 'leakage', 'mean'],
+      null,
+    ),
+    slices: integer('number of fronts, each within a bound of the third axis', 2, MOST_SLICES, 4),
   }),
   limits,
 });

@@ -119,6 +119,28 @@ const limits: Rule = (raw, report) => {
   }
 };
 
+const NEEDS_PI_PULSE = 'laser.pi_pulse with energy and fwhm';
+
+/** Energies in fJ and leaked photons follow from the measured π pulse. */
+const energies: Rule = (raw, report) => {
+  const { laser, goal } = raw;
+  if (laser === undefined || laser?.piPulse === undefined) return;
+  if (laser?.piPulse) return;
+  if (goal?.limits?.['pulse.energyFj']) {
+    report('goal.limits.pulse.energy_fj', `${NEEDS_PI_PULSE}: energies in fJ follow from it`, 'a limit');
+  }
+  const axis = goal?.third?.axis;
+  if (axis === 'energy') report('goal.third.axis', `${NEEDS_PI_PULSE}: energies in fJ follow from it`);
+  if (axis === 'leakage') report('goal.third.axis', `${NEEDS_PI_PULSE}: without one nothing leaks`);
+};
+
+const nothingLeaks: Rule = (raw, report) => {
+  const { laser, goal } = raw;
+  if (goal?.third?.axis !== 'leakage' || laser?.piPulse === null || laser?.rejection !== 0) return;
+  if (raw.pulse?.tones?.length === 1)
+    report('goal.third.axis', 'laser.rejection above 0: without one nothing leaks');
+};
+
 const leakage: Rule = (raw, report) => {
   const { laser } = raw;
   if (laser && typeof laser.rejection === 'number' && laser.rejection > 0 && laser.piPulse === null) {
@@ -142,6 +164,8 @@ const RULES: readonly Rule[] = [
   reach,
   frontOrder,
   limits,
+  energies,
+  nothingLeaks,
   leakage,
   nominalBias,
 ];

@@ -82,8 +82,11 @@ goal:
   brightness: any
   at_least: 0.60
   front: { from: 0.40, to: 0.64, points: 9 }
+  third: { axis: energy, slices: 3 }
   limits:
     pulse.energy_pi_units: { at_most: 12 }
+    pulse.energy_fj: { at_most: 0.15 pJ }
+    pulse.peak_rabi_per_ps: { at_most: 2.5 rad/ps }
     collected.leakage: { at_most: 0.1 % }
     pulse.duration_ps: { at_least: 2 ps, at_most: 30 ps }
 drift:

@@ -42,6 +42,7 @@ const oneOf: Record<Dimension, Record<string, number>> = {
   angle: { deg: Math.PI / 180, rad: 1 },
   area: { pi: Math.PI, rad: 1 },
   rate: { '1/ps': 1, '1/ns': 1e-3, '1/us': 1e-6 },
+  rabi: { '1/ps': 1, 'rad/ps': 1, '1/ns': 1e-3, 'rad/ns': 1e-3 },
   temperature: { K: 1, mK: 1e-3 },
   length: { nm: 1e-3, um: 1 },
   pulseEnergy: { aJ: 1e-3, fJ: 1, pJ: 1e3, nJ: 1e6 },

@@ -1,0 +1,39 @@
+import type { Goal } from '../problem/contract.js';
+import type { Judgement } from '../problem/judge.js';
+import { turned } from '../problem/third.js';
+import { flatFront } from './flat.js';
+import { atLevel, levelsOf } from './levels.js';
+
+/** Digits of a bound: a reader must be able to repeat it, and a design to keep it. */
+const DIGITS = 3;
+
+const rounded = (value: number): number => Number(value.toPrecision(DIGITS));
+
+/** What is left of `points` within a bound of the third axis (minimised; null: none), as a front of two objectives. */
+export function sliceOf<T extends Judgement>(points: readonly T[], bound: number | null): T[] {
+  return flatFront(points.filter(({ third }) => bound === null || (third !== null && third <= bound)));
+}
+
+/**
+ * Bounds of the slices of a front with three objectives, tightest first, in the unit of the figure; the last is null:
+ * no bound. They divide evenly (in ratio, where the axis is positive) the way from the least third number that comes
+ * with a brightness of interest to the most that the front without a bound takes. Fewer where the axis has no room.
+ */
+export function sliceBounds(goal: Goal, points: readonly Judgement[]): (number | null)[] {
+  if (goal.third === null) return [null];
+  const { axis, slices } = goal.third;
+  const open = flatFront(points);
+  if (open.length === 0) return [null];
+  const levels = levelsOf(goal.front, open);
+  const taken = levels.flatMap((level) => atLevel(open, level)?.third ?? []);
+  const bright = points.flatMap(({ brightness, third }) =>
+    brightness >= levels[0] && third !== null ? third : [],
+  );
+  if (taken.length === 0 || bright.length === 0) return [null];
+  const [tight, loose] = [Math.min(...bright), Math.max(...taken)];
+  const at = (share: number) =>
+    tight > 0 ? tight * (loose / tight) ** share : tight + (loose - tight) * share;
+  const inner = Array.from({ length: slices - 1 }, (_, i) => rounded(at((i + 1) / slices)));
+  const distinct = inner.filter((bound, i) => bound > tight && bound < loose && inner.indexOf(bound) === i);
+  return [...distinct.map((bound) => turned(bound, axis)), null];
+}
