@@ -1,7 +1,8 @@
 import { nsga2, select } from '../global/nsga2.js';
-import { optimize } from '../local/session.js';
+import { optimizeInBatches } from '../local/session.js';
 import { objectivesOf } from '../problem/judge.js';
 import { constraintCount } from '../problem/limits.js';
+import type { Candidate } from '../problem/problem.js';
 import type { TaskRunner } from './contract.js';
 
 /** Some generations of NSGA-II. */
@@ -20,8 +21,7 @@ export interface IslandSummary {
 
 export const islandTask: TaskRunner = (task, { spec, problem, recorder, seed }): IslandSummary => {
   const { population, start, floor } = task.input as IslandInput;
-  const evaluate = (x: readonly number[]) => {
-    const candidate = recorder.evaluate(x);
+  const replyOf = (candidate: Candidate) => {
     const { brightness, constraints: limits } = candidate;
     const constraints = floor === null ? limits : [floor - brightness, ...limits];
     return { objectives: objectivesOf(candidate), constraints };
@@ -30,6 +30,8 @@ export const islandTask: TaskRunner = (task, { spec, problem, recorder, seed }):
   const constraints = constraintCount(spec.goal.limits) + (floor === null ? 0 : 1);
   const objectives = spec.goal.third === null ? 2 : 3;
   const setup = { space, objectives, constraints, start, seed, budget: task.budget };
-  const { trace } = optimize(nsga2({ population }), setup, evaluate);
+  const { trace } = optimizeInBatches(nsga2({ population }), setup, (points) =>
+    recorder.evaluateMany(points).map(replyOf),
+  );
   return { population: select(trace, population).map((member) => member.x) };
 };

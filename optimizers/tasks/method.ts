@@ -62,8 +62,7 @@ function gradientsFor(method: Method, level: number | null, rows: GradientRows):
 export const methodTask: TaskRunner = (task, { recorder }): MethodSummary => {
   const { method: name, level, setup, replies } = task.input as MethodInput;
   const method = methodNamed(name);
-  const answer = (x: readonly number[], gradient: boolean): Reply => {
-    if (!gradient) return replyFor(method, level, recorder.evaluate(x));
+  const slopesAt = (x: readonly number[]): Reply => {
     const rows = recorder.differentiate(x);
     const gradients = rows && gradientsFor(method, level, rows);
     return { objectives: [], constraints: [], ...(gradients ? { gradients } : {}) };
@@ -72,7 +71,10 @@ export const methodTask: TaskRunner = (task, { recorder }): MethodSummary => {
   for (let asked = session.ask(); asked.length > 0; asked = session.ask()) {
     // A batch is answered whole or not at all: what is left returns to the stage.
     if (recorder.evaluations + session.cost > task.budget) break;
-    session.tell(asked.map((x) => answer(x, session.gradient)));
+    const answers = session.gradient
+      ? asked.map(slopesAt)
+      : recorder.evaluateMany(asked).map((candidate) => replyFor(method, level, candidate));
+    session.tell(answers);
   }
   const news = session.state().replies.slice(replies.length);
   return { replies: news, ended: session.ask().length === 0, spent: recorder.evaluations };

@@ -64,8 +64,16 @@ export class Recorder {
   }
 
   evaluate(x: readonly number[]): Candidate {
+    return this.#take(this.#problem.evaluate(x));
+  }
+
+  /** The same of a whole batch, in its order. */
+  evaluateMany(points: readonly (readonly number[])[]): Candidate[] {
+    return this.#problem.evaluateMany(points).map((candidate) => this.#take(candidate));
+  }
+
+  #take(candidate: Candidate): Candidate {
     this.#evaluations++;
-    const candidate = this.#problem.evaluate(x);
     const { figures, values } = candidate;
     if (figures === null) return candidate;
     const { impurity, brightness, third, violation } = judge(figures, this.#goal);

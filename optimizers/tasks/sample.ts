@@ -16,8 +16,8 @@ export interface SampleSummary {
 
 export const sampleTask: TaskRunner = (task, { recorder }): SampleSummary => {
   const { points } = task.input as SampleInput;
-  const replies = points.slice(0, task.budget).map((x) => {
-    const { impurity, brightness, constraints } = recorder.evaluate(x);
+  const candidates = recorder.evaluateMany(points.slice(0, task.budget));
+  const replies = candidates.map(({ impurity, brightness, constraints }) => {
     if (!Number.isFinite(impurity)) return { impurity: null, brightness: 0, constraints: [] };
     return { impurity, brightness, constraints };
   });

@@ -1,7 +1,8 @@
-import type { Reply } from '../local/contract.js';
-import { optimize } from '../local/session.js';
+import type { Reply, Trial } from '../local/contract.js';
+import { optimizeInBatches } from '../local/session.js';
 import { sqp } from '../local/sqp.js';
 import { constraintCount } from '../problem/limits.js';
+import type { Candidate } from '../problem/problem.js';
 import type { TaskRunner } from './contract.js';
 
 /** Least impurity at a brightness of at least `level`, from one start. */
@@ -43,15 +44,15 @@ export const solveTask: TaskRunner = (task, { spec, problem, recorder, seed }): 
   let had = false;
   const merit = (s: Solution) =>
     s.impurity / scale + SHORTFALL * (Math.max(0, level - s.brightness) + s.violation);
-  const evaluate = (x: readonly number[], gradient: boolean): Reply => {
-    if (gradient) {
-      const rows = recorder.differentiate(x);
-      had ||= rows !== null;
-      // The brightness is a constraint from below.
-      const gradients = rows?.map((row, i) => (i === 1 ? row.map((d) => -d) : row));
-      return { objectives: [], constraints: [], ...(gradients ? { gradients } : {}) };
-    }
-    const { impurity, brightness, constraints, violation } = recorder.evaluate(x);
+  const slopesAt = (x: Trial): Reply => {
+    const rows = recorder.differentiate(x);
+    had ||= rows !== null;
+    // The brightness is a constraint from below.
+    const gradients = rows?.map((row, i) => (i === 1 ? row.map((d) => -d) : row));
+    return { objectives: [], constraints: [], ...(gradients ? { gradients } : {}) };
+  };
+  const replyOf = (x: Trial, candidate: Candidate): Reply => {
+    const { impurity, brightness, constraints, violation } = candidate;
     if (Number.isFinite(impurity)) {
       scale ||= impurity || 1;
       const next = { level, x: [...x], impurity, brightness, violation, exact };
@@ -71,6 +72,10 @@ export const solveTask: TaskRunner = (task, { spec, problem, recorder, seed }): 
     budget: task.budget,
     gradient: exact && recorder.differentiable,
   };
-  optimize(sqp({ radius, tolerance: TOLERANCE }), setup, evaluate);
+  optimizeInBatches(sqp({ radius, tolerance: TOLERANCE }), setup, (trials, gradient) =>
+    gradient
+      ? trials.map(slopesAt)
+      : recorder.evaluateMany(trials).map((candidate, i) => replyOf(trials[i], candidate)),
+  );
   return best === null ? null : { ...(best as Solution), exact: had };
 };
