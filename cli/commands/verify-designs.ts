@@ -1,14 +1,6 @@
 import { join } from 'node:path';
 import type { Design } from '../../core/index.js';
-import {
-  createProblem,
-  serialPool,
-  type TaskPool,
-  type Verified,
-  type VerifyInput,
-  workerPool,
-} from '../../optimizers/index.js';
-import { evaluateForSearch } from '../../optimizers/workers/evaluate.js';
+import { type FiguresInput, type FiguresResult, runTasks, taskPool } from '../../optimizers/index.js';
 import { progressBar } from '../report/progress.js';
 import { STUDY } from '../run/directory.js';
 import { designKey, type FinishedRun, type QuotedDesign, runFile } from '../run/finished-run.js';
@@ -48,34 +40,6 @@ async function listedDesigns(run: FinishedRun): Promise<Listed[]> {
   );
 }
 
-/** Keeps every worker busy until all are done or the signal is aborted; what is running then is given up. */
-async function verifyAll(
-  pool: TaskPool,
-  designs: readonly Listed[],
-  signal: AbortSignal,
-  onResult: (key: string, result: Verified) => Promise<void>,
-): Promise<void> {
-  let next = 0;
-  const one = async (): Promise<void> => {
-    while (next < designs.length && !signal.aborted) {
-      const index = next++;
-      const { key, design } = designs[index];
-      const input: VerifyInput = { design };
-      const task = { id: key, kind: 'verify', index, budget: 1, input };
-      const { summary } = await pool.run(task);
-      await onResult(key, summary as Verified);
-    }
-  };
-  const stopped = new Promise<void>((resolve) => {
-    if (signal.aborted) resolve();
-    signal.addEventListener('abort', () => resolve(), { once: true });
-  });
-  const running = Promise.all(Array.from({ length: pool.size }, one)).then(() => undefined);
-  await Promise.race([running, stopped]);
-  // The pool is closed next, which rejects what still runs: that is no news.
-  running.catch(() => undefined);
-}
-
 /**
  * Evaluates every design of a run anew at accuracy `verified`, on worker threads, each result on disk before the next.
  * @returns null when the signal was aborted before all were done
@@ -96,12 +60,16 @@ export async function verifyDesigns(
   const done = () => listed.filter(({ key }) => known.has(key)).length;
   const progress = progressBar(context.streams.stderr, 'designs');
   const size = Math.min(workers, missing.length);
-  const pool =
-    size > 1 ? workerPool(study, size) : serialPool(study, createProblem(study, evaluateForSearch));
+  const pool = taskPool(study, size);
+  const tasks = missing.map(({ key, design }, index) => {
+    const input: FiguresInput = { designs: [design], accuracy: 'verified' };
+    return { id: key, kind: 'figures', index, budget: 1, input };
+  });
   const show = () => progress.update({ stage: 'verify', done: done(), total, best: '' });
   try {
     show();
-    await verifyAll(pool, missing, signal, async (key, result) => {
+    await runTasks(pool, tasks, signal, async ({ id: key, summary }) => {
+      const [result] = summary as readonly FiguresResult[];
       await ledger.append({ key, result });
       known.set(key, result);
       show();
@@ -114,6 +82,6 @@ export async function verifyDesigns(
   if (done() < total) return null;
   const levelled = study.parameters.length > 0;
   return listed.map(({ quoted, design, key }) =>
-    verdictOf(quoted, design, known.get(key) as Verified, study.goal, levelled),
+    verdictOf(quoted, design, known.get(key) as FiguresResult, study.goal, levelled),
   );
 }

@@ -1,5 +1,5 @@
 import { type Design, type Figures, figureDifference, phononChoice } from '../../core/index.js';
-import { type Goal, judge, limitStates, type Verified } from '../../optimizers/index.js';
+import { type FiguresResult, type Goal, judge, limitStates } from '../../optimizers/index.js';
 import type { QuotedDesign } from './finished-run.js';
 
 export const VERIFY_FORMAT = 'pulsewright.verify/1';
@@ -73,7 +73,7 @@ function accuracyOf(
 export function verdictOf(
   quoted: QuotedDesign,
   design: Design,
-  result: Verified,
+  result: FiguresResult,
   goal: Goal,
   levelled: boolean,
 ): VerifiedDesign {

@@ -1,6 +1,6 @@
 import { readFile } from 'node:fs/promises';
 import { join } from 'node:path';
-import type { Verified } from '../../optimizers/index.js';
+import type { FiguresResult } from '../../optimizers/index.js';
 import type { FinishedRun } from './finished-run.js';
 import { Ledger } from './ledger.js';
 import { type LedgerHeader, parseLines } from './ledger-format.js';
@@ -13,7 +13,7 @@ const FILE = 'verify.jsonl';
 /** One verified design, by the key of its numbers. */
 export interface VerifyEntry {
   readonly key: string;
-  readonly result: Verified;
+  readonly result: FiguresResult;
 }
 
 function entryOf(value: unknown): VerifyEntry | null {
@@ -32,7 +32,7 @@ const same = (a: LedgerHeader, b: LedgerHeader): boolean =>
  */
 export async function openVerifyLedger(
   run: FinishedRun,
-): Promise<{ ledger: Ledger<VerifyEntry>; known: Map<string, Verified> }> {
+): Promise<{ ledger: Ledger<VerifyEntry>; known: Map<string, FiguresResult> }> {
   const path = join(run.directory, FILE);
   const header = { format: VERIFY_LEDGER_FORMAT, study: run.hash, version: packageVersion(), seed: 0 };
   const bytes = await readFile(path).catch((error: NodeJS.ErrnoException) => {

@@ -3,12 +3,12 @@ import type { ProblemSpec } from '../problem/contract.js';
 import type { Problem } from '../problem/problem.js';
 import { goalWithin } from '../problem/third.js';
 import type { Task, TaskResult, TaskRunner } from './contract.js';
+import { figuresTask } from './figures.js';
 import { islandTask } from './island.js';
 import { methodTask } from './method.js';
 import { Recorder } from './recorder.js';
 import { sampleTask } from './sample.js';
 import { solveTask } from './solve.js';
-import { verifyTask } from './verify.js';
 
 /** Every kind of task, by name. */
 export const taskRunners: ReadonlyMap<string, TaskRunner> = new Map([
@@ -16,7 +16,7 @@ export const taskRunners: ReadonlyMap<string, TaskRunner> = new Map([
   ['island', islandTask],
   ['solve', solveTask],
   ['method', methodTask],
-  ['verify', verifyTask],
+  ['figures', figuresTask],
 ]);
 
 /** Runs a task to its end on this thread. Throws for an unknown kind. */
