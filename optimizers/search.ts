@@ -8,8 +8,8 @@ import { plan } from './stages/plan.js';
 import type { Task, TaskResult } from './tasks/contract.js';
 import type { TaskPool } from './workers/contract.js';
 import { evaluateForSearch, gradientForSearch } from './workers/evaluate.js';
-import { workerPool } from './workers/pool.js';
 import { serialPool } from './workers/serial.js';
+import { taskPool } from './workers/task-pool.js';
 
 export interface SearchProgress {
   readonly stage: string;
@@ -24,9 +24,14 @@ export interface SearchProgress {
 export interface SearchOptions {
   /** Worker threads; 0 or 1 = in this thread. */
   readonly workers: number;
+  /** Runs the tasks in place of threads of the search's own; closed by the search only where it is aborted. */
+  readonly pool?: TaskPool;
   /** Finished tasks of an earlier run, from the ledger, by id. */
   readonly completed: ReadonlyMap<string, TaskResult>;
-  /** Called once per newly finished task, before anything depends on it. */
+  /**
+   * Called once per newly finished task. The search does not wait for it but at its own end, and fails soon after it
+   * does: a task that is lost this way is computed again, with the same result.
+   */
   readonly onTask: (result: TaskResult) => void | Promise<void>;
   readonly onProgress?: (progress: SearchProgress) => void;
   /** Aborted: no task is started any more, running ones are given up, the outcome is `interrupted`. */
@@ -42,7 +47,39 @@ interface Run {
   readonly known: Knowledge;
   readonly pool: TaskPool;
   readonly options: SearchOptions;
+  readonly saves: Saves;
   readonly milestones: Milestone[];
+}
+
+/** Finished tasks on their way to the disk: the search goes on meanwhile. */
+class Saves {
+  readonly #onTask: SearchOptions['onTask'];
+  readonly #pending = new Set<Promise<void>>();
+  #failure: { readonly error: unknown } | null = null;
+
+  constructor(onTask: SearchOptions['onTask']) {
+    this.#onTask = onTask;
+  }
+
+  /** Throws when an earlier one has failed. */
+  add(result: TaskResult): void {
+    this.#check();
+    const save = (async () => this.#onTask(result))().catch((error: unknown) => {
+      this.#failure ??= { error };
+    });
+    this.#pending.add(save);
+    void save.then(() => this.#pending.delete(save));
+  }
+
+  /** Waits for all; throws when one has failed. */
+  async settle(): Promise<void> {
+    await Promise.all(this.#pending);
+    this.#check();
+  }
+
+  #check(): void {
+    if (this.#failure !== null) throw this.#failure.error;
+  }
 }
 
 function bestSoFar(known: Knowledge, results: readonly (TaskResult | null)[]): SearchProgress['best'] {
@@ -64,9 +101,11 @@ function bestSoFar(known: Knowledge, results: readonly (TaskResult | null)[]): S
  * task order whatever the order of their ends; null where an abort came first. Rejects with the first failure.
  */
 async function runStage(run: Run, stage: Stage): Promise<(TaskResult | null)[]> {
-  const { known, pool, options } = run;
+  const { known, pool, options, saves } = run;
   const results = stage.tasks.map((task) => options.completed.get(task.id) ?? null);
-  const waiting = [...results.keys()].filter((i) => results[i] === null);
+  const missing = [...results.keys()].filter((i) => results[i] === null);
+  // The longest first: what is left at the end of a stage is then soon done.
+  const waiting = missing.sort((a, b) => stage.tasks[b].budget - stage.tasks[a].budget);
   const report = () => {
     const done = results.filter((result) => result !== null);
     const evaluations = done.reduce((sum, result) => sum + result.evaluations, known.spent);
@@ -85,7 +124,7 @@ async function runStage(run: Run, stage: Stage): Promise<(TaskResult | null)[]> 
     for (let i = waiting.shift(); i !== undefined && !aborted(); i = waiting.shift()) {
       const result = await pool.run(stage.tasks[i]);
       if (aborted()) return;
-      await options.onTask(result);
+      saves.add(result);
       results[i] = result;
       report();
     }
@@ -147,16 +186,19 @@ export async function search(spec: ProblemSpec, options: SearchOptions): Promise
     options.evaluate === undefined
       ? createProblem(spec, evaluateForSearch, gradientForSearch)
       : createProblem(spec, options.evaluate, options.evaluateGradient ?? null);
-  const threads = options.evaluate === undefined && options.workers > 1;
-  const pool = threads ? workerPool(spec, options.workers) : serialPool(spec, problem);
-  const run: Run = { known: new Knowledge(spec, problem), pool, options, milestones: [] };
+  const own = options.pool === undefined;
+  const here = options.evaluate !== undefined;
+  const pool = options.pool ?? (here ? serialPool(spec, problem) : taskPool(spec, options.workers));
+  const saves = new Saves(options.onTask);
+  const run: Run = { known: new Knowledge(spec, problem), pool, options, saves, milestones: [] };
   const stop = () => void pool.close();
   options.signal?.addEventListener('abort', stop, { once: true });
   try {
     const kind = await carryOut(run);
+    await saves.settle();
     return outcomeOf(kind, run.known, run.milestones);
   } finally {
     options.signal?.removeEventListener('abort', stop);
-    await pool.close();
+    if (own) await pool.close();
   }
 }
