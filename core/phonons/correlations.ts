@@ -1,3 +1,4 @@
+import { Memo } from '../kernels/fast/memo.js';
 import {
   type Bath,
   type ComplexSeries,
@@ -45,29 +46,17 @@ function uniform(end: number, count: number): Float64Array {
   return Float64Array.from({ length: count }, (_, i) => (end * i) / (count - 1));
 }
 
-/** Pure values by content of their arguments; bounded, so that a scan over temperature does not grow without end. */
-class Memo<T> {
-  private readonly known = new Map<string, T>();
-
-  get(parts: readonly (string | number)[], make: () => T): T {
-    const key = parts.join('|');
-    const found = this.known.get(key);
-    if (found !== undefined) return found;
-    const value = make();
-    if (this.known.size >= MOST_ENTRIES) this.known.delete(this.known.keys().next().value as string);
-    this.known.set(key, value);
-    return value;
-  }
-}
-
 const MOST_ENTRIES = 64;
-const content = (bath: Bath): number[] => [bath.coupling, bath.cutoff, bath.temperature];
 
-const memories = new Memo<number>();
+/** A bath as part of a memo's key. */
+export const contentOf = (...parts: readonly (Bath | string | number)[]): string =>
+  parts.map((p) => (typeof p === 'object' ? `${p.coupling}|${p.cutoff}|${p.temperature}` : p)).join('|');
+
+const memories = new Memo<number>(MOST_ENTRIES);
 
 /** Time after which a correlation stays below `level` of its start, ps; at most what the integrals resolve. */
 export function memoryTime(bath: Bath, kind: CorrelationKind, level: number): number {
-  return memories.get([kind, level, ...content(bath)], () => {
+  return memories.get(contentOf(kind, level, bath), () => {
     const times = uniform(longestTime(bath), 800);
     const { re, im } = series(bath, kind, times);
     const start = Math.hypot(re[0], im[0]);
@@ -78,11 +67,11 @@ export function memoryTime(bath: Bath, kind: CorrelationKind, level: number): nu
   });
 }
 
-const condons = new Memo<number>();
+const condons = new Memo<number>(MOST_ENTRIES);
 
 /** ⟨B⟩ = e^{−φ(0)/2}; its square is the weight of the zero-phonon line. */
 export function frankCondon(bath: Bath): number {
-  return condons.get(content(bath), () => Math.exp(-displacement(bath, new Float64Array(1)).re[0] / 2));
+  return condons.get(contentOf(bath), () => Math.exp(-displacement(bath, new Float64Array(1)).re[0] / 2));
 }
 
 interface Entry {
@@ -90,10 +79,10 @@ interface Entry {
   readonly fits: Map<number, ExponentialFit>;
 }
 
-const entries = new Memo<Entry>();
+const entries = new Memo<Entry>(MOST_ENTRIES);
 
 function entryFor(bath: Bath, kind: CorrelationKind): Entry {
-  return entries.get([kind, ...content(bath)], () => {
+  return entries.get(contentOf(kind, bath), () => {
     const reach = Math.max(memoryTime(bath, kind, NEGLIGIBLE), 9 / bath.cutoff);
     const end = Math.min(reach, longestTime(bath) / 1.5);
     const times = uniform(1.5 * end, SAMPLES + (SAMPLES >> 1));

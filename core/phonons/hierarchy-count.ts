@@ -1,16 +1,19 @@
 import { HierarchyBuilder } from '../counting/hierarchy.js';
 import { tailEffects } from '../counting/tail.js';
 import { buildGenerator, type Generator } from '../emitter/generator.js';
-import { type CountRequest, type CountResult, meshFor, PropagationError } from '../kernels/count.js';
+import { type CountRequest, type CountResult, meshFor } from '../kernels/count.js';
+import { Memo } from '../kernels/fast/memo.js';
 import { LinearSystem } from '../kernels/linear-system.js';
-import { type Mesh, propagate, uniformMesh } from '../kernels/mesh.js';
+import { propagate, uniformMesh } from '../kernels/mesh.js';
 import type { Drive } from '../pulse/drive.js';
 import { type Bath, relaxationShift } from './bath.js';
-import { correlationFit } from './correlations.js';
+import { contentOf, correlationFit } from './correlations.js';
 import { requestedHierarchy, withRelaxationEnergy } from './counting.js';
-import { buildTower } from './tower.js';
+import { buildTower, type Tower } from './tower.js';
+import { type TowerLinks, towerLinks } from './tower-links.js';
+import { runTower } from './tower-run.js';
 import { TowerSystem } from './tower-system.js';
-import { filteredTail } from './tower-tail.js';
+import { type TowerEffect, towerEffects } from './tower-tail.js';
 import { trimmed } from './trim.js';
 
 /** Size of a hierarchy: exponentials of the bath (conjugate ones counted apart) and depth. */
@@ -24,53 +27,88 @@ export interface TowerCount extends CountResult {
   readonly operators: number;
 }
 
-/** Local error per step: far below what depth and terms leave. */
-const TOLERANCE = 1e-8;
-/** Step times fastest decay at which the propagator is still stable; its region reaches to about 6.5. */
-const STABLE_PHASE = 6;
 /** Weight of the lightest auxiliary operator that is kept. */
 const LIGHTEST = 3e-4;
 /** Area of the pulse's wings that is left out, rad. */
 const NEGLIGIBLE_AREA = 1e-6;
+/** Local error of the mesh that the drive alone asks for. */
+const TOLERANCE = 1e-8;
 
 /** Counts photons with the hierarchical equations of motion at one size. */
 export function countWithHierarchy(request: CountRequest, bath: Bath, size: TowerSize): TowerCount {
-  const { frame, shift, effort } = request;
+  const { frame, shift } = request;
   const drive = trimmed(request.drive, NEGLIGIBLE_AREA);
   const scheme = withRelaxationEnergy(request.scheme, relaxationShift(bath));
   const fit = correlationFit(bath, 'bath', size.terms);
-  const excitons = Math.max(...scheme.levels.map((l) => l.excitons));
-  const tower = buildTower(fit.poles, size.depth, excitons, LIGHTEST);
+  const { tower, links } = storeys(request, bath, size);
   const generator = buildGenerator(scheme, frame, shift);
   const hierarchy = requestedHierarchy(request, { amplitude: 1, sideband: 0 });
-  const system = new TowerSystem(generator, hierarchy, scheme, tower);
+  const system = new TowerSystem(generator, hierarchy, tower, links);
+  const bare = new LinearSystem(generator, new HierarchyBuilder().build());
   const filterRate = Math.max(0, ...hierarchy.blocks.map((b) => Math.hypot(b.damping, b.rotation)));
-  const base = meshFor(generator, drive, filterRate, { ...effort, tolerance: TOLERANCE });
-  const { mesh, state } = propagateStably(system, drive, base, STABLE_PHASE / (tower.fastest + filterRate));
-  const filtered = (name: string): boolean => /^m\d+$/.test(name);
-  const values = filteredTail(system, generator, state, filtered);
-  const emitted = { ...hierarchy, targets: hierarchy.targets.filter((t) => !filtered(t.name)) };
+  const base = meshFor(generator, drive, filterRate, { ...request.effort, tolerance: TOLERANCE });
+  const run = runTower(system, bare, drive, base, tower.fastest + filterRate);
+  const { state } = run;
+  const values: Record<string, number> = {};
+  for (const { name, factor, lanes } of filterEffects(request, bath, size)) {
+    let sum = 0;
+    for (const { lane, weights } of lanes) {
+      for (let k = 0; k < weights.length; k++) sum += weights[k] * state[k * system.stride + lane];
+    }
+    values[name] = factor * sum;
+  }
+  const emitted = { ...hierarchy, targets: hierarchy.targets.filter((t) => !isFiltered(t.name)) };
   const effects = tailEffects(buildGenerator(request.scheme, frame, shift), emitted);
-  const run = hierarchy.lanes;
   effects.names.forEach((name, i) => {
     let sum = 0;
     for (let c = 0; c < system.size; c++) {
-      for (let lane = 0; lane < run; lane++)
-        sum += effects.rows[i][c * run + lane] * state[system.root(c, lane)];
+      for (let lane = 0; lane < hierarchy.lanes; lane++)
+        sum += effects.rows[i][c * hierarchy.lanes + lane] * state[system.root(c, lane)];
     }
     values[name] = sum;
   });
   return {
     values,
     populations: decayed(system, generator, state, endOf(request.drive) - endOf(drive)),
-    steps: mesh.segments.length,
-    localErrors: base.localErrors,
+    steps: run.steps,
+    localErrors: run.localErrors,
     fitError: fit.error,
     operators: tower.operators,
   };
 }
 
+const isFiltered = (name: string): boolean => /^m\d+$/.test(name);
 const endOf = (drive: Drive): number => drive.breakpoints[drive.breakpoints.length - 1];
+
+const towers = new Memo<{ readonly tower: Tower; readonly links: TowerLinks }>(16);
+
+/** The auxiliary operators of a scheme in a bath, and how they are linked. */
+function storeys({ scheme }: CountRequest, bath: Bath, size: TowerSize): { tower: Tower; links: TowerLinks } {
+  const excitons = scheme.levels.map((l) => l.excitons);
+  return towers.get(contentOf(bath, size.terms, size.depth, ...excitons), () => {
+    const fit = correlationFit(bath, 'bath', size.terms);
+    const tower = buildTower(fit.poles, size.depth, Math.max(...excitons), LIGHTEST);
+    return { tower, links: towerLinks(scheme, tower) };
+  });
+}
+
+const tails = new Memo<readonly TowerEffect[]>(8);
+
+/** The filtered moments as functionals of the state after the drive, solved in the frame of the filter: the same for all pulses. */
+function filterEffects(request: CountRequest, bath: Bath, size: TowerSize): readonly TowerEffect[] {
+  const { filter, scheme, dipoles, frame, shift } = request;
+  if (!filter) return [];
+  const center = frame + filter.center - shift;
+  const collected = dipoles.map(({ re, im }) => [...re, ...im].join());
+  const key = [JSON.stringify(scheme), ...collected, filter.kappa, center, filter.order];
+  return tails.get(contentOf(...key, bath, size.terms, size.depth), () => {
+    const { tower, links } = storeys(request, bath, size);
+    const raised = withRelaxationEnergy(scheme, relaxationShift(bath));
+    const still = { ...request, filter: { ...filter, center: 0 } };
+    const hierarchy = requestedHierarchy(still, { amplitude: 1, sideband: 0 });
+    return towerEffects(buildGenerator(raised, center, 0), hierarchy, tower, links, isFiltered);
+  });
+}
 
 /** Populations a time (ps) later without drive: they decay as without a bath. */
 function decayed(system: TowerSystem, generator: Generator, state: Float64Array, time: number): number[] {
@@ -92,43 +130,4 @@ function decayed(system: TowerSystem, generator: Generator, state: Float64Array,
     uniformMesh(silent, 4),
   );
   return levels.map((i) => later[i]);
-}
-
-/** Steps no longer than `longest`; shorter ones when the state nevertheless grows, as a density operator never does. */
-function propagateStably(
-  system: TowerSystem,
-  drive: Drive,
-  base: Mesh,
-  longest: number,
-): { mesh: Mesh; state: Float64Array } {
-  for (let h = longest; h > longest / 10; h /= 1.5) {
-    const mesh = shortenSteps(base, h);
-    const state = propagate(system, drive, mesh);
-    let trace = 0;
-    let largest = 0;
-    for (let i = 0; i < Math.sqrt(system.size); i++) {
-      const p = state[system.root(i, 0)];
-      trace += p;
-      largest = Math.max(largest, Math.abs(p));
-    }
-    if (Math.abs(trace - 1) < 1e-6 && largest < 1.5) return { mesh, state };
-  }
-  throw new PropagationError(
-    'the phonon hierarchy grows without bound: its depth does not suffice for so strong a coupling or so high a temperature; a second-order phonon method helps',
-  );
-}
-
-function shortenSteps(mesh: Mesh, longest: number): Mesh {
-  const times: number[] = [mesh.times[0]];
-  const segments: number[] = [];
-  for (let k = 0; k < mesh.segments.length; k++) {
-    const a = mesh.times[k];
-    const b = mesh.times[k + 1];
-    const pieces = Math.max(1, Math.ceil((b - a) / longest));
-    for (let p = 1; p <= pieces; p++) {
-      times.push(p === pieces ? b : a + ((b - a) * p) / pieces);
-      segments.push(mesh.segments[k]);
-    }
-  }
-  return { ...mesh, times: Float64Array.from(times), segments: Int32Array.from(segments) };
 }

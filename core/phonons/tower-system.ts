@@ -1,70 +1,54 @@
 import type { Hierarchy } from '../counting/hierarchy.js';
-import type { Scheme } from '../emitter/contract.js';
 import type { Generator } from '../emitter/generator.js';
-import { addTransfer, combine, commutatorMap, multiply, superoperator, zero } from '../emitter/operators.js';
-import { type Entries, type LinearFlow, mergeGenerator } from '../kernels/linear-system.js';
+import { type Entries, mergeGenerator } from '../kernels/linear-system.js';
+import type { ExponentialFlow } from './exponential-step.js';
 import type { Tower } from './tower.js';
-
-/** Lanes that are summed together in registers. */
-const GROUP = 8;
-
-interface Link {
-  readonly row: number;
-  readonly col: number;
-  readonly from: number;
-  readonly to: number;
-  readonly factor: number;
-}
+import { GROUP, roomFor, type TowerKernel, type TowerMatrices, towerKernel } from './tower-kernel.js';
+import type { TowerLinks } from './tower-links.js';
 
 /**
  * Every operator of the counting hierarchy as a tower of auxiliary operators: decay, drive and counting act on each storey
- * alike. State layout [(coordinate·storeys + storey)·stride + lane]: a generator entry serves all storeys and lanes in one
- * row. Links between storeys are kept per target, so that a group of lanes is summed in registers; `stride` is the number
- * of lanes rounded up to whole groups.
+ * alike. State layout [(storey·coordinates + coordinate)·stride + lane]: links between storeys are kept per target, so
+ * that a group of lanes is summed in registers; `stride` is the number of lanes rounded up to whole groups. A system holds
+ * until the next one is made (tower-kernel.ts).
  */
-export class TowerSystem implements LinearFlow {
+export class TowerSystem implements ExponentialFlow {
   readonly length: number;
   readonly lanes: number;
   readonly size: number;
-  private readonly entries: Entries;
-  private readonly values: Float64Array;
-  /** Generator entries of row r are rowStart[r] … rowStart[r+1]−1. */
-  private readonly rowStart: Int32Array;
-  /** Lanes padded to a multiple of GROUP. */
   readonly stride: number;
-  /** Links by target: those of target t are first[t] … first[t+1]−1. */
-  private readonly first: Int32Array;
-  private readonly sources: Int32Array;
-  private readonly factors: Float64Array;
-  private readonly counting: StoreyCoupling;
+  private readonly entries: Entries;
+  private readonly kernel: TowerKernel;
+  private readonly matrices: TowerMatrices;
+  private readonly copies: readonly Float64Array[];
 
   constructor(
     generator: Generator,
     readonly hierarchy: Hierarchy,
-    scheme: Scheme,
     readonly tower: Tower,
+    links: TowerLinks,
+    kernelFor: (bytes: number) => TowerKernel = towerKernel,
   ) {
     this.size = generator.levels ** 2;
     this.lanes = hierarchy.lanes;
     this.stride = GROUP * Math.ceil(this.lanes / GROUP);
     this.length = this.size * tower.lanes * this.stride;
     this.entries = mergeGenerator(generator);
-    this.values = new Float64Array(this.entries.row.length);
-    this.rowStart = new Int32Array(this.size + 1);
-    for (const r of this.entries.row) this.rowStart[r + 1] += 1;
-    for (let r = 0; r < this.size; r++) this.rowStart[r + 1] += this.rowStart[r];
-    this.counting = couplingWithinStorey(hierarchy, this.size, this.stride);
-    const links = towerLinks(scheme, tower);
-    const targets = this.size * tower.lanes;
-    this.first = new Int32Array(targets + 1);
-    for (const l of links) this.first[l.to * this.size + l.row + 1] += 1;
-    for (let t = 0; t < targets; t++) this.first[t + 1] += this.first[t];
-    this.sources = Int32Array.from(links, (l) => l.from * this.size + l.col);
-    this.factors = Float64Array.from(links, (l) => l.factor);
+    const { kernel, matrices } = this.layOut(links, kernelFor);
+    this.kernel = kernel;
+    this.matrices = matrices;
+    this.copies = [0, 1, 2].map(() => kernel.floats(this.length));
+    kernel.rewind();
   }
 
+  vector(): Float64Array {
+    return this.kernel.floats(this.length);
+  }
+
+  /** The start of a propagation; vectors of an earlier one are over. */
   initial(): Float64Array {
-    const y = new Float64Array(this.length);
+    this.kernel.rewind();
+    const y = this.vector();
     for (const block of this.hierarchy.seeded) y[this.hierarchy.blocks[block].lane] = 1;
     return y;
   }
@@ -74,116 +58,85 @@ export class TowerSystem implements LinearFlow {
     return coordinate * this.stride + lane;
   }
 
+  /** For arrays from elsewhere, by way of copies. */
   derivative(drive: Float64Array, y: Float64Array, dy: Float64Array): void {
+    const [from, to, unused] = this.copies;
+    from.set(y);
+    this.setDrive(drive);
+    this.addTerm(from, to, 1, unused);
+    dy.set(to);
+  }
+
+  setDrive(drive: Float64Array): void {
     const { parts, width } = this.entries;
-    const { values } = this;
+    const { values } = this.matrices;
     for (let k = 0; k < values.length; k++) {
       let v = parts[k * width];
       for (let p = 1; p < width; p++) v += parts[k * width + p] * drive[p - 1];
       values[k] = v;
     }
-    this.acrossStoreys(y, dy);
-    this.applyCounting(y, dy);
   }
 
-  /**
-   * One lane without drive and counting: the tower of a single operator under decay, bath and an extra damping (1/ps).
-   * Layout [storey·coordinates + coordinate].
-   */
-  bathAndDecay(y: Float64Array, dy: Float64Array, damping: number): void {
-    this.bathOnLane(y, dy, damping);
-    const { row, col, parts, width } = this.entries;
-    const { size } = this;
-    for (let base = 0; base < this.tower.lanes * size; base += size) {
-      for (let k = 0; k < row.length; k++) dy[base + row[k]] += parts[k * width] * y[base + col[k]];
-    }
+  addTerm(y: Float64Array, term: Float64Array, factor: number, sum: Float64Array): void {
+    this.kernel.addTerm(this.matrices, y, term, factor, sum);
   }
 
-  /** dy = links and decay of the storeys, for one lane. */
-  private bathOnLane(y: Float64Array, dy: Float64Array, extra: number): void {
-    const { first, sources, factors, size } = this;
-    const { damping } = this.tower;
-    for (let t = 0; t < first.length - 1; t++) {
-      let sum = -(damping[Math.floor(t / size)] + extra) * y[t];
-      for (let k = first[t]; k < first[t + 1]; k++) sum += factors[k] * y[sources[k]];
-      dy[t] = sum;
-    }
-  }
-
-  /** dy = bath, decay of the storeys and generator, for all lanes, a group at a time. */
-  private acrossStoreys(y: Float64Array, dy: Float64Array): void {
-    const { first, sources, factors, size, stride, values, rowStart } = this;
-    const { col } = this.entries;
-    const { damping } = this.tower;
-    for (let t = 0; t < first.length - 1; t++) {
-      const storey = Math.floor(t / size);
-      const d = -damping[storey];
-      const begin = first[t];
-      const end = first[t + 1];
-      const own = storey * size;
-      const ownBegin = rowStart[t - own];
-      const ownEnd = rowStart[t - own + 1];
-      for (let g = 0; g < stride; g += GROUP) {
-        const at = t * stride + g;
-        let a0 = d * y[at];
-        let a1 = d * y[at + 1];
-        let a2 = d * y[at + 2];
-        let a3 = d * y[at + 3];
-        let a4 = d * y[at + 4];
-        let a5 = d * y[at + 5];
-        let a6 = d * y[at + 6];
-        let a7 = d * y[at + 7];
-        for (let k = begin; k < end; k++) {
-          const f = factors[k];
-          const from = sources[k] * stride + g;
-          a0 += f * y[from];
-          a1 += f * y[from + 1];
-          a2 += f * y[from + 2];
-          a3 += f * y[from + 3];
-          a4 += f * y[from + 4];
-          a5 += f * y[from + 5];
-          a6 += f * y[from + 6];
-          a7 += f * y[from + 7];
-        }
-        for (let k = ownBegin; k < ownEnd; k++) {
-          const f = values[k];
-          const from = (own + col[k]) * stride + g;
-          a0 += f * y[from];
-          a1 += f * y[from + 1];
-          a2 += f * y[from + 2];
-          a3 += f * y[from + 3];
-          a4 += f * y[from + 4];
-          a5 += f * y[from + 5];
-          a6 += f * y[from + 6];
-          a7 += f * y[from + 7];
-        }
-        dy[at] = a0;
-        dy[at + 1] = a1;
-        dy[at + 2] = a2;
-        dy[at + 3] = a3;
-        dy[at + 4] = a4;
-        dy[at + 5] = a5;
-        dy[at + 6] = a6;
-        dy[at + 7] = a7;
-      }
-    }
-  }
-
-  /** Counting, damping and rotation of blocks, the same in every storey. */
-  private applyCounting(y: Float64Array, dy: Float64Array): void {
-    const { target, source, factor } = this.counting;
-    const storey = this.size * this.stride;
-    for (let shift = 0; shift < this.length; shift += storey) {
-      for (let k = 0; k < factor.length; k++) dy[target[k] + shift] += factor[k] * y[source[k] + shift];
-    }
+  /** Places all matrices in a kernel's room, offsets in bytes, with room left for the vectors of a propagation. */
+  private layOut(
+    links: TowerLinks,
+    kernelFor: (bytes: number) => TowerKernel,
+  ): { kernel: TowerKernel; matrices: TowerMatrices } {
+    const { size, entries, tower, hierarchy } = this;
+    const stride = 8 * this.stride;
+    const rowStart = new Int32Array(size + 1);
+    for (const r of entries.row) rowStart[r + 1] += 1;
+    for (let r = 0; r < size; r++) rowStart[r + 1] += rowStart[r];
+    const counting = couplingWithinStorey(hierarchy, size, this.stride);
+    const numbers =
+      VECTORS * this.length +
+      tower.lanes +
+      links.factors.length +
+      entries.row.length +
+      counting.factors.length;
+    const wholes =
+      links.first.length +
+      links.sources.length +
+      rowStart.length +
+      entries.col.length +
+      3 * counting.factors.length +
+      1;
+    const kernel = kernelFor(roomFor(numbers, wholes, VECTORS + 12));
+    return {
+      kernel,
+      matrices: {
+        storeys: tower.lanes,
+        size,
+        stride,
+        damping: kernel.floats(tower.damping),
+        first: kernel.ints(links.first),
+        sources: kernel.ints(links.sources.map((s) => s * stride)),
+        factors: kernel.floats(links.factors),
+        rowStart: kernel.ints(rowStart),
+        columns: kernel.ints(entries.col.map((c) => c * stride)),
+        values: kernel.floats(entries.row.length),
+        countTargets: kernel.ints(counting.targets),
+        countFirst: kernel.ints(counting.first),
+        countSources: kernel.ints(counting.sources),
+        countFactors: kernel.floats(counting.factors),
+      },
+    };
   }
 }
 
-/** dy[target] += factor · y[source] inside one storey, as offsets. */
+/** Vectors of a propagation: the state, two terms, and the copies for arrays from elsewhere. */
+const VECTORS = 6;
+
+/** What feeds what inside one storey, by target, as byte offsets. */
 interface StoreyCoupling {
-  readonly target: Int32Array;
-  readonly source: Int32Array;
-  readonly factor: Float64Array;
+  readonly targets: Int32Array;
+  readonly first: Int32Array;
+  readonly sources: Int32Array;
+  readonly factors: Float64Array;
 }
 
 function couplingWithinStorey(hierarchy: Hierarchy, size: number, stride: number): StoreyCoupling {
@@ -213,54 +166,13 @@ function couplingWithinStorey(hierarchy: Hierarchy, size: number, stride: number
       add(r, r, b.lane, b.lane + 1, -b.rotation);
     }
   }
-  const sorted = [...found.entries()].filter(([, f]) => f !== 0).sort((a, b) => a[0] - b[0]);
-  // Sums into one target are spread out: one right after the other each would wait for the store before it.
-  const rank = new Map<number, number>();
-  const entries = sorted
-    .map((entry) => {
-      const target = Math.floor(entry[0] / length);
-      const turn = rank.get(target) ?? 0;
-      rank.set(target, turn + 1);
-      return { entry, turn };
-    })
-    .sort((a, b) => a.turn - b.turn || a.entry[0] - b.entry[0])
-    .map(({ entry }) => entry);
+  const entries = [...found].filter(([, factor]) => factor !== 0).sort((a, b) => a[0] - b[0]);
+  const rows = entries.map(([key]) => Math.floor(key / length));
+  const starts = rows.flatMap((row, k) => (row === rows[k - 1] ? [] : [k]));
   return {
-    target: Int32Array.from(entries, ([key]) => Math.floor(key / length)),
-    source: Int32Array.from(entries, ([key]) => key % length),
-    factor: Float64Array.from(entries, ([, factor]) => factor),
+    targets: Int32Array.from(starts, (k) => 8 * rows[k]),
+    first: Int32Array.of(...starts, entries.length),
+    sources: Int32Array.from(entries, ([key]) => 8 * (key % length)),
+    factors: Float64Array.from(entries, ([, factor]) => factor),
   };
-}
-
-/** Links between storeys written out per coordinate, and the turning of X into Y within a storey. */
-export function towerLinks(scheme: Scheme, tower: Tower): Link[] {
-  const n = scheme.levels.length;
-  const s = zero(n);
-  scheme.levels.forEach((level, i) => {
-    addTransfer(s, i, i, level.excitons);
-  });
-  const commutator = commutatorMap(s);
-  const anticommutator = superoperator(n, (x) => combine(multiply(s, x), 0.5, 0, multiply(x, s), 0.5, 0));
-  const links: Link[] = [];
-  for (const link of tower.links) {
-    for (const [m, factor] of [
-      [commutator, link.commutator],
-      [anticommutator, link.anticommutator],
-    ] as const) {
-      if (factor === 0) continue;
-      for (let k = 0; k < m.value.length; k++) {
-        links.push({
-          row: m.row[k],
-          col: m.col[k],
-          from: link.from,
-          to: link.to,
-          factor: factor * m.value[k],
-        });
-      }
-    }
-  }
-  for (const { from, to, factor } of tower.turns) {
-    for (let r = 0; r < n * n; r++) links.push({ row: r, col: r, from, to, factor });
-  }
-  return links.sort((a, b) => a.to - b.to || a.row - b.row || a.from - b.from || a.col - b.col);
 }

@@ -1,104 +1,124 @@
+import type { Hierarchy } from '../counting/hierarchy.js';
+import { reverseOrder } from '../counting/tail.js';
 import type { Generator } from '../emitter/generator.js';
-import { toDense } from '../emitter/operators.js';
 import { gmres } from './gmres.js';
 import type { Tower } from './tower.js';
-import type { TowerSystem } from './tower-system.js';
+import type { TowerLinks } from './tower-links.js';
+import { TowerPreconditioner } from './tower-preconditioner.js';
 
 const TOLERANCE = 1e-10;
 const MOST_ITERATIONS = 400;
 
-/**
- * The filtered moments after the drive. With a constant generator every block of the hierarchy, tower and all, enters
- * only through its time integral, X̄ = −A⁻¹(X + sources), which is solved from the sources onwards. The emitted light
- * needs no such solve: elements between levels of equal exciton number do not feel the bath.
- * @returns target values by name
- */
-export function filteredTail(
-  system: TowerSystem,
-  generator: Generator,
-  state: Float64Array,
-  wanted: (name: string) => boolean,
-): Record<string, number> {
-  const solver = new TowerTail(system, generator, state);
-  const values: Record<string, number> = {};
-  for (const target of system.hierarchy.targets) {
-    if (wanted(target.name)) values[target.name] = target.factor * solver.finalTrace(target.block);
-  }
-  return values;
+/** A figure as a linear functional of the state at the end of the drive. */
+export interface TowerEffect {
+  readonly name: string;
+  readonly factor: number;
+  /** Per lane that counts: weights, [storey·coordinates + coordinate]. */
+  readonly lanes: readonly { readonly lane: number; readonly weights: Float64Array }[];
 }
 
+/**
+ * The filtered moments after the drive, as functionals of all storeys: with a constant generator A the functional e obeys
+ * eA = 0, solved block by block from the target backwards as for bare levels (counting/tail.ts). It depends on the
+ * emitter, the filter and the bath, not on the pulse. Emitted light needs no such solve: elements between levels of equal
+ * exciton number do not feel the bath.
+ */
+export function towerEffects(
+  generator: Generator,
+  hierarchy: Hierarchy,
+  tower: Tower,
+  links: TowerLinks,
+  wanted: (name: string) => boolean,
+): TowerEffect[] {
+  const solver = new TowerTail(generator, hierarchy, tower, links);
+  return hierarchy.targets
+    .filter(({ name }) => wanted(name))
+    .map(({ name, block, factor }) => ({ name, factor, lanes: solver.effect(block) }));
+}
+
+type Effects = (Float64Array | null)[];
+
 class TowerTail {
-  private readonly tower: Tower;
+  private readonly size: number;
   private readonly half: number;
-  private readonly owner: number[] = [];
-  /** Time integral per lane of the hierarchy, [storey·coordinates + coordinate]. */
-  private readonly integrals = new Map<number, Float64Array>();
-  private readonly dense: Float64Array;
-  private readonly stable: boolean[];
+  private readonly order: readonly number[];
+  /** Coordinates of the root that never decay; given, not solved for, in undamped blocks. */
+  private readonly stable: readonly number[];
 
   constructor(
-    private readonly system: TowerSystem,
     private readonly generator: Generator,
-    private readonly state: Float64Array,
+    private readonly hierarchy: Hierarchy,
+    private readonly tower: Tower,
+    private readonly links: TowerLinks,
   ) {
-    this.tower = system.tower;
-    this.half = system.size * this.tower.lanes;
-    system.hierarchy.blocks.forEach((b, i) => {
-      this.owner[b.lane] = i;
-      if (!b.hermitian) this.owner[b.lane + 1] = i;
-    });
-    this.dense = toDense(generator.constant);
-    this.stable = Array.from({ length: this.half }, (_, k) => k < system.size && generator.stable[k]);
+    this.size = generator.levels ** 2;
+    this.half = this.size * tower.lanes;
+    this.order = reverseOrder(hierarchy);
+    this.stable = generator.stable.flatMap((s, k) => (s ? [k] : []));
   }
 
-  finalTrace(block: number): number {
-    const { lane } = this.system.hierarchy.blocks[block];
-    const source = this.inflow(lane);
-    let sum = 0;
-    for (let i = 0; i < this.generator.levels; i++) {
-      sum += this.state[this.system.root(i, lane)] + source[i];
+  effect(target: number): TowerEffect['lanes'] {
+    const effects: Effects = new Array(this.hierarchy.lanes).fill(null);
+    for (const block of this.order) {
+      const { lane, hermitian } = this.hierarchy.blocks[block];
+      const lanes = hermitian ? [lane] : [lane, lane + 1];
+      const inflow = lanes.map((l) => this.inflow(l, effects));
+      if (block === target || inflow.some((v) => v !== null)) {
+        this.solve(block, block === target, inflow, effects);
+      }
     }
-    return sum;
+    return effects.flatMap((weights, lane) => (weights === null ? [] : [{ lane, weights }]));
   }
 
-  /** Σ over sources of a lane: factor · matrix · integral. */
-  private inflow(lane: number): Float64Array {
-    const { hierarchy, size } = this.system;
-    const out = new Float64Array(this.half);
-    for (const c of hierarchy.couplings) {
-      if (c.to !== lane || c.from === lane) continue;
-      const x = this.integral(c.from);
-      if (c.matrix < 0) {
-        for (let k = 0; k < out.length; k++) out[k] += c.factor * x[k];
+  /** Σ over what a lane feeds: factor · effect · matrix, as a row; null when it feeds nothing that counts. */
+  private inflow(lane: number, effects: Effects): Float64Array | null {
+    const { half, size } = this;
+    let out: Float64Array | null = null;
+    for (const { matrix, factor, from, to } of this.hierarchy.couplings) {
+      const e = from === lane && to !== lane ? effects[to] : null;
+      if (e === null) continue;
+      out ??= new Float64Array(half);
+      if (matrix < 0) {
+        for (let k = 0; k < half; k++) out[k] += factor * e[k];
         continue;
       }
-      const m = hierarchy.matrices[c.matrix];
-      for (let base = 0; base < out.length; base += size) {
-        for (let k = 0; k < m.value.length; k++) {
-          out[base + m.row[k]] += c.factor * m.value[k] * x[base + m.col[k]];
-        }
+      const { row, col, value } = this.hierarchy.matrices[matrix];
+      for (let base = 0; base < half; base += size) {
+        for (let k = 0; k < value.length; k++) out[base + col[k]] += factor * value[k] * e[base + row[k]];
       }
     }
     return out;
   }
 
-  private integral(lane: number): Float64Array {
-    const known = this.integrals.get(lane);
-    if (known) return known;
-    const block = this.system.hierarchy.blocks[this.owner[lane]];
-    const halves = block.hermitian ? 1 : 2;
-    const undamped = block.damping === 0 && block.rotation === 0;
-    const rhs = new Float64Array(halves * this.half);
+  private solve(
+    block: number,
+    target: boolean,
+    inflow: readonly (Float64Array | null)[],
+    effects: Effects,
+  ): void {
+    const { half } = this;
+    const { lane, hermitian, damping, rotation } = this.hierarchy.blocks[block];
+    const halves = hermitian ? 1 : 2;
+    const fixed = damping === 0 && rotation === 0 ? this.stable : [];
+    const given = new Float64Array(halves * half);
+    if (target) for (let i = 0; i < this.generator.levels; i++) if (fixed.includes(i)) given[i] = 1;
+    const rhs = new Float64Array(halves * half);
+    this.apply(given, rhs, halves, damping, rotation);
     for (let h = 0; h < halves; h++) {
-      const source = this.inflow(block.lane + h);
-      for (let k = 0; k < this.half; k++) {
-        if (undamped && this.stable[k]) continue;
-        rhs[h * this.half + k] = -source[k] - this.state[k * this.system.stride + block.lane + h];
-      }
+      const source = inflow[h];
+      for (let k = 0; k < half; k++) rhs[h * half + k] = -rhs[h * half + k] - (source?.[k] ?? 0);
     }
+    clear(rhs, fixed, halves, half);
+    const preconditioner = new TowerPreconditioner(this.generator, this.tower, halves, damping, rotation);
     const outcome = gmres(
-      (v, out) => this.apply(v, out, halves, block.damping, block.rotation, undamped),
-      (v, out) => this.precondition(v, out, halves, block.damping, block.rotation, undamped),
+      (v, out) => {
+        this.apply(v, out, halves, damping, rotation);
+        clear(out, fixed, halves, half);
+      },
+      (v, out) => {
+        preconditioner.apply(v, out);
+        clear(out, fixed, halves, half);
+      },
       rhs,
       TOLERANCE,
       MOST_ITERATIONS,
@@ -109,110 +129,38 @@ class TowerTail {
       );
     }
     for (let h = 0; h < halves; h++) {
-      this.integrals.set(block.lane + h, outcome.x.subarray(h * this.half, (h + 1) * this.half));
+      const weights = outcome.x.slice(h * half, (h + 1) * half);
+      for (const k of fixed) weights[k] = given[h * half + k];
+      if (weights.some((w) => w !== 0)) effects[lane + h] = weights;
     }
-    return this.integrals.get(lane) as Float64Array;
   }
 
-  private apply(
-    v: Float64Array,
-    out: Float64Array,
-    halves: number,
-    damping: number,
-    rotation: number,
-    undamped: boolean,
-  ): void {
-    const n = this.half;
-    for (let h = 0; h < halves; h++) {
-      this.system.bathAndDecay(v.subarray(h * n, (h + 1) * n), out.subarray(h * n, (h + 1) * n), damping);
-    }
-    if (halves === 2 && rotation !== 0) {
-      for (let k = 0; k < n; k++) {
-        out[k] += rotation * v[n + k];
-        out[n + k] -= rotation * v[k];
+  /** out = v A for one block: bath, decay of emitter and storeys, and the block's own damping and rotation. */
+  private apply(v: Float64Array, out: Float64Array, halves: number, damping: number, rotation: number): void {
+    const { half, size } = this;
+    const { first, sources, factors } = this.links;
+    const { row, col, value } = this.generator.constant;
+    for (let base = 0; base < halves * half; base += half) {
+      for (let t = 0; t < half; t++) {
+        out[base + t] = -(this.tower.damping[Math.floor(t / size)] + damping) * v[base + t];
+      }
+      for (let t = 0; t < half; t++) {
+        const x = v[base + t];
+        if (x === 0) continue;
+        for (let k = first[t]; k < first[t + 1]; k++) out[base + sources[k]] += factors[k] * x;
+      }
+      for (let own = base; own < base + half; own += size) {
+        for (let k = 0; k < value.length; k++) out[own + col[k]] += value[k] * v[own + row[k]];
       }
     }
-    if (undamped) this.clear(out, halves);
-  }
-
-  private clear(v: Float64Array, halves: number): void {
-    for (let k = 0; k < this.half; k++) {
-      if (this.stable[k]) for (let h = 0; h < halves; h++) v[h * this.half + k] = 0;
+    if (halves < 2 || rotation === 0) return;
+    for (let k = 0; k < half; k++) {
+      out[k] -= rotation * v[half + k];
+      out[half + k] += rotation * v[k];
     }
-  }
-
-  /** Inverse of decay and rotation of each matrix element of each storey, links and feeding left out. */
-  private precondition(
-    v: Float64Array,
-    out: Float64Array,
-    halves: number,
-    damping: number,
-    rotation: number,
-    undamped: boolean,
-  ): void {
-    const { levels } = this.generator;
-    const size = this.system.size;
-    for (const storey of this.tower.storeys) {
-      for (let i = 0; i < levels; i++) this.divide(v, out, halves, storey, i, -1, damping, rotation);
-      for (let c = levels; c < size; c += 2) {
-        this.divide(v, out, halves, storey, c, c + 1, damping, rotation);
-      }
-    }
-    if (undamped) this.clear(out, halves);
-  }
-
-  /**
-   * One matrix element (coordinates a = Re, b = Im part; b = −1 for a diagonal one). The storey and its mirror image are
-   * u = (X₁ − Y₂) + i(X₂ + Y₁) and v = (X₁ + Y₂) + i(Y₁ − X₂), X and Y the halves of the block, 1 and 2 of the storey.
-   */
-  private divide(
-    from: Float64Array,
-    to: Float64Array,
-    halves: number,
-    storey: Tower['storeys'][number],
-    a: number,
-    b: number,
-    damping: number,
-    rotation: number,
-  ): void {
-    const { size } = this.system;
-    const at = (coordinate: number, h: number, second: boolean): number =>
-      h * this.half + (storey.lane + (second ? 1 : 0)) * size + coordinate;
-    const get = (coordinate: number, h: number, second: boolean): number =>
-      coordinate < 0 || h >= halves || (second && storey.hermitian) ? 0 : from[at(coordinate, h, second)];
-    const decay = -this.dense[a * size + a] + damping + storey.decay[0];
-    const own = b < 0 ? 0 : this.dense[a * size + b];
-    const result = (['u', 'v'] as const).map((which) => {
-      const sign = which === 'u' ? 1 : -1;
-      const turn = rotation + sign * storey.decay[1];
-      const complex = (coordinate: number): [number, number] => [
-        get(coordinate, 0, false) - sign * get(coordinate, 1, true),
-        sign * get(coordinate, 0, true) + get(coordinate, 1, false),
-      ];
-      const [xr, xi] = complex(a);
-      const [yr, yi] = complex(b);
-      // Elements (i, j) and (j, i): x ± iy, each with its own frequency.
-      const upper = ratio(xr - yi, xi + yr, -decay, -turn - own);
-      const lower = ratio(xr + yi, xi - yr, -decay, -turn + own);
-      return {
-        a: [(upper[0] + lower[0]) / 2, (upper[1] + lower[1]) / 2],
-        b: [(upper[1] - lower[1]) / 2, -(upper[0] - lower[0]) / 2],
-      };
-    });
-    const [u, w] = result;
-    const write = (coordinate: number, p: number[], q: number[]): void => {
-      to[at(coordinate, 0, false)] = (p[0] + q[0]) / 2;
-      if (!storey.hermitian) to[at(coordinate, 0, true)] = (p[1] - q[1]) / 2;
-      if (halves < 2) return;
-      to[at(coordinate, 1, false)] = (p[1] + q[1]) / 2;
-      if (!storey.hermitian) to[at(coordinate, 1, true)] = (q[0] - p[0]) / 2;
-    };
-    write(a, u.a, w.a);
-    if (b >= 0) write(b, u.b, w.b);
   }
 }
 
-function ratio(ar: number, ai: number, br: number, bi: number): [number, number] {
-  const size = br * br + bi * bi;
-  return size === 0 ? [0, 0] : [(ar * br + ai * bi) / size, (ai * br - ar * bi) / size];
+function clear(v: Float64Array, fixed: readonly number[], halves: number, half: number): void {
+  for (let h = 0; h < halves; h++) for (const k of fixed) v[h * half + k] = 0;
 }

@@ -8,6 +8,7 @@ import { correlationFit, frankCondon } from '../../../core/phonons/correlations.
 import { countWithPhonons } from '../../../core/phonons/count.js';
 import { withRelaxationEnergy } from '../../../core/phonons/counting.js';
 import { buildTower } from '../../../core/phonons/tower.js';
+import { towerLinks } from '../../../core/phonons/tower-links.js';
 import { TowerSystem } from '../../../core/phonons/tower-system.js';
 import { HBAR, K_B } from '../../../core/units/constants.js';
 import { phonons, twoLevelRequest } from './support.js';
@@ -64,7 +65,8 @@ describe('independent-boson model (Mahan, Many-Particle Physics, section 4.3)', 
     const request = twoLevelRequest([{}]);
     const scheme = withRelaxationEnergy(request.scheme, relaxationShift(bath));
     const tower = buildTower(fit.poles, 4, 1, 0);
-    const flow = new TowerSystem(buildGenerator(scheme, 0, 0), new HierarchyBuilder().build(), scheme, tower);
+    const links = towerLinks(scheme, tower);
+    const flow = new TowerSystem(buildGenerator(scheme, 0, 0), new HierarchyBuilder().build(), tower, links);
     for (const t of [0.3, 1, 2.5, 6]) {
       const start = flow.initial();
       // Right after a δ-pulse of area π/2 the emitter has turned and the bath has not moved.
