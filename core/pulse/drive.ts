@@ -40,8 +40,10 @@ export interface Drive {
    * that no grid can hold count with the excited-state admixture that they would have caused.
    */
   readonly error: number;
-  /** The same drive as a sum of Gaussians where it is one, for tables by recurrence; with one component only. */
+  /** The same drive as a sum of Gaussians where it is one, for tables by recurrence. */
   readonly gaussians?: readonly GaussianTone[] | null;
+  /** Weight of each tone in each component. */
+  readonly directions?: readonly (readonly number[])[];
 }
 
 /** A drive that knows the tones it is made of. */
@@ -161,6 +163,7 @@ export function createDrive(pulse: Pulse, options: DriveOptions): PulseDrive {
       time: Math.min(...tones.map((tone) => tone.envelope.timeScale)),
     },
     error: Math.max(...tones.map((tone) => tone.envelope.error)),
-    gaussians: components === 1 ? gaussianTones(pulse.tones, options.frame) : null,
+    gaussians: gaussianTones(pulse.tones, options.frame),
+    directions: pulse.tones.map((tone) => (components === 1 ? [1] : polarizationWeights(tone.polarization))),
   };
 }
