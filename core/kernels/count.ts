@@ -42,6 +42,8 @@ export interface Effort {
   readonly checked?: boolean;
   /** `reference` leaves the fast kernels out, for a check that shares no code with them; `any` when left out. */
   readonly kernel?: 'any' | 'reference';
+  /** Size that settled the exact phonon method for the same design without drift; it is not judged again. */
+  readonly tower?: { readonly terms: number; readonly depth: number; readonly error: number };
 }
 
 export interface CountResult {

@@ -1,6 +1,14 @@
 import type { CountRequest, CountResult } from '../kernels/count.js';
 import type { Bath } from './bath.js';
 
+/** A size of the exact method's hierarchy that was found enough, and what one step more or less changed. */
+export interface SettledSize {
+  readonly terms: number;
+  readonly depth: number;
+  /** Relative. */
+  readonly error: number;
+}
+
 /** What a method returns beside the count. */
 export interface PhononCount extends CountResult {
   /** What is wrong with the figures, as whole phrases; empty for sound ones. */
@@ -9,6 +17,8 @@ export interface PhononCount extends CountResult {
   readonly remarks: readonly string[];
   /** Relative error of the figures that the treatment of the bath leaves (fit, depth), without the method's own nature. */
   readonly error: number;
+  /** Where the method settled its size: enough for neighbouring designs too. */
+  readonly tower?: SettledSize;
 }
 
 /** One phonon method of the registry. */

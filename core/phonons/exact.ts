@@ -1,10 +1,10 @@
 import type { CountRequest } from '../kernels/count.js';
 import type { Bath } from './bath.js';
-import type { PhononCount, PhononMethod } from './contract.js';
+import type { PhononCount, PhononMethod, SettledSize } from './contract.js';
 import { correlationFit, frankCondon } from './correlations.js';
 import { countWithHierarchy, type TowerCount, type TowerSize } from './hierarchy-count.js';
 
-/** Largest relative difference of any figure between a size and the next larger one, when quoted. */
+/** Largest relative difference of any figure between a size and the next smaller ones, when quoted. */
 export const SETTLED = 1e-3;
 /** Fit error up to which a usual size takes exponentials. */
 const USUAL_FIT = 3e-4;
@@ -25,6 +25,8 @@ export const exact: PhononMethod = {
   summary: 'hierarchical equations of motion; for every number that is quoted',
   secondOrder: false,
   count(request, bath, quoted) {
+    const { tower } = request.effort;
+    if (tower) return atSize(request, bath, tower);
     const usual = usualSize(request, bath);
     return quoted ? settle(request, bath, usual) : unsettled(request, bath, usual);
   },
@@ -57,41 +59,57 @@ function unsettled(request: CountRequest, bath: Bath, size: TowerSize): PhononCo
   };
 }
 
-/** Raises depth and terms in turn until neither changes any figure by more than `SETTLED`. */
+/** At a size that was found enough for the same design without drift. */
+function atSize(request: CountRequest, bath: Bath, { error, ...size }: SettledSize): PhononCount {
+  const run = countWithHierarchy(request, bath, size);
+  return { ...run, flags: [], remarks: [], error: Math.max(error, run.fitError) };
+}
+
+/**
+ * Raises depth and terms until the last step of either changed no figure by more than `SETTLED`: depths d − 1 and d agree,
+ * and K − 1 and K terms. What is quoted is the larger size, whose own error is smaller still.
+ */
 function settle(request: CountRequest, bath: Bath, from: TowerSize): PhononCount {
   let size = from;
   let run = countWithHierarchy(request, bath, size);
+  const change = (smaller: TowerSize): number => difference(countWithHierarchy(request, bath, smaller), run);
+  let byDepth = change({ ...size, depth: size.depth - 1 });
+  let byTerms = change({ ...size, terms: size.terms - 1 });
   for (;;) {
-    const larger = largerSizes(request, size);
-    const trials = larger.map((next) => ({ next, run: countWithHierarchy(request, bath, next) }));
-    const changes = trials.map((trial) => difference(run, trial.run));
-    const worst = Math.max(...changes, run.fitError);
-    if (worst <= SETTLED || larger.length < 2) {
-      const best = trials[changes.indexOf(Math.max(...changes))]?.run ?? run;
-      const settled = worst <= SETTLED;
-      const phrase = `exact: ${size.terms} terms, depth ${size.depth}; one more of either changes a figure by at most ${worst.toExponential(1)}; ${fitPhrase(run)}`;
-      const flags = settled
-        ? []
-        : [
-            `exact: not settled to ${SETTLED}: larger hierarchies than ${run.operators} operators were not tried`,
-          ];
-      return { ...best, flags, remarks: [phrase], error: worst };
-    }
-    const at = changes.indexOf(Math.max(...changes));
-    size = trials[at].next;
-    run = trials[at].run;
+    const error = Math.max(byDepth, byTerms, run.fitError);
+    const grown = nextSize(size, byDepth, Math.max(byTerms, run.fitError));
+    const fits =
+      grown.depth <= MOST_DEPTH && grown.terms <= MOST_TERMS && coordinates(request, grown) <= LARGEST_TOWER;
+    if (error <= SETTLED || !fits) return { ...run, ...report(size, run, error), error };
+    const before = run;
+    run = countWithHierarchy(request, bath, grown);
+    if (grown.depth > size.depth) byDepth = difference(before, run);
+    else byTerms = difference(before, run);
+    size = grown;
   }
 }
 
-function largerSizes(request: CountRequest, size: TowerSize): TowerSize[] {
-  const fits = (s: TowerSize): boolean =>
-    s.terms <= MOST_TERMS &&
-    s.depth <= MOST_DEPTH &&
-    binomial(s.terms + s.depth, s.depth) * request.scheme.levels.length ** 2 <= LARGEST_TOWER;
-  return [
-    { ...size, depth: size.depth + 1 },
-    { ...size, terms: size.terms + 1 },
-  ].filter(fits);
+/** One more of what changed the figures most. */
+function nextSize(size: TowerSize, byDepth: number, byTerms: number): TowerSize {
+  return byDepth > byTerms ? { ...size, depth: size.depth + 1 } : { ...size, terms: size.terms + 1 };
+}
+
+const coordinates = (request: CountRequest, { terms, depth }: TowerSize): number =>
+  binomial(terms + depth, depth) * request.scheme.levels.length ** 2;
+
+function report(
+  size: TowerSize,
+  run: TowerCount,
+  error: number,
+): Pick<PhononCount, 'flags' | 'remarks' | 'tower'> {
+  const flags =
+    error <= SETTLED
+      ? []
+      : [
+          `exact: not settled to ${SETTLED}: larger hierarchies than ${run.operators} operators were not tried`,
+        ];
+  const phrase = `exact: ${size.terms} terms, depth ${size.depth}; the last one of either changed a figure by at most ${error.toExponential(1)}; ${fitPhrase(run)}`;
+  return { flags, remarks: [phrase], tower: { ...size, error } };
 }
 
 function binomial(n: number, k: number): number {
@@ -105,11 +123,15 @@ function difference(a: TowerCount, b: TowerCount): number {
   let worst = 0;
   for (const [name, x] of Object.entries(a.values)) {
     const y = b.values[name];
-    // p_0 and p_3 of a good pulse are small remainders of others: judged by what they mean for those.
-    const scale = /^(p0|p3|thinned0)$/.test(name) ? 1e-1 : FLOOR;
-    worst = Math.max(worst, Math.abs(x - y) / Math.max(Math.abs(y), scale));
+    worst = Math.max(worst, Math.abs(x - y) / scaleOf(name, y));
   }
   return worst;
+}
+
+/** p_0 is what is missing to P(n≥1), p_3 a small part of P(n≥2): each is judged by what it means for those. */
+function scaleOf(name: string, value: number): number {
+  if (/^(p0|thinned0)$/.test(name)) return Math.max(value, 1 - value);
+  return Math.max(Math.abs(value), name === 'p3' ? 1e-1 : FLOOR);
 }
 
 function fitPhrase(run: TowerCount): string {
