@@ -82,11 +82,12 @@ function shownFigures(asked: readonly string[], study: Study, shape: FigureShape
     : [...new Set([`signal.${study.goal.brightness}`, impurity, 'collected.g2'])];
 }
 
-function shapeFor({ emitter, collection, drift }: Design): FigureShape {
+function shapeFor({ emitter, collection, laser, drift }: Design): FigureShape {
   const { levels } = emitterModel(emitter.model).scheme(emitter);
   return {
     filtered: collection.filter !== null,
     drift: drift !== null,
+    energies: (laser?.piPulse ?? null) !== null,
     quantile: drift !== null && drift.quantile !== null,
     levels: levels.map((l) => l.name),
   };

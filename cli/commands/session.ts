@@ -4,6 +4,7 @@ import { threeDigits } from '../report/numbers.js';
 import { type Progress, progressBar } from '../report/progress.js';
 import type { RunResult } from '../run/contract.js';
 import type { Run } from '../run/directory.js';
+import { explain } from '../run/explain/explanation.js';
 import { packageVersion } from '../run/package.js';
 import { writeResults } from '../run/results.js';
 import type { Context } from './contract.js';
@@ -63,7 +64,7 @@ async function work(session: Session): Promise<RunResult | null> {
       nearest: quoteNearest(study, outcome),
       outOfReach: outOfReach(study, outcome),
     },
-    ...{ archive: outcome.archive, outcome },
+    ...{ archive: outcome.archive, outcome, explanation: explain(study, outcome, quoted.front) },
   };
   await writeResults(session.run.directory, result, await frontPicture(result));
   return result;
@@ -90,6 +91,6 @@ export async function runSession(
   } finally {
     progress.stop();
     signals.off('SIGINT', onInterrupt);
-    await run.ledger.close();
+    await run.close();
   }
 }

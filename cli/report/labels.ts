@@ -20,6 +20,8 @@ const OTHERS: Readonly<Record<string, string>> = {
   'pulse.energy_pi_units': 'pulse energy (π-pulse energies)',
   'pulse.duration_ps': 'pulse duration (ps)',
   'pulse.bandwidth_ghz': 'pulse bandwidth (GHz)',
+  'pulse.energy_fj': 'pulse energy (fJ)',
+  'pulse.peak_rabi_per_ps': 'peak Rabi frequency (1/ps)',
   'accuracy.steps': 'steps',
   'accuracy.error_estimate': 'estimated error',
 };

@@ -4,6 +4,8 @@ import type { Figures } from '../../core/index.js';
 export interface FigureShape {
   readonly filtered: boolean;
   readonly drift: boolean;
+  /** The laser has a measured π pulse, so that pulse energies are known. */
+  readonly energies?: boolean;
   /** Goals are judged on a quantile of the drift. */
   readonly quantile?: boolean;
   readonly levels: readonly string[];
@@ -34,6 +36,8 @@ function treePaths(shape: FigureShape): string[] {
     ...['mean', 'factorial2', 'g2', 'p.0', 'p.1', 'p.2', 'p.3', 'multiphoton'].map((n) => `emitted.${n}`),
     ...shape.levels.map((name) => `populations.${name}`),
     ...['energy_pi_units', 'duration_ps', 'bandwidth_ghz'].map((name) => `pulse.${name}`),
+    ...(shape.energies === true ? ['pulse.energy_fj'] : []),
+    'pulse.peak_rabi_per_ps',
     'accuracy.steps',
     'accuracy.error_estimate',
   ];
@@ -51,6 +55,7 @@ export function shapeOf(figures: Figures): FigureShape {
   return {
     filtered: figures.filtered !== null,
     drift: figures.nominal !== null,
+    energies: figures.pulse.energy_fj !== null,
     quantile: figures.quantile !== null,
     levels: Object.keys(figures.populations),
   };

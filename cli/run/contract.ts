@@ -1,5 +1,6 @@
-import type { EvaluatedPoint, SearchOutcome } from '../../optimizers/index.js';
+import type { EvaluatedPoint, FoundPoint, SearchOutcome } from '../../optimizers/index.js';
 import type { Study } from '../study/index.js';
+import type { Explanation } from './explain/explanation.js';
 
 export const FRONT_FORMAT = 'pulsewright.front/1';
 export const ARCHIVE_FORMAT = 'pulsewright.archive/1';
@@ -14,9 +15,11 @@ export interface RunIdentity {
 }
 
 /** A point of the front, evaluated anew at accuracy `quoted`. */
-export interface FrontDesign extends EvaluatedPoint {
+export interface FrontDesign extends FoundPoint {
   /** Highest brightness level asked for that this design serves. */
   readonly level: number;
+  /** Bound of the third axis within which it does; null for none. A design may stand in several slices. */
+  readonly slice: number | null;
   /** Its file, relative to the run directory. */
   readonly file: string;
 }
@@ -31,7 +34,9 @@ export interface RunResult extends RunIdentity {
   /** Where no evaluation met the limits of the goal: the nearest one, evaluated anew. */
   readonly nearest: EvaluatedPoint | null;
   readonly archive: readonly EvaluatedPoint[];
-  readonly outcome: Pick<SearchOutcome, 'evaluations' | 'hypervolume' | 'stages'>;
+  readonly outcome: Pick<SearchOutcome, 'evaluations' | 'hypervolume' | 'stages' | 'front'>;
+  /** How the front was found, as it stands in front.json; null where there is nothing to tell. */
+  readonly explanation: Explanation | null;
   /** Wall time of the search, all sessions together, s. */
   readonly wall: number;
 }

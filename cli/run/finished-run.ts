@@ -29,7 +29,13 @@ export interface FinishedRun {
  */
 export async function readFinishedRun(directory: string): Promise<FinishedRun> {
   const { study, version, points, best } = await frontContent(directory);
-  const listed = best === null ? points : [...points, best];
+  // A design may stand in several slices; it serves the highest of its levels in each.
+  const highest = new Map<string, (typeof points)[number]>();
+  for (const point of points) {
+    const known = highest.get(point.design);
+    if (known === undefined || known.level < point.level) highest.set(point.design, point);
+  }
+  const listed = [...highest.values(), ...(best === null ? [] : [best])];
   return {
     ...{ directory, version, hash: study.hash },
     designs: listed.map(({ design, level, figures }) => ({ file: design, level, figures })),

@@ -1,6 +1,7 @@
-import { applyParameters } from '../../optimizers/index.js';
+import { applyParameters, thirdAxes } from '../../optimizers/index.js';
 import { biasOf } from '../study/index.js';
 import { FRONT_FORMAT, type FrontDesign, type RunResult } from './contract.js';
+import { explanationDocument } from './explain/explanation.js';
 import { columnOf, inColumn } from './parameters.js';
 
 /** The JSON document of a run: what front.csv holds, how it was found and what its hypervolume refers to. */
@@ -9,9 +10,11 @@ export function frontDocument(result: RunResult): unknown {
   const { goal, search, parameters } = study;
   const parametersOf = (values: readonly number[]) =>
     Object.fromEntries(parameters.map((p, i) => [columnOf(p.path), inColumn(values[i], p.path)]));
-  const point = ({ level, file, values, figures }: FrontDesign) => ({
+  const point = ({ level, slice, file, stage, values, figures }: FrontDesign) => ({
     level,
+    slice,
     design: file,
+    found_by: stage,
     parameters: parametersOf(values),
     bias_mv: biasOf(study, applyParameters(study, values)),
     figures,
@@ -24,6 +27,11 @@ export function frontDocument(result: RunResult): unknown {
       impurity: `collected.${goal.impurity}`,
       brightness: `signal.${goal.brightness}`,
       at_least: goal.atLeast,
+      third: goal.third && {
+        figure: thirdAxes[goal.third.axis].figure,
+        sense: thirdAxes[goal.third.axis].sense,
+        slices: [...new Set(outcome.front.map(({ slice }) => slice))],
+      },
       limits: goal.limits.map(({ figure, atMost, atLeast }) => ({
         figure,
         at_most: atMost,
@@ -43,5 +51,6 @@ export function frontDocument(result: RunResult): unknown {
     wall_time_s: result.wall,
     hypervolume: outcome.hypervolume,
     stages: outcome.stages,
+    explanation: result.explanation && explanationDocument(result.explanation),
   };
 }

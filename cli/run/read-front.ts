@@ -33,6 +33,8 @@ export interface FrontFile {
 
 interface ContentPoint {
   readonly level: number;
+  /** Bound of a third axis; null or left out: none. */
+  readonly slice?: number | null;
   readonly design: string;
   readonly figures: Figures;
 }
@@ -107,12 +109,13 @@ export async function frontContent(directory: string): Promise<Content> {
 }
 
 /**
- * Reads the front of a finished run; nothing is evaluated again.
+ * Reads the front of a finished run, of one with a third axis the slice without a bound; nothing is evaluated again.
  * @throws UserError when there is none, or one of another format
  */
 export async function readFront(directory: string): Promise<FrontFile> {
   const { study, goal, version, points } = await frontContent(directory);
-  const read = points.flatMap(({ design, level, figures }): FrontFilePoint[] => {
+  const open = points.filter(({ slice }) => (slice ?? null) === null);
+  const read = open.flatMap(({ design, level, figures }): FrontFilePoint[] => {
     const [brightness, impurity] = [figureAt(figures, goal.brightness), figureAt(figures, goal.impurity)];
     return brightness === null || impurity === null ? [] : [{ design, level, brightness, impurity }];
   });

@@ -1,4 +1,4 @@
-import { applyParameters, type EvaluatedPoint } from '../../optimizers/index.js';
+import { applyParameters, type EvaluatedPoint, thirdAxes } from '../../optimizers/index.js';
 import { biasOf } from '../study/index.js';
 import { type FigureShape, figureAt, figurePaths } from './columns.js';
 import { ARCHIVE_FORMAT, FRONT_FORMAT, type RunIdentity, type RunResult } from './contract.js';
@@ -16,17 +16,37 @@ function identityLines({ study, hash, version }: RunIdentity): string[] {
     `study: ${study.title}`,
     `study hash: ${hash}`,
     `pulsewright ${version}, seed ${search.seed}, at most ${search.evaluations} evaluations`,
-    `goal: least collected.${goal.impurity} at signal.${goal.brightness} of at least each level`,
+    `goal: least collected.${goal.impurity} at signal.${goal.brightness} of at least each level${thirdGoal(study)}`,
     ...BASES,
   ];
 }
 
+function thirdGoal({ goal }: RunIdentity['study']): string {
+  if (goal.third === null) return '';
+  const { figure, sense } = thirdAxes[goal.third.axis];
+  return `, and the ${sense} ${figure}`;
+}
+
+/** Name of the column with the bound of a slice. */
+function sliceColumn({ goal }: RunIdentity['study']): string[] {
+  if (goal.third === null) return [];
+  return [goal.third.axis === 'energy' ? 'slice [fJ]' : 'slice [photons per pulse]'];
+}
+
+function sliceLine({ goal }: RunIdentity['study']): string[] {
+  if (goal.third === null) return [];
+  const { figure, sense } = thirdAxes[goal.third.axis];
+  const side = sense === 'least' ? 'at most' : 'at least';
+  return [`slice: a front of its own, of designs with ${figure} ${side} that; empty: without such a bound`];
+}
+
 function figureShape({ study }: RunIdentity, points: readonly EvaluatedPoint[]): FigureShape {
-  const { collection, drift } = study.design;
+  const { collection, drift, laser } = study.design;
   const levels = points.length > 0 ? Object.keys(points[0].figures.populations) : [];
   return {
     filtered: collection.filter !== null,
     drift: drift !== null,
+    energies: (laser?.piPulse ?? null) !== null,
     quantile: drift !== null && drift.quantile !== null,
     levels,
   };
@@ -61,10 +81,15 @@ export function frontCsv(result: RunResult): string {
     FRONT_FORMAT,
     ...identityLines(result),
     'level: highest brightness level asked for that the design serves; figures evaluated anew at accuracy quoted',
+    ...sliceLine(result.study),
     ...(result.outOfReach.length > 0 ? [`out of reach: ${result.outOfReach.join(' ')}`] : []),
   ];
-  const full = rows.map((row, i) => [result.front[i].level, result.front[i].file, ...row]);
-  return csv(comments, ['level', 'design', ...columns], full);
+  const sliced = sliceColumn(result.study);
+  const full = rows.map((row, i) => {
+    const { level, slice, file } = result.front[i];
+    return [level, ...(sliced.length > 0 ? [slice] : []), file, ...row];
+  });
+  return csv(comments, ['level', ...sliced, 'design', ...columns], full);
 }
 
 /** archive.csv: every non-dominated evaluation of the search, by brightness. */

@@ -17,7 +17,7 @@ export function sliceOf<T extends Judgement>(points: readonly T[], bound: number
 /**
  * Bounds of the slices of a front with three objectives, tightest first, in the unit of the figure; the last is null:
  * no bound. They divide evenly (in ratio, where the axis is positive) the way from the least third number that comes
- * with a brightness of interest to the most that the front without a bound takes. Fewer where the axis has no room.
+ * with a brightness of interest to what half of the levels take without a bound. Fewer where the axis has no room.
  */
 export function sliceBounds(goal: Goal, points: readonly Judgement[]): (number | null)[] {
   if (goal.third === null) return [null];
@@ -30,7 +30,8 @@ export function sliceBounds(goal: Goal, points: readonly Judgement[]): (number |
     brightness >= levels[0] && third !== null ? third : [],
   );
   if (taken.length === 0 || bright.length === 0) return [null];
-  const [tight, loose] = [Math.min(...bright), Math.max(...taken)];
+  taken.sort((a, b) => a - b);
+  const [tight, loose] = [Math.min(...bright), taken[Math.floor(taken.length / 2)]];
   const at = (share: number) =>
     tight > 0 ? tight * (loose / tight) ** share : tight + (loose - tight) * share;
   const inner = Array.from({ length: slices - 1 }, (_, i) => rounded(at((i + 1) / slices)));

@@ -5,8 +5,8 @@ import type { EvaluatedPoint, Goal } from '../problem/contract.js';
 import { type Judgement, objectivesOf } from '../problem/judge.js';
 import { thirdAxes, turned } from '../problem/third.js';
 import type { JudgedPoint } from '../tasks/recorder.js';
-import type { Solution } from '../tasks/solve.js';
 import type { Knowledge } from './contract.js';
+import { type Restarts, restartsOf } from './restarts.js';
 
 /** A member of the archive. */
 export interface FoundPoint extends EvaluatedPoint {
@@ -53,8 +53,8 @@ export interface SearchOutcome {
     readonly meaning: string;
   };
   readonly stages: readonly StageReport[];
-  /** Where every solve at a level ended, in the order of the search; empty for methods that make none. */
-  readonly solutions: readonly Solution[];
+  /** How often solves that began elsewhere found the front again (without a bound on a third axis); null without solves. */
+  readonly restarts: { readonly all: Restarts | null; readonly best: Restarts | null };
 }
 
 /** The archive after a stage. */
@@ -123,6 +123,10 @@ function levelsWithin(
   });
 }
 
+/** The levels with the one at which the best design is asked for, so that each slice has one there. */
+const withLevel = (levels: readonly number[], level: number | null): number[] =>
+  level === null || levels.includes(level) ? [...levels] : [...levels, level].sort((a, b) => a - b);
+
 const byBrightness = (a: Judgement, b: Judgement): number =>
   a.brightness - b.brightness || a.impurity - b.impurity;
 
@@ -135,7 +139,7 @@ export function outcomeOf(
   const { goal } = known.spec;
   const { front } = known;
   const levels = levelsOf(goal.front, front);
-  const chosen = levelsWithin(known, levels);
+  const chosen = levelsWithin(known, goal.third === null ? levels : withLevel(levels, goal.atLeast));
   const reference = referenceOf(
     goal,
     front,
@@ -164,6 +168,9 @@ export function outcomeOf(
       evaluations,
       hypervolume: volume(then, reference),
     })),
-    solutions: known.solutions,
+    restarts: {
+      all: restartsOf(known, null),
+      best: goal.atLeast === null ? null : restartsOf(known, goal.atLeast),
+    },
   };
 }

@@ -19,6 +19,8 @@ export interface SolveInput {
 /** Where the solve ended; null when every candidate was infeasible. */
 export interface Solution {
   readonly level: number;
+  /** Where it began. */
+  readonly start: readonly number[];
   readonly x: readonly number[];
   readonly impurity: number;
   readonly brightness: number;
@@ -55,7 +57,7 @@ export const solveTask: TaskRunner = (task, { spec, problem, recorder, seed }): 
     const { impurity, brightness, constraints, violation } = candidate;
     if (Number.isFinite(impurity)) {
       scale ||= impurity || 1;
-      const next = { level, x: [...x], impurity, brightness, violation, exact };
+      const next = { level, start: [...start], x: [...x], impurity, brightness, violation, exact };
       if (best === null || merit(next) < merit(best)) best = next;
     }
     return {

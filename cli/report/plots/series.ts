@@ -1,5 +1,7 @@
 import type { TopLevelSpec } from 'vega-lite';
-import { renderSvg, SERIES } from './render.js';
+import { COLORS, renderSvg, SERIES } from './render.js';
+
+const HEIGHT = 360;
 
 export interface Series {
   /** What the legend says. */
@@ -17,6 +19,10 @@ export interface SeriesPlot {
   readonly logX: boolean;
   readonly logY: boolean;
   readonly series: readonly Series[];
+  /** What the legend's names stand for; left out where they speak for themselves. */
+  readonly legend?: string;
+  /** A vertical dashed line, with its name. */
+  readonly mark?: { readonly x: number; readonly name: string } | null;
 }
 
 /** Without a canvas, the width of a text is guessed too large: a longer subtitle would leave the right side empty. */
@@ -59,21 +65,36 @@ export function seriesChart(plot: SeriesPlot): TopLevelSpec {
     columns: 1,
     symbolOpacity: 1,
     labelLimit: 540,
-    title: null,
+    title: plot.legend ?? null,
   };
-  return {
-    width: 560,
-    height: 360,
-    title: { text: plot.title, subtitle: broken(plot.subtitle) },
+  const lines = {
     data: { values },
     mark: { type: 'line', strokeWidth: 1.8, point: { filled: true, size: 45, opacity: 1 } },
     encoding: {
       x: axis('x', plot.xTitle, plot.logX),
       y: axis('y', plot.yTitle, plot.logY),
+      // A line runs along x; without this it would be sorted by its name's place in the data.
+      order: { field: 'x', type: 'quantitative' },
       color: { field: 'name', type: 'nominal', scale: looks, legend },
       shape: { field: 'name', type: 'nominal', scale: shapes, legend },
     },
+  };
+  return {
+    width: 560,
+    height: HEIGHT,
+    title: { text: plot.title, subtitle: broken(plot.subtitle) },
+    ...(plot.mark ? { layer: [...markLayers(plot.mark), lines] } : lines),
   } as unknown as TopLevelSpec;
+}
+
+function markLayers({ x, name }: { readonly x: number; readonly name: string }): object[] {
+  const data = { values: [{ x }] };
+  const at = { field: 'x', type: 'quantitative' };
+  const text = { type: 'text', align: 'left', dx: 6, fontSize: 12, color: COLORS.text, text: name };
+  return [
+    { data, mark: { type: 'rule', strokeDash: [5, 4], color: COLORS.text }, encoding: { x: at } },
+    { data, mark: text, encoding: { x: at, y: { value: HEIGHT - 10 } } },
+  ];
 }
 
 /** SVG of several lines with a legend; points that a logarithmic axis cannot show are left out. */

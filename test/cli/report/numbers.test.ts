@@ -52,7 +52,7 @@ describe('columns', () => {
   });
 
   it('has a label with its basis for every figure', () => {
-    const shape = { filtered: true, drift: true, levels: ['g', 'x'] };
+    const shape = { filtered: true, drift: true, energies: true, levels: ['g', 'x'] };
     for (const path of figurePaths(shape)) {
       const basis = /^(?:nominal\.)?(emitted|signal|collected)\./.exec(path)?.[1];
       if (basis) expect(figureLabel(path)).toContain(basis);

@@ -1,0 +1,108 @@
+import { applyParameters, judge, type Restarts, type SearchOutcome } from '../../../optimizers/index.js';
+import type { Study } from '../../study/index.js';
+import type { FrontDesign } from '../contract.js';
+import { branchOf } from './branch.js';
+import { type Growth, growthOf } from './growth.js';
+
+/** Neighbours on the front that are excited in the same way. */
+export interface FrontPart {
+  /** Bound of the third axis; null for none. */
+  readonly slice: number | null;
+  /** Brightness of the first and the last of them. */
+  readonly from: number;
+  readonly to: number;
+  readonly branch: string;
+  readonly designs: number;
+  /** Stages that found them, in the order of the search. */
+  readonly stages: readonly { readonly name: string; readonly designs: number }[];
+}
+
+/** How a front was found and how far it can be trusted. */
+export interface Explanation {
+  readonly parts: readonly FrontPart[];
+  readonly restarts: SearchOutcome['restarts'];
+  /** Null where the stages tell no trend. */
+  readonly growth: Growth | null;
+  /** Why the front is probably not converged; empty where nothing speaks against it. */
+  readonly doubts: readonly string[];
+}
+
+/** Estimated gain by twice the budget, as a share of the hypervolume, that makes a front doubtful. */
+const DOUBTFUL_GAIN = 0.005;
+
+export const percent = (share: number): string => `${Number((100 * share).toPrecision(2))} %`;
+
+function partsOf(study: Study, front: readonly FrontDesign[], order: readonly string[]): FrontPart[] {
+  const parts: { slice: number | null; branch: string; points: FrontDesign[] }[] = [];
+  for (const point of front) {
+    const branch = branchOf(applyParameters(study, point.values));
+    const last = parts[parts.length - 1];
+    if (last !== undefined && last.branch === branch && last.slice === point.slice) last.points.push(point);
+    else parts.push({ slice: point.slice, branch, points: [point] });
+  }
+  return parts.map(({ slice, branch, points }) => {
+    const brightness = points.map(({ figures }) => judge(figures, study.goal).brightness);
+    const names = [...new Set(points.map(({ stage }) => stage))];
+    names.sort((a, b) => order.indexOf(a) - order.indexOf(b));
+    const count = (name: string) => points.filter(({ stage }) => stage === name).length;
+    return {
+      ...{ slice, branch, designs: points.length },
+      from: Math.min(...brightness),
+      to: Math.max(...brightness),
+      stages: names.map((name) => ({ name, designs: count(name) })),
+    };
+  });
+}
+
+function doubtsOf(growth: Growth | null, best: Restarts | null): string[] {
+  const doubts: string[] = [];
+  if (growth !== null && growth.byDoubling > DOUBTFUL_GAIN) {
+    doubts.push(
+      `the hypervolume was still growing: ${percent(growth.lastHalf)} of it came in the second half of the evaluations`,
+    );
+  }
+  if (best !== null && best.elsewhere === 0)
+    doubts.push(
+      'no solve for the best design began elsewhere: nothing tells whether there is a better branch',
+    );
+  if (best !== null && best.elsewhere > 0 && best.again === 0)
+    doubts.push(
+      `the best design was found only once: none of ${best.elsewhere} solves that began elsewhere came to it`,
+    );
+  return doubts;
+}
+
+/**
+ * What the data of a search say about its front.
+ * @returns null for a study without free parameters, or without any design on the front
+ */
+export function explain(
+  study: Study,
+  outcome: SearchOutcome,
+  front: readonly FrontDesign[],
+): Explanation | null {
+  if (study.parameters.length === 0 || front.length === 0) return null;
+  const growth = growthOf(outcome.stages);
+  const parts = partsOf(
+    study,
+    front,
+    outcome.stages.map(({ name }) => name),
+  );
+  return { parts, restarts: outcome.restarts, growth, doubts: doubtsOf(growth, outcome.restarts.best) };
+}
+
+/** An explanation as it stands in front.json. */
+export function explanationDocument(explanation: Explanation): unknown {
+  const { parts, restarts, growth, doubts } = explanation;
+  return {
+    parts,
+    found_again: restarts,
+    twice_the_budget: growth && {
+      estimated_gain: growth.byDoubling,
+      gain_of_second_half: growth.lastHalf,
+      gain_of_quarter_before: growth.quarterBefore,
+      meaning: 'shares of the hypervolume; the first is an estimate from the other two',
+    },
+    probably_not_converged: doubts,
+  };
+}
