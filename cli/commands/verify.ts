@@ -1,19 +1,22 @@
 import { join } from 'node:path';
 import { verifyCsv, verifyDocument, verifyText } from '../report/verify-report.js';
 import { readFinishedRun } from '../run/finished-run.js';
+import { lockRun } from '../run/lock.js';
 import { UserError } from '../run/user-error.js';
 import { writeWhole } from '../run/whole-file.js';
 import type { Command, Context, ExitCode } from './contract.js';
 import { JSON_OPTION, workerCount } from './options.js';
 import { studyOf, verifyDesigns } from './verify-designs.js';
 
-async function work(
-  directory: string,
-  workers: number,
-  json: boolean,
-  signal: AbortSignal,
-  context: Context,
-): Promise<ExitCode> {
+/** What the command line asks for. */
+interface Request {
+  readonly directory: string;
+  readonly workers: number;
+  readonly json: boolean;
+}
+
+async function work(request: Request, signal: AbortSignal, context: Context): Promise<ExitCode> {
+  const { directory, workers, json } = request;
   const run = await readFinishedRun(directory);
   if (run.designs.length === 0) {
     throw new UserError(`${directory}: the front has no point: there is nothing to verify`);
@@ -36,6 +39,18 @@ async function work(
   return points.every(({ reasons }) => reasons.length === 0) ? 0 : 1;
 }
 
+/** The same while no other process works on the directory. */
+async function alone(request: Request, signal: AbortSignal, context: Context): Promise<ExitCode> {
+  await readFinishedRun(request.directory);
+  const lock = await lockRun(request.directory);
+  for (const remark of lock.remarks) context.note(remark);
+  try {
+    return await work(request, signal, context);
+  } finally {
+    lock.release();
+  }
+}
+
 export const verify: Command = {
   configure: (yargs) =>
     yargs
@@ -55,9 +70,10 @@ export const verify: Command = {
     // Only the first one is caught: a second Ctrl-C ends the process at once, and the ledger is sound all the same.
     const onInterrupt = () => abort.abort();
     signals.once('SIGINT', onInterrupt);
+    const directory = String(args['dir']);
     const workers = workerCount(args['workers'] === undefined ? undefined : String(args['workers']));
     try {
-      return await work(String(args['dir']), workers, args['json'] === true, abort.signal, context);
+      return await alone({ directory, workers, json: args['json'] === true }, abort.signal, context);
     } finally {
       signals.off('SIGINT', onInterrupt);
     }

@@ -2,6 +2,7 @@ import { open, readdir, readFile, rm, stat } from 'node:fs/promises';
 import { join } from 'node:path';
 import { Ledger } from './ledger.js';
 import { checkHeader, type LedgerEntry, type LedgerHeader, readLedger } from './ledger-format.js';
+import { LOCK, lockRun } from './lock.js';
 import { makeDirectory } from './make-directory.js';
 import { fileError, UserError } from './user-error.js';
 import { temporaryOf, writeWhole } from './whole-file.js';
@@ -24,6 +25,8 @@ export interface Run {
   readonly entries: readonly LedgerEntry[];
   /** Things the user should know about how the run was opened. */
   readonly remarks: readonly string[];
+  /** Closes the ledger and lets others work on the directory. */
+  close(): Promise<void>;
 }
 
 export interface RunRequest {
@@ -59,7 +62,7 @@ async function prepare(directory: string): Promise<void> {
 }
 
 function isOurs(name: string): boolean {
-  const known = [LEDGER, STUDY, DESIGNS, ...RESULTS];
+  const known = [LEDGER, STUDY, DESIGNS, LOCK, ...RESULTS];
   const temporary = temporaryOf(name);
   return (
     known.includes(name) || (temporary !== null && (temporary === 'writable' || known.includes(temporary)))
@@ -87,7 +90,7 @@ async function checkEmpty(directory: string, study: Uint8Array): Promise<void> {
     throw new UserError(`${directory}: is not empty (${shown}); needs a new or empty directory`);
   }
   // A lone study is no run of ours, which begins with the ledger: it may be the only copy of somebody's work.
-  const lone = (await names(directory)).filter((name) => temporaryOf(name) === null);
+  const lone = (await names(directory)).filter((name) => temporaryOf(name) === null && name !== LOCK);
   if (lone.length === 1 && lone[0] === STUDY) {
     const present = await readFile(join(directory, STUDY));
     if (!present.equals(study)) {
@@ -114,21 +117,17 @@ export async function keepDesigns(directory: string, keep: readonly string[]): P
   }
 }
 
-async function begin(request: RunRequest, remarks: readonly string[]): Promise<Run> {
-  const { directory, header, study } = request;
+/** What is found in the ledger, or a new one. */
+type Opened = Pick<Run, 'ledger' | 'entries' | 'remarks'>;
+
+async function begin(request: RunRequest, remarks: readonly string[]): Promise<Opened> {
+  const { directory, header } = request;
   await removeResults(directory);
-  const ledger = await Ledger.begin(join(directory, LEDGER), header);
-  await writeWhole(join(directory, STUDY), study);
-  return { directory, ledger, entries: [], remarks };
+  return { ledger: await Ledger.begin(join(directory, LEDGER), header), entries: [], remarks };
 }
 
-/**
- * Opens a run directory, new or to be resumed, before any work starts.
- * @throws UserError when it cannot be written, holds something else, or belongs to another study, version or format
- */
-export async function openRun(request: RunRequest): Promise<Run> {
+async function openLedger(request: RunRequest): Promise<Opened> {
   const { directory, header, resume, study } = request;
-  await prepare(directory);
   const path = join(directory, LEDGER);
   const found = await readLedger(path);
   if (found === null) {
@@ -148,7 +147,28 @@ export async function openRun(request: RunRequest): Promise<Run> {
     found.damaged === null
       ? []
       : [`${path}: line ${found.damaged} is damaged; what follows is computed again`];
-  const ledger = await Ledger.continue(path, found.sound);
-  await writeWhole(join(directory, STUDY), study);
-  return { directory, ledger, entries: found.entries, remarks };
+  return { ledger: await Ledger.continue(path, found.sound), entries: found.entries, remarks };
+}
+
+/**
+ * Opens a run directory, new or to be resumed, before any work starts, and keeps other processes from it.
+ * @throws UserError when it cannot be written, holds something else, belongs to another study, version or format, or is
+ * in use
+ */
+export async function openRun(request: RunRequest): Promise<Run> {
+  const { directory, study } = request;
+  await prepare(directory);
+  const lock = await lockRun(directory);
+  try {
+    const { ledger, entries, remarks } = await openLedger(request);
+    await writeWhole(join(directory, STUDY), study);
+    const close = async () => {
+      await ledger.close();
+      lock.release();
+    };
+    return { directory, ledger, entries, remarks: [...lock.remarks, ...remarks], close };
+  } catch (error) {
+    lock.release();
+    throw error;
+  }
 }

@@ -10,7 +10,7 @@ const study = Buffer.from('pulsewright: 1\n');
 
 async function open(directory: string, resume = false) {
   const run = await openRun({ directory, resume, header, study });
-  await run.ledger.close();
+  await run.close();
   return run;
 }
 
