@@ -130,7 +130,7 @@ describe('flags and choices', () => {
   it('states terms, depth and difference of a quoted exact result', () => {
     const emitter = twoLevelEmitter({ phonons: phonons(4), lifetime: 300 });
     const figures = evaluate(design(emitter, [tone({ fwhm: 1 })]), 'quoted');
-    expect(figures.notes[0].reason).toMatch(/exact: \d+ terms, depth \d; one more of either changes/);
+    expect(figures.notes[0].reason).toMatch(/exact: \d+ terms, depth \d; the last one of either changed/);
     expect(figures.phonons.flags).toEqual([]);
     expect(figures.accuracy.error_estimate).toBeLessThan(1e-3);
     const polaron = countWithPhonons(requestOf(design(emitter, [tone({ fwhm: 1 })])), phonons(4), 'polaron');
