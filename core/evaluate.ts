@@ -1,13 +1,12 @@
 import { figureDifference } from './accuracy.js';
 import type { Design } from './design.js';
-import { weightedMean } from './drift/mean.js';
-import { type DriftAxes, driftAxes, driftNodes } from './drift/nodes.js';
-import { driftQuantiles } from './drift/quantile.js';
-import type { Figures, FigureTree, Note, QuantileFigures } from './figures.js';
+import { type DriftAxes, type DriftNode, driftAxes, driftNodes } from './drift/nodes.js';
+import type { Figures, Note } from './figures.js';
 import type { Effort } from './kernels/count.js';
 import { phononRangeProblem } from './phonons/count.js';
 import { pulseFigures } from './pulse/figures.js';
-import { type Sample, sampleDesign } from './sample.js';
+import { sampleDesign } from './sample.js';
+import { type DriftTree, treeOf } from './tree.js';
 
 /**
  * `search`: one propagation, error estimated from its own steps. `quoted`: repeated with finer steps and more drift
@@ -16,7 +15,7 @@ import { type Sample, sampleDesign } from './sample.js';
  */
 export type Accuracy = 'search' | 'quoted' | 'verified';
 
-const SEARCH: Effort = { tolerance: 1e-10, parts: 1, nodes: 1, series: 'estimate' };
+export const SEARCH: Effort = { tolerance: 1e-10, parts: 1, nodes: 1, series: 'estimate' };
 const LADDER: readonly Effort[] = [
   { tolerance: 1e-10, parts: 1, nodes: 1, series: 'bound' },
   { tolerance: 1e-10, parts: 2, nodes: 1, series: 'bound' },
@@ -52,14 +51,14 @@ function withExactPhonons(design: Design): Design {
   return { ...design, emitter: { ...design.emitter, phonons: { ...phonons, method: 'exact' } } };
 }
 
-function checkSupport(design: Design): void {
+export function checkSupport(design: Design): void {
   const { phonons } = design.emitter;
   const problem = phonons && hasPhonons(design) ? phononRangeProblem(phonons) : null;
   if (problem !== null) throw new UnsupportedDesign(problem);
   if (design.pulse.tones.length === 0) throw new UnsupportedDesign('a pulse needs at least one tone');
 }
 
-function hasPhonons(design: Design): boolean {
+export function hasPhonons(design: Design): boolean {
   return design.emitter.phonons !== null && design.emitter.phonons.coupling > 0;
 }
 
@@ -67,9 +66,6 @@ function hasPhonons(design: Design): boolean {
 export class UnsupportedDesign extends Error {
   override readonly name = 'UnsupportedDesign';
 }
-
-/** The means with the quantiles, where a design asks for them. */
-type DriftTree = FigureTree & Pick<Figures, 'quantile'>;
 
 /** A design without drift, and the effort that was enough for it. */
 interface Still {
@@ -137,107 +133,18 @@ function withEstimate(tree: DriftTree, estimate: number): DriftTree {
   return { ...tree, notes, accuracy: { ...tree.accuracy, error_estimate: estimate } };
 }
 
-/** Drift nodes may each say something slightly different. */
-const MOST_REMARKS = 3;
-
 function evaluateOnce(design: Design, effort: Effort): DriftTree {
+  const { axes, nodes } = driftGrid(design, effort);
+  const runs = nodes.map((node) => sampleDesign(design, node, effort));
+  return treeOf(design, axes, nodes, runs);
+}
+
+/** The nodes over which a design is averaged. */
+export function driftGrid(
+  design: Design,
+  effort: Effort,
+): { readonly axes: DriftAxes; readonly nodes: readonly DriftNode[] } {
   const duration = design.drift ? pulseFigures(design.pulse).duration_ps : 0;
   const axes = driftAxes(design, duration, effort.nodes);
-  const nodes = driftNodes(design, axes);
-  const runs = nodes.map((node) => sampleDesign(design, node, effort));
-  const mean = weightedMean(
-    runs.map((r) => r.sample),
-    nodes.map((n) => n.weight),
-  );
-  const { method } = runs[0].phonons;
-  const flags = [...new Set(runs.flatMap((r) => r.phonons.flags))];
-  const tree = figureTree(
-    mean,
-    { method, flags },
-    {
-      steps: runs.reduce((s, r) => s + r.steps, 0),
-      error_estimate: runs.reduce((m, r) => Math.max(m, r.error), 0),
-    },
-  );
-  const share = design.drift?.quantile ?? null;
-  const samples = runs.map((r) => r.sample);
-  const remarks = [...new Set(runs.flatMap((r) => r.remarks))].slice(0, MOST_REMARKS);
-  const notes = [...tree.notes, ...remarks.map((reason) => ({ path: 'phonons', reason }))];
-  return { ...tree, notes, quantile: share === null ? null : quantileFigures(samples, axes, share) };
-}
-
-/** Brightness that a share of the drift reaches, and impurity that it does not exceed. */
-function quantileFigures(samples: readonly Sample[], axes: DriftAxes, share: number): QuantileFigures {
-  const over = (of: (s: Sample) => number | null, below: number): number | null => {
-    const values = samples.map(of);
-    return values.includes(null)
-      ? null
-      : driftQuantiles(axes, [{ values: values as number[], share: below }])[0];
-  };
-  return {
-    share,
-    signal: {
-      single: over((s) => s.signal.single, 1 - share),
-      any: over((s) => anyOf(s.signal), 1 - share),
-      mean: over((s) => s.signal.mean, 1 - share),
-    },
-    collected: {
-      multiphoton: over((s) => s.collected.multiphoton, share),
-      g2: over((s) => ratio(s.collected.factorial2, s.collected.mean), share),
-    },
-  };
-}
-
-const anyOf = (c: Sample['signal']): number | null =>
-  c.single === null || c.multiphoton === null ? null : c.single + c.multiphoton;
-
-function ratio(factorial2: number, mean: number): number | null {
-  return mean > 0 ? factorial2 / (mean * mean) : null;
-}
-
-function figureTree(s: Sample, phonons: FigureTree['phonons'], accuracy: FigureTree['accuracy']): FigureTree {
-  const notes: Note[] = [];
-  if (s.filtered && s.filtered.multiphoton === null) {
-    notes.push({
-      path: 'filtered.multiphoton',
-      reason: 'six factorial moments are not enough: too many photons per pulse',
-    });
-  }
-  if (s.signal.multiphoton === null) {
-    notes.push({
-      path: 'signal.multiphoton',
-      reason: 'six factorial moments are not enough: too many photons per pulse',
-    });
-  }
-  if (!(s.emitted.mean > 0)) notes.push({ path: 'emitted.g2', reason: 'nothing is emitted' });
-  const count = (c: Sample['signal']) => ({
-    mean: c.mean,
-    single: c.single,
-    any: anyOf(c),
-    multiphoton: c.multiphoton,
-    g2: ratio(c.factorial2, c.mean),
-  });
-  return {
-    emitted: {
-      mean: s.emitted.mean,
-      factorial2: s.emitted.factorial2,
-      g2: ratio(s.emitted.factorial2, s.emitted.mean),
-      p: s.emitted.p,
-      multiphoton: s.emitted.multiphoton,
-    },
-    filtered: s.filtered && {
-      mean: s.filtered.mean,
-      factorial2: s.filtered.factorial2,
-      g2: ratio(s.filtered.factorial2, s.filtered.mean),
-      p: s.filtered.p,
-      multiphoton: s.filtered.multiphoton,
-    },
-    signal: count(s.signal),
-    collected: { ...count(s.collected), leakage: s.leakage },
-    populations: s.populations,
-    pulse: s.pulse,
-    phonons,
-    accuracy,
-    notes,
-  };
+  return { axes, nodes: driftNodes(design, axes) };
 }

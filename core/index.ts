@@ -12,6 +12,7 @@ export { buildGenerator, collectedDipoles, driveOperators, type Generator } from
 export { emitterModel, emitterModels } from './emitter/registry.js';
 export { type Accuracy, evaluate, PROMISED, UnsupportedDesign } from './evaluate.js';
 export * from './figures.js';
+export { type EvaluateGradient, evaluateGradient, type FigureGradient } from './gradient.js';
 export {
   type CountRequest,
   type CountResult,

@@ -7,19 +7,20 @@ import {
   seriesError,
   seriesHolds,
 } from './collection/moments.js';
-import type { Design } from './design.js';
+import type { RotatingFilter } from './counting/filtered.js';
+import type { Design, FilterSpec } from './design.js';
 import { type DriftNode, driftedDesign } from './drift/nodes.js';
 import type { Scheme } from './emitter/contract.js';
 import { collectedDipoles } from './emitter/generator.js';
 import { emitterModel } from './emitter/registry.js';
 import type { FigureTree, PulseFigures } from './figures.js';
-import { type Effort, PropagationError } from './kernels/count.js';
+import { type CountRequest, type Effort, PropagationError } from './kernels/count.js';
 import { type Resonance, schemeResonances, slowestFrame } from './kernels/frame.js';
 import { type Choice, chooseMethod, type DriveKind } from './phonons/choose.js';
 import type { PhononCount } from './phonons/contract.js';
 import { type PhononPlan, phononPlan } from './phonons/plan.js';
 import { DispersionError } from './pulse/dispersed.js';
-import { createDrive, type Drive, type DriveOptions } from './pulse/drive.js';
+import { createDrive, type DriveOptions, type PulseDrive } from './pulse/drive.js';
 import { pulseFigures } from './pulse/figures.js';
 import { HBAR, RAD_PER_PS_PER_GHZ } from './units/constants.js';
 
@@ -39,7 +40,7 @@ export interface Sample {
   readonly pulse: PulseFigures;
 }
 
-interface FilteredSample {
+export interface FilteredSample {
   readonly mean: number;
   readonly factorial2: number;
   readonly p: readonly number[] | null;
@@ -57,7 +58,7 @@ export interface SampleRun {
 }
 
 /** Fewest and most factorial moments behind a filter. */
-const FEWEST_MOMENTS = { bound: 4, estimate: 3 } as const;
+export const FEWEST_MOMENTS = { bound: 4, estimate: 3 } as const;
 const MOST_MOMENTS = 6;
 
 /** A design in the terms of the propagator, without drift. */
@@ -67,7 +68,7 @@ export interface Situation {
   readonly reference: number;
   /** Rotating frame relative to the nominal mean exciton line, 1/ps. */
   readonly frame: number;
-  readonly drive: Drive;
+  readonly drive: PulseDrive;
   /** Nominal centre of the collected line relative to the mean exciton line, 1/ps. */
   readonly line: number;
 }
@@ -94,7 +95,7 @@ export function situation(design: Design): Situation {
 }
 
 /** A pulse that spreads beyond what can be sampled is one more propagation that cannot be carried out. */
-function driveOf(pulse: Design['pulse'], options: DriveOptions): Drive {
+function driveOf(pulse: Design['pulse'], options: DriveOptions): PulseDrive {
   try {
     return createDrive(pulse, options);
   } catch (error) {
@@ -117,36 +118,31 @@ function collectedAxis(design: Design): number | 'all' {
   }
 }
 
+/** Survival of the signal: everything linear between emission and where brightness is quoted, the filter left out. */
+export function survival({ collection }: Design, scheme: Scheme): number {
+  const crossedHalf = scheme.projection === 'full' && collection.polarization === 'crossed' ? 0.5 : 1;
+  return collection.efficiency * crossedHalf;
+}
+
 /** Figures of one design at one drift node. */
 export function sampleDesign(nominal: Design, node: DriftNode, wanted: Effort): SampleRun {
   const design = driftedDesign(nominal, node);
   const where = situation(design);
-  const { scheme, line } = where;
-  const crossedHalf = scheme.projection === 'full' && design.collection.polarization === 'crossed' ? 0.5 : 1;
-  const eta = design.collection.efficiency * crossedHalf;
   const plan = planOf(design, where, node.shift / HBAR, wanted);
   // A hierarchy settles to 1e-3: a bound on the moment series far below that would only cost operators.
   const effort: Effort = plan.method === 'exact' ? { ...wanted, series: 'estimate' } : wanted;
-  const run = countDesign(design, where, node.shift / HBAR, eta, effort, plan);
-  const leakage = leakedPhotons(design, pulseFilter(design, line, where.reference));
-  const filtered = design.collection.filter ? filteredSample(run.moments, effort.series) : null;
-  const signal = filtered ? filteredSignal(run.moments, eta, effort.series) : emittedSignal(run.result, eta);
-  const v = run.result.values;
+  const run = countDesign(design, where, node.shift / HBAR, effort, plan);
+  const leakage = leakedPhotons(design, pulseFilter(design, where.line, where.reference));
   return {
-    sample: {
-      emitted: {
-        mean: v['mean'],
-        factorial2: v['factorial2'],
-        p: [v['p0'], v['p1'], v['p2'], v['p3']],
-        multiphoton: v['multiphoton'],
-      },
-      filtered,
-      signal,
-      collected: addPoisson(signal, leakage),
+    sample: assembleSample(
+      run.result.values,
+      run.result.populations,
+      run.moments,
       leakage,
-      populations: Object.fromEntries(scheme.levels.map((l, i) => [l.name, run.result.populations[i]])),
-      pulse: pulseFigures(design.pulse, where.drive, design.laser?.piPulse ?? null),
-    },
+      design,
+      where,
+      effort,
+    ),
     phonons: { method: plan.method, flags: run.result.flags },
     remarks: [...plan.remarks, ...run.result.remarks],
     steps: run.result.steps,
@@ -157,6 +153,39 @@ export function sampleDesign(nominal: Design, node: DriftNode, wanted: Effort): 
       run.seriesError,
       run.result.error,
     ),
+  };
+}
+
+/**
+ * The sample of a design from what was counted.
+ * @param values by target name, before losses
+ * @param moments factorial moments behind the filter; empty without one
+ */
+export function assembleSample(
+  values: Readonly<Record<string, number>>,
+  populations: readonly number[],
+  moments: readonly number[],
+  leakage: number,
+  design: Design,
+  { scheme, drive }: Situation,
+  { series }: Pick<Effort, 'series'>,
+): Sample {
+  const eta = survival(design, scheme);
+  const filtered = design.collection.filter ? filteredSample(moments, series) : null;
+  const signal = filtered ? filteredSignal(moments, eta, series) : emittedSignal(values, eta);
+  return {
+    emitted: {
+      mean: values['mean'],
+      factorial2: values['factorial2'],
+      p: [values['p0'], values['p1'], values['p2'], values['p3']],
+      multiphoton: values['multiphoton'],
+    },
+    filtered,
+    signal,
+    collected: addPoisson(signal, leakage),
+    leakage,
+    populations: Object.fromEntries(scheme.levels.map((l, i) => [l.name, populations[i]])),
+    pulse: pulseFigures(design.pulse, drive, design.laser?.piPulse ?? null),
   };
 }
 
@@ -193,34 +222,63 @@ interface CountRun {
   readonly seriesError: number;
 }
 
+/** What to count, without the filter. */
+export function emittedRequest(
+  design: Design,
+  { scheme, frame, drive }: Situation,
+  shift: number,
+  effort: Effort,
+): CountRequest {
+  const { collection } = design;
+  const dipoles = collectedDipoles(scheme, collection.line, collectedAxis(design));
+  const eta = survival(design, scheme);
+  const thinning = collection.filter === null && eta < 1 ? eta : null;
+  return { scheme, dipoles, drive, frame, shift, effort, thinning, filter: null };
+}
+
+/** The filter of a design in the rotating frame. */
+export function rotatingFilter(filter: FilterSpec, { line, frame }: Situation): RotatingFilter {
+  return {
+    kappa: filter.fwhm * RAD_PER_PS_PER_GHZ,
+    center: line + filter.center * RAD_PER_PS_PER_GHZ - frame,
+  };
+}
+
+/** What the moments found say: they suffice, or how many more would. */
+export type SeriesOutcome =
+  | { readonly kind: 'enough'; readonly error: number }
+  | { readonly kind: 'more'; readonly order: number };
+
+/** Whether a series is long enough for P(n≥2), or the highest order is reached; `error` is what it may leave. */
+export function judgeSeries(moments: readonly number[], rule: SeriesRule): SeriesOutcome {
+  const count = countFromMoments(moments, 1);
+  if (seriesHolds(count, rule)) return { kind: 'enough', error: seriesError(count, rule) };
+  if (moments.length >= MOST_MOMENTS) return { kind: 'enough', error: 0 };
+  return { kind: 'more', order: nextOrder(moments, rule) };
+}
+
+export const momentsOf = (values: Readonly<Record<string, number>>, order: number): number[] =>
+  Array.from({ length: order }, (_, k) => values[`m${k + 1}`]);
+
 /** Raises the number of moments until their own bound holds for P(n≥2), or the highest order is reached. */
 function countDesign(
   design: Design,
   where: Situation,
   shift: number,
-  eta: number,
   effort: Effort,
   plan: PhononPlan,
 ): CountRun {
-  const { scheme, frame, drive, line } = where;
-  const { collection } = design;
-  const dipoles = collectedDipoles(scheme, collection.line, collectedAxis(design));
-  const base = { scheme, dipoles, drive, frame, shift, effort };
-  if (!collection.filter) {
-    const result = plan.count({ ...base, thinning: eta < 1 ? eta : null, filter: null });
-    return { result, moments: [], seriesError: 0 };
-  }
-  const kappa = collection.filter.fwhm * RAD_PER_PS_PER_GHZ;
-  const center = line + collection.filter.center * RAD_PER_PS_PER_GHZ - frame;
-  const rule = effort.series;
-  let order: number = FEWEST_MOMENTS[rule];
+  const base = emittedRequest(design, where, shift, effort);
+  const { filter } = design.collection;
+  if (!filter) return { result: plan.count(base), moments: [], seriesError: 0 };
+  const rotating = rotatingFilter(filter, where);
+  let order: number = FEWEST_MOMENTS[effort.series];
   for (;;) {
-    const result = plan.count({ ...base, thinning: null, filter: { kappa, center, order } });
-    const moments = Array.from({ length: order }, (_, k) => result.values[`m${k + 1}`]);
-    const count = countFromMoments(moments, 1);
-    if (seriesHolds(count, rule)) return { result, moments, seriesError: seriesError(count, rule) };
-    if (order === MOST_MOMENTS) return { result, moments, seriesError: 0 };
-    order = nextOrder(moments, rule);
+    const result = plan.count({ ...base, filter: { ...rotating, order } });
+    const moments = momentsOf(result.values, order);
+    const series = judgeSeries(moments, effort.series);
+    if (series.kind === 'enough') return { result, moments, seriesError: series.error };
+    order = series.order;
   }
 }
 
@@ -258,8 +316,7 @@ function filteredSignal(moments: readonly number[], eta: number, rule: SeriesRul
   };
 }
 
-function emittedSignal(result: PhononCount, eta: number): Count {
-  const v = result.values;
+function emittedSignal(v: Readonly<Record<string, number>>, eta: number): Count {
   const whole = eta === 1;
   return {
     mean: eta * v['mean'],

@@ -28,16 +28,21 @@ export function piPulseEnergy(fwhm: number): number {
   return Math.PI ** 2 / (2 * Math.sqrt(Math.PI) * sigma);
 }
 
+/** Photons per pulse where brightness is quoted, for every unit (1/ps) of ∫|Ω|²dt that passes filter and analyser. */
+export function photonsPerEnergy({ laser, collection, emitter }: Design): number {
+  if (!laser?.piPulse) return 0;
+  const photons = laser.piPulse.energy / (FJ_PER_MEV * (HC / emitter.wavelength));
+  return (photons / piPulseEnergy(laser.piPulse.fwhm)) * collection.efficiency;
+}
+
 /**
  * Leaked laser photons per pulse where brightness is quoted: N_in · rejection · η · F. Behind an analyser crossed to
  * the first tone, light of the other polarisation passes without rejection.
  */
 export function leakedPhotons(design: Design, filter: PulseFilter | null): number {
-  const { laser, collection, pulse, emitter } = design;
+  const { laser, collection, pulse } = design;
   if (!laser?.piPulse) return 0;
-  const photons = laser.piPulse.energy / (FJ_PER_MEV * (HC / emitter.wavelength));
   const axis = collection.polarization === 'crossed' ? pulse.tones[0].polarization : null;
   const energy = transmittedEnergy(pulse, filter, { axis });
-  const reaching = laser.rejection * energy.parallel + energy.perpendicular;
-  return (photons / piPulseEnergy(laser.piPulse.fwhm)) * collection.efficiency * reaching;
+  return photonsPerEnergy(design) * (laser.rejection * energy.parallel + energy.perpendicular);
 }

@@ -105,3 +105,49 @@ function poissonAtLeastTwo(x: number): number {
   }
   return sum * Math.exp(-x);
 }
+
+/** What a number of a count distribution is, as weights of others. */
+export type CountWeights = Readonly<Partial<Record<keyof Count, number>>>;
+
+/**
+ * Weights of m_1 … m_K in p_0, p_1 and P(n≥2) after losses with survival η: `countFromMoments` is their sum (p_0 has 1 besides).
+ */
+export function momentWeights(order: number, eta: number): Record<'p0' | 'p1' | 'multiphoton', number[]> {
+  const p0: number[] = [];
+  let term = 1;
+  for (let k = 1; k <= order; k++) {
+    term *= -eta / k;
+    p0.push(term);
+  }
+  return {
+    p0,
+    p1: p0.map((t, i) => -(i + 1) * t),
+    multiphoton: p0.map((t, i) => i * t),
+  };
+}
+
+/** Derivatives of one number of `addPoisson(count, extra)` by the numbers of the count and by `extra`. */
+export function poissonWeights(
+  key: keyof Count,
+  count: Count,
+  extra: number,
+): { readonly count: CountWeights; readonly extra: number } {
+  const dark = Math.exp(-extra);
+  const p0 = count.p0 ?? Number.NaN;
+  const single = count.single ?? Number.NaN;
+  switch (key) {
+    case 'mean':
+      return { count: { mean: 1 }, extra: 1 };
+    case 'factorial2':
+      return { count: { factorial2: 1, mean: 2 * extra }, extra: 2 * (count.mean + extra) };
+    case 'p0':
+      return { count: { p0: dark }, extra: -p0 * dark };
+    case 'single':
+      return { count: { single: dark, p0: extra * dark }, extra: (p0 * (1 - extra) - single) * dark };
+    case 'multiphoton':
+      return {
+        count: { multiphoton: 1, single: -Math.expm1(-extra), p0: poissonAtLeastTwo(extra) },
+        extra: (single + p0 * extra) * dark,
+      };
+  }
+}
