@@ -1,11 +1,15 @@
-import { setImmediate } from 'node:timers/promises';
-import { evaluate } from '../../core/index.js';
+import { type Figures, PropagationError } from '../../core/index.js';
 import {
   applyParameters,
   type EvaluatedPoint,
+  type FiguresInput,
+  type FiguresResult,
   type FoundPoint,
   judge,
+  runTasks,
   type SearchOutcome,
+  type Task,
+  type TaskPool,
 } from '../../optimizers/index.js';
 import type { FrontDesign } from '../run/contract.js';
 import { BEST_FILE, designFile } from '../run/results.js';
@@ -46,16 +50,41 @@ export function outOfReach(study: Study, outcome: SearchOutcome): number[] {
   return levels.sort((a, b) => a - b);
 }
 
-/** The evaluation nearest to limits that none met, evaluated anew. */
-export function quoteNearest(study: Study, { nearest }: SearchOutcome): EvaluatedPoint | null {
-  if (nearest === null) return null;
-  const { values } = nearest;
-  return { values, figures: evaluate(applyParameters(study, values), 'quoted') };
-}
-
 export interface Quoted {
   readonly front: readonly FrontDesign[];
   readonly best: FrontDesign | null;
+  /** The evaluation nearest to limits that none met; null where some met them. */
+  readonly nearest: EvaluatedPoint | null;
+}
+
+const keyOf = ({ values }: EvaluatedPoint): string => JSON.stringify(values);
+
+/** The dearest first, so that no worker is left alone with it; propagation steps tell what a point costs. */
+function quotingTasks(study: Study, points: readonly EvaluatedPoint[]): Task[] {
+  const distinct = [...new Map(points.map((point) => [keyOf(point), point])).entries()];
+  return distinct
+    .sort(([, a], [, b]) => b.figures.accuracy.steps - a.figures.accuracy.steps)
+    .map(([id, { values }], index) => {
+      const input: FiguresInput = { designs: [applyParameters(study, values)], accuracy: 'quoted' };
+      return { id, kind: 'figures', index, budget: 1, input };
+    });
+}
+
+/** Figures at accuracy `quoted` by the key of their point; null when the signal was aborted meanwhile. */
+async function quotedFigures(
+  tasks: readonly Task[],
+  pool: TaskPool,
+  signal: AbortSignal,
+  onPoint: (done: number, total: number) => void,
+): Promise<ReadonlyMap<string, Figures> | null> {
+  const known = new Map<string, Figures>();
+  await runTasks(pool, tasks, signal, ({ id, summary }) => {
+    const [{ figures, failure }] = summary as readonly FiguresResult[];
+    if (figures === null) throw new PropagationError(failure);
+    known.set(id, figures);
+    onPoint(known.size, tasks.length);
+  });
+  return known.size < tasks.length ? null : known;
 }
 
 /**
@@ -66,36 +95,27 @@ export interface Quoted {
 export async function quoteFront(
   study: Study,
   outcome: SearchOutcome,
+  pool: TaskPool,
   signal: AbortSignal,
   onPoint: (done: number, total: number) => void,
 ): Promise<Quoted | null> {
   const chosen = chosenPoints(study, outcome);
-  const distinct = [...new Set(chosen.map(({ point }) => JSON.stringify(point.values)))];
-  const total = distinct.length + (outcome.best === null ? 0 : 1);
-  const known = new Map<string, FrontDesign>();
-  let done = 0;
-  const quote = async ({ level, slice, point }: Chosen, file: string): Promise<FrontDesign | null> => {
-    // Signals are heard between evaluations only.
-    await setImmediate();
-    if (signal.aborted) return null;
-    const { values, stage } = point;
-    const key = JSON.stringify(values);
-    const old = known.get(key);
-    const figures = old?.figures ?? evaluate(applyParameters(study, values), 'quoted');
-    const design = { level, slice, file, values, figures, stage };
-    known.set(key, design);
-    if (old === undefined || file === BEST_FILE) onPoint(++done, total);
-    return design;
-  };
-  const front: FrontDesign[] = [];
-  for (const point of chosen) {
-    const index = distinct.indexOf(JSON.stringify(point.point.values));
-    const design = await quote(point, designFile(index, distinct.length));
-    if (design === null) return null;
-    front.push(design);
-  }
-  const { best } = outcome;
-  if (best === null || study.goal.atLeast === null) return { front, best: null };
-  const design = await quote({ level: study.goal.atLeast, slice: null, point: best }, BEST_FILE);
-  return design && { front, best: design };
+  const { best, nearest } = outcome;
+  const others = [best, nearest].filter((point) => point !== null);
+  const tasks = quotingTasks(study, [...chosen.map(({ point }) => point), ...others]);
+  const figures = await quotedFigures(tasks, pool, signal, onPoint);
+  if (figures === null) return null;
+  const anew = <P extends EvaluatedPoint>(point: P): P => ({ ...point, figures: figures.get(keyOf(point))! });
+  const distinct = [...new Set(chosen.map(({ point }) => keyOf(point)))];
+  const front = chosen.map(({ level, slice, point }) => {
+    const { values, figures, stage } = anew(point);
+    const file = designFile(distinct.indexOf(keyOf(point)), distinct.length);
+    return { level, slice, file, values, figures, stage };
+  });
+  const { atLeast } = study.goal;
+  const bestDesign =
+    best === null || atLeast === null
+      ? null
+      : { level: atLeast, slice: null, file: BEST_FILE, ...anew(best) };
+  return { front, best: bestDesign, nearest: nearest && anew(nearest) };
 }

@@ -1,4 +1,10 @@
-import { type SearchOutcome, type SearchProgress, search } from '../../optimizers/index.js';
+import {
+  type SearchOutcome,
+  type SearchProgress,
+  search,
+  type TaskPool,
+  taskPool,
+} from '../../optimizers/index.js';
 import { frontPicture } from '../report/front-picture.js';
 import { threeDigits } from '../report/numbers.js';
 import { type Progress, progressBar } from '../report/progress.js';
@@ -8,14 +14,14 @@ import { explain } from '../run/explain/explanation.js';
 import { packageVersion } from '../run/package.js';
 import { writeResults } from '../run/results.js';
 import type { Context } from './contract.js';
-import { outOfReach, quoteFront, quoteNearest } from './quote.js';
+import { outOfReach, quoteFront } from './quote.js';
 import type { StudyFile } from './study-file.js';
 
 /** What one session of a run works with. */
 interface Session {
   readonly file: StudyFile;
   readonly run: Run;
-  readonly workers: number;
+  readonly pool: TaskPool;
   readonly signal: AbortSignal;
   readonly progress: Progress;
 }
@@ -27,12 +33,13 @@ function bestText({ best }: SearchProgress): string {
 
 /** Searches and keeps the ledger; `wall` is the time of all sessions up to the last finished task, s. */
 async function searchWithLedger(session: Session): Promise<{ outcome: SearchOutcome; wall: number }> {
-  const { file, run, workers, signal, progress } = session;
+  const { file, run, pool, signal, progress } = session;
   const earlier = run.entries[run.entries.length - 1]?.wall ?? 0;
   const began = performance.now();
   let wall = earlier;
   const outcome = await search(file.study, {
-    workers,
+    workers: pool.size,
+    pool,
     signal,
     completed: new Map(run.entries.map(({ task }) => [task.id, task])),
     onTask: async (task) => {
@@ -52,18 +59,14 @@ async function work(session: Session): Promise<RunResult | null> {
   const { outcome, wall } = await searchWithLedger(session);
   if (outcome.kind === 'interrupted') return null;
   const total = study.search.evaluations;
-  const quoted = await quoteFront(study, outcome, signal, (done, points) =>
+  const quoted = await quoteFront(study, outcome, session.pool, signal, (done, points) =>
     progress.update({ stage: `quoting design ${done} of ${points}`, done: total, total, best: '' }),
   );
   if (quoted === null) return null;
   const result: RunResult = {
     ...{ study, hash, version: packageVersion(), wall },
-    ...{
-      front: quoted.front,
-      best: quoted.best,
-      nearest: quoteNearest(study, outcome),
-      outOfReach: outOfReach(study, outcome),
-    },
+    ...quoted,
+    outOfReach: outOfReach(study, outcome),
     ...{ archive: outcome.archive, outcome, explanation: explain(study, outcome, quoted.front) },
   };
   await writeResults(session.run.directory, result, await frontPicture(result));
@@ -86,10 +89,12 @@ export async function runSession(
   const onInterrupt = () => abort.abort();
   signals.once('SIGINT', onInterrupt);
   const progress = progressBar(context.streams.stderr, 'evaluations');
+  const pool = taskPool(file.study, workers);
   try {
-    return await work({ file, run, workers, signal: abort.signal, progress });
+    return await work({ file, run, pool, signal: abort.signal, progress });
   } finally {
     progress.stop();
+    await pool.close();
     signals.off('SIGINT', onInterrupt);
     await run.close();
   }
