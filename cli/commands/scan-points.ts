@@ -1,12 +1,11 @@
-import { setImmediate } from 'node:timers/promises';
+import { type Accuracy, type Design, emitterModel } from '../../core/index.js';
 import {
-  type Accuracy,
-  type Design,
-  emitterModel,
-  evaluate,
-  type Figures,
-  PropagationError,
-} from '../../core/index.js';
+  type FiguresInput,
+  type FiguresResult,
+  runTasks,
+  type Task,
+  taskPool,
+} from '../../optimizers/index.js';
 import { progressBar } from '../report/progress.js';
 import { type Scan, valuesAt } from '../report/scan-report.js';
 import { type FigureShape, figurePaths } from '../run/columns.js';
@@ -93,33 +92,75 @@ function shapeFor({ emitter, collection, laser, drift }: Design): FigureShape {
   };
 }
 
-async function evaluatePoints(plan: Plan, context: Context): Promise<(Figures | null)[]> {
-  const total = pointCount(plan);
-  const progress = progressBar(context.streams.stderr, 'points');
-  const points: (Figures | null)[] = [];
-  try {
-    for (let index = 0; index < total; index++) {
-      if (index % 8 === 0) await setImmediate();
-      progress.update({ stage: 'scan', done: index, total, best: '' });
-      try {
-        points.push(evaluate(studyAt(plan, index).study.design, plan.accuracy));
-      } catch (error) {
-        if (!(error instanceof PropagationError)) throw error;
-        if (!points.includes(null)) context.note(`no figures at point ${index + 1}: ${error.message}`);
-        points.push(null);
-      }
-    }
-  } finally {
-    progress.stop();
+/** Points of a task: some milliseconds of work at least. */
+const CHUNK = 4;
+
+/** Reads the study at one point after the other, while the workers evaluate earlier ones. */
+function* scanTasks(plan: Plan, total: number): Generator<Task> {
+  for (let begin = 0; begin < total; begin += CHUNK) {
+    const indices = Array.from({ length: Math.min(CHUNK, total - begin) }, (_, i) => begin + i);
+    const designs = indices.map((index) => studyAt(plan, index).study.design);
+    const input: FiguresInput = { designs, accuracy: plan.accuracy };
+    yield {
+      id: `points ${begin + 1} to ${begin + designs.length}`,
+      kind: 'figures',
+      index: begin,
+      budget: 1,
+      input,
+    };
   }
-  return points;
 }
 
-export async function scanOf(plan: Plan, figures: readonly string[], context: Context): Promise<Scan> {
+/** What the points gave, in their order; null when the signal was aborted before all were done. */
+async function evaluatePoints(
+  plan: Plan,
+  spec: Study,
+  { workers, signal }: ScanEffort,
+  context: Context,
+): Promise<FiguresResult[] | null> {
+  const total = pointCount(plan);
+  const progress = progressBar(context.streams.stderr, 'points');
+  const pool = taskPool(spec, Math.min(workers, Math.ceil(total / CHUNK)));
+  const results = new Array<FiguresResult>(total);
+  let done = 0;
+  const show = () => progress.update({ stage: 'scan', done, total, best: '' });
+  try {
+    show();
+    await runTasks(pool, scanTasks(plan, total), signal, ({ summary }, { index }) => {
+      for (const [i, result] of (summary as readonly FiguresResult[]).entries()) {
+        results[index + i] = result;
+        done++;
+      }
+      show();
+    });
+  } finally {
+    progress.stop();
+    await pool.close();
+  }
+  return done < total ? null : results;
+}
+
+/** How a scan is carried out; its result does not depend on it. */
+export interface ScanEffort {
+  readonly workers: number;
+  readonly signal: AbortSignal;
+}
+
+/** @returns null when the signal was aborted before all points were done */
+export async function scanOf(
+  plan: Plan,
+  figures: readonly string[],
+  effort: ScanEffort,
+  context: Context,
+): Promise<Scan | null> {
   const first = studyAt(plan, 0);
   const shape = shapeFor(fixedDesign(first, 'scan'));
   const shown = shownFigures(figures, first.study, shape, plan.together ? 1 : plan.overs.length);
-  const points = await evaluatePoints(plan, context);
+  const results = await evaluatePoints(plan, first.study, effort, context);
+  if (results === null) return null;
+  const missing = results.findIndex(({ failure }) => failure !== null);
+  if (missing >= 0) context.note(`no figures at point ${missing + 1}: ${results[missing].failure}`);
+  const points = results.map((result) => result.figures);
   if (points.every((point) => point === null)) throw new UserError('no point of the scan could be evaluated');
   return {
     title: first.study.title || plan.file.path,

@@ -4,7 +4,8 @@ import { scanCsv, scanDocument, scanPicture, scanText } from '../report/scan-rep
 import { fileError, UserError } from '../run/user-error.js';
 import { writeWhole } from '../run/whole-file.js';
 import type { Command } from './contract.js';
-import { JSON_OPTION, once, SET_OPTION } from './options.js';
+import { untilInterrupted } from './interrupt.js';
+import { JSON_OPTION, once, SET_OPTION, workerCount } from './options.js';
 import { planOf, scanOf } from './scan-points.js';
 
 async function checkTarget(base: string): Promise<void> {
@@ -51,6 +52,12 @@ export const scan: Command = {
         describe: 'path of the files without .csv and .svg (<study>-scan when left out)',
         coerce: once('out'),
       })
+      .option('workers', {
+        type: 'string',
+        requiresArg: true,
+        describe: 'worker threads (all cores when left out); the result does not depend on it',
+        coerce: workerCount,
+      })
       .option('json', JSON_OPTION)
       .example('pulsewright scan design.yaml --over "pulse.tones.0.area=0 pi..4 pi:81"', 'Rabi oscillation')
       .example(
@@ -69,7 +76,15 @@ export const scan: Command = {
     const base = asked ?? `${basename(path, extname(path))}-scan`;
     const files = !json || asked !== undefined;
     if (files) await checkTarget(base);
-    const result = await scanOf(plan, (args['figure'] as unknown[]).map(String), context);
+    const workers = workerCount(args['workers'] === undefined ? undefined : String(args['workers']));
+    const figures = (args['figure'] as unknown[]).map(String);
+    const result = await untilInterrupted(context, (signal) =>
+      scanOf(plan, figures, { workers, signal }, context),
+    );
+    if (result === null) {
+      context.note('stopped; nothing was written');
+      return 130;
+    }
     if (files) {
       await writeWhole(`${base}.csv`, scanCsv(result));
       await writeWhole(`${base}.svg`, await scanPicture(result));

@@ -14,6 +14,7 @@ import { explain } from '../run/explain/explanation.js';
 import { packageVersion } from '../run/package.js';
 import { writeResults } from '../run/results.js';
 import type { Context } from './contract.js';
+import { untilInterrupted } from './interrupt.js';
 import { outOfReach, quoteFront } from './quote.js';
 import type { StudyFile } from './study-file.js';
 
@@ -83,19 +84,13 @@ export async function runSession(
   workers: number,
   context: Context,
 ): Promise<RunResult | null> {
-  const abort = new AbortController();
-  const signals = context.streams.signals ?? process;
-  // Only the first one is caught: a second Ctrl-C ends the process at once, and the ledger is sound all the same.
-  const onInterrupt = () => abort.abort();
-  signals.once('SIGINT', onInterrupt);
   const progress = progressBar(context.streams.stderr, 'evaluations');
   const pool = taskPool(file.study, workers);
   try {
-    return await work({ file, run, pool, signal: abort.signal, progress });
+    return await untilInterrupted(context, (signal) => work({ file, run, pool, signal, progress }));
   } finally {
     progress.stop();
     await pool.close();
-    signals.off('SIGINT', onInterrupt);
     await run.close();
   }
 }

@@ -5,6 +5,7 @@ import { lockRun } from '../run/lock.js';
 import { UserError } from '../run/user-error.js';
 import { writeWhole } from '../run/whole-file.js';
 import type { Command, Context, ExitCode } from './contract.js';
+import { untilInterrupted } from './interrupt.js';
 import { JSON_OPTION, workerCount } from './options.js';
 import { studyOf, verifyDesigns } from './verify-designs.js';
 
@@ -65,17 +66,9 @@ export const verify: Command = {
       .example('pulsewright verify run', 'quoted against independently computed figures, point by point')
       .example('pulsewright verify run --workers 1', 'after Ctrl-C or a crash: goes on where it was'),
   async run(args, context) {
-    const abort = new AbortController();
-    const signals = context.streams.signals ?? process;
-    // Only the first one is caught: a second Ctrl-C ends the process at once, and the ledger is sound all the same.
-    const onInterrupt = () => abort.abort();
-    signals.once('SIGINT', onInterrupt);
     const directory = String(args['dir']);
     const workers = workerCount(args['workers'] === undefined ? undefined : String(args['workers']));
-    try {
-      return await alone({ directory, workers, json: args['json'] === true }, abort.signal, context);
-    } finally {
-      signals.off('SIGINT', onInterrupt);
-    }
+    const request = { directory, workers, json: args['json'] === true };
+    return untilInterrupted(context, (signal) => alone(request, signal, context));
   },
 };

@@ -1,5 +1,7 @@
+import { EventEmitter } from 'node:events';
 import { existsSync, readFileSync } from 'node:fs';
 import { join } from 'node:path';
+import { setTimeout } from 'node:timers/promises';
 import { describe, expect, it } from 'vitest';
 import { parseOver } from '../../../cli/commands/over.js';
 import { csvCells, FIXED, FREE, freshFolder, invoke, studyFile } from './invoke.js';
@@ -157,6 +159,50 @@ describe('scan', () => {
     const { code, err } = await invoke(['scan', studyFile(study), ...argv]);
     expect(code).toBe(2);
     expect(err).toContain(message);
+  });
+
+  it('gives the same bytes for one, two and four workers, points without figures included', async () => {
+    const study = studyFile(FIXED.replace('1 pi }', '1 pi, tod: 1 ps^3 }'));
+    const scanned = async (workers: string) => {
+      const base = join(freshFolder(), 'map');
+      const argv = [
+        ...['scan', study, '--accuracy', 'search', '--out', base, '--workers', workers],
+        ...['--over', 'tones.0.area=0.5 pi..1 pi:3', '--over', 'tones.0.gdd=0 ps^2..1000000 ps^2:5'],
+      ];
+      const { code, err } = await invoke(argv);
+      expect(code).toBe(0);
+      expect(err).toContain('no figures at point');
+      return [readFileSync(`${base}.csv`, 'utf8'), readFileSync(`${base}.svg`, 'utf8'), err];
+    };
+    const one = await scanned('1');
+    expect(csvCells(one[0])).toHaveLength(16);
+    expect(await scanned('2')).toEqual(one);
+    expect(await scanned('4')).toEqual(one);
+  });
+
+  it.each(['1', '2'])('stops on SIGINT with %s workers and writes nothing', async (workers) => {
+    const base = join(freshFolder(), 'long');
+    const signals = new EventEmitter();
+    const argv = ['scan', studyFile(FIXED), '--over', 'tones.0.area=0 pi..9 pi:20000', '--out', base];
+    const pending = invoke([...argv, '--workers', workers], signals);
+    while (signals.listenerCount('SIGINT') === 0) await new Promise((resume) => setImmediate(resume));
+    await setTimeout(300);
+    signals.emit('SIGINT');
+    const { code, out, err } = await pending;
+    expect(code).toBe(130);
+    expect(out).toBe('');
+    expect(err).toContain('stopped; nothing was written');
+    expect(existsSync(`${base}.csv`)).toBe(false);
+    expect(signals.listenerCount('SIGINT')).toBe(0);
+  });
+
+  it('names a point whose study has a fault, whatever thread is at work', async () => {
+    const argv = ['scan', studyFile(FIXED), '--over', 'tones.0.fwhm=1 ps..5 ps:12', '--workers', '2'];
+    const limited = [...argv, '--over', 'collection.efficiency=0.5..1.5:11'];
+    const { code, err } = await invoke(limited);
+    expect(code).toBe(2);
+    expect(err).toContain('collection.efficiency: got 1.1');
+    expect(err).not.toContain('internal error');
   });
 
   it('steps evenly, ends exact', () => {

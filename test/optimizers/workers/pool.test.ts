@@ -1,7 +1,14 @@
 import { describe, expect, it } from 'vitest';
-import { type ProblemSpec, type SearchOutcome, search, type TaskResult } from '../../optimizers/index.js';
-import { workerPool } from '../../optimizers/workers/pool.js';
-import { range, toySpec } from './toy.js';
+import { UnsupportedDesign } from '../../../core/index.js';
+import {
+  type FiguresInput,
+  type ProblemSpec,
+  type SearchOutcome,
+  search,
+  type TaskResult,
+} from '../../../optimizers/index.js';
+import { workerPool } from '../../../optimizers/workers/pool.js';
+import { range, toySpec } from '../toy.js';
 
 // Worker threads run the built entry (dist/), with core's own evaluation. What is promised: see `search`.
 
@@ -50,6 +57,30 @@ describe('worker threads', () => {
     expect(good.evaluations).toBe(1);
     await pool.close();
     await expect(pool.run(task)).rejects.toThrow('closed');
+  });
+
+  it('keep the class of an error about a design', async () => {
+    const spec = realSpec(10);
+    const pool = workerPool(spec, 1);
+    const hot = { coupling: 0.03, cutoff: 2.2, temperature: 4000, method: 'auto' as const };
+    const design = { ...spec.design, emitter: { ...spec.design.emitter, phonons: hot } };
+    const input: FiguresInput = { designs: [spec.design, design], accuracy: 'search' };
+    const task = { id: 'hot', kind: 'figures', index: 0, budget: 1, input };
+    await expect(pool.run(task)).rejects.toBeInstanceOf(UnsupportedDesign);
+    await pool.close();
+  });
+
+  it('share out the batches of one task without changing its result', async () => {
+    const spec = realSpec(10);
+    const points = Array.from({ length: 24 }, (_, i) => [i / 23, ((5 * i) % 24) / 23]);
+    const task = { id: '0-x', kind: 'sample', index: 0, budget: 24, input: { points } };
+    const results: unknown[] = [];
+    for (const size of [1, 3]) {
+      const pool = workerPool(spec, size);
+      results.push(await pool.run(task));
+      await pool.close();
+    }
+    expect(results[1]).toEqual(results[0]);
   });
 
   it('reject instead of hanging when the worker cannot even build the problem', async () => {
