@@ -67,9 +67,13 @@ function againLines({ restarts }: Explanation): string[] {
 
 function growthLine({ growth }: Explanation): string {
   if (growth === null) return 'twice the budget: not told: too few stages for an estimate';
-  const gain = percent(growth.byDoubling);
-  const late = percent(growth.lastHalf);
-  return `twice the budget: about ${gain} more hypervolume (an estimate: the second half of this one gave ${late})`;
+  const { byDoubling, lastHalf, quarterBefore } = growth;
+  const [least, most] = [percent(byDoubling.least), percent(byDoubling.most)];
+  const gain = least === most ? `about ${most}` : `${least} to ${most}`;
+  return [
+    `twice the budget: ${gain} more hypervolume (an estimate: the second half of this budget gave ${percent(lastHalf)},`,
+    `  the quarter before it ${percent(quarterBefore)})`,
+  ].join('\n');
 }
 
 /** How the front was found, as a user reads it at the end of a run. */

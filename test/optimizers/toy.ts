@@ -34,7 +34,7 @@ export function toyEvaluate(design: Design): Figures {
       energy_pi_units: 1,
       duration_ps: duration,
       bandwidth_ghz: 1,
-      energy_fj: null,
+      energy_fj: tone.area ** 2 / tone.fwhm,
       peak_rabi_per_ps: tone.area / duration,
     },
     phonons: { method: 'none', flags: [] },

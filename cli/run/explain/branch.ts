@@ -1,4 +1,11 @@
-import { type Design, GHZ_PER_MEV, HBAR, pulseFigures, situation, type Tone } from '../../../core/index.js';
+import {
+  type Design,
+  emitterModel,
+  GHZ_PER_MEV,
+  HBAR,
+  pulseFigures,
+  type Tone,
+} from '../../../core/index.js';
 
 const EXCITON = 'exciton line';
 
@@ -29,7 +36,9 @@ function turn(area: number): string {
 
 /** What detunings count from: the resonance of that name and its distance from the pulse reference, meV. */
 function resonances(design: Design): { readonly name: string; readonly center: number }[] {
-  const { scheme, reference } = situation(design);
+  const { emitter, pulse } = design;
+  const scheme = emitterModel(emitter.model).scheme(emitter);
+  const reference = pulse.reference === 'two-photon' ? (scheme.twoPhoton ?? 0) : 0;
   const exciton = { name: EXCITON, center: -reference * HBAR };
   if (scheme.twoPhoton === null) return [exciton];
   return [exciton, { name: 'two-photon resonance', center: (scheme.twoPhoton - reference) * HBAR }];

@@ -27,8 +27,8 @@ export interface Explanation {
   readonly doubts: readonly string[];
 }
 
-/** Estimated gain by twice the budget, as a share of the hypervolume, that makes a front doubtful. */
-const DOUBTFUL_GAIN = 0.005;
+/** Share of the hypervolume that, when it came in the second half of the evaluations, makes a front doubtful. */
+const DOUBTFUL_GAIN = 0.01;
 
 export const percent = (share: number): string => `${Number((100 * share).toPrecision(2))} %`;
 
@@ -56,9 +56,9 @@ function partsOf(study: Study, front: readonly FrontDesign[], order: readonly st
 
 function doubtsOf(growth: Growth | null, best: Restarts | null): string[] {
   const doubts: string[] = [];
-  if (growth !== null && growth.byDoubling > DOUBTFUL_GAIN) {
+  if (growth !== null && growth.lastHalf > DOUBTFUL_GAIN) {
     doubts.push(
-      `the hypervolume was still growing: ${percent(growth.lastHalf)} of it came in the second half of the evaluations`,
+      `the hypervolume was still growing: ${percent(growth.lastHalf)} of it came in the second half of the evaluations (more than ${percent(DOUBTFUL_GAIN)})`,
     );
   }
   if (best !== null && best.elsewhere === 0)
@@ -101,7 +101,8 @@ export function explanationDocument(explanation: Explanation): unknown {
       estimated_gain: growth.byDoubling,
       gain_of_second_half: growth.lastHalf,
       gain_of_quarter_before: growth.quarterBefore,
-      meaning: 'shares of the hypervolume; the first is an estimate from the other two',
+      meaning:
+        'shares of the hypervolume; the first is an estimate from the other two: least if the growth goes on to slow down as it did, most if it goes on as in the second half',
     },
     probably_not_converged: doubts,
   };

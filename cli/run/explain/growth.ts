@@ -6,10 +6,11 @@ export interface Growth {
   readonly lastHalf: number;
   readonly quarterBefore: number;
   /**
-   * Estimated gain by as many evaluations again, as a share of the final hypervolume: the last doubling's gain times
-   * its ratio to the doubling before, at most 1. An estimate: it cannot know of a branch that was never seen.
+   * Estimated gain by as many evaluations again, as a share of the final hypervolume. Most: that of the last doubling
+   * again; least: that times its ratio to the doubling before it, as if the growth went on to slow down like that. It
+   * cannot know of a branch that was never seen.
    */
-  readonly byDoubling: number;
+  readonly byDoubling: { readonly least: number; readonly most: number };
 }
 
 /** Fewer stages than this tell no trend. */
@@ -35,5 +36,6 @@ export function growthOf(stages: readonly StageReport[]): Growth | null {
   const [quarter, half] = [volumeAt(stages, total / 4), volumeAt(stages, total / 2)];
   const [late, early] = [final - half, half - quarter];
   const ratio = early > 0 ? Math.min(1, late / early) : 1;
-  return { lastHalf: late / final, quarterBefore: early / final, byDoubling: (late * ratio) / final };
+  const lastHalf = late / final;
+  return { lastHalf, quarterBefore: early / final, byDoubling: { least: lastHalf * ratio, most: lastHalf } };
 }
