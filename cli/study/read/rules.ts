@@ -124,8 +124,9 @@ const NEEDS_PI_PULSE = 'laser.pi_pulse with energy and fwhm';
 /** Energies in fJ and leaked photons follow from the measured π pulse. */
 const energies: Rule = (raw, report) => {
   const { laser, goal } = raw;
-  if (laser === undefined || laser?.piPulse === undefined) return;
-  if (laser?.piPulse) return;
+  // Undefined is faulty by itself.
+  const piPulse = laser === null ? null : laser?.piPulse;
+  if (piPulse !== null) return;
   if (goal?.limits?.['pulse.energyFj']) {
     report('goal.limits.pulse.energy_fj', `${NEEDS_PI_PULSE}: energies in fJ follow from it`, 'a limit');
   }

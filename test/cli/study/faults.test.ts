@@ -345,6 +345,31 @@ const single: [string, string, string][] = [
     '9:19 goal.limits.pulse.duration_ps: got an empty mapping; needs at_most, at_least or both',
   ],
   [
+    'limit on the energy without a measured pulse',
+    after('goal: { limits: { pulse.energy_fj: { at_most: 12 fJ } } }'),
+    '9:19 goal.limits.pulse.energy_fj: got a limit; needs laser.pi_pulse with energy and fwhm: energies in fJ follow from it',
+  ],
+  [
+    'limit on the Rabi frequency as an energy',
+    after('goal: { limits: { pulse.peak_rabi_per_ps: { at_most: 2 meV } } }'),
+    '9:54 goal.limits.pulse.peak_rabi_per_ps.at_most: got 2 meV (an energy); needs a Rabi frequency in 1/ps, rad/ps, 1/ns or rad/ns, such as 0.4 1/ps',
+  ],
+  [
+    'third axis of energy without a measured pulse',
+    after('goal: { third: { axis: energy } }'),
+    '9:24 goal.third.axis: got energy; needs laser.pi_pulse with energy and fwhm: energies in fJ follow from it',
+  ],
+  [
+    'third axis without a name',
+    after('goal: { third: { slices: 3 } }'),
+    '9:9 goal.third.axis: got nothing; needs one of energy, leakage, mean (energy: of the pulse, in fJ, minimised (needs laser.pi_pulse); leakage: leaked laser photons per pulse, minimised; mean: ⟨n⟩ of what is collected, maximised)',
+  ],
+  [
+    'one slice',
+    after('goal: { third: { axis: mean, slices: 1 } }'),
+    '9:38 goal.third.slices: got 1; needs a whole number from 2 to 6',
+  ],
+  [
     'limit without its unit',
     after('goal: { limits: { pulse.duration_ps: { at_most: 12 } } }'),
     '9:49 goal.limits.pulse.duration_ps.at_most: got 12 (no unit); needs a time in fs, ps, ns or us, such as 5 ps',
