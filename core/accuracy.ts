@@ -1,4 +1,5 @@
 import type { FigureTree } from './figures.js';
+import type { DriftTree } from './tree.js';
 
 /** Smallest value at which a relative accuracy is promised. */
 const FLOOR = 1e-7;
@@ -31,5 +32,26 @@ export function figureDifference(a: FigureTree, b: FigureTree): number {
     relative(x.g2, y.g2);
     relative(x.multiphoton, y.multiphoton);
   }
+  return worst;
+}
+
+/** Largest relative difference of what is emitted, of the signal and of what is collected, quantiles included. */
+export function relativeDifference(a: DriftTree, b: DriftTree): number {
+  const parts = (tree: DriftTree): object[] => [
+    tree.emitted,
+    tree.signal,
+    tree.collected,
+    ...(tree.quantile ? [tree.quantile.signal, tree.quantile.collected] : []),
+  ];
+  const others = parts(a);
+  let worst = 0;
+  parts(b).forEach((part, i) => {
+    const other: Readonly<Record<string, unknown>> = { ...others[i] };
+    for (const [name, y] of Object.entries(part)) {
+      const x = other[name];
+      if (typeof x !== 'number' || typeof y !== 'number') continue;
+      worst = Math.max(worst, Math.abs(x - y) / Math.max(Math.abs(y), FLOOR));
+    }
+  });
   return worst;
 }

@@ -1,11 +1,11 @@
-import { figureDifference } from './accuracy.js';
-import type { Design } from './design.js';
+import { figureDifference, relativeDifference } from './accuracy.js';
+import type { Design, PhononSpec } from './design.js';
 import { type DriftAxes, type DriftNode, driftAxes, driftNodes } from './drift/nodes.js';
 import type { Figures, Note } from './figures.js';
 import type { Effort } from './kernels/count.js';
 import { phononRangeProblem } from './phonons/count.js';
 import { pulseFigures } from './pulse/figures.js';
-import { sampleDesign } from './sample.js';
+import { orThrow, sampleAll } from './run.js';
 import { type DriftTree, treeOf } from './tree.js';
 
 /**
@@ -45,10 +45,15 @@ export function evaluate(design: Design, accuracy: Accuracy): Figures {
   return { ...evaluateDrifting(wanted, accuracy, still), nominal };
 }
 
-function withExactPhonons(design: Design): Design {
+/** The design with the exact phonon method; itself without phonons. */
+export function withExactPhonons(design: Design): Design {
+  return withPhononMethod(design, 'exact');
+}
+
+function withPhononMethod(design: Design, method: PhononSpec['method']): Design {
   const { phonons } = design.emitter;
   if (phonons === null) return design;
-  return { ...design, emitter: { ...design.emitter, phonons: { ...phonons, method: 'exact' } } };
+  return { ...design, emitter: { ...design.emitter, phonons: { ...phonons, method } } };
 }
 
 export function checkSupport(design: Design): void {
@@ -73,27 +78,55 @@ interface Still {
   readonly effort: Effort;
 }
 
-/** The exact phonon method settles by its own size; what finer steps could add lies far below that. */
-const EXACT: Effort = { ...LADDER[0], nodes: NODE_EFFORTS[1] };
+/**
+ * The exact phonon method settles by its own size, to 1e-3; what finer steps and most drift nodes could add lies far
+ * below that: half the nodes leave the square root of what all leave.
+ */
+const EXACT_NODES = [0.5, 0.7, 1];
+const EXACT: Effort = { ...LADDER[0], nodes: EXACT_NODES[0] };
+/** Relative error of means that too few nodes may leave beside the exact phonon method. */
+const ENOUGH_FOR_EXACT = 2e-4;
+
+const isExact = (design: Design): boolean => hasPhonons(design) && design.emitter.phonons?.method === 'exact';
 
 /** The one effort of an accuracy that does not compare two; null where two must agree. */
 function singleEffort(design: Design, accuracy: Accuracy): Effort | null {
-  if (accuracy === 'search') return SEARCH;
-  return hasPhonons(design) && design.emitter.phonons?.method === 'exact' ? EXACT : null;
+  if (accuracy === 'search') return isExact(design) ? { ...SEARCH, nodes: EXACT.nodes } : SEARCH;
+  return isExact(design) ? EXACT : null;
 }
 
 function evaluateStill(design: Design, accuracy: Accuracy): Still {
   const effort = singleEffort(design, accuracy);
-  if (effort) return { tree: evaluateOnce(design, effort), effort };
+  if (effort) {
+    const { tree, tower } = runOnce(design, effort);
+    return { tree, effort: tower ? { ...effort, tower } : effort };
+  }
   const { tree, estimate, enough } = climb(design, accuracy === 'verified' ? VERIFICATION : LADDER);
   return { tree: withEstimate(tree, estimate), effort: { ...enough, checked: true } };
 }
 
-/** Steps are judged by the design without drift, which is evaluated anyway. */
+/** Steps, and the size of a phonon hierarchy, are judged by the design without drift, which is evaluated anyway. */
 function evaluateDrifting(design: Design, accuracy: Accuracy, still: Still): DriftTree {
-  const effort = singleEffort(design, accuracy);
-  if (effort) return evaluateOnce(design, effort);
+  if (accuracy === 'search') return evaluateOnce(design, still.effort);
+  if (isExact(design)) {
+    const { nodes, error } = nodesForExact(design);
+    const tree = evaluateOnce(design, { ...still.effort, nodes });
+    const notes = [...tree.notes, ...still.tree.notes.filter(({ path }) => path === 'phonons')];
+    const error_estimate = Math.max(tree.accuracy.error_estimate, error);
+    return { ...tree, notes, accuracy: { ...tree.accuracy, error_estimate } };
+  }
   return settleNodes(design, still.effort, still.tree.accuracy.error_estimate);
+}
+
+/** How many drift nodes suffice beside the exact phonon method, judged by a second-order one. */
+function nodesForExact(design: Design): { readonly nodes: number; readonly error: number } {
+  const cheap = withPhononMethod(design, 'auto');
+  const fine = evaluateOnce(cheap, { ...SEARCH, nodes: NODE_EFFORTS[1] });
+  for (const nodes of EXACT_NODES) {
+    const error = relativeDifference(evaluateOnce(cheap, { ...SEARCH, nodes }), fine);
+    if (error <= ENOUGH_FOR_EXACT || nodes === EXACT_NODES[EXACT_NODES.length - 1]) return { nodes, error };
+  }
+  throw new Error('no drift nodes to choose from');
 }
 
 /** Finer steps until two runs agree; `enough` is the coarser effort of the two, whose error the estimate bounds. */
@@ -133,18 +166,29 @@ function withEstimate(tree: DriftTree, estimate: number): DriftTree {
   return { ...tree, notes, accuracy: { ...tree.accuracy, error_estimate: estimate } };
 }
 
-function evaluateOnce(design: Design, effort: Effort): DriftTree {
+const evaluateOnce = (design: Design, effort: Effort): DriftTree => runOnce(design, effort).tree;
+
+/** @returns with the size that a phonon hierarchy settled at, where there is one */
+function runOnce(
+  design: Design,
+  effort: Effort,
+): { readonly tree: DriftTree; readonly tower: Effort['tower'] } {
   const { axes, nodes } = driftGrid(design, effort);
-  const runs = nodes.map((node) => sampleDesign(design, node, effort));
-  return treeOf(design, axes, nodes, runs);
+  const runs = sampleAll(
+    nodes.map((node) => ({ nominal: design, node })),
+    effort,
+  ).map(orThrow);
+  return { tree: treeOf(design, axes, nodes, runs), tower: runs[0].tower };
 }
+
+const DURATION = new Set(['duration_ps'] as const);
 
 /** The nodes over which a design is averaged. */
 export function driftGrid(
   design: Design,
   effort: Effort,
 ): { readonly axes: DriftAxes; readonly nodes: readonly DriftNode[] } {
-  const duration = design.drift ? pulseFigures(design.pulse).duration_ps : 0;
+  const duration = design.drift ? pulseFigures(design.pulse, null, null, DURATION).duration_ps : 0;
   const axes = driftAxes(design, duration, effort.nodes);
   return { axes, nodes: driftNodes(design, axes) };
 }

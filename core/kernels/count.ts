@@ -43,7 +43,7 @@ export interface Effort {
   /** `reference` leaves the fast kernels out, for a check that shares no code with them; `any` when left out. */
   readonly kernel?: 'any' | 'reference';
   /** Size that settled the exact phonon method for the same design without drift; it is not judged again. */
-  readonly tower?: { readonly terms: number; readonly depth: number; readonly error: number };
+  readonly tower?: { readonly terms: number; readonly depth: number; readonly error: number } | undefined;
 }
 
 export interface CountResult {

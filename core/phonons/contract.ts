@@ -18,7 +18,7 @@ export interface PhononCount extends CountResult {
   /** Relative error of the figures that the treatment of the bath leaves (fit, depth), without the method's own nature. */
   readonly error: number;
   /** Where the method settled its size: enough for neighbouring designs too. */
-  readonly tower?: SettledSize;
+  readonly tower?: SettledSize | undefined;
 }
 
 /** One phonon method of the registry. */
