@@ -21,8 +21,12 @@ const EDGE = 1e-8;
 export function smoothSpans(drive: Drive): readonly Span[] | null {
   const { breakpoints, components, scales } = drive;
   const count = breakpoints.length - 1;
-  const silent = new Uint8Array(count).fill(1);
-  for (const cell of drive.cells) if (cell.bound > 0) silent[cell.segment] = 0;
+  const silent = new Uint8Array(count);
+  // Something acts on a window of one segment: its cells need not be bounded.
+  if (count > 1) {
+    silent.fill(1);
+    for (const cell of drive.cells) if (cell.bound > 0) silent[cell.segment] = 0;
+  }
   const before = new Float64Array(2 * components);
   const after = new Float64Array(2 * components);
   const jump = EDGE * scales.peakRabi;

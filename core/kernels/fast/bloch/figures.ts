@@ -1,0 +1,69 @@
+/*
+ * Figures of a run as one vector, so that runs can be compared without making objects. NaN: not asked for.
+ */
+export const P0 = 0;
+export const P1 = 1;
+export const P2 = 2;
+export const P3 = 3;
+export const MULTIPHOTON = 4;
+export const MEAN = 5;
+export const FACTORIAL = 6;
+/** Thinned count: none, one, more. */
+export const THINNED = 7;
+/** Populations at the end of the window. */
+export const GROUND = 10;
+export const EXCITED = 11;
+export const FIGURES = 12;
+
+const NAMES = [
+  'p0',
+  'p1',
+  'p2',
+  'p3',
+  'multiphoton',
+  'mean',
+  'factorial2',
+  'thinned0',
+  'thinned1',
+  'thinnedMultiphoton',
+] as const;
+
+/** Place of a figure by target name, or −1. */
+export const placeOf = (name: string): number => (NAMES as readonly string[]).indexOf(name);
+
+/** Figures by target name. */
+export function named(figures: Float64Array): Record<string, number> {
+  const values: Record<string, number> = {};
+  for (let i = 0; i < NAMES.length; i++) if (!Number.isNaN(figures[i])) values[NAMES[i]] = figures[i];
+  return values;
+}
+
+/** Smallest value at which a relative accuracy is promised. */
+const FLOOR = 1e-7;
+/** Absolute accuracy of probabilities of no and one photon over the relative accuracy of all else. */
+const RELATIVE = 1e-3;
+/** No accuracy is promised for p_3; a hundredth of that of p_2 is kept. */
+const LOOSE = 100;
+
+/** Populations at the end of the window are kept to ten times the absolute accuracy. */
+const POPULATION = 0.1;
+
+/** Largest difference of two runs, in the measure of `disagreement` (../estimate.ts). */
+export function distance(a: Float64Array, b: Float64Array): number {
+  let worst = POPULATION * Math.abs(a[EXCITED] - b[EXCITED]);
+  for (let i = 0; i < GROUND; i++) {
+    const difference = Math.abs(a[i] - b[i]);
+    if (Number.isNaN(difference) && Number.isNaN(a[i]) && Number.isNaN(b[i])) continue;
+    const absolute = i === P0 || i === P1 || i === THINNED || i === THINNED + 1;
+    const size = Math.max(Math.abs(b[i]), FLOOR) * (i === P3 ? LOOSE : 1);
+    const error = absolute ? difference : (difference / size) * RELATIVE;
+    if (!(error <= worst)) worst = error;
+  }
+  if (a[MEAN] > 0 && b[MEAN] > 0) {
+    const x = a[FACTORIAL] / (a[MEAN] * a[MEAN]);
+    const y = b[FACTORIAL] / (b[MEAN] * b[MEAN]);
+    const error = (Math.abs(x - y) / Math.max(y, FLOOR)) * RELATIVE;
+    if (!(error <= worst)) worst = error;
+  }
+  return worst;
+}

@@ -1,0 +1,219 @@
+import { resonantAxes, turnAbout, turnAxes } from './axes.js';
+import { CHAIN_STATE, type Chain, type Correction, type Kick, kicks, kicksOfTwo } from './chain.js';
+import { correct } from './correct.js';
+import { EXCITED, FACTORIAL, GROUND, MEAN, MULTIPHOTON, P0, P1, P2, P3, THINNED } from './figures.js';
+import { phaseAt } from './frame.js';
+import { correctLadder, LADDER_STATE, type Ladder, ladderKicks } from './ladder.js';
+import { planarVectors, spatialVectors } from './magnus.js';
+import { BLOCK, NODES } from './nodes.js';
+import type { BlochProblem, BlochSpan } from './problem.js';
+import { addComplex, fillReal, sampleDrive } from './table.js';
+
+const samples = new Float64Array(2 * NODES * BLOCK);
+const turns = new Float64Array(BLOCK);
+const vectors = new Float64Array(3 * BLOCK);
+const edges = new Float64Array(2 * BLOCK);
+const axes = new Float64Array(3 * (BLOCK + 1));
+const pulls = new Float64Array(4 * (BLOCK + 1));
+const pulling = { edges, out: pulls };
+
+/** Everything that carries over from step to step. */
+interface State {
+  readonly q: Float64Array;
+  readonly moments: Chain;
+  readonly counted: Chain | null;
+  readonly ladder: Ladder | null;
+  readonly thinned: Chain | null;
+}
+
+function chain(own: number, feed: number, rest: number): Chain {
+  const state = new Float64Array(CHAIN_STATE);
+  state[2] = 0.5;
+  state[3] = 1;
+  return { own, feed, rest, state };
+}
+
+function begin({ model, thinning, wants }: BlochProblem): State {
+  const q = model.collected;
+  const seen = q * (thinning ?? 0);
+  const ladder = wants.ladder ? { counted: q, state: new Float64Array(LADDER_STATE) } : null;
+  if (ladder) {
+    ladder.state[2] = 0.5;
+    ladder.state[3] = 1;
+  }
+  return {
+    q: Float64Array.of(1, 0, 0, 0),
+    moments: chain(1, q, 2 * q),
+    counted: wants.counted ? chain(1 - q, q, q) : null,
+    ladder,
+    thinned: wants.thinned ? chain(1 - seen, seen, seen) : null,
+  };
+}
+
+/** Kicks every chain along axes[3·from …] to axes[3·to − 1]. */
+function kickAll(state: State, kick: Kick, from: number, to: number): void {
+  const { moments, counted, ladder, thinned } = state;
+  if (ladder) ladderKicks(ladder, kick, axes, from, to);
+  if (counted) kicksOfTwo(counted, moments, kick, axes, from, to);
+  else if (thinned) kicksOfTwo(thinned, moments, kick, axes, from, to);
+  else kicks(moments, kick, axes, from, to);
+  if (counted && thinned) kicks(thinned, kick, axes, from, to);
+}
+
+/** Corrections stand at every second kick, twice as large: of 1e-6 at most, they need not be exact. */
+const STRIDE = 2;
+
+/** They belong into the middle of a kick: by turns before and after it, they are there on average. */
+function correctAndKick(state: State, kick: Kick, correction: Correction, from: number, to: number): void {
+  let before = true;
+  for (let n = from; n < to; n += STRIDE) {
+    if (!before) kickAll(state, kick, n, n + 1);
+    correctAll(state, correction, n);
+    kickAll(state, kick, before ? n : n + 1, Math.min(to, n + STRIDE));
+    before = !before;
+  }
+}
+
+function correctAll({ moments, counted, ladder, thinned }: State, correction: Correction, n: number): void {
+  correct(moments, correction, axes, pulls, n);
+  if (counted) correct(counted, correction, axes, pulls, n);
+  if (thinned) correct(thinned, correction, axes, pulls, n);
+  if (ladder) correctLadder(ladder, correction, axes, pulls, n);
+}
+
+/** Propagates a problem with so many steps per span and writes its figures (figures.ts). */
+export function runBloch(problem: BlochProblem, counts: readonly number[], out: Float64Array): void {
+  const { model, spans } = problem;
+  const state = begin(problem);
+  axes.set([0, 0, 1], 0);
+  spans.forEach((part, index) => {
+    const { span, frame } = part;
+    const length = span.end - span.start;
+    if (span.gap) {
+      turnAbout(state.q, model.energy * length);
+      axesOf(state.q);
+      kickAll(state, kickOver(problem, length), 0, 1);
+      return;
+    }
+    if (index > 0) turnAbout(state.q, phaseAt(frame, span.start));
+    propagate(problem, state, part, counts[index]);
+    turnAbout(state.q, -phaseAt(frame, span.end));
+  });
+  finish(state, out);
+}
+
+function axesOf([w, x, y, z]: Float64Array): void {
+  axes[0] = 2 * (x * z - w * y);
+  axes[1] = 2 * (y * z + w * x);
+  axes[2] = 1 - 2 * (x * x + y * y);
+}
+
+function kickOver({ model }: BlochProblem, time: number): Kick {
+  return { fade: Math.exp(-model.coherence * time), loss: -Math.expm1(-model.decay * time) };
+}
+
+function propagate(problem: BlochProblem, state: State, part: BlochSpan, count: number): void {
+  const { drive, model } = problem;
+  const { span, frame, source } = part;
+  const h = (span.end - span.start) / count;
+  const ratio = model.dephasing / model.decay;
+  const small = (h * model.decay) ** 2;
+  const scale = model.weight * h * (1 - (small / 96) * (1 + ratio * ratio));
+  const correction = correctionOf(problem, h);
+  const quartic = correction ? (small / 5760) * (1 + 4 * ratio * ratio) : 0;
+  const axial = correction ? (small / 5760) * (1 + ratio * ratio) : 0;
+  const half = kickOver(problem, 0.5 * h);
+  const full = kickOver(problem, h);
+  const slope = 2 * frame.chirp * h * h;
+  const turning = (model.energy + frame.rate - 2 * frame.chirp * frame.origin) * h;
+  const resonant = source.kind === 'real' && slope === 0 && Math.abs(turning) * count < 1e-13;
+  const pull = correction ? pulling : null;
+  kickAll(state, half, 0, 1);
+  for (let done = 0; done < count; done += BLOCK) {
+    const steps = Math.min(BLOCK, count - done);
+    const grid = { start: span.start + done * h, h };
+    const energies = { first: turning + 2 * frame.chirp * (grid.start + 0.5 * h) * h, slope, axial };
+    if (source.kind === 'real') {
+      fillReal(source.tones[0], scale, grid, 0, steps, samples);
+      if (quartic > 0) shrink(quartic, 1, steps);
+      if (resonant) resonantAxes(samples, 0, steps, state.q, axes, pull);
+      else planarVectors(samples, energies, 0, steps, vectors, correction && edges);
+      if (!resonant) turnAxes(vectors, null, 0, steps, state.q, axes, pull);
+    } else {
+      const own = source.kind === 'sampled' && source.follow ? turns : null;
+      if (source.kind === 'sampled') {
+        sampleDrive(drive, frame, scale, grid, 0, steps, span, own, samples);
+      } else {
+        samples.fill(0, 0, 2 * NODES * steps);
+        for (const tone of source.tones) addComplex(tone, scale, grid, 0, steps, samples);
+      }
+      if (quartic > 0) shrink(quartic, 2, steps);
+      spatialVectors(samples, energies, own, 0, steps, vectors, correction && edges);
+      turnAxes(vectors, own, 0, steps, state.q, axes, pull);
+    }
+    const last = done + steps === count;
+    const end = last ? steps : steps + 1;
+    if (correction) correctAndKick(state, full, correction, 1, end);
+    else kickAll(state, full, 1, end);
+    if (last) kickAll(state, half, steps, steps + 1);
+  }
+}
+
+/** Bounds of the corrections below which they are left out: in all, and relative to small figures. */
+const NEGLIGIBLE = { whole: 5e-10, relative: 1e-7 };
+
+function correctionOf({ drive, model }: BlochProblem, h: number): Correction | null {
+  const { decay, dephasing, weight } = model;
+  const { peakRabi, time } = drive.scales;
+  const rabi = h * peakRabi * Math.abs(weight);
+  const perArea = (h * decay * rabi) ** 2 / 1920 + (h * h * decay * dephasing) / 48;
+  const whole = perArea * AREA * peakRabi * time;
+  const relative = (h * decay * rabi ** 3) / 1920 + (h * dephasing * rabi) / 48;
+  if (whole < NEGLIGIBLE.whole && relative < NEGLIGIBLE.relative) return null;
+  const small = (h * decay) ** 2;
+  const ratio = dephasing / decay;
+  return { quadratic: (-STRIDE * small * ratio) / 48, quartic: (STRIDE * small) / 1920, ratio };
+}
+
+/** Area of a Gaussian over its peak and width: √2π. */
+const AREA = 2.5;
+
+/** Takes the share quartic·|drive|² from every node: part of the kicks' second-order error. */
+function shrink(quartic: number, width: 1 | 2, steps: number): void {
+  for (let i = 0; i < width * NODES * steps; i += width) {
+    const a = samples[i];
+    const b = width === 2 ? samples[i + 1] : 0;
+    const factor = 1 - quartic * (a * a + b * b);
+    samples[i] = a * factor;
+    if (width === 2) samples[i + 1] = b * factor;
+  }
+}
+
+/** Everything decays: the traces are the figures. */
+function finish(state: State, out: Float64Array): void {
+  axesOf(state.q);
+  const { moments, counted, ladder, thinned } = state;
+  const [x, y, z, trace] = moments.state;
+  const inversion = axes[0] * x + axes[1] * y + axes[2] * z;
+  kickAll(state, { fade: 0, loss: 1 }, 0, 1);
+  out.fill(Number.NaN);
+  out[GROUND] = 0.5 * trace + inversion;
+  out[EXCITED] = 0.5 * trace - inversion;
+  out[MEAN] = moments.state[7];
+  out[FACTORIAL] = moments.state[8];
+  const first = ladder ?? counted;
+  if (first) {
+    out[P0] = first.state[3];
+    out[P1] = first.state[7];
+    out[MULTIPHOTON] = first.state[ladder ? 16 : 8];
+  }
+  if (ladder) {
+    out[P2] = ladder.state[11];
+    out[P3] = ladder.state[15];
+  }
+  if (thinned) {
+    out[THINNED] = thinned.state[3];
+    out[THINNED + 1] = thinned.state[7];
+    out[THINNED + 2] = thinned.state[8];
+  }
+}

@@ -1,0 +1,64 @@
+import { distance, EXCITED, FIGURES } from './figures.js';
+import type { BlochProblem } from './problem.js';
+import { runBloch } from './run.js';
+import { firstCounts, MOST_STEPS } from './steps.js';
+
+/** Growth of the number of steps between the first two runs, and bounds of what comes after. */
+const GROWTH = 1.4;
+const LEAST = 1.2;
+const MOST = 2;
+/** Most runs before the kernel gives up. */
+const RUNS = 8;
+/** Order of the slowest error left: third order in the rates of the kicks. */
+const SLOWEST = 4;
+/** Order by which the next number of steps is chosen. */
+const EXPECTED = 7;
+
+const coarse = new Float64Array(FIGURES);
+const fine = new Float64Array(FIGURES);
+
+/** The finest run and what it can be improved and trusted by. */
+export interface Settled {
+  readonly figures: Float64Array;
+  readonly counts: readonly number[];
+  /** In the measure of `disagreement`. */
+  readonly error: number;
+}
+
+/**
+ * Runs on finer and finer steps until two neighbours agree. Errors fall with the fourth power of the step or faster, so
+ * that the truth lies between the finer run and the point that this power extrapolates to. The middle of the two is
+ * returned, which is off by half their distance at most.
+ * @param accept error to reach, in the measure of `disagreement`
+ * @returns null where the steps run out
+ */
+export function settle(problem: BlochProblem, accept: number): Settled | null {
+  let counts = firstCounts(problem);
+  if (total(counts) > MOST_STEPS) return null;
+  runBloch(problem, counts, coarse);
+  let factor = GROWTH;
+  for (let k = 1; k < RUNS; k++) {
+    const finer = counts.map((n) => Math.ceil(n * factor));
+    const steps = total(finer);
+    if (steps > MOST_STEPS) return null;
+    runBloch(problem, finer, fine);
+    const share = 0.5 / ((steps / total(counts)) ** SLOWEST - 1);
+    const error = share * distance(coarse, fine);
+    if (!Number.isFinite(error)) return null;
+    counts = finer;
+    if (error <= accept) {
+      const figures = new Float64Array(FIGURES);
+      for (let i = 0; i <= EXCITED; i++) figures[i] = fine[i] + share * (fine[i] - coarse[i]);
+      return { figures, counts, error };
+    }
+    factor = Math.min(MOST, Math.max(LEAST, 1.05 * (error / accept) ** (1 / EXPECTED)));
+    coarse.set(fine);
+  }
+  return null;
+}
+
+function total(counts: readonly number[]): number {
+  let sum = 0;
+  for (const n of counts) sum += n;
+  return sum;
+}

@@ -1,0 +1,184 @@
+import type { Drive } from '../../../pulse/drive.js';
+import type { GaussianTone } from '../../../pulse/gaussians.js';
+import { type PhaseFrame, phaseAt } from './frame.js';
+import { NODES, OUTER, PLACES } from './nodes.js';
+
+/** A stretch of uniform steps. */
+export interface Grid {
+  /** Time at which step 0 begins, ps. */
+  readonly start: number;
+  /** ps. */
+  readonly h: number;
+}
+
+/** A Gaussian this far down (e-folds) adds nothing, and would leave a recurrence at zero. */
+const DEEP = 45;
+
+/** Steps of a block in which a tone acts at all. */
+function actingSteps(tone: GaussianTone, { start, h }: Grid, from: number, to: number): [number, number] {
+  const reach = Math.sqrt(DEEP / tone.fall);
+  const first = Math.ceil((tone.delay - reach - start) / h);
+  const last = Math.floor((tone.delay + reach - start) / h);
+  return [Math.max(from, first), Math.min(to, last)];
+}
+
+/** The four values of a node's recurrence: the Gaussian at the first step and its ratio from one step to the next. */
+const begun = new Float64Array(4 * NODES);
+
+/**
+ * Gaussian nodes by E(n+1) = E(n)·R(n), R(n+1) = R(n)·W: exact up to rounding, which grows as the square of the steps
+ * and is 2e-13 after a block.
+ */
+function begin(tone: GaussianTone, scale: number, grid: Grid, first: number): void {
+  const { fall, chirp, rate, phase, delay, amplitude } = tone;
+  const { h } = grid;
+  const middle = grid.start + (first + 0.5) * h - delay;
+  for (let j = 0; j < NODES; j++) {
+    const s = middle + PLACES[j] * h;
+    const field = scale * amplitude * Math.exp(-fall * s * s);
+    const angle = phase - (rate - chirp * s) * s;
+    const shrink = Math.exp(-fall * h * (2 * s + h));
+    const turn = -(rate - chirp * (2 * s + h)) * h;
+    begun[4 * j] = field * Math.cos(angle);
+    begun[4 * j + 1] = field * Math.sin(angle);
+    begun[4 * j + 2] = shrink * Math.cos(turn);
+    begun[4 * j + 3] = shrink * Math.sin(turn);
+  }
+}
+
+/** Writes the real part of a Gaussian of constant phase to out[4n + j], times `scale`, for the steps of a block. */
+export function fillReal(
+  tone: GaussianTone,
+  scale: number,
+  grid: Grid,
+  from: number,
+  to: number,
+  out: Float64Array,
+): void {
+  out.fill(0, NODES * from, NODES * to);
+  const [first, last] = actingSteps(tone, grid, from, to);
+  if (first >= last) return;
+  begin(tone, scale, grid, first);
+  let e0 = begun[0];
+  let e1 = begun[4];
+  let e2 = begun[8];
+  let e3 = begun[12];
+  let r0 = begun[2];
+  let r1 = begun[6];
+  let r2 = begun[10];
+  let r3 = begun[14];
+  const w = Math.exp(-2 * tone.fall * grid.h * grid.h);
+  for (let i = NODES * first; i < NODES * last; i += NODES) {
+    out[i] = e0;
+    out[i + 1] = e1;
+    out[i + 2] = e2;
+    out[i + 3] = e3;
+    e0 *= r0;
+    e1 *= r1;
+    e2 *= r2;
+    e3 *= r3;
+    r0 *= w;
+    r1 *= w;
+    r2 *= w;
+    r3 *= w;
+  }
+}
+
+/** Adds a Gaussian to re = out[8n + 2j], im = out[8n + 2j + 1], times `scale`, for the steps of a block. */
+export function addComplex(
+  tone: GaussianTone,
+  scale: number,
+  grid: Grid,
+  from: number,
+  to: number,
+  out: Float64Array,
+): void {
+  const [first, last] = actingSteps(tone, grid, from, to);
+  if (first >= last) return;
+  begin(tone, scale, grid, first);
+  const { h } = grid;
+  const shrink = Math.exp(-2 * tone.fall * h * h);
+  const c = shrink * Math.cos(2 * tone.chirp * h * h);
+  const s = shrink * Math.sin(2 * tone.chirp * h * h);
+  // Two nodes at a time keep their numbers in registers.
+  for (let pair = 0; pair < NODES; pair += 2) {
+    const k = 4 * pair;
+    let a = begun[k];
+    let b = begun[k + 1];
+    let p = begun[k + 2];
+    let q = begun[k + 3];
+    let d = begun[k + 4];
+    let e = begun[k + 5];
+    let r = begun[k + 6];
+    let t = begun[k + 7];
+    for (let i = 2 * (NODES * first + pair); i < 2 * NODES * last; i += 2 * NODES) {
+      out[i] += a;
+      out[i + 1] += b;
+      out[i + 2] += d;
+      out[i + 3] += e;
+      const a1 = a * p - b * q;
+      b = a * q + b * p;
+      a = a1;
+      const d1 = d * r - e * t;
+      e = d * t + e * r;
+      d = d1;
+      const p1 = p * c - q * s;
+      q = p * s + q * c;
+      p = p1;
+      const r1 = r * c - t * s;
+      t = r * s + t * c;
+      r = r1;
+    }
+  }
+}
+
+const value = new Float64Array(2);
+
+/**
+ * Samples any drive to re = out[8n + 2j], im = out[8n + 2j + 1], times `scale`, in a frame. With `turns` each step follows
+ * the phase of the drive across its outer nodes; turns[n] receives the angle gained over the step.
+ */
+export function sampleDrive(
+  drive: Drive,
+  frame: PhaseFrame,
+  scale: number,
+  grid: Grid,
+  from: number,
+  to: number,
+  segments: { readonly first: number; readonly last: number },
+  turns: Float64Array | null,
+  out: Float64Array,
+): void {
+  const { breakpoints } = drive;
+  let segment = segments.first;
+  for (let n = from; n < to; n++) {
+    for (let j = 0; j < NODES; j++) {
+      const t = grid.start + (n + 0.5 + PLACES[j]) * grid.h;
+      while (segment < segments.last && t >= breakpoints[segment + 1]) segment++;
+      drive.sample(t, segment, value);
+      const angle = -phaseAt(frame, t);
+      const c = scale * Math.cos(angle);
+      const s = scale * Math.sin(angle);
+      out[2 * (NODES * n + j)] = value[0] * c - value[1] * s;
+      out[2 * (NODES * n + j) + 1] = value[0] * s + value[1] * c;
+    }
+    if (turns) turns[n] = follow(out, 2 * NODES * n);
+  }
+}
+
+/** Turns the nodes of a step back by the phase that the drive gains between the outer ones. */
+function follow(out: Float64Array, i: number): number {
+  const re = out[i + 6] * out[i] + out[i + 7] * out[i + 1];
+  const im = out[i + 7] * out[i] - out[i + 6] * out[i + 1];
+  if (im === 0 || !(re * re + im * im > 0)) return 0;
+  const gained = Math.atan2(im, re) / (2 * OUTER);
+  for (let j = 0; j < NODES; j++) {
+    const c = Math.cos(gained * PLACES[j]);
+    const s = -Math.sin(gained * PLACES[j]);
+    const a = out[i + 2 * j];
+    const b = out[i + 2 * j + 1];
+    out[i + 2 * j] = a * c - b * s;
+    out[i + 2 * j + 1] = a * s + b * c;
+  }
+  return gained;
+}
