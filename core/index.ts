@@ -10,7 +10,7 @@ export { type DriftNode, designAtDrift, driftNodes, normalRule } from './drift/n
 export type * from './emitter/contract.js';
 export { buildGenerator, collectedDipoles, driveOperators, type Generator } from './emitter/generator.js';
 export { emitterModel, emitterModels } from './emitter/registry.js';
-export { type Accuracy, evaluate, PROMISED, UnsupportedDesign } from './evaluate.js';
+export { type Accuracy, evaluate, PROMISED, UnsupportedDesign, withExactPhonons } from './evaluate.js';
 export * from './figures.js';
 export { type EvaluateGradient, evaluateGradient, type FigureGradient } from './gradient.js';
 export {
@@ -33,6 +33,6 @@ export { phononMethod, phononMethods } from './phonons/registry.js';
 export { sidebandTransmission } from './phonons/sideband.js';
 export * from './pulse/contract.js';
 export * from './pulse/index.js';
-export { phononChoice, type Situation, situation } from './sample.js';
+export { phononChoice, type Situation, situation } from './situation.js';
 export * from './trace.js';
 export * from './units/index.js';

@@ -5,7 +5,7 @@ import { meshFor, STABLE_PHASE } from './kernels/count.js';
 import { LinearSystem } from './kernels/linear-system.js';
 import { propagate } from './kernels/mesh.js';
 import { createDrive } from './pulse/drive.js';
-import { situation } from './sample.js';
+import { situation } from './situation.js';
 
 /** Envelope and populations at one time. */
 export interface TracePoint {

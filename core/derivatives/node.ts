@@ -1,4 +1,5 @@
 import { leakedPhotons, pulseFilter } from '../collection/leakage.js';
+import { FEWEST_MOMENTS, judgeSeries, momentsOf } from '../collection/series.js';
 import type { Design } from '../design.js';
 import { type DriftNode, driftedDesign } from '../drift/nodes.js';
 import type { PulseFigures } from '../figures.js';
@@ -13,18 +14,9 @@ import {
   kappaSlot,
   TONE_SLOTS,
 } from '../pulse/derivatives/layout.js';
-import {
-  assembleSample,
-  emittedRequest,
-  FEWEST_MOMENTS,
-  judgeSeries,
-  momentsOf,
-  rotatingFilter,
-  type Sample,
-  type Situation,
-  situation,
-  survival,
-} from '../sample.js';
+import { pulseFigures } from '../pulse/figures.js';
+import { assembleSample, byLevel, type Sample } from '../sample.js';
+import { emittedRequest, rotatingFilter, type Situation, situation, survival } from '../situation.js';
 import { HBAR } from '../units/constants.js';
 import { differentiateCount, type Part, type Reading } from './count.js';
 import type { Formula } from './formula.js';
@@ -53,7 +45,8 @@ export function differentiateNode(
   const where = situation(design);
   const leakage = leakedPhotons(design, pulseFilter(design, where.line, where.reference));
   const base = emittedRequest(design, where, node.shift / HBAR, effort);
-  const setting = { design, where, leakage, base, kernel };
+  const pulse = pulseFigures(design.pulse, where.drive, design.laser?.piPulse ?? null);
+  const setting = { design, where, leakage, pulse, base, kernel };
   const counted = design.collection.filter
     ? countFiltered(setting, formulas)
     : countEmitted(setting, formulas);
@@ -71,6 +64,7 @@ interface Setting {
   readonly design: Design;
   readonly where: Situation;
   readonly leakage: number;
+  readonly pulse: PulseFigures;
   readonly base: CountRequest;
   readonly kernel: CountWithGradient;
 }
@@ -86,12 +80,12 @@ interface Counted {
 type Values = Readonly<Record<string, number>>;
 
 function sampleOf(
-  { design, where, leakage, base }: Setting,
+  { design, where, leakage, base, pulse }: Setting,
   values: Values,
   populations: readonly number[],
   moments: readonly number[],
 ): Sample {
-  return assembleSample(values, populations, moments, leakage, design, where, base.effort);
+  return assembleSample({ values, populations, moments, leakage }, pulse, design, where, base.effort.series);
 }
 
 function readingOf({ design, where, leakage }: Setting, sample: Sample, order: number | null): Reading {
@@ -125,10 +119,7 @@ function countEmitted(setting: Setting, formulas: readonly Formula[]): Counted |
 }
 
 function withPopulations(sample: Sample, { scheme }: Situation, { populations }: CountResult): Sample {
-  return {
-    ...sample,
-    populations: Object.fromEntries(scheme.levels.map(({ name }, i) => [name, populations[i]])),
-  };
+  return { ...sample, populations: byLevel(scheme.levels, populations) };
 }
 
 /** What was emitted before the filter: differentiated only where a formula asks for it. */

@@ -20,21 +20,41 @@ export function schemeResonances(scheme: Scheme): Resonance[] {
 }
 
 /**
- * The frame in which the fastest oscillation is slowest: minimises the (convex) maximum over all resonances.
+ * The frame in which the fastest oscillation is slowest: minimises the maximum over all resonances. That is convex and
+ * piecewise linear, so its minimum lies where a falling and a rising line meet.
  * @returns angular frequency relative to the mean exciton line, 1/ps
  */
 export function slowestFrame(resonances: readonly Resonance[]): number {
-  const worst = (f: number): number =>
-    resonances.reduce((m, r) => Math.max(m, r.weight * Math.abs(r.center - r.quanta * f)), 0);
-  const centers = resonances.map((r) => r.center / r.quanta);
-  let low = Math.min(...centers);
-  let high = Math.max(...centers);
-  if (high - low < 1e-9) return low;
-  for (let k = 0; k < 60; k++) {
-    const a = low + (high - low) / 3;
-    const b = high - (high - low) / 3;
-    if (worst(a) <= worst(b)) high = b;
-    else low = a;
+  let low = Number.POSITIVE_INFINITY;
+  let high = Number.NEGATIVE_INFINITY;
+  for (const { center, quanta } of resonances) {
+    low = Math.min(low, center / quanta);
+    high = Math.max(high, center / quanta);
   }
-  return (low + high) / 2;
+  if (high - low < 1e-9) return low;
+  let best = low;
+  let least = fastest(resonances, low, Number.POSITIVE_INFINITY);
+  for (let i = 1; i < resonances.length; i++) {
+    const a = resonances[i];
+    for (let k = 0; k < i; k++) {
+      const b = resonances[k];
+      const f = (a.weight * a.center + b.weight * b.center) / (a.weight * a.quanta + b.weight * b.quanta);
+      const speed = fastest(resonances, f, least);
+      if (speed < least) {
+        least = speed;
+        best = f;
+      }
+    }
+  }
+  return best;
+}
+
+/** The fastest oscillation in a frame, 1/ps; not looked at further once it is not below `limit`. */
+function fastest(resonances: readonly Resonance[], frame: number, limit: number): number {
+  let worst = 0;
+  for (const { center, quanta, weight } of resonances) {
+    worst = Math.max(worst, weight * Math.abs(center - quanta * frame));
+    if (worst >= limit) break;
+  }
+  return worst;
 }

@@ -103,6 +103,19 @@ function knownInTime(tone: Tone): { readonly duration: number; readonly peak: nu
   return dispersed === undefined ? null : { duration: dispersed.fwhm, peak: tone.area * dispersed.peak };
 }
 
+const NOT_WANTED = { duration: Number.NaN, peak: Number.NaN };
+
+function timeFigures(pulse: Pulse, drive: Drive | null): { duration: number; peak: number } {
+  const known = pulse.tones.length === 1 ? knownInTime(pulse.tones[0]) : null;
+  return known ?? scannedInTime(pulse, drive);
+}
+
+/** Half-maximum bandwidth, GHz. */
+function spectralWidth({ tones }: Pulse): number {
+  if (tones.length === 1) return (1000 * pulseShape(tones[0].shape).timeBandwidth) / tones[0].fwhm;
+  return GHZ_PER_RADIAN * halfMaximumWidth(halfMaximum(inFrequency(tones)));
+}
+
 function scannedInTime(pulse: Pulse, drive: Drive | null): { duration: number; peak: number } {
   const half = halfMaximum(inTime(polarizedDrive(pulse, drive)));
   return { duration: halfMaximumWidth(half), peak: Math.sqrt(half.top) };
@@ -114,22 +127,21 @@ function scannedInTime(pulse: Pulse, drive: Drive | null): { duration: number; p
  * are 0 unless it has a single tone, whose shape fixes them.
  * @param drive a drive of the same pulse, if there is one already: saves dispersing it again
  * @param piPulse measured resonant transform-limited Gaussian π pulse: energy in fJ, FWHM in ps
+ * @param wanted the figures that are needed, null for all; others may come out as NaN
  * @throws DispersionError when a dispersed tone is spread over more samples than a transform can hold
  */
 export function pulseFigures(
   pulse: Pulse,
   drive: Drive | null = null,
   piPulse: { readonly energy: number; readonly fwhm: number } | null = null,
+  wanted: ReadonlySet<keyof PulseFigures> | null = null,
 ): PulseFigures {
   const [first] = pulse.tones;
   const gaussian = pulseShape('gaussian');
-  const energy = pulseEnergy(pulse);
-  const single = pulse.tones.length === 1;
-  const known = single ? knownInTime(first) : null;
-  const { duration, peak } = known ?? scannedInTime(pulse, drive);
-  const bandwidth = single
-    ? (1000 * pulseShape(first.shape).timeBandwidth) / first.fwhm
-    : GHZ_PER_RADIAN * halfMaximumWidth(halfMaximum(inFrequency(pulse.tones)));
+  const any = (...names: (keyof PulseFigures)[]) => wanted === null || names.some((name) => wanted.has(name));
+  const energy = any('energy_pi_units', 'energy_fj') ? pulseEnergy(pulse) : Number.NaN;
+  const { duration, peak } = any('duration_ps', 'peak_rabi_per_ps') ? timeFigures(pulse, drive) : NOT_WANTED;
+  const bandwidth = any('bandwidth_ghz') ? spectralWidth(pulse) : Number.NaN;
   return {
     energy_pi_units: energy / (Math.PI ** 2 * gaussian.energy(first.fwhm)),
     duration_ps: duration,

@@ -31,14 +31,17 @@ export interface Segments {
   readonly active: Uint8Array;
 }
 
+const alone = ({ start, end }: PlacedWindow): Segments => ({
+  breakpoints: Float64Array.of(start, end),
+  active: Uint8Array.of(1),
+});
+
 /**
  * Union of the windows, cut at every end and discontinuity. Which tones act is decided per segment, so that one-sided
  * values at edges are right.
  */
-export function segments(windows: readonly PlacedWindow[]): {
-  breakpoints: Float64Array;
-  active: Uint8Array;
-} {
+export function segments(windows: readonly PlacedWindow[]): Segments {
+  if (windows.length === 1 && windows[0].edges.length === 0) return alone(windows[0]);
   const placed = windows.map((window) => snapped(window, windows));
   const times = new Set<number>();
   for (const { start, end, edges } of placed) for (const time of [start, end, ...edges]) times.add(time);

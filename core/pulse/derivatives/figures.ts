@@ -52,7 +52,7 @@ const energyOf = (pulse: Pulse): Float64Array | null =>
   energyDerivatives(pulse, null, { axis: null, parallel: 1, perpendicular: 0 });
 
 const scaled = (vector: Float64Array | null, factor: number): Float64Array | null =>
-  vector && vector.map((x) => factor * x);
+  vector?.map((x) => factor * x) ?? null;
 
 /** The unit, a π pulse of the first tone's width, goes as 1/fwhm. By Euler's theorem the energy is ½ Σ area·∂/∂area. */
 function energyInPiUnits(pulse: Pulse): Float64Array | null {

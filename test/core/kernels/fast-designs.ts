@@ -10,7 +10,7 @@ import {
 import { disagreement } from '../../../core/kernels/fast/estimate.js';
 import { fastKernels } from '../../../core/kernels/fast/registry.js';
 import { type Stream, stream } from '../../../core/numerics/stream.js';
-import { situation } from '../../../core/sample.js';
+import { situation } from '../../../core/situation.js';
 import { RAD_PER_PS_PER_GHZ } from '../../../core/units/constants.js';
 import { cascadeEmitter, design, tone, twoLevelEmitter } from '../../support.js';
 

@@ -2,7 +2,7 @@ import type { Design, PhononSpec } from '../../../core/design.js';
 import { collectedDipoles } from '../../../core/emitter/generator.js';
 import type { CountRequest } from '../../../core/kernels/count.js';
 import type { Tone } from '../../../core/pulse/contract.js';
-import { situation } from '../../../core/sample.js';
+import { situation } from '../../../core/situation.js';
 import { cascadeEmitter, design, tone, twoLevelEmitter } from '../../support.js';
 
 /** The bath of the tables: A = 0.03 ps², ω_c = 2.2 1/ps. */
