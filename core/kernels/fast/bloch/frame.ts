@@ -10,12 +10,12 @@ export interface PhaseFrame {
   readonly chirp: number;
 }
 
-/** Shares of the way between two frequencies at which a frame is tried. */
-const TRIED = [0, 0.25, 0.5, 0.75];
+/** Frames tried between the lowest and the highest frequency. */
+const TRIED = 8;
 
 /**
  * The frame for a sum of Gaussians: with one tone its own phase, so that the drive is real; with several their mean chirp
- * and the frequency, of the emitter, a tone or between two, that leaves the least error (`unrest`).
+ * and the frequency, between those of emitter and tones, that leaves the least error (`unrest`).
  * @param energy of the emitter in the frame of the tones' rates, 1/ps
  */
 export function phaseFrame(tones: readonly GaussianTone[], energy: number): PhaseFrame {
@@ -36,22 +36,19 @@ export function phaseFrame(tones: readonly GaussianTone[], energy: number): Phas
   origin /= weights;
   // At its centre a tone turns with −rate, seen from a frame with the common chirp a little less.
   const marks = [-energy, ...tones.map((t) => -t.rate - 2 * chirp * (t.delay - origin))];
-  let best = { origin, constant: 0, rate: marks[0], chirp };
+  const low = Math.min(...marks);
+  const step = (Math.max(...marks) - low) / TRIED;
+  for (let k = 0; k <= TRIED; k++) marks.push(low + k * step);
+  let best = marks[0];
   let least = Number.POSITIVE_INFINITY;
-  for (const a of marks) {
-    for (const b of marks) {
-      if (a === b) continue;
-      for (const share of TRIED) {
-        const frame = { origin, constant: 0, rate: a + share * (b - a), chirp };
-        const left = unrest(tones, energy, frame);
-        if (left < least) {
-          least = left;
-          best = frame;
-        }
-      }
+  for (const rate of marks) {
+    const left = unrest(tones, energy, { origin, constant: 0, rate, chirp });
+    if (left < least) {
+      least = left;
+      best = rate;
     }
   }
-  return best;
+  return { origin, constant: 0, rate: best, chirp };
 }
 
 /**

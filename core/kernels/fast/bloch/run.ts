@@ -63,14 +63,20 @@ function kickAll(state: State, kick: Kick, from: number, to: number): void {
 /** Corrections stand at every second kick, twice as large: of 1e-6 at most, they need not be exact. */
 const STRIDE = 2;
 
-/** They belong into the middle of a kick: by turns before and after it, they are there on average. */
-function correctAndKick(state: State, kick: Kick, correction: Correction, from: number, to: number): void {
-  let before = true;
+/** A correction stands in the middle of its kick, or before it where `half` is null because the order does not matter. */
+function correctAndKick(
+  state: State,
+  kick: Kick,
+  half: Kick | null,
+  correction: Correction,
+  from: number,
+  to: number,
+): void {
   for (let n = from; n < to; n += STRIDE) {
-    if (!before) kickAll(state, kick, n, n + 1);
+    if (half) kickAll(state, half, n, n + 1);
     correctAll(state, correction, n);
-    kickAll(state, kick, before ? n : n + 1, Math.min(to, n + STRIDE));
-    before = !before;
+    if (half) kickAll(state, half, n, n + 1);
+    kickAll(state, kick, half ? n + 1 : n, Math.min(to, n + STRIDE));
   }
 }
 
@@ -153,7 +159,7 @@ function propagate(problem: BlochProblem, state: State, part: BlochSpan, count: 
     }
     const last = done + steps === count;
     const end = last ? steps : steps + 1;
-    if (correction) correctAndKick(state, full, correction, 1, end);
+    if (correction) correctAndKick(state, full, correction.ordered ? half : null, correction, 1, end);
     else kickAll(state, full, 1, end);
     if (last) kickAll(state, half, steps, steps + 1);
   }
@@ -172,7 +178,8 @@ function correctionOf({ drive, model }: BlochProblem, h: number): Correction | n
   if (whole < NEGLIGIBLE.whole && relative < NEGLIGIBLE.relative) return null;
   const small = (h * decay) ** 2;
   const ratio = dephasing / decay;
-  return { quadratic: (-STRIDE * small * ratio) / 48, quartic: (STRIDE * small) / 1920, ratio };
+  const ordered = whole * h * (decay + dephasing) > 0.1 * NEGLIGIBLE.whole;
+  return { ordered, quadratic: (-STRIDE * small * ratio) / 48, quartic: (STRIDE * small) / 1920, ratio };
 }
 
 /** Area of a Gaussian over its peak and width: √2π. */
