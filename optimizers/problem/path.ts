@@ -6,25 +6,63 @@ function fieldName(key: string): string {
   return key.replace(/_([a-z])/g, (_, letter: string) => letter.toUpperCase());
 }
 
-type Node = Record<string, unknown>;
+type Node = Readonly<Record<string, unknown>>;
 
-function descend(root: Design, path: string): { parent: Node; key: string } {
-  const keys = path.split('.').map(fieldName);
-  let parent = root as unknown as Node;
-  for (const key of keys.slice(0, -1)) {
-    const next = parent[key];
-    if (next === null || typeof next !== 'object') throw new Error(`${path}: the design has no ${key}`);
-    parent = next as Node;
-  }
-  const key = keys[keys.length - 1];
-  if (typeof parent[key] !== 'number') throw new Error(`${path}: the design has no number there`);
-  return { parent, key };
+const keysOf = memoized((path: string): readonly string[] => path.split('.').map(fieldName));
+
+/** Paths are few and asked for at every evaluation. */
+function memoized<T>(of: (path: string) => T): (path: string) => T {
+  const known = new Map<string, T>();
+  return (path) => {
+    let value = known.get(path);
+    if (value === undefined) {
+      value = of(path);
+      known.set(path, value);
+    }
+    return value;
+  };
+}
+
+function childOf(node: Node, key: string, path: string): Node {
+  const child = node[key];
+  if (child === null || typeof child !== 'object') throw new Error(`${path}: the design has no ${key}`);
+  return child as Node;
+}
+
+function numberAt(node: Node, key: string, path: string): number {
+  const value = node[key];
+  if (typeof value !== 'number') throw new Error(`${path}: the design has no number there`);
+  return value;
 }
 
 /** The number at a study-file path such as `pulse.tones.0.fwhm`, internal units. Throws when there is none. */
 export function getPath(design: Design, path: string): number {
-  const { parent, key } = descend(design, path);
-  return parent[key] as number;
+  const keys = keysOf(path);
+  const last = keys.length - 1;
+  let node = design as unknown as Node;
+  for (let i = 0; i < last; i++) node = childOf(node, keys[i], path);
+  return numberAt(node, keys[last], path);
+}
+
+function replaced(node: Node, key: string, value: unknown): Node {
+  if (!Array.isArray(node)) return { ...node, [key]: value };
+  const next = [...node];
+  next[Number(key)] = value;
+  return next as unknown as Node;
+}
+
+function put(node: Node, path: string, value: number, depth: number): Node {
+  const keys = keysOf(path);
+  const key = keys[depth];
+  if (depth < keys.length - 1)
+    return replaced(node, key, put(childOf(node, key, path), path, value, depth + 1));
+  numberAt(node, key, path);
+  return replaced(node, key, value);
+}
+
+/** The design with another number at a study-file path; it shares all other parts with the old one. */
+function withNumber(design: Design, path: string, value: number): Design {
+  return put(design as unknown as Node, path, value, 0) as unknown as Design;
 }
 
 /** Follows ties to the path that is not tied itself; throws on a circle. */
@@ -39,13 +77,6 @@ export function rootOf(tie: Tie, ties: ReadonlyMap<string, Tie>): string {
   return path;
 }
 
-/** A copy in which nothing is shared: two tones may be the same object in the specification. */
-function copy<T>(value: T): T {
-  if (Array.isArray(value)) return value.map(copy) as T;
-  if (value === null || typeof value !== 'object') return value;
-  return Object.fromEntries(Object.entries(value).map(([key, part]) => [key, copy(part)])) as T;
-}
-
 /**
  * The design with the free parameters at `values` (internal units, order of `spec.parameters`) and every tie kept.
  * The specification is not changed. Throws when a path does not lead to a number or ties form a circle.
@@ -54,15 +85,12 @@ export function applyParameters(spec: ProblemSpec, values: readonly number[]): D
   if (values.length !== spec.parameters.length) {
     throw new Error(`got ${values.length} values; the problem has ${spec.parameters.length} free parameters`);
   }
-  const design = copy(spec.design);
-  spec.parameters.forEach((parameter, i) => {
-    const { parent, key } = descend(design, parameter.path);
-    parent[key] = values[i];
+  let design = spec.design;
+  spec.parameters.forEach(({ path }, i) => {
+    design = withNumber(design, path, values[i]);
   });
+  if (spec.ties.length === 0) return design;
   const ties = new Map(spec.ties.map((tie) => [tie.path, tie]));
-  for (const tie of spec.ties) {
-    const { parent, key } = descend(design, tie.path);
-    parent[key] = getPath(design, rootOf(tie, ties));
-  }
+  for (const tie of spec.ties) design = withNumber(design, tie.path, getPath(design, rootOf(tie, ties)));
   return design;
 }
