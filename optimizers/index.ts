@@ -11,6 +11,7 @@ export { type Nsga2Options, nsga2 } from './global/nsga2.js';
 export { globalMethods } from './global/registry.js';
 export * from './local/compare.js';
 export * from './local/contract.js';
+export { type MovingAsymptotesOptions, movingAsymptotes } from './local/moving-asymptotes.js';
 export { nelderMeadMethod } from './local/nelder-mead.js';
 export { localMethods } from './local/registry.js';
 export * from './local/session.js';

@@ -1,8 +1,7 @@
 import { levelsOf } from '../front/levels.js';
-import type { Solution } from '../tasks/solve.js';
 import { BRANCH_WIDTH, distance, type Knowledge, type Plan } from './contract.js';
 import { samplePoints } from './enumerate.js';
-import { bestSolutions } from './polish.js';
+import { bestSolutions, standing } from './polish.js';
 
 /** Knot of the curve of optimal designs. */
 interface Knot {
@@ -13,11 +12,9 @@ interface Knot {
 
 /** Solutions that nothing in the archive beats by more than a hair, by brightness: knots of the front. */
 function knots(known: Knowledge): Knot[] {
-  const { front } = known;
-  const standing = bestSolutions(known).filter(
-    (s: Solution) => !front.some((p) => p.brightness >= s.brightness && p.impurity < s.impurity * (1 - 1e-3)),
-  );
-  const sorted = standing.sort((a, b) => a.brightness - b.brightness);
+  const sorted = bestSolutions(known)
+    .filter((solution) => standing(known, solution))
+    .sort((a, b) => a.brightness - b.brightness);
   return sorted.filter((s, i) => i === 0 || s.brightness > sorted[i - 1].brightness + 1e-9);
 }
 

@@ -13,12 +13,14 @@ import { slices } from './slices.js';
 const SHARES = { explore: 0.2, exploreAfterRace: 0.08, polish: 0.6 };
 /** Share of what is left for filling that goes to the levels asked for. */
 const LEVEL_SHARE = 0.4;
+/** Times that solves and looks along the coordinates take turns. */
+const PROBES = 3;
 /** Share of a round for the look along the coordinates. */
 const CROSS = 0.08;
 /** Share of what is left for solves that goes to second opinions. */
 const OTHERS = 0.3;
 /** Evaluations of the first round; each later one doubles. */
-const FIRST_ROUND = 1600;
+const FIRST_ROUND = 800;
 /** Budgets below this are spent on evenly spread points. */
 const TINY = 25;
 const LEVELS = 5;
@@ -45,21 +47,23 @@ function* round(
   // A first few solves, a look around from where they end, and only then the rest: a solve on a poor branch is lost.
   const probes =
     atLeast === null ? evenLevels(known, 4).slice(1, 3) : [atLeast, ...evenLevels(known, 3).slice(1, 2)];
-  yield* polishLevels(known, name('probe'), probes, polishLeft());
-  yield* cross(known, name('cross'), Math.min(polishLeft(), CROSS * budget), number);
-  yield* polishLevels(known, name('polish'), levels, polishLeft());
+  for (let i = 1; i <= PROBES; i++) {
+    if (!(yield* polishLevels(known, name(`probe-${i}`), probes, polishLeft(), tried))) break;
+    if (i < PROBES)
+      yield* cross(known, name(`cross-${i}`), Math.min(polishLeft(), CROSS * budget), number + 0.3 * i);
+  }
+  yield* polishLevels(known, name('polish'), levels, polishLeft(), tried);
+  for (let i = 1, fresh = 0; polishLeft() >= WORTH && fresh < 2 * LEVELS * number; i++) {
+    const before = known.solutions.length;
+    yield* refine(known, name(`refine-${i}`), polishLeft(), Math.min(2 ** i, 2 * LEVELS), tried);
+    if (known.solutions.length === before) break;
+    fresh += known.solutions.length - before;
+  }
   yield* polishOthers(known, name('second-branch'), levels, Math.floor(OTHERS * polishLeft()));
   for (let i = 1; polishLeft() >= WORTH; i++) {
     const before = known.spent;
     yield* sweep(known, name(`sweep-${i}`), polishLeft(), tried);
     if (known.spent === before) break;
-  }
-  for (let i = 1, fresh = 0; polishLeft() >= WORTH && fresh < 2 * LEVELS * number; i++) {
-    const before = known.solutions.length;
-    yield* refine(known, name(`refine-${i}`), polishLeft(), Math.min(2 ** i, 2 * LEVELS));
-    if (known.solutions.length === before) break;
-    fresh += known.solutions.length - before;
-    yield* sweep(known, name(`spread-${i}`), polishLeft(), tried);
   }
   const aim = Math.floor(LEVEL_SHARE * left());
   yield* fillBetween(known, name('fill'), left() - aim);

@@ -4,37 +4,45 @@ import type { Solution } from '../tasks/solve.js';
 import { BRANCH_WIDTH, distance, type Knowledge, type Plan, rangeOfInterest } from './contract.js';
 
 /** A start for the least impurity at a level. */
-interface Start {
+interface Start extends Reach {
   readonly level: number;
   readonly x: readonly number[];
-  readonly radius: number;
 }
 
-const JUMP_RADIUS = 0.2;
-const CONTINUE_RADIUS = 0.05;
-const NEIGHBOUR_RADIUS = 0.02;
+/** How far a solve may be from its end: first trust radius, shake of its start, iterations of a value and a gradient. */
+interface Reach {
+  readonly far: boolean;
+  readonly radius: number;
+  readonly shake: number;
+  readonly iterations: number;
+}
 
-/** Evaluations a solve may take: some iterations of one value and one gradient each. */
-const allowance = (known: Knowledge, iterations = 16) => iterations * known.iterationCost;
-/** Iterations of a solve that begins next to its end. */
-const SHORT = 6;
-/** Iterations of a solve that begins on the right branch, perhaps. */
-const MEDIUM = 10;
+/** From anywhere. */
+const JUMP: Reach = { far: true, radius: 0.2, shake: 0.02, iterations: 24 };
+/** On the right branch, perhaps. */
+const CONTINUE: Reach = { far: true, radius: 0.1, shake: 0.02, iterations: 20 };
+/** Next to its end. */
+const NEIGHBOUR: Reach = { far: false, radius: 0.02, shake: 0, iterations: 6 };
+
+/** Iterations below which a solve is not begun. */
+const FEWEST = 4;
+
+/** Evaluations a solve may take. */
+const allowance = (known: Knowledge, { iterations }: Reach) => iterations * known.iterationCost;
 
 /** Solves from all starts that fit into `budget`, side by side; keeps where they end. */
-function* solveAll(
-  known: Knowledge,
-  name: string,
-  starts: readonly Start[],
-  budget: number,
-  most = allowance(known),
-): Plan {
-  const each = Math.min(most, budget);
-  const affordable = each > 0 ? starts.slice(0, Math.floor(Math.min(budget, known.left) / each)) : [];
-  if (affordable.length === 0) return;
-  const tasks = affordable.map(({ level, x, radius }) =>
-    known.task(name, 'solve', each, { level, start: x, radius, exact: known.exact }),
-  );
+function* solveAll(known: Knowledge, name: string, starts: readonly Start[], budget: number): Plan {
+  let left = Math.min(budget, known.left);
+  const tasks = [];
+  for (const start of starts) {
+    const { level, x, far, radius, shake } = start;
+    const each = Math.floor(Math.min(allowance(known, start), left));
+    // A last one may be cut short, but not to nothing.
+    if (each < Math.min(allowance(known, start), FEWEST * known.iterationCost)) break;
+    left -= each;
+    tasks.push(known.task(name, 'solve', each, { level, start: x, far, radius, shake, exact: known.exact }));
+  }
+  if (tasks.length === 0) return;
   const results = yield { name, tasks };
   known.learn(results.flatMap(({ summary }) => (summary === null ? [] : [summary as Solution])));
 }
@@ -63,30 +71,68 @@ function memberAt(known: Knowledge, level: number): readonly number[] | null {
 /** A solution is beaten when the archive has less than this share of its impurity at its level. */
 const BEATEN = 0.999;
 
-/** From the archive's member at each level that has no solution yet or a beaten one. */
+/** Share of a level below which a design says nothing about it. */
+const DIM = 0.6;
+
+/**
+ * Where solves at a level may begin: at the archive's member of that level, and, where that is on another branch, at
+ * the brightest one below, which is purer.
+ */
+function startsAt(known: Knowledge, level: number): (readonly number[])[] {
+  const x = memberAt(known, level);
+  if (x === null) return [];
+  const below = known.front.filter(({ brightness }) => brightness < level && brightness >= DIM * level);
+  const others = below.map((point) => unitOf(known, point));
+  const other = others.findLast((y) => distance(known.problem, x, y) >= BRANCH_WIDTH);
+  return other === undefined ? [x] : [x, other];
+}
+
+/** From the archive at each level that has no solution yet or a beaten one, and from where nothing was tried. */
 export function* polishLevels(
   known: Knowledge,
   name: string,
   levels: readonly number[],
   budget: number,
-): Plan {
+  tried: Set<string>,
+): Plan<boolean> {
   const solved = new Map(bestSolutions(known).map((solution) => [solution.level, solution]));
   const starts = levels.flatMap((level) => {
-    const x = memberAt(known, level);
-    const own = solved.get(level)?.impurity ?? Number.POSITIVE_INFINITY;
+    const own = solved.get(level);
     const better = atLevel(known.front, level)?.impurity ?? 0;
-    return x === null || better >= BEATEN * own ? [] : [{ level, x, radius: JUMP_RADIUS }];
+    return startsAt(known, level).flatMap((x, i): Start[] => {
+      if (i === 0 && own !== undefined && better >= BEATEN * own.impurity) return [];
+      return isNew(tried, level, x) ? [{ level, x, ...JUMP }] : [];
+    });
   });
   yield* solveAll(known, name, starts, budget);
+  return starts.length > 0;
 }
 
-/** The best solution of each level, by level. */
+/** Notes a start; false where one as near was noted before. */
+function isNew(tried: Set<string>, level: number, x: readonly number[]): boolean {
+  const key = `${level} ${x.map((value) => value.toFixed(2)).join(' ')}`;
+  if (tried.has(key)) return false;
+  tried.add(key);
+  return true;
+}
+
+/** Nothing in the archive beats it by more than a hair. */
+export const standing = (known: Knowledge, { brightness, impurity }: Solution): boolean =>
+  !known.front.some((p) => p.brightness >= brightness && p.impurity < BEATEN * impurity);
+
+/**
+ * The best solution of each level, by level. One that fell short of its level and yet stands, as at the bright end of
+ * the front, counts as one of the level that it reached.
+ */
 export function bestSolutions(known: Knowledge): Solution[] {
   const best = new Map<number, Solution>();
   for (const solution of known.solutions) {
-    if (solution.brightness < solution.level - 1e-4 || solution.violation > 1e-4) continue;
-    const old = best.get(solution.level);
-    if (old === undefined || solution.impurity < old.impurity) best.set(solution.level, solution);
+    if (solution.violation > 1e-4) continue;
+    const short = solution.brightness < solution.level - 1e-4;
+    if (short && !standing(known, solution)) continue;
+    const level = short ? solution.brightness : solution.level;
+    const old = best.get(level);
+    if (old === undefined || solution.impurity < old.impurity) best.set(level, { ...solution, level });
   }
   return [...best.values()].sort((a, b) => a.level - b.level);
 }
@@ -100,11 +146,9 @@ export function* sweep(known: Knowledge, name: string, budget: number, tried: Se
   const solutions = bestSolutions(known);
   const { front } = known;
   const starts: Start[] = [];
+  const most = Math.max(1, Math.floor(budget / allowance(known, CONTINUE)));
   const offer = (level: number, x: readonly number[]) => {
-    const key = `${level} ${x.map((value) => value.toFixed(3)).join(' ')}`;
-    if (tried.has(key) || starts.length >= Math.max(1, Math.floor(budget / allowance(known, MEDIUM)))) return;
-    tried.add(key);
-    starts.push({ level, x, radius: CONTINUE_RADIUS });
+    if (starts.length < most && isNew(tried, level, x)) starts.push({ level, x, ...CONTINUE });
   };
   for (const solution of solutions) {
     const member = atLevel(front, solution.level);
@@ -124,25 +168,47 @@ export function* sweep(known: Knowledge, name: string, budget: number, tried: Se
     offer(low.level, high.x);
     offer(high.level, low.x);
   }
-  yield* solveAll(known, name, starts, budget, allowance(known, MEDIUM));
+  yield* solveAll(known, name, starts, budget);
   return starts.length > 0;
 }
 
-/** New levels between neighbouring solutions, from the point between them (or from both, on different branches). */
-export function* refine(known: Knowledge, name: string, budget: number, count: number): Plan<boolean> {
-  const solutions = bestSolutions(known);
+/** The brightest member of the archive, where it lies beyond all solutions. */
+function brightEnd(known: Knowledge): Pick<Solution, 'level' | 'x' | 'impurity'>[] {
+  const brightest = known.front[known.front.length - 1];
+  const last = bestSolutions(known).at(-1);
+  if (brightest === undefined || last === undefined || brightest.brightness <= last.level) return [];
+  return [{ level: brightest.brightness, x: unitOf(known, brightest), impurity: brightest.impurity }];
+}
+
+/** Gaps between levels that could gain the front less than this share of all are left. */
+const NEGLIGIBLE = 1e-6;
+
+/**
+ * New levels between neighbouring solutions, where the front may gain the most: from the point between the two; on
+ * different branches from the lower one, which is purer, and next time from the upper one.
+ */
+export function* refine(
+  known: Knowledge,
+  name: string,
+  budget: number,
+  count: number,
+  tried: Set<string>,
+): Plan<boolean> {
+  const solutions = [...bestSolutions(known), ...brightEnd(known)];
   const gaps = solutions.slice(1).map((high, i) => ({ low: solutions[i], high }));
-  const size = ({ low, high }: (typeof gaps)[number]) => high.level - low.level;
-  const smallest = 1e-4 * (solutions.length > 0 ? solutions[solutions.length - 1].level : 0);
+  const size = ({ low, high }: (typeof gaps)[number]) =>
+    (high.level - low.level) * Math.max(0, high.impurity - low.impurity);
+  const smallest = NEGLIGIBLE * gaps.reduce((sum, gap) => sum + size(gap), 0);
   const widest = gaps.filter((gap) => size(gap) > smallest).sort((a, b) => size(b) - size(a));
-  const starts = widest.flatMap(({ low, high }): Start[] => {
+  const starts = widest.slice(0, count).flatMap(({ low, high }): Start[] => {
     const level = (low.level + high.level) / 2;
-    if (distance(known.problem, low.x, high.x) >= BRANCH_WIDTH) {
-      return [low, high].map(({ x }) => ({ level, x, radius: NEIGHBOUR_RADIUS }));
+    if (distance(known.problem, low.x, high.x) < BRANCH_WIDTH) {
+      return [{ level, x: low.x.map((value, k) => (value + high.x[k]) / 2), ...NEIGHBOUR }];
     }
-    return [{ level, x: low.x.map((value, k) => (value + high.x[k]) / 2), radius: NEIGHBOUR_RADIUS }];
+    const from = [low, high].find(({ x }) => isNew(tried, level, x));
+    return from === undefined ? [] : [{ level, x: from.x, ...CONTINUE }];
   });
-  yield* solveAll(known, name, starts.slice(0, count), budget, allowance(known, SHORT));
+  yield* solveAll(known, name, starts, budget);
   return starts.length > 0;
 }
 
@@ -155,13 +221,10 @@ export function* tighten(known: Knowledge, name: string, levels: readonly number
   const loose = levels.flatMap((level) => {
     const member = atLevel(front, level);
     if (member === null || member.brightness <= level * (1 + SLACK)) return [];
-    return [{ level, x: unitOf(known, member), radius: NEIGHBOUR_RADIUS, slack: member.brightness - level }];
+    return [{ start: { level, x: unitOf(known, member), ...NEIGHBOUR }, slack: member.brightness - level }];
   });
-  const starts = loose
-    .sort((a, b) => b.slack - a.slack)
-    .map(({ level, x, radius }) => ({ level, x, radius }));
-  const each = allowance(known, SHORT);
-  yield* solveAll(known, name, starts.slice(0, Math.floor(budget / each)), budget, each);
+  const starts = loose.sort((a, b) => b.slack - a.slack).map(({ start }) => start);
+  yield* solveAll(known, name, starts, budget);
 }
 
 /** A second opinion at a level: solves from members of the islands' populations that are far from the best one. */
@@ -180,7 +243,7 @@ export function* polishOthers(
   for (const x of others) {
     if (taken.some((old) => distance(known.problem, old, x) < BRANCH_WIDTH)) continue;
     taken.push(x);
-    starts.push({ level: levels[starts.length % levels.length], x, radius: JUMP_RADIUS });
+    starts.push({ level: levels[starts.length % levels.length], x, ...JUMP });
   }
   yield* solveAll(known, name, starts, budget);
 }

@@ -92,7 +92,9 @@ export function* race(known: Knowledge, name: string, budget: number): Plan {
       known.task(`${name}-${i + 1}`, 'solve', each, {
         level,
         start,
+        far: false,
         radius: rung.radius,
+        shake: 0,
         exact: known.exact,
       }),
     );

@@ -1,4 +1,6 @@
+import { type Stream, stream } from '../../core/numerics/stream.js';
 import type { Reply, Trial } from '../local/contract.js';
+import { movingAsymptotes } from '../local/moving-asymptotes.js';
 import { optimizeInBatches } from '../local/session.js';
 import { sqp } from '../local/sqp.js';
 import { constraintCount } from '../problem/limits.js';
@@ -10,10 +12,14 @@ export interface SolveInput {
   readonly level: number;
   /** Point of the unit cube. */
   readonly start: readonly number[];
-  /** First trust radius, in units of the cube. */
+  /** First distance of the asymptotes, or first trust radius, in units of the cube. */
   readonly radius: number;
+  /** Far from the end moving asymptotes find the way along curved valleys, near it SQP converges faster. */
+  readonly far: boolean;
   /** Whether exact derivatives are worth asking for. */
   readonly exact: boolean;
+  /** The start is moved at random by up to this much along each coordinate: off symmetry, where a branch may fork. */
+  readonly shake: number;
 }
 
 /** Where the solve ended; null when every candidate was infeasible. */
@@ -33,14 +39,26 @@ export interface Solution {
 /** Distance to keep from the limits of the goal: a design that misses one by rounding is lost. */
 const MARGIN = 2e-6;
 
+/** The same for the brightness, relative to its level. */
+const BRIGHTNESS_MARGIN = 1e-5;
+
 /** Weight of a missing brightness against the relative impurity, when the best of a solve is chosen. */
-const SHORTFALL = 100;
+const SHORTFALL = 1e4;
 
 /** Relative gain in impurity that is not worth another iteration. */
-const TOLERANCE = 1e-6;
+const TOLERANCE = 5e-6;
+
+function shaken(x: Trial, size: number, categories: readonly number[], random: Stream): number[] {
+  return x.map((u, k) => {
+    if (categories[k] > 0) return u;
+    const moved = u + size * (2 * random.next() - 1);
+    return Math.min(Math.max(moved, 0), 1);
+  });
+}
 
 export const solveTask: TaskRunner = (task, { spec, problem, recorder, seed }): Solution | null => {
-  const { level, start, radius, exact } = task.input as SolveInput;
+  const { level, start: given, radius, far, exact, shake } = task.input as SolveInput;
+  const start = shaken(given, shake, problem.space.categories, stream(seed, 0));
   let best: Solution | null = null;
   let scale = 0;
   let had = false;
@@ -57,12 +75,12 @@ export const solveTask: TaskRunner = (task, { spec, problem, recorder, seed }): 
     const { impurity, brightness, constraints, violation } = candidate;
     if (Number.isFinite(impurity)) {
       scale ||= impurity || 1;
-      const next = { level, start: [...start], x: [...x], impurity, brightness, violation, exact };
+      const next = { level, start: given, x: [...x], impurity, brightness, violation, exact };
       if (best === null || merit(next) < merit(best)) best = next;
     }
     return {
       objectives: [impurity],
-      constraints: [level - brightness, ...constraints.map((c) => c + MARGIN)],
+      constraints: [level * (1 + BRIGHTNESS_MARGIN) - brightness, ...constraints.map((c) => c + MARGIN)],
     };
   };
   const setup = {
@@ -74,7 +92,10 @@ export const solveTask: TaskRunner = (task, { spec, problem, recorder, seed }): 
     budget: task.budget,
     gradient: exact && recorder.differentiable,
   };
-  optimizeInBatches(sqp({ radius, tolerance: TOLERANCE }), setup, (trials, gradient) =>
+  const method = far
+    ? movingAsymptotes({ reach: radius, tolerance: TOLERANCE })
+    : sqp({ radius, tolerance: TOLERANCE });
+  optimizeInBatches(method, setup, (trials, gradient) =>
     gradient
       ? trials.map(slopesAt)
       : recorder.evaluateMany(trials).map((candidate, i) => replyOf(trials[i], candidate)),
