@@ -1,6 +1,7 @@
 import { formatQuantity, GHZ_PER_MEV } from '../../core/index.js';
 import type { Study } from '../study/index.js';
 import type { DesignFacts, ToneFacts } from './derived.js';
+import { goalLines } from './goal-text.js';
 import { lineText } from './lines.js';
 import { threeDigits } from './numbers.js';
 import { choiceReasons, PHONON_ROWS } from './phonon-facts.js';
@@ -119,6 +120,8 @@ export function checkText(
   if (warnings.length > 0) parts.push([bold('warnings', color), ...warnings].join('\n'));
   const failures = corners.flatMap(({ facts }) => facts.propagator.failure ?? []);
   if (failures.length > 0) parts.push(failures.join('\n'));
+  if (parameters.length > 0)
+    parts.push([bold('goal', color), ...goalLines(study.goal).map((line) => `  ${line}`)].join('\n'));
   if (parameters.length > 0) {
     parts.push([bold('free parameters', color), ...parameters.map((text) => `  ${text}`)].join('\n'));
   }

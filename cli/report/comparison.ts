@@ -52,6 +52,10 @@ function notesOf(fronts: readonly FrontFile[], names: readonly string[]): string
   differ('filters differ', ({ filtered }) =>
     filtered === null ? '–' : filtered ? 'behind a filter' : 'none: scattered laser light counts as signal',
   );
+  for (const [k, { third }] of fronts.entries()) {
+    if (third !== null)
+      notes.push(`${names[k]}: has a third axis (${third}); shown is its front without a bound on it`);
+  }
   differ('made by different versions', ({ version }) => version);
   return notes;
 }
@@ -90,7 +94,10 @@ export function comparisonText(comparison: Comparison, color: boolean): string {
   const { fronts, names, levels, impurity, notes } = comparison;
   const { brightness, impurity: figure } = fronts[0];
   const keys = names.map((name, k) => `  ${k + 1}  ${name}`);
-  const parts = [`impurity ${figureLabel(figure)} at brightness ${figureLabel(brightness)} of at least`];
+  const parts = [
+    `${figureLabel(figure)}, of designs with ${figureLabel(brightness)}, of at least the level`,
+    '',
+  ];
   if (levels.length > 0) {
     const head = ['level', ...fronts.map((_, k) => `${k + 1}`)];
     const rows = levels.map((level, i) => [threeDigits(level), ...impurity[i].map(threeDigits)]);

@@ -1,5 +1,6 @@
 import type { Goal, Restarts } from '../../optimizers/index.js';
 import { type Explanation, type FrontPart, percent } from '../run/explain/explanation.js';
+import { readable } from '../run/parameters.js';
 import { symbolOf } from './labels.js';
 import { threeDigits } from './numbers.js';
 import { bold, tableText } from './table.js';
@@ -76,6 +77,15 @@ function growthLine({ growth }: Explanation): string {
   ].join('\n');
 }
 
+/** Ranges that the search would leave if it could. */
+function endLines({ ends, parts }: Explanation): string[] {
+  const total = parts.reduce((sum, { designs }) => sum + designs, 0);
+  return ends.map(({ path, value, end, designs }) => {
+    const side = end === 'from' ? 'lower' : 'upper';
+    return `${path}: at its ${side} end, ${readable(value, path)}, in ${designs} of ${total} designs; a wider range may give better ones`;
+  });
+}
+
 /** How the front was found, as a user reads it at the end of a run. */
 export function explanationText(explanation: Explanation, goal: Goal, color: boolean): string {
   const { doubts } = explanation;
@@ -85,6 +95,7 @@ export function explanationText(explanation: Explanation, goal: Goal, color: boo
     '',
     ...againLines(explanation),
     growthLine(explanation),
+    ...endLines(explanation),
     ...(doubts.length === 0
       ? []
       : [

@@ -32,12 +32,18 @@ function countTable(tree: FigureTree, color: boolean): string {
   return tableText({ head: ['per pulse', ...bases], rows }, color);
 }
 
+function energyText({ energy_fj, energy_pi_units }: FigureTree['pulse']): string {
+  const share = `${threeDigits(energy_pi_units)} of a π pulse as wide as the first tone`;
+  return energy_fj === null ? share : `${formatQuantity(energy_fj, 'pulseEnergy')} (${share})`;
+}
+
 function otherLines(tree: FigureTree): string[] {
   const { pulse, populations, phonons, accuracy } = tree;
   const levels = Object.entries(populations).map(([name, value]) => `${name} ${threeDigits(value)}`);
   const flags = phonons.flags.length > 0 ? ` (${phonons.flags.join('; ')})` : '';
   return [
-    `pulse        ${threeDigits(pulse.energy_pi_units)} π-pulse energies, duration ${threeDigits(pulse.duration_ps)} ps, bandwidth ${threeDigits(pulse.bandwidth_ghz)} GHz`,
+    `pulse        energy ${energyText(pulse)}, peak Rabi frequency ${threeDigits(pulse.peak_rabi_per_ps)} 1/ps,`,
+    `             duration ${threeDigits(pulse.duration_ps)} ps, bandwidth ${threeDigits(pulse.bandwidth_ghz)} GHz`,
     `populations  ${levels.join(', ')} (end of the drive window)`,
     `phonons      ${phonons.method}${flags}`,
     `accuracy     estimated relative error ${accuracy.error_estimate.toExponential(1)}, ${accuracy.steps} steps`,

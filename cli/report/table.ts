@@ -1,6 +1,14 @@
 import { styleText } from 'node:util';
 import Table from 'cli-table3';
 
+/** What a text may look like. */
+export interface Style {
+  /** Bold where the terminal shows it. */
+  readonly color: boolean;
+  /** Characters in a line. */
+  readonly columns: number;
+}
+
 export interface TableText {
   readonly head: readonly string[];
   readonly rows: readonly (readonly string[])[];

@@ -54,6 +54,20 @@ function largestLines({ largest }: ToleranceResult): string[] {
   });
 }
 
+/** Below this relative excess over the demanded brightness, a design has nothing to lose to drift. */
+const RESERVE = 1e-3;
+
+function reserveLines({ cases, demand }: ToleranceResult): string[] {
+  const { verdict, missed } = cases[0].finding;
+  const least = demand.brightness;
+  if (least === null || missed.length > 0 || verdict.brightness > least * (1 + RESERVE)) return [];
+  const figure = `signal ${symbolOf(demand.goal.brightness)}`;
+  return [
+    `note: without drift ${figure} is no more than demanded, so that any drift takes it below; a search with the drift`,
+    '  in its study leaves a reserve, a lower --brightness tells what can be kept',
+  ];
+}
+
 /** What a physicist reads: figures under each drift, the yield, and what could still be tolerated. */
 export function toleranceText(result: ToleranceResult, color: boolean): string {
   const { goal } = result.demand;
@@ -85,6 +99,7 @@ export function toleranceText(result: ToleranceResult, color: boolean): string {
       : `yield: ${threeDigits(100 * share.share)} % ± ${threeDigits(100 * share.standardError)} % of ${share.samples} drift samples meet the demand, each by itself (seed ${share.seed})`,
     'largest rms of each drift alone that still meets the demand:',
     ...largestLines(result),
+    ...reserveLines(result),
   ].join('\n');
 }
 

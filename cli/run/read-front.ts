@@ -23,6 +23,8 @@ export interface FrontFile {
   /** Paths of the figures of the goal, such as `collected.multiphoton`. */
   readonly impurity: string;
   readonly brightness: string;
+  /** Path of the figure on a third axis; null for none. */
+  readonly third: string | null;
   /** Whether the signal stands behind a filter; null without points. */
   readonly filtered: boolean | null;
   /** How phonons were treated, each method once. */
@@ -44,7 +46,11 @@ export interface Content {
   readonly format: string;
   readonly version: string;
   readonly study: { readonly title: string; readonly hash: string };
-  readonly goal: { readonly impurity: string; readonly brightness: string };
+  readonly goal: {
+    readonly impurity: string;
+    readonly brightness: string;
+    readonly third?: { readonly figure: string } | null;
+  };
   readonly points: readonly ContentPoint[];
   readonly best: ContentPoint | null;
 }
@@ -123,6 +129,7 @@ export async function readFront(directory: string): Promise<FrontFile> {
     directory,
     version,
     ...{ title: study.title, hash: study.hash, impurity: goal.impurity, brightness: goal.brightness },
+    third: goal.third?.figure ?? null,
     filtered: points.length === 0 ? null : points[0].figures.filtered !== null,
     phonons: [...new Set(points.map(({ figures }) => figures.phonons.method))].sort(),
     points: read.sort((a, b) => a.brightness - b.brightness),

@@ -44,7 +44,7 @@ export function toleranceChart(plot: TolerancePlot): TopLevelSpec {
         x: {
           field: 'factor',
           type: 'quantitative',
-          title: last ? 'rms, in units of the legend' : null,
+          title: last ? 'rms, as a multiple of what the legend says' : null,
           scale: { nice: false },
         },
         y,

@@ -1,6 +1,7 @@
 import { applyParameters, judge, type Restarts, type SearchOutcome } from '../../../optimizers/index.js';
 import type { Study } from '../../study/index.js';
 import type { FrontDesign } from '../contract.js';
+import { columnOf, inColumn } from '../parameters.js';
 import { branchOf } from './branch.js';
 import { type Growth, growthOf } from './growth.js';
 
@@ -17,10 +18,20 @@ export interface FrontPart {
   readonly stages: readonly { readonly name: string; readonly designs: number }[];
 }
 
+export interface RangeEnd {
+  readonly path: string;
+  /** The end, in internal units, and which one it is. */
+  readonly value: number;
+  readonly end: 'from' | 'to';
+  readonly designs: number;
+}
+
 /** How a front was found and how far it can be trusted. */
 export interface Explanation {
   readonly parts: readonly FrontPart[];
   readonly restarts: SearchOutcome['restarts'];
+  /** Free ranges at whose end designs of the front lie: a wider range may give better ones. */
+  readonly ends: readonly RangeEnd[];
   /** Null where the stages tell no trend. */
   readonly growth: Growth | null;
   /** Why the front is probably not converged; empty where nothing speaks against it. */
@@ -51,6 +62,21 @@ function partsOf(study: Study, front: readonly FrontDesign[], order: readonly st
       to: Math.max(...brightness),
       stages: names.map((name) => ({ name, designs: count(name) })),
     };
+  });
+}
+
+/** Share of a range within which a value counts as its end. */
+const AT_END = 1e-6;
+
+function endsOf(study: Study, front: readonly FrontDesign[]): RangeEnd[] {
+  return study.parameters.flatMap((parameter, i) => {
+    if (parameter.kind === 'list') return [];
+    const width = parameter.to - parameter.from;
+    return (['from', 'to'] as const).flatMap((end) => {
+      const value = parameter[end];
+      const designs = front.filter(({ values }) => Math.abs(values[i] - value) <= AT_END * width).length;
+      return designs === 0 || width === 0 ? [] : [{ path: parameter.path, value, end, designs }];
+    });
   });
 }
 
@@ -88,12 +114,15 @@ export function explain(
     front,
     outcome.stages.map(({ name }) => name),
   );
-  return { parts, restarts: outcome.restarts, growth, doubts: doubtsOf(growth, outcome.restarts.best) };
+  return {
+    ...{ parts, growth, restarts: outcome.restarts, ends: endsOf(study, front) },
+    doubts: doubtsOf(growth, outcome.restarts.best),
+  };
 }
 
 /** An explanation as it stands in front.json. */
 export function explanationDocument(explanation: Explanation): unknown {
-  const { parts, restarts, growth, doubts } = explanation;
+  const { parts, restarts, growth, ends, doubts } = explanation;
   return {
     parts,
     found_again: restarts,
@@ -104,6 +133,12 @@ export function explanationDocument(explanation: Explanation): unknown {
       meaning:
         'shares of the hypervolume; the first is an estimate from the other two: least if the growth goes on to slow down as it did, most if it goes on as in the second half',
     },
+    at_the_end_of_a_range: ends.map(({ path, value, end, designs }) => ({
+      parameter: columnOf(path),
+      end,
+      value: inColumn(value, path),
+      designs,
+    })),
     probably_not_converged: doubts,
   };
 }
