@@ -19,7 +19,7 @@ import { UnitaryStep } from './unitary-step.js';
  */
 export const kicked: FastKernel = {
   name: 'kicked',
-  supports: (request) => request.filter !== null || request.scheme.levels.length > 2,
+  supports: (request) => request.filter !== null && request.scheme.levels.length === 2,
   count(request, countPart) {
     const spans = smoothSpans(request.drive);
     if (!spans) return null;

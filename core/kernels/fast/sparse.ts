@@ -39,7 +39,7 @@ function fromMaps(rows: readonly Map<number, number>[]): SparseRows {
 }
 
 /** factor · a · b (row by row; Gustavson, ACM Trans. Math. Softw. 4, 250 (1978)). */
-function product(a: SparseRows, b: SparseRows, factor: number): SparseRows {
+export function product(a: SparseRows, b: SparseRows, factor: number): SparseRows {
   const { size } = a;
   const sums = new Float64Array(size);
   const seen = new Int32Array(size).fill(-1);
@@ -70,6 +70,24 @@ function product(a: SparseRows, b: SparseRows, factor: number): SparseRows {
     start[r + 1] = col.length;
   }
   return { size, start, col: Int32Array.from(col), value: Float64Array.from(value) };
+}
+
+/** Sum of matrices of one size; entries that cancel to rounding are dropped. */
+export function sumOf(matrices: readonly SparseRows[]): SparseRows {
+  const rows: Map<number, number>[] = Array.from({ length: matrices[0].size }, () => new Map());
+  let largest = 0;
+  for (const m of matrices) {
+    for (let r = 0; r < m.size; r++) {
+      for (let k = m.start[r]; k < m.start[r + 1]; k++) {
+        rows[r].set(m.col[k], (rows[r].get(m.col[k]) ?? 0) + m.value[k]);
+        largest = Math.max(largest, Math.abs(m.value[k]));
+      }
+    }
+  }
+  for (const row of rows) {
+    for (const [c, v] of row) if (Math.abs(v) <= 1e-13 * largest) row.delete(c);
+  }
+  return fromMaps(rows);
 }
 
 /** Largest ‖hK‖ for which the power series keeps its digits. */
@@ -105,14 +123,18 @@ export class ExponentialFamily {
     this.powers = [identity(k.size)];
   }
 
-  /** e^{hK}, or null where the series would lose digits. */
-  at(h: number): SparseRows | null {
+  /**
+   * e^{hK}, or null where the series would lose digits.
+   * @param reuse an earlier answer whose numbers may be overwritten
+   */
+  at(h: number, reuse: SparseRows | null = null): SparseRows | null {
     const reach = h * this.norm;
     if (!(reach <= LARGEST_NORM)) return null;
     const count = termsFor(reach);
     const { start, col, terms } = this.patterned(count);
     // From the highest power down; the sum does not depend on how many more powers happen to be known.
-    const value = terms[count].slice();
+    const value = reuse && reuse.col === col ? reuse.value : new Float64Array(col.length);
+    value.set(terms[count]);
     for (let t = count - 1; t >= 0; t--) {
       const term = terms[t];
       for (let i = 0; i < value.length; i++) value[i] = value[i] * h + term[i];
@@ -121,9 +143,13 @@ export class ExponentialFamily {
   }
 
   /** y ← e^{hK} y. */
-  apply(h: number, y: Float64Array): void {
-    const term = y.slice();
-    const next = new Float64Array(y.length);
+  apply(
+    h: number,
+    y: Float64Array,
+    term: Float64Array = y.slice(),
+    next: Float64Array = new Float64Array(y.length),
+  ): void {
+    term.set(y);
     const count = termsFor(h * this.norm);
     for (let t = 1; t <= count; t++) {
       applyRows(this.matrix, term, next);

@@ -1,0 +1,113 @@
+import type { CountResult } from '../../count.js';
+import { disagreement } from '../estimate.js';
+
+/** Growth of the steps from one run to the next. */
+const GROWTH = 1.3;
+/** Most runs of one series. */
+const RUNS = 5;
+/** The extrapolated value is better than its difference from the one without the coarsest run by at least this. */
+const GAIN = 1.2;
+/** Accuracy of populations over that of probabilities. */
+const POPULATIONS = 0.1;
+
+interface Series {
+  readonly result: CountResult;
+  readonly runs: number;
+}
+
+/**
+ * Runs on finer and finer steps. Their errors have a series h⁴, h⁶, … (the h² term is taken out step by step), of which
+ * every further run takes out one more term (Richardson; Hairer, Nørsett & Wanner, Solving Ordinary Differential Equations
+ * I, section II.9), until leaving out the coarsest run makes no difference.
+ * @param first steps per span of the first run
+ * @param accept error to reach, in the measure of `disagreement`
+ * @param parts the accepted series is repeated with every step cut into this many
+ * @returns null when the runs run out
+ */
+export function refine(
+  first: readonly number[],
+  accept: number,
+  run: (counts: readonly number[]) => CountResult | null,
+  parts: number,
+): CountResult | null {
+  const found = series(first, accept, run, null);
+  if (!found || parts === 1) return found?.result ?? null;
+  const fine = series(
+    first.map((n) => n * parts),
+    accept,
+    run,
+    found.runs,
+  );
+  return fine && { ...fine.result, localErrors: found.result.localErrors };
+}
+
+function series(
+  first: readonly number[],
+  accept: number,
+  run: (counts: readonly number[]) => CountResult | null,
+  exactly: number | null,
+): Series | null {
+  const results: CountResult[] = [];
+  let before: CountResult | null = null;
+  for (let k = 0; k < (exactly ?? RUNS); k++) {
+    const result = run(first.map((n) => Math.ceil(n * GROWTH ** k)));
+    if (!result) return null;
+    results.push(result);
+    if (k === 0) continue;
+    before = extrapolated(results.slice(1));
+    const all = extrapolated(results);
+    const error = difference(before, all) / GAIN;
+    if (!Number.isFinite(error)) return null;
+    if (exactly === null ? error <= accept : k + 1 === exactly) {
+      const steps = results.reduce((sum, r) => sum + r.steps, 0);
+      return { result: { ...all, steps, localErrors: error }, runs: k + 1 };
+    }
+  }
+  return null;
+}
+
+function difference(a: CountResult, b: CountResult): number {
+  return b.populations.reduce(
+    (worst, p, i) => Math.max(worst, POPULATIONS * Math.abs(p - a.populations[i])),
+    disagreement(a.values, b.values),
+  );
+}
+
+/** The value at h = 0 of a + b h⁴ + c h⁶ + … through all results. */
+function extrapolated(results: readonly CountResult[]): CountResult {
+  const last = results[results.length - 1];
+  if (results.length === 1) return last;
+  const weights = weightsOf(results.map((r) => (last.steps / r.steps) ** 2));
+  const sum = (read: (r: CountResult) => number): number =>
+    results.reduce((total, r, i) => total + weights[i] * read(r), 0);
+  return {
+    ...last,
+    values: Object.fromEntries(Object.keys(last.values).map((name) => [name, sum((r) => r.values[name])])),
+    populations: last.populations.map((_, i) => sum((r) => r.populations[i])),
+  };
+}
+
+/** Weights with Σw = 1 and Σw x² = Σw x³ = … = 0, by elimination. */
+function weightsOf(x: readonly number[]): number[] {
+  const n = x.length;
+  const rows = Array.from({ length: n }, (_, q) => x.map((v) => (q === 0 ? 1 : v ** (q + 1))));
+  const right: number[] = rows.map((_, q) => (q === 0 ? 1 : 0));
+  for (let i = 0; i < n; i++) {
+    let most = i;
+    for (let r = i + 1; r < n; r++) if (Math.abs(rows[r][i]) > Math.abs(rows[most][i])) most = r;
+    [rows[i], rows[most]] = [rows[most], rows[i]];
+    [right[i], right[most]] = [right[most], right[i]];
+    for (let r = i + 1; r < n; r++) {
+      const factor = rows[r][i] / rows[i][i];
+      for (let c = i; c < n; c++) rows[r][c] -= factor * rows[i][c];
+      right[r] -= factor * right[i];
+    }
+  }
+  const weights = new Array<number>(n).fill(0);
+  for (let i = n - 1; i >= 0; i--) {
+    let v = right[i];
+    for (let c = i + 1; c < n; c++) v -= rows[i][c] * weights[c];
+    weights[i] = v / rows[i][i];
+  }
+  return weights;
+}
