@@ -3,11 +3,11 @@ import type { ProblemSpec } from './problem/contract.js';
 import { judge } from './problem/judge.js';
 import { createProblem, type Evaluate } from './problem/problem.js';
 import { Knowledge, type Stage } from './stages/contract.js';
+import { planWithCorrection } from './stages/correct.js';
 import { type Milestone, outcomeOf, type SearchOutcome } from './stages/outcome.js';
-import { plan } from './stages/plan.js';
 import type { Task, TaskResult } from './tasks/contract.js';
 import type { TaskPool } from './workers/contract.js';
-import { evaluateForSearch, gradientForSearch } from './workers/evaluate.js';
+import { evaluateExactly, evaluateForSearch, gradientForSearch } from './workers/evaluate.js';
 import { serialPool } from './workers/serial.js';
 import { taskPool } from './workers/task-pool.js';
 
@@ -154,7 +154,7 @@ function checkCap(known: Knowledge, tasks: readonly Task[]): void {
 
 async function carryOut(run: Run): Promise<'finished' | 'interrupted'> {
   const { known, milestones, options } = run;
-  const steps = plan(known);
+  const steps = planWithCorrection(known);
   for (let step = steps.next(); !step.done; ) {
     const stage = step.value;
     checkCap(known, stage.tasks);
@@ -184,7 +184,7 @@ async function carryOut(run: Run): Promise<'finished' | 'interrupted'> {
 export async function search(spec: ProblemSpec, options: SearchOptions): Promise<SearchOutcome> {
   const problem =
     options.evaluate === undefined
-      ? createProblem(spec, evaluateForSearch, gradientForSearch)
+      ? createProblem(spec, evaluateForSearch, gradientForSearch, undefined, evaluateExactly)
       : createProblem(spec, options.evaluate, options.evaluateGradient ?? null);
   const own = options.pool === undefined;
   const here = options.evaluate !== undefined;

@@ -102,10 +102,20 @@ export async function quoteFront(
   const chosen = chosenPoints(study, outcome);
   const { best, nearest } = outcome;
   const others = [best, nearest].filter((point) => point !== null);
-  const tasks = quotingTasks(study, [...chosen.map(({ point }) => point), ...others]);
+  // What the exact phonon method corrected was evaluated at this accuracy already.
+  const isQuoted = ({ figures }: EvaluatedPoint) =>
+    outcome.correction !== null && figures.phonons.method === 'exact';
+  const all = [...chosen.map(({ point }) => point), ...others];
+  const tasks = quotingTasks(
+    study,
+    all.filter((point) => !isQuoted(point)),
+  );
   const figures = await quotedFigures(tasks, pool, signal, onPoint);
   if (figures === null) return null;
-  const anew = <P extends EvaluatedPoint>(point: P): P => ({ ...point, figures: figures.get(keyOf(point))! });
+  const anew = <P extends EvaluatedPoint>(point: P): P => ({
+    ...point,
+    figures: figures.get(keyOf(point)) ?? point.figures,
+  });
   const distinct = [...new Set(chosen.map(({ point }) => keyOf(point)))];
   const front = chosen.map(({ level, slice, point }) => {
     const { values, figures, stage } = anew(point);

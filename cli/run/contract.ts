@@ -34,7 +34,7 @@ export interface RunResult extends RunIdentity {
   /** Where no evaluation met the limits of the goal: the nearest one, evaluated anew. */
   readonly nearest: EvaluatedPoint | null;
   readonly archive: readonly EvaluatedPoint[];
-  readonly outcome: Pick<SearchOutcome, 'evaluations' | 'hypervolume' | 'stages' | 'front'>;
+  readonly outcome: Pick<SearchOutcome, 'evaluations' | 'hypervolume' | 'stages' | 'front' | 'correction'>;
   /** How the front was found, as it stands in front.json; null where there is nothing to tell. */
   readonly explanation: Explanation | null;
   /** Wall time of the search, all sessions together, s. */

@@ -51,6 +51,7 @@ export function frontDocument(result: RunResult): unknown {
     wall_time_s: result.wall,
     hypervolume: outcome.hypervolume,
     stages: outcome.stages,
+    phonon_correction: outcome.correction && { method: 'exact', ...outcome.correction },
     explanation: result.explanation && explanationDocument(result.explanation),
   };
 }

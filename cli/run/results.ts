@@ -1,5 +1,7 @@
 import { join } from 'node:path';
-import { writeDesign } from '../study/index.js';
+import { withExactPhonons } from '../../core/index.js';
+import { applyParameters } from '../../optimizers/index.js';
+import { writeStudyFile } from '../study/index.js';
 import type { FrontDesign, RunResult } from './contract.js';
 import { DESIGNS, keepDesigns } from './directory.js';
 import { frontDocument } from './front-json.js';
@@ -18,7 +20,10 @@ export function designFile(index: number, count: number): string {
 async function writeDesignFile(result: RunResult, point: FrontDesign, directory: string): Promise<void> {
   const name = point.file.slice(DESIGNS.length + 1).replace('.yaml', '');
   const title = result.study.title === '' ? `design ${name}` : `${result.study.title}: design ${name}`;
-  await writeWhole(join(directory, point.file), writeDesign(result.study, point.values, title));
+  const design = applyParameters(result.study, point.values);
+  // A front that was corrected by the exact phonon method holds its figures: the file gives them again.
+  const quoted = point.figures.phonons.method === 'exact' ? withExactPhonons(design) : design;
+  await writeWhole(join(directory, point.file), writeStudyFile(result.study, quoted, title));
 }
 
 /**

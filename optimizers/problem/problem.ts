@@ -1,5 +1,5 @@
 import type { EvaluateGradient } from '../../core/gradient.js';
-import type { Design, Figures } from '../../core/index.js';
+import { type Design, type Figures, withExactPhonons } from '../../core/index.js';
 import { PropagationError } from '../../core/kernels/count.js';
 import type { Goal, ProblemSpec } from './contract.js';
 import { type Differentiated, differentiator } from './gradient.js';
@@ -30,6 +30,8 @@ export interface Problem {
   readonly unitOf: (values: readonly number[]) => number[];
   /** The same parameters and figures judged by another goal. */
   readonly withGoal: (goal: Goal) => Problem;
+  /** The same parameters and goal by the exact phonon method, at the accuracy of quoted figures. */
+  readonly withExactPhonons: () => Problem;
   /** One objective value. */
   readonly evaluate: (x: readonly number[]) => Candidate;
   /** The same of a whole batch, in its order: threads may share it out. */
@@ -56,12 +58,14 @@ export const evaluateOneByOne =
  * Builds the problem of a specification. Throws when a path does not exist, a tie is circular or a range is empty.
  * @param evaluateGradient figures with exact derivatives, or null for none
  * @param evaluateMany gives the figures of `evaluate`
+ * @param evaluateExactly gives the figures by the exact phonon method, good enough to be quoted
  */
 export function createProblem(
   spec: ProblemSpec,
   evaluate: Evaluate,
   evaluateGradient: EvaluateGradient | null = null,
   evaluateMany: EvaluateMany = evaluateOneByOne(evaluate),
+  evaluateExactly: Evaluate = evaluate,
 ): Problem {
   const transforms = spec.parameters.map(transformOf);
   const valuesAt = (x: readonly number[]) => transforms.map((transform, i) => transform.value(x[i]));
@@ -79,7 +83,10 @@ export function createProblem(
   return {
     space: { dimension: transforms.length, categories: transforms.map((transform) => transform.categories) },
     valuesAt,
-    withGoal: (goal) => createProblem({ ...spec, goal }, evaluate, evaluateGradient, evaluateMany),
+    withGoal: (goal) =>
+      createProblem({ ...spec, goal }, evaluate, evaluateGradient, evaluateMany, evaluateExactly),
+    withExactPhonons: () =>
+      createProblem({ ...spec, design: withExactPhonons(spec.design) }, evaluateExactly),
     unitOf: (values) => transforms.map((transform, i) => transform.unit(values[i])),
     evaluate: (x) => evaluatePoints([x])[0],
     evaluateMany: evaluatePoints,

@@ -4,8 +4,10 @@ import { judge } from '../problem/judge.js';
 import type { Problem } from '../problem/problem.js';
 import { goalWithin } from '../problem/third.js';
 import type { Task, TaskResult } from '../tasks/contract.js';
+import type { Correction } from '../tasks/correct.js';
 import { type JudgedPoint, NearestPoint, PointArchive } from '../tasks/recorder.js';
 import type { Solution } from '../tasks/solve.js';
+import type { Restarts } from './restarts.js';
 
 /** Tasks that may run side by side. */
 export interface Stage {
@@ -19,12 +21,21 @@ export interface Stage {
  */
 export type Plan<T = void> = Generator<Stage, T, readonly TaskResult[]>;
 
+/** A front corrected by the exact phonon method. */
+export interface CorrectedFront {
+  /** Levels of the front that was corrected. */
+  readonly levels: readonly number[];
+  /** Of the search before, whose solves do not compare with what followed. */
+  readonly restarts: { readonly all: Restarts | null; readonly best: Restarts | null };
+  readonly corrections: readonly Correction[];
+}
+
 /** What a plan knows so far. */
 export class Knowledge {
   readonly spec: ProblemSpec;
   readonly problem: Problem;
   /** Non-dominated in every objective of the goal. */
-  readonly archive: PointArchive;
+  archive: PointArchive;
   /** Bounds of the slices of a front with three objectives, once they are chosen: see `sliceBounds`. */
   bounds: readonly (number | null)[] | null = null;
   /** The evaluation nearest to the limits of the goal among tasks in which none met them. */
@@ -35,10 +46,14 @@ export class Knowledge {
   islands: (readonly (readonly number[])[])[] = [];
   /** Evaluations spent in finished stages. */
   spent = 0;
+  /** Evaluations kept back for the end of the search. */
+  reserved = 0;
+  /** What became of the front when it was corrected by the exact phonon method; null where it was not. */
+  corrected: CorrectedFront | null = null;
   /** Whether exact derivatives are worth asking for: the problem has them, and solves have had them. */
   exact: boolean;
   /** The archive by impurity and brightness alone. */
-  readonly #flat: PointArchive;
+  #flat: PointArchive;
   #tasks = 0;
   #parent: { readonly known: Knowledge; readonly name: string } | null = null;
 
@@ -62,7 +77,7 @@ export class Knowledge {
   }
 
   get left(): number {
-    return this.spec.search.evaluations - this.spent;
+    return this.spec.search.evaluations - this.spent - this.reserved;
   }
 
   /** The members of the archive that none beats in impurity and brightness, by brightness. */
@@ -80,6 +95,12 @@ export class Knowledge {
       if (violation === 0) this.add({ values, figures, impurity, brightness, third, stage });
     }
     if (nearest !== undefined) this.nearest.offer(nearest, judge(nearest.figures, goal).violation);
+  }
+
+  /** Empties the archive: what follows is judged by another method. */
+  forget(): void {
+    this.#flat = new PointArchive(true);
+    this.archive = this.spec.goal.third === null ? this.#flat : new PointArchive();
   }
 
   private add(point: JudgedPoint): void {

@@ -4,8 +4,10 @@ import { sliceBounds, sliceOf } from '../front/slices.js';
 import type { EvaluatedPoint, Goal } from '../problem/contract.js';
 import { type Judgement, objectivesOf } from '../problem/judge.js';
 import { thirdAxes, turned } from '../problem/third.js';
+import { EXACT_TOLERANCE } from '../tasks/correct.js';
 import type { JudgedPoint } from '../tasks/recorder.js';
 import type { Knowledge } from './contract.js';
+import { CORRECTION } from './correct.js';
 import { type Restarts, restartsOf } from './restarts.js';
 
 /** A member of the archive. */
@@ -27,6 +29,8 @@ export interface StageReport {
   readonly name: string;
   readonly tasks: number;
   readonly evaluations: number;
+  /** The exact phonon method took over from a cheap one: the archive began anew. */
+  readonly corrects?: boolean;
   /** Hypervolume of the archive after the stage, against the reference of `SearchOutcome.hypervolume`. */
   readonly hypervolume: number;
 }
@@ -55,6 +59,15 @@ export interface SearchOutcome {
   readonly stages: readonly StageReport[];
   /** How often solves that began elsewhere found the front again (without a bound on a third axis); null without solves. */
   readonly restarts: { readonly all: Restarts | null; readonly best: Restarts | null };
+  /**
+   * Where the front was searched by a cheap phonon method and then corrected by the exact one, whose figures front and
+   * archive hold: the relative tolerance, the levels corrected, and how many of them settled to it. Null elsewhere.
+   */
+  readonly correction: {
+    readonly tolerance: number;
+    readonly levels: number;
+    readonly settled: number;
+  } | null;
 }
 
 /** The archive after a stage. */
@@ -130,6 +143,20 @@ const withLevel = (levels: readonly number[], level: number | null): number[] =>
 const byBrightness = (a: Judgement, b: Judgement): number =>
   a.brightness - b.brightness || a.impurity - b.impurity;
 
+/** Levels of the front; of a corrected one those that it was corrected at, as far as they were asked for or are reached. */
+function levelsFor({ spec, front, corrected }: Knowledge): number[] {
+  if (corrected === null) return levelsOf(spec.goal.front, front);
+  const reach = front.length === 0 ? 0 : front[front.length - 1].brightness;
+  return corrected.levels.filter((level) => spec.goal.front.to !== null || level <= reach);
+}
+
+function correctionOf({ corrected }: Knowledge): SearchOutcome['correction'] {
+  if (corrected === null) return null;
+  const { corrections } = corrected;
+  const settled = corrections.filter((c) => c.settled).length;
+  return { tolerance: EXACT_TOLERANCE, levels: corrections.length, settled };
+}
+
 /** What a search hands over, finished or not. */
 export function outcomeOf(
   kind: SearchOutcome['kind'],
@@ -138,7 +165,7 @@ export function outcomeOf(
 ): SearchOutcome {
   const { goal } = known.spec;
   const { front } = known;
-  const levels = levelsOf(goal.front, front);
+  const levels = levelsFor(known);
   const chosen = levelsWithin(known, goal.third === null ? levels : withLevel(levels, goal.atLeast));
   const reference = referenceOf(
     goal,
@@ -166,11 +193,13 @@ export function outcomeOf(
       name,
       tasks,
       evaluations,
+      corrects: known.corrected !== null && name.startsWith(CORRECTION),
       hypervolume: volume(then, reference),
     })),
-    restarts: {
+    restarts: known.corrected?.restarts ?? {
       all: restartsOf(known, null),
       best: goal.atLeast === null ? null : restartsOf(known, goal.atLeast),
     },
+    correction: correctionOf(known),
   };
 }

@@ -82,6 +82,14 @@ export class Recorder {
     return candidate;
   }
 
+  /** Counts an evaluation of another problem; archived only where `kept`. */
+  evaluateOn(problem: Problem, x: readonly number[], kept: boolean): Candidate {
+    const candidate = problem.evaluate(x);
+    if (kept) return this.#take(candidate);
+    this.#evaluations++;
+    return candidate;
+  }
+
   /** Whether exact derivatives can be asked for. */
   get differentiable(): boolean {
     return this.#problem.differentiate !== null;

@@ -3,6 +3,7 @@ import type { ProblemSpec } from '../problem/contract.js';
 import type { Problem } from '../problem/problem.js';
 import { goalWithin } from '../problem/third.js';
 import type { Task, TaskResult, TaskRunner } from './contract.js';
+import { correctTask } from './correct.js';
 import { figuresTask } from './figures.js';
 import { islandTask } from './island.js';
 import { methodTask } from './method.js';
@@ -16,6 +17,7 @@ export const taskRunners: ReadonlyMap<string, TaskRunner> = new Map([
   ['island', islandTask],
   ['solve', solveTask],
   ['method', methodTask],
+  ['correct', correctTask],
   ['figures', figuresTask],
 ]);
 

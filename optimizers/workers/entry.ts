@@ -2,7 +2,7 @@ import { parentPort, workerData } from 'node:worker_threads';
 import type { Design } from '../../core/index.js';
 import { createProblem, evaluateOneByOne, type Problem } from '../problem/problem.js';
 import { runTask } from '../tasks/registry.js';
-import { evaluateForSearch, gradientForSearch } from './evaluate.js';
+import { evaluateExactly, evaluateForSearch, gradientForSearch } from './evaluate.js';
 import { failureOf } from './failure.js';
 import type { WorkerMessage, WorkerOrder, WorkerSetup } from './messages.js';
 import { helpWith, type SharedBatch } from './shared-batch.js';
@@ -19,7 +19,7 @@ function problemHere(): Problem | null {
   try {
     const publish = (batch: SharedBatch<Design>) => say({ kind: 'share', batch });
     const evaluateMany = sharingMap(idle, publish, evaluateOne);
-    return createProblem(spec, evaluateForSearch, gradientForSearch, evaluateMany);
+    return createProblem(spec, evaluateForSearch, gradientForSearch, evaluateMany, evaluateExactly);
   } catch (error) {
     say({ kind: 'broken', failure: failureOf(error) });
     return null;

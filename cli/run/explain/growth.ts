@@ -29,7 +29,8 @@ function volumeAt(stages: readonly StageReport[], evaluations: number): number {
 }
 
 /** How the hypervolume grew from stage to stage; null where that tells no trend. */
-export function growthOf(stages: readonly StageReport[]): Growth | null {
+export function growthOf(all: readonly StageReport[]): Growth | null {
+  const stages = all.filter(({ corrects }) => !corrects);
   const total = stages.reduce((sum, { evaluations }) => sum + evaluations, 0);
   const final = volumeAt(stages, total);
   if (stages.length < FEWEST_STAGES || !(final > 0)) return null;
