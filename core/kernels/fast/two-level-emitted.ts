@@ -1,8 +1,9 @@
-import type { CountResult } from '../count.js';
+import type { CountRequest, CountResult, Effort } from '../count.js';
 import { EXCITED, FIGURES, GROUND, named } from './bloch/figures.js';
-import { prepare } from './bloch/problem.js';
+import { differentiate } from './bloch/gradient.js';
+import { type BlochProblem, prepare } from './bloch/problem.js';
 import { runBloch } from './bloch/run.js';
-import { settle } from './bloch/settle.js';
+import { type Settled, settle, total } from './bloch/settle.js';
 import type { FastKernel } from './contract.js';
 import { smoothSpans } from './spans.js';
 import { asTwoLevel } from './two-level.js';
@@ -19,30 +20,45 @@ export const twoLevelEmitted: FastKernel = {
   name: 'two-level emitted',
   supports: (request) => request.filter === null && asTwoLevel(request) !== null,
   count(request) {
-    const model = asTwoLevel(request);
-    const spans = smoothSpans(request.drive);
-    if (!model || !spans) return null;
-    const { parts, tolerance } = request.effort;
-    const problem = prepare(request, model, spans);
-    const settled = settle(problem, tolerance * ACCEPT);
-    if (!settled) return null;
-    const { figures, counts, error } = settled;
-    if (parts === 1) return resultOf(figures, counts, error);
-    const cut = counts.map((n) => n * parts);
-    const finer = new Float64Array(FIGURES);
-    runBloch(problem, cut, finer);
-    return resultOf(finer, cut, error);
+    const problem = problemOf(request);
+    const run = problem && runOf(problem, request.effort);
+    return run && resultOf(run);
+  },
+  countWithGradient(request, seeds) {
+    const problem = problemOf(request);
+    const run = problem && runOf(problem, request.effort);
+    if (!run || total(run.counts) > MOST_RECORDED) return null;
+    const result = resultOf(run);
+    const gradient = differentiate(problem, run.counts, seeds(result.values));
+    return gradient && { result, ...gradient };
   },
 };
 
 /** Accepted error of a run, in units of the effort's tolerance per step. */
 const ACCEPT = 10;
+/** Most steps of a run that is recorded for its derivatives: half a kilobyte each. */
+const MOST_RECORDED = 60_000;
 
-function resultOf(figures: Float64Array, counts: readonly number[], error: number): CountResult {
+function problemOf(request: CountRequest): BlochProblem | null {
+  const model = asTwoLevel(request);
+  const spans = model && smoothSpans(request.drive);
+  return spans && prepare(request, model, spans);
+}
+
+function runOf(problem: BlochProblem, { parts, tolerance }: Effort): Settled | null {
+  const settled = settle(problem, tolerance * ACCEPT);
+  if (!settled || parts === 1) return settled;
+  const counts = settled.counts.map((n) => n * parts);
+  const figures = new Float64Array(FIGURES);
+  runBloch(problem, counts, figures);
+  return { figures, counts, error: settled.error };
+}
+
+function resultOf({ figures, counts, error }: Settled): CountResult {
   return {
     values: named(figures),
     populations: [figures[GROUND], figures[EXCITED]],
-    steps: counts.reduce((a, b) => a + b, 0),
+    steps: total(counts),
     localErrors: error,
   };
 }

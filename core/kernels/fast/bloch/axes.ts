@@ -20,6 +20,7 @@ export interface Pulls {
  * Applies the rotations of steps from … to − 1 one after another to `q` and writes the axis v after step n to
  * axes[3(n + 1) …], so that axes[0 …] is what holds before step 0.
  * @param turns angle gained by each step's own frame, or null
+ * @param record receives the rotation after each step, or null
  */
 export function turnAxes(
   vectors: Float64Array,
@@ -29,6 +30,7 @@ export function turnAxes(
   q: Quaternion,
   axes: Float64Array,
   pulls: Pulls | null,
+  record: Float64Array | null = null,
 ): void {
   let qw = q[0];
   let qx = q[1];
@@ -95,6 +97,12 @@ export function turnAxes(
     axes[k + 4] = 2 * (qy * qz + qw * qx);
     axes[k + 5] = 1 - 2 * (qx * qx + qy * qy);
     if (pulls) pull(pulls, n, qw, qx, qy, qz);
+    if (record) {
+      record[4 * n] = qw;
+      record[4 * n + 1] = qx;
+      record[4 * n + 2] = qy;
+      record[4 * n + 3] = qz;
+    }
   }
   q[0] = qw;
   q[1] = qx;

@@ -6,6 +6,7 @@ import { phaseAt } from './frame.js';
 import { correctLadder, LADDER_STATE, type Ladder, ladderKicks } from './ladder.js';
 import { planarVectors, spatialVectors } from './magnus.js';
 import { BLOCK, NODES } from './nodes.js';
+import { energyAt, kickOver, paceOf, STRIDE, shrink } from './pace.js';
 import type { BlochProblem, BlochSpan } from './problem.js';
 import { addComplex, fillReal, sampleDrive } from './table.js';
 
@@ -33,9 +34,18 @@ function chain(own: number, feed: number, rest: number): Chain {
   return { own, feed, rest, state };
 }
 
-function begin({ model, thinning, wants }: BlochProblem): State {
+/** Chains of the moments, of the emitted count and of the thinned one, at the start. */
+export const momentChain = ({ model }: BlochProblem): Chain => chain(1, model.collected, 2 * model.collected);
+export const countChain = ({ model }: BlochProblem): Chain =>
+  chain(1 - model.collected, model.collected, model.collected);
+export function thinnedChain({ model, thinning }: BlochProblem): Chain {
+  const seen = model.collected * (thinning ?? 0);
+  return chain(1 - seen, seen, seen);
+}
+
+function begin(problem: BlochProblem): State {
+  const { model, wants } = problem;
   const q = model.collected;
-  const seen = q * (thinning ?? 0);
   const ladder = wants.ladder ? { counted: q, state: new Float64Array(LADDER_STATE) } : null;
   if (ladder) {
     ladder.state[2] = 0.5;
@@ -43,10 +53,10 @@ function begin({ model, thinning, wants }: BlochProblem): State {
   }
   return {
     q: Float64Array.of(1, 0, 0, 0),
-    moments: chain(1, q, 2 * q),
-    counted: wants.counted ? chain(1 - q, q, q) : null,
+    moments: momentChain(problem),
+    counted: wants.counted ? countChain(problem) : null,
     ladder,
-    thinned: wants.thinned ? chain(1 - seen, seen, seen) : null,
+    thinned: wants.thinned ? thinnedChain(problem) : null,
   };
 }
 
@@ -59,9 +69,6 @@ function kickAll(state: State, kick: Kick, from: number, to: number): void {
   else kicks(moments, kick, axes, from, to);
   if (counted && thinned) kicks(thinned, kick, axes, from, to);
 }
-
-/** Corrections stand at every second kick, twice as large: of 1e-6 at most, they need not be exact. */
-const STRIDE = 2;
 
 /** A correction stands in the middle of its kick, or before it where `half` is null because the order does not matter. */
 function correctAndKick(
@@ -97,7 +104,7 @@ export function runBloch(problem: BlochProblem, counts: readonly number[], out: 
     const length = span.end - span.start;
     if (span.gap) {
       turnAbout(state.q, model.energy * length);
-      axesOf(state.q);
+      axisOf(state.q, axes);
       kickAll(state, kickOver(problem, length), 0, 1);
       return;
     }
@@ -108,40 +115,29 @@ export function runBloch(problem: BlochProblem, counts: readonly number[], out: 
   finish(state, out);
 }
 
-function axesOf([w, x, y, z]: Float64Array): void {
-  axes[0] = 2 * (x * z - w * y);
-  axes[1] = 2 * (y * z + w * x);
-  axes[2] = 1 - 2 * (x * x + y * y);
-}
-
-function kickOver({ model }: BlochProblem, time: number): Kick {
-  return { fade: Math.exp(-model.coherence * time), loss: -Math.expm1(-model.decay * time) };
+/** The axis of kicks under a rotation, to the first three numbers of `out`. */
+export function axisOf([w, x, y, z]: Float64Array, out: Float64Array): void {
+  out[0] = 2 * (x * z - w * y);
+  out[1] = 2 * (y * z + w * x);
+  out[2] = 1 - 2 * (x * x + y * y);
 }
 
 function propagate(problem: BlochProblem, state: State, part: BlochSpan, count: number): void {
   const { drive, model } = problem;
   const { span, frame, source } = part;
-  const h = (span.end - span.start) / count;
-  const ratio = model.dephasing / model.decay;
-  const small = (h * model.decay) ** 2;
-  const scale = model.weight * h * (1 - (small / 96) * (1 + ratio * ratio));
-  const correction = correctionOf(problem, h);
-  const quartic = correction ? (small / 5760) * (1 + 4 * ratio * ratio) : 0;
-  const axial = correction ? (small / 5760) * (1 + ratio * ratio) : 0;
-  const half = kickOver(problem, 0.5 * h);
-  const full = kickOver(problem, h);
+  const { h, scale, quartic, axial, half, full, correction } = paceOf(problem, part, count);
   const slope = 2 * frame.chirp * h * h;
-  const turning = (model.energy + frame.rate - 2 * frame.chirp * frame.origin) * h;
-  const resonant = source.kind === 'real' && slope === 0 && Math.abs(turning) * count < 1e-13;
+  const turned = Math.abs(energyAt(model.energy, frame, h, span.start)) * count;
+  const resonant = source.kind === 'real' && slope === 0 && turned < 1e-13;
   const pull = correction ? pulling : null;
   kickAll(state, half, 0, 1);
   for (let done = 0; done < count; done += BLOCK) {
     const steps = Math.min(BLOCK, count - done);
     const grid = { start: span.start + done * h, h };
-    const energies = { first: turning + 2 * frame.chirp * (grid.start + 0.5 * h) * h, slope, axial };
+    const energies = { first: energyAt(model.energy, frame, h, grid.start + 0.5 * h), slope, axial };
     if (source.kind === 'real') {
       fillReal(source.tones[0], scale, grid, 0, steps, samples);
-      if (quartic > 0) shrink(quartic, 1, steps);
+      if (quartic > 0) shrink(samples, quartic, 1, steps);
       if (resonant) resonantAxes(samples, 0, steps, state.q, axes, pull);
       else planarVectors(samples, energies, 0, steps, vectors, correction && edges);
       if (!resonant) turnAxes(vectors, null, 0, steps, state.q, axes, pull);
@@ -153,7 +149,7 @@ function propagate(problem: BlochProblem, state: State, part: BlochSpan, count: 
         samples.fill(0, 0, 2 * NODES * steps);
         for (const tone of source.tones) addComplex(tone, scale, grid, 0, steps, samples);
       }
-      if (quartic > 0) shrink(quartic, 2, steps);
+      if (quartic > 0) shrink(samples, quartic, 2, steps);
       spatialVectors(samples, energies, own, 0, steps, vectors, correction && edges);
       turnAxes(vectors, own, 0, steps, state.q, axes, pull);
     }
@@ -165,40 +161,9 @@ function propagate(problem: BlochProblem, state: State, part: BlochSpan, count: 
   }
 }
 
-/** Bounds of the corrections below which they are left out: in all, and relative to small figures. */
-const NEGLIGIBLE = { whole: 5e-10, relative: 1e-7 };
-
-function correctionOf({ drive, model }: BlochProblem, h: number): Correction | null {
-  const { decay, dephasing, weight } = model;
-  const { peakRabi, time } = drive.scales;
-  const rabi = h * peakRabi * Math.abs(weight);
-  const perArea = (h * decay * rabi) ** 2 / 1920 + (h * h * decay * dephasing) / 48;
-  const whole = perArea * AREA * peakRabi * time;
-  const relative = (h * decay * rabi ** 3) / 1920 + (h * dephasing * rabi) / 48;
-  if (whole < NEGLIGIBLE.whole && relative < NEGLIGIBLE.relative) return null;
-  const small = (h * decay) ** 2;
-  const ratio = dephasing / decay;
-  const ordered = whole * h * (decay + dephasing) > 0.1 * NEGLIGIBLE.whole;
-  return { ordered, quadratic: (-STRIDE * small * ratio) / 48, quartic: (STRIDE * small) / 1920, ratio };
-}
-
-/** Area of a Gaussian over its peak and width: √2π. */
-const AREA = 2.5;
-
-/** Takes the share quartic·|drive|² from every node: part of the kicks' second-order error. */
-function shrink(quartic: number, width: 1 | 2, steps: number): void {
-  for (let i = 0; i < width * NODES * steps; i += width) {
-    const a = samples[i];
-    const b = width === 2 ? samples[i + 1] : 0;
-    const factor = 1 - quartic * (a * a + b * b);
-    samples[i] = a * factor;
-    if (width === 2) samples[i + 1] = b * factor;
-  }
-}
-
 /** Everything decays: the traces are the figures. */
 function finish(state: State, out: Float64Array): void {
-  axesOf(state.q);
+  axisOf(state.q, axes);
   const { moments, counted, ladder, thinned } = state;
   const [x, y, z, trace] = moments.state;
   const inversion = axes[0] * x + axes[1] * y + axes[2] * z;

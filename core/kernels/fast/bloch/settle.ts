@@ -57,7 +57,8 @@ export function settle(problem: BlochProblem, accept: number): Settled | null {
   return null;
 }
 
-function total(counts: readonly number[]): number {
+/** Sum of the steps of all spans. */
+export function total(counts: readonly number[]): number {
   let sum = 0;
   for (const n of counts) sum += n;
   return sum;

@@ -1,0 +1,216 @@
+import type { CountGradient, Sensitivity } from '../../gradient.js';
+import type { Chain } from './chain.js';
+import { adjointKicks } from './chain-adjoint.js';
+import { FACTORIAL, MEAN, MULTIPHOTON, P0, P1, placeOf, THINNED } from './figures.js';
+import { spatialAdjoint } from './magnus-adjoint.js';
+import { BLOCK, NODES, PLACES } from './nodes.js';
+import type { BlochProblem } from './problem.js';
+import { countChain, momentChain, thinnedChain } from './run.js';
+import { addComplex } from './table.js';
+import { recordTape, type Stretch, sampleTimes } from './tape.js';
+import { addTorque, torques } from './torque.js';
+
+type Weights = Readonly<Record<string, number>>;
+
+/** A chain that some scalar depends on, and by each scalar the weights of its first trace, second trace and rest. */
+interface SeededChain {
+  readonly chain: Chain;
+  readonly weights: readonly (readonly [number, number, number])[];
+}
+
+/** Figures of each kind of chain, in the order of its traces. −1: the trace is 1 whatever happens. */
+const KINDS = [
+  { make: momentChain, places: [-1, MEAN, FACTORIAL] },
+  { make: countChain, places: [P0, P1, MULTIPHOTON] },
+  { make: thinnedChain, places: [THINNED, THINNED + 1, THINNED + 2] },
+] as const;
+
+/** The chains that matter, or null where a scalar depends on a figure that no chain has. */
+function seededChains(problem: BlochProblem, seeds: readonly Weights[]): SeededChain[] | null {
+  const vectors = seeds.map((seed) => {
+    const byPlace = new Map<number, number>();
+    for (const [name, weight] of Object.entries(seed)) if (weight !== 0) byPlace.set(placeOf(name), weight);
+    return byPlace;
+  });
+  const known = new Set<number>(KINDS.flatMap(({ places }) => places.filter((p) => p >= 0)));
+  if (vectors.some((v) => [...v.keys()].some((place) => !known.has(place)))) return null;
+  const out: SeededChain[] = [];
+  for (const { make, places } of KINDS) {
+    const weights = vectors.map(
+      (v) => places.map((p) => v.get(p) ?? 0) as unknown as [number, number, number],
+    );
+    if (weights.some((w) => w.some((x) => x !== 0))) out.push({ chain: make(problem), weights });
+  }
+  return out;
+}
+
+/** Everything decays: the last kick (chain.ts). */
+const LAST = { fade: 0, loss: 1 };
+
+/**
+ * Derivatives of scalars of the figures by one reverse sweep over a run at given steps: adjoints of the chains give the
+ * derivative by every kick's axis, a running torque those by every rotation, and the reverse of the Magnus expansion those by
+ * the samples of the drive. Null where a scalar depends on p_2 or p_3.
+ */
+export function differentiate(
+  problem: BlochProblem,
+  counts: readonly number[],
+  seeds: readonly Weights[],
+): Omit<CountGradient, 'result'> | null {
+  const seeded = seededChains(problem, seeds);
+  if (!seeded) return null;
+  const stretches = recordTape(
+    problem,
+    counts,
+    seeded.map(({ chain }) => chain),
+  );
+  const total = stretches.reduce((sum, s) => sum + s.steps, 0);
+  const times = new Float64Array(NODES * total);
+  const drives = seeds.map(() => new Float64Array(2 * NODES * total));
+  const shifts = seeds.map(() => 0);
+  const torque = seeds.map(() => new Float64Array(3));
+  const adjoints = seeded.map(({ weights }) => weights.map((w) => seedAdjoint(w)));
+  finalKick(stretches[stretches.length - 1], seeded, adjoints, torque);
+  let at = total;
+  for (const stretch of [...stretches].reverse()) {
+    at -= stretch.steps;
+    const slopes = sweepChains(stretch, seeded, adjoints);
+    sampleTimes(stretch, times, NODES * at);
+    if (stretch.steps === 0) passGap(stretch, slopes, torque, shifts);
+    else sweepSteps(stretch, slopes, torque, shifts, drives, 2 * NODES * at);
+  }
+  return {
+    times,
+    segments: segmentsOf(problem, times),
+    sensitivities: seeds.map(
+      (_, s): Sensitivity => ({ drive: drives[s], shift: shifts[s], kappa: 0, center: 0 }),
+    ),
+  };
+}
+
+function seedAdjoint([first, second, rest]: readonly [number, number, number]): Float64Array {
+  return Float64Array.of(0, 0, 0, first, 0, 0, 0, second, rest);
+}
+
+type Adjoints = readonly (readonly Float64Array[])[];
+
+function finalKick(
+  last: Stretch,
+  seeded: readonly SeededChain[],
+  adjoints: Adjoints,
+  torque: readonly Float64Array[],
+): void {
+  const axis = last.axes.slice(3 * last.steps, 3 * last.steps + 3);
+  torque.forEach((sum, s) => {
+    const slope = new Float64Array(3);
+    seeded.forEach(({ chain }, c) => {
+      adjointKicks(chain, LAST, axis, chain.state, 0, 1, adjoints[c][s], slope);
+    });
+    addTorque(sum, slope, axis, 0);
+  });
+}
+
+/** Derivatives by the axes of a stretch, per scalar. */
+function sweepChains(stretch: Stretch, seeded: readonly SeededChain[], adjoints: Adjoints): Float64Array[] {
+  const { steps, axes, pace, records } = stretch;
+  const { half, full } = pace;
+  return adjoints[0].map((_, s) => {
+    const slopes = new Float64Array(axes.length);
+    seeded.forEach(({ chain, weights }, c) => {
+      if (weights[s].every((w) => w === 0)) return;
+      const adjoint = adjoints[c][s];
+      if (steps > 0) {
+        adjointKicks(chain, half, axes, records[c], steps, steps + 1, adjoint, slopes);
+        adjointKicks(chain, full, axes, records[c], 1, steps, adjoint, slopes);
+      }
+      adjointKicks(chain, half, axes, records[c], 0, 1, adjoint, slopes);
+    });
+    return slopes;
+  });
+}
+
+function passGap(
+  { axes, grid }: Stretch,
+  slopes: readonly Float64Array[],
+  torque: readonly Float64Array[],
+  shifts: number[],
+): void {
+  torque.forEach((sum, s) => {
+    addTorque(sum, slopes[s], axes, 0);
+    // The gap turns about the inversion's axis, which stands along the kick's.
+    shifts[s] += grid.h * (sum[0] * axes[0] + sum[1] * axes[1] + sum[2] * axes[2]);
+  });
+}
+
+function sweepSteps(
+  stretch: Stretch,
+  slopes: readonly Float64Array[],
+  torque: readonly Float64Array[],
+  shifts: number[],
+  drives: readonly Float64Array[],
+  at: number,
+): void {
+  const { steps, axes, vectors, quaternions, turns, samples, energies, grid } = stretch;
+  const byVector = torque.map((sum, s) => {
+    const out = new Float64Array(3 * steps);
+    torques(sum, slopes[s], axes, vectors, quaternions, turns, steps, out);
+    addTorque(sum, slopes[s], axes, 0);
+    return out;
+  });
+  const bySample = drives.map((d) => d.subarray(at, at + 2 * NODES * steps));
+  const byEnergy = spatialAdjoint(samples, energies, turns, steps, byVector, bySample);
+  byEnergy.forEach((value, s) => {
+    shifts[s] += grid.h * value;
+  });
+  toDriveFrame(stretch, bySample);
+}
+
+/** From derivatives by samples in the stretch's frame, times its scale, to those by the drive's own samples. */
+function toDriveFrame({ part, steps, grid, pace, turns }: Stretch, bySample: readonly Float64Array[]): void {
+  const { frame } = part;
+  const back = new Float64Array(2 * NODES * steps);
+  // e^{iθ} of the frame as a tone that never fades.
+  const phase = {
+    amplitude: 1,
+    fall: 0,
+    phase: frame.constant,
+    rate: -frame.rate,
+    chirp: frame.chirp,
+    delay: frame.origin,
+  };
+  for (let from = 0; from < steps; from += BLOCK) {
+    addComplex(phase, pace.scale, grid, from, Math.min(steps, from + BLOCK), back);
+  }
+  if (turns) followBack(turns, back);
+  for (const slopes of bySample) {
+    for (let i = 0; i < slopes.length; i += 2) {
+      const a = slopes[i];
+      const b = slopes[i + 1];
+      slopes[i] = a * back[i] - b * back[i + 1];
+      slopes[i + 1] = a * back[i + 1] + b * back[i];
+    }
+  }
+}
+
+function followBack(turns: Float64Array, back: Float64Array): void {
+  for (let n = 0, i = 0; n < turns.length; n++) {
+    for (let j = 0; j < NODES; j++, i += 2) {
+      const c = Math.cos(turns[n] * PLACES[j]);
+      const s = Math.sin(turns[n] * PLACES[j]);
+      const a = back[i];
+      back[i] = a * c - back[i + 1] * s;
+      back[i + 1] = a * s + back[i + 1] * c;
+    }
+  }
+}
+
+function segmentsOf({ drive }: BlochProblem, times: Float64Array): Int32Array {
+  const { breakpoints } = drive;
+  const segments = new Int32Array(times.length);
+  let segment = 0;
+  for (let i = 0; i < times.length; i++) {
+    while (segment + 2 < breakpoints.length && times[i] >= breakpoints[segment + 1]) segment++;
+    segments[i] = segment;
+  }
+  return segments;
+}

@@ -1,0 +1,84 @@
+import type { Correction, Kick } from './chain.js';
+import type { PhaseFrame } from './frame.js';
+import { NODES } from './nodes.js';
+import type { BlochProblem, BlochSpan } from './problem.js';
+
+/** What all steps of one span have in common. */
+export interface Pace {
+  /** ps. */
+  readonly h: number;
+  /** Factor of the drive's samples: step, coupling and what the kicks' second-order error has in common for all lanes. */
+  readonly scale: number;
+  /** Share by which the square of the drive shrinks the drive, and the energy, for the same reason. */
+  readonly quartic: number;
+  readonly axial: number;
+  readonly half: Kick;
+  readonly full: Kick;
+  readonly correction: Correction | null;
+}
+
+/**
+ * Besides the drive the steps carry what the kicks' second-order error has in common for all counting operators: with
+ * δ the dephasing over the decay, −(h²γ²/96)(1 + δ²) − (h⁴γ²Ω²/5760)(1 + 4δ²) of the transverse drive and
+ * −(h⁴γ²Ω²/5760)(1 + δ²) of the detuning.
+ */
+export function paceOf(problem: BlochProblem, { span }: BlochSpan, count: number): Pace {
+  const { model } = problem;
+  const h = (span.end - span.start) / count;
+  const square = (model.dephasing / model.decay) ** 2;
+  const small = (h * model.decay) ** 2;
+  const correction = correctionOf(problem, h);
+  return {
+    h,
+    scale: model.weight * h * (1 - (small / 96) * (1 + square)),
+    quartic: correction ? (small / 5760) * (1 + 4 * square) : 0,
+    axial: correction ? (small / 5760) * (1 + square) : 0,
+    half: kickOver(problem, 0.5 * h),
+    full: kickOver(problem, h),
+    correction,
+  };
+}
+
+/** Energy times the step: of a step in the middle of time t, and its change from step to step. */
+export function energyAt(energy: number, { rate, chirp, origin }: PhaseFrame, h: number, t: number): number {
+  return (energy + rate + 2 * chirp * (t - origin)) * h;
+}
+
+/** The effect of some time without drive, ps. */
+export function kickOver({ model }: BlochProblem, time: number): Kick {
+  return { fade: Math.exp(-model.coherence * time), loss: -Math.expm1(-model.decay * time) };
+}
+
+/** Corrections stand at every so manieth kick, so much larger: of 1e-6 at most, they need not be exact. */
+export const STRIDE = 2;
+
+/** Bounds of the corrections below which they are left out: in all, and relative to small figures. */
+const NEGLIGIBLE = { whole: 5e-10, relative: 1e-7 };
+
+function correctionOf({ drive, model }: BlochProblem, h: number): Correction | null {
+  const { decay, dephasing, weight } = model;
+  const { peakRabi, time } = drive.scales;
+  const rabi = h * peakRabi * Math.abs(weight);
+  const perArea = (h * decay * rabi) ** 2 / 1920 + (h * h * decay * dephasing) / 48;
+  const whole = perArea * AREA * peakRabi * time;
+  const relative = (h * decay * rabi ** 3) / 1920 + (h * dephasing * rabi) / 48;
+  if (whole < NEGLIGIBLE.whole && relative < NEGLIGIBLE.relative) return null;
+  const small = (h * decay) ** 2;
+  const ratio = dephasing / decay;
+  const ordered = whole * h * (decay + dephasing) > 0.1 * NEGLIGIBLE.whole;
+  return { ordered, quadratic: (-STRIDE * small * ratio) / 48, quartic: (STRIDE * small) / 1920, ratio };
+}
+
+/** Area of a Gaussian over its peak and width: √2π. */
+const AREA = 2.5;
+
+/** Takes the share quartic·|drive|² from every node: part of the kicks' second-order error. */
+export function shrink(samples: Float64Array, quartic: number, width: 1 | 2, steps: number): void {
+  for (let i = 0; i < width * NODES * steps; i += width) {
+    const a = samples[i];
+    const b = width === 2 ? samples[i + 1] : 0;
+    const factor = 1 - quartic * (a * a + b * b);
+    samples[i] = a * factor;
+    if (width === 2) samples[i + 1] = b * factor;
+  }
+}
