@@ -8,10 +8,14 @@ const RELATIVE = 1e-3;
 const LOOSE = new Set(['p3']);
 const LOOSENESS = 100;
 const ABSOLUTE = new Set(['p0', 'p1', 'thinned0', 'thinned1']);
+/** Factorial moments beyond the second are wanted only for P(n≥2), in which m_k has the weight (k − 1)/k!. */
+const HIGHER = /^m([3-9])$/;
+
+const factorial = (n: number): number => (n < 2 ? 1 : n * factorial(n - 1));
 
 /**
  * Largest difference of two runs: absolute for probabilities of no and one photon, relative/1000 for all else (floored
- * at 1e-7), g⁽²⁾[0] included. One thousand times this is the measure of `FigureTree.accuracy`.
+ * at 1e-7), g⁽²⁾[0] included. A higher moment may differ by what changes P(n≥2), or itself, so much. One thousand times this is the measure of `FigureTree.accuracy`.
  */
 export function disagreement(a: Values, b: Values): number {
   let worst = 0;
@@ -20,6 +24,14 @@ export function disagreement(a: Values, b: Values): number {
     if (!(d <= worst)) worst = d;
   };
   for (const name of Object.keys(b)) {
+    const order = Number(HIGHER.exec(name)?.[1] ?? 0);
+    if (order > 0) {
+      const weight = (order - 1) / factorial(order);
+      const multiphoton = b['m2'] / 2 - b['m3'] / 3;
+      const scale = Math.max(weight * Math.abs(b[name]), multiphoton, FLOOR);
+      take(weight * (a[name] - b[name]), scale / RELATIVE);
+      continue;
+    }
     const scale = ABSOLUTE.has(name) ? 1 : Math.max(Math.abs(b[name]), FLOOR) / RELATIVE;
     take(a[name] - b[name], LOOSE.has(name) ? LOOSENESS * scale : scale);
   }
