@@ -69,6 +69,8 @@ function againLines({ restarts }: Explanation): string[] {
 function growthLine({ growth }: Explanation): string {
   if (growth === null) return 'twice the budget: not told: too few stages for an estimate';
   const { byDoubling, lastHalf, quarterBefore } = growth;
+  if (byDoubling === null)
+    return 'twice the budget: not told: the first half of this one found nothing of the front';
   const [least, most] = [percent(byDoubling.least), percent(byDoubling.most)];
   const gain = least === most ? `about ${most}` : `${least} to ${most}`;
   return [
@@ -80,10 +82,14 @@ function growthLine({ growth }: Explanation): string {
 /** Ranges that the search would leave if it could. */
 function endLines({ ends, parts }: Explanation): string[] {
   const total = parts.reduce((sum, { designs }) => sum + designs, 0);
-  return ends.map(({ path, value, end, designs }) => {
-    const side = end === 'from' ? 'lower' : 'upper';
-    return `${path}: at its ${side} end, ${readable(value, path)}, in ${designs} of ${total} designs; a wider range may give better ones`;
-  });
+  if (ends.length === 0) return [];
+  return [
+    'at the end of a range (a wider one may give better designs):',
+    ...ends.map(({ path, value, end, designs }) => {
+      const side = end === 'from' ? 'lower' : 'upper';
+      return `  ${path}: at the ${side} end, ${readable(value, path)}, in ${designs} of ${total}`;
+    }),
+  ];
 }
 
 /** How the front was found, as a user reads it at the end of a run. */

@@ -84,7 +84,7 @@ function doubtsOf(growth: Growth | null, best: Restarts | null): string[] {
   const doubts: string[] = [];
   if (growth !== null && growth.lastHalf > DOUBTFUL_GAIN) {
     doubts.push(
-      `the hypervolume was still growing: ${percent(growth.lastHalf)} of it came in the second half of the evaluations (more than ${percent(DOUBTFUL_GAIN)})`,
+      `the hypervolume was still growing: ${percent(growth.lastHalf)} of it came in the second half of the budget (more than ${percent(DOUBTFUL_GAIN)})`,
     );
   }
   if (best !== null && best.elsewhere === 0)
@@ -131,7 +131,7 @@ export function explanationDocument(explanation: Explanation): unknown {
       gain_of_second_half: growth.lastHalf,
       gain_of_quarter_before: growth.quarterBefore,
       meaning:
-        'shares of the hypervolume; the first is an estimate from the other two: least if the growth goes on to slow down as it did, most if it goes on as in the second half',
+        'shares of the hypervolume; the first is an estimate from the other two: least if the growth goes on to slow down as it did, most if it goes on as in the second half; null if the first half found nothing of the front',
     },
     at_the_end_of_a_range: ends.map(({ path, value, end, designs }) => ({
       parameter: columnOf(path),

@@ -8,9 +8,9 @@ export interface Growth {
   /**
    * Estimated gain by as many evaluations again, as a share of the final hypervolume. Most: that of the last doubling
    * again; least: that times its ratio to the doubling before it, as if the growth went on to slow down like that. It
-   * cannot know of a branch that was never seen.
+   * cannot know of a branch that was never seen. Null where the first half found nothing of the front.
    */
-  readonly byDoubling: { readonly least: number; readonly most: number };
+  readonly byDoubling: { readonly least: number; readonly most: number } | null;
 }
 
 /** Fewer stages than this tell no trend. */
@@ -38,5 +38,6 @@ export function growthOf(all: readonly StageReport[]): Growth | null {
   const [late, early] = [final - half, half - quarter];
   const ratio = early > 0 ? Math.min(1, late / early) : 1;
   const lastHalf = late / final;
-  return { lastHalf, quarterBefore: early / final, byDoubling: { least: lastHalf * ratio, most: lastHalf } };
+  const byDoubling = half > 0 ? { least: lastHalf * ratio, most: lastHalf } : null;
+  return { lastHalf, quarterBefore: early / final, byDoubling };
 }
