@@ -10,7 +10,14 @@ export { type DriftNode, designAtDrift, driftNodes, normalRule } from './drift/n
 export type * from './emitter/contract.js';
 export { buildGenerator, collectedDipoles, driveOperators, type Generator } from './emitter/generator.js';
 export { emitterModel, emitterModels } from './emitter/registry.js';
-export { type Accuracy, evaluate, PROMISED, UnsupportedDesign, withExactPhonons } from './evaluate.js';
+export {
+  type Accuracy,
+  checkSupport,
+  evaluate,
+  PROMISED,
+  UnsupportedDesign,
+  withExactPhonons,
+} from './evaluate.js';
 export * from './figures.js';
 export { type EvaluateGradient, evaluateGradient, type FigureGradient } from './gradient.js';
 export {

@@ -1,6 +1,6 @@
 import { join } from 'node:path';
-import { evaluate, UnsupportedDesign } from '../../core/index.js';
-import { judge } from '../../optimizers/index.js';
+import { checkSupport } from '../../core/index.js';
+import { judge, taskPool } from '../../optimizers/index.js';
 import { frontText, levelList } from '../report/front-text.js';
 import { infeasibleText } from '../report/limits-text.js';
 import type { RunResult } from '../run/contract.js';
@@ -8,7 +8,7 @@ import { openRun } from '../run/directory.js';
 import { frontDocument } from '../run/front-json.js';
 import { LEDGER_FORMAT } from '../run/ledger-format.js';
 import { packageVersion } from '../run/package.js';
-import { formatRemark, type Study } from '../study/index.js';
+import { formatRemark } from '../study/index.js';
 import type { Command, Context, ExitCode } from './contract.js';
 import { JSON_OPTION, once, workerCount } from './options.js';
 import { runSession } from './session.js';
@@ -47,16 +47,6 @@ function conclude(result: RunResult, directory: string, json: boolean, context: 
   return missed.length > 0 ? 1 : 0;
 }
 
-/** Finds out before any work whether this version can evaluate designs of the study at all. */
-function probe(study: Study): void {
-  try {
-    evaluate(study.design, 'search');
-  } catch (error) {
-    // One design beyond what can be integrated says nothing about the others.
-    if (error instanceof UnsupportedDesign) throw error;
-  }
-}
-
 export const optimize: Command = {
   configure: (yargs) =>
     yargs
@@ -85,12 +75,16 @@ export const optimize: Command = {
     const file = await loadStudy(String(args['study']));
     const directory = String(args['out']);
     const { study, hash, bytes } = file;
-    probe(study);
+    checkSupport(study.design);
     const header = { format: LEDGER_FORMAT, study: hash, version: packageVersion(), seed: study.search.seed };
-    const run = await openRun({ directory, resume: args['resume'] === true, header, study: bytes });
-    for (const remark of [...file.remarks.map(formatRemark), ...run.remarks]) context.note(remark);
     const workers = workerCount(args['workers'] === undefined ? undefined : String(args['workers']));
-    const result = await runSession(file, run, workers, context);
+    // Threads take a while to load: they begin while the directory is opened.
+    const pool = taskPool(study, workers);
+    const result = await (async () => {
+      const run = await openRun({ directory, resume: args['resume'] === true, header, study: bytes });
+      for (const remark of [...file.remarks.map(formatRemark), ...run.remarks]) context.note(remark);
+      return runSession(file, run, pool, context);
+    })().finally(() => pool.close());
     if (result !== null) return conclude(result, directory, args['json'] === true, context);
     context.note(`stopped; what is finished is in ${join(directory, 'ledger.jsonl')}`);
     context.note(`go on with: pulsewright optimize ${file.path} --out ${directory} --resume`);

@@ -1,12 +1,7 @@
-import {
-  type SearchOutcome,
-  type SearchProgress,
-  search,
-  type TaskPool,
-  taskPool,
-} from '../../optimizers/index.js';
+import { type SearchOutcome, type SearchProgress, search, type TaskPool } from '../../optimizers/index.js';
 import { frontPicture } from '../report/front-picture.js';
 import { threeDigits } from '../report/numbers.js';
+import { loadDrawing } from '../report/plots/render.js';
 import { type Progress, progressBar } from '../report/progress.js';
 import type { RunResult } from '../run/contract.js';
 import type { Run } from '../run/directory.js';
@@ -60,9 +55,11 @@ async function work(session: Session): Promise<RunResult | null> {
   const { outcome, wall } = await searchWithLedger(session);
   if (outcome.kind === 'interrupted') return null;
   const total = study.search.evaluations;
-  const quoted = await quoteFront(study, outcome, session.pool, signal, (done, points) =>
+  const quoting = quoteFront(study, outcome, session.pool, signal, (done, points) =>
     progress.update({ stage: `quoting design ${done} of ${points}`, done: total, total, best: '' }),
   );
+  if (session.pool.size > 1) loadDrawing().catch(() => undefined);
+  const quoted = await quoting;
   if (quoted === null) return null;
   const result: RunResult = {
     ...{ study, hash, version: packageVersion(), wall },
@@ -81,16 +78,14 @@ async function work(session: Session): Promise<RunResult | null> {
 export async function runSession(
   file: StudyFile,
   run: Run,
-  workers: number,
+  pool: TaskPool,
   context: Context,
 ): Promise<RunResult | null> {
   const progress = progressBar(context.streams.stderr, 'evaluations');
-  const pool = taskPool(file.study, workers);
   try {
     return await untilInterrupted(context, (signal) => work({ file, run, pool, signal, progress }));
   } finally {
     progress.stop();
-    await pool.close();
     await run.close();
   }
 }

@@ -4,10 +4,17 @@ import { keyEntries, leafAt } from '../study/index.js';
 /** Units of tables and axes where another than the internal one is what people say. */
 const SPOKEN: Partial<Record<Dimension, string>> = { area: 'pi', angle: 'deg', length: 'nm', percent: '%' };
 
+const known = new Map<string, Dimension | null>();
+
 /** Dimension of the quantity at a path of the study file, such as `pulse.tones.0.fwhm`; null when no quantity stands there. */
 export function dimensionAt(path: string): Dimension | null {
-  const rule = leafAt(path)?.rule;
-  return rule?.kind === 'quantity' ? rule.dimension : null;
+  let dimension = known.get(path);
+  if (dimension === undefined) {
+    const rule = leafAt(path)?.rule;
+    dimension = rule?.kind === 'quantity' ? rule.dimension : null;
+    known.set(path, dimension);
+  }
+  return dimension;
 }
 
 function dimensionOf(path: string): Dimension {

@@ -48,9 +48,18 @@ export const SERIES: readonly { readonly color: string; readonly shape: string }
   { color: '#56B4E9', shape: 'cross' },
 ];
 
+/** Loads what draws, which takes longer than most pictures: worth a call while other threads are at work. */
+export async function loadDrawing(): Promise<{
+  readonly vega: typeof import('vega');
+  readonly lite: typeof import('vega-lite');
+}> {
+  const [vega, lite] = await Promise.all([import('vega'), import('vega-lite')]);
+  return { vega, lite };
+}
+
 /** Static SVG of a chart; the same specification gives the same bytes. */
 export async function renderSvg(chart: TopLevelSpec): Promise<string> {
-  const [vega, lite] = await Promise.all([import('vega'), import('vega-lite')]);
+  const { vega, lite } = await loadDrawing();
   const { spec } = lite.compile({ ...chart, config: CONFIG }, { logger: vega.logger(vega.Error) });
   // Identifiers in the SVG count on from chart to chart otherwise.
   vega.resetSVGDefIds();

@@ -27,6 +27,12 @@ async function appears(path: string): Promise<void> {
   for (let i = 0; i < 1500 && !existsSync(path); i++) await setTimeout(20);
 }
 
+/** The process that holds the lock. */
+function holder(directory: string): number | null {
+  const path = join(directory, LOCK);
+  return existsSync(path) ? (JSON.parse(readFileSync(path, 'utf8')) as { pid: number }).pid : null;
+}
+
 /** The number of a process that has just ended. */
 async function endedProcess(): Promise<number> {
   const child = spawn(process.execPath, ['--version'], { stdio: 'ignore' });
@@ -64,8 +70,7 @@ describe('lock of a run directory', () => {
       expect(code).toBe(2);
       expect(err).toMatch(/process \d+ works on this run/);
     }
-    const { pid } = JSON.parse(readFileSync(join(directory, LOCK), 'utf8')) as { pid: number };
-    const winner = runs.find(({ child }) => child.pid === pid);
+    const winner = runs.find(({ child }) => child.pid === holder(directory));
     expect(winner?.child.exitCode).toBeNull();
     winner?.child.kill('SIGKILL');
     await winner?.ended;
@@ -94,7 +99,7 @@ describe('lock of a run directory', () => {
     await ended;
     expect(existsSync(join(directory, LOCK))).toBe(true);
     const next = start(argv);
-    await setTimeout(1500);
+    await new Promise<void>((done) => next.child.stderr?.once('data', () => done()));
     next.child.kill('SIGINT');
     const { code, err } = await next.ended;
     expect(err).toContain(`was left by process ${child.pid}, which has ended; taken over`);
