@@ -1,4 +1,3 @@
-import { disagreement } from '../estimate.js';
 import type { FilteredRun } from './run.js';
 
 /** Growth of the number of steps from one run to the next: least, most. */
@@ -75,13 +74,40 @@ export function extrapolationWeights(counts: readonly number[]): number[] {
   return x.map((xi, i) => x.reduce((w, xj, j) => (j === i ? w : (w * xj) / (xj - xi)), 1 / (xi * total)));
 }
 
-/** Largest difference of figures; populations count as far as they show that the motion is not resolved. */
+/** Relative accuracy over absolute accuracy, and the smallest value at which it is promised (../estimate.ts). */
+const RELATIVE = 1e-3;
+const FLOOR = 1e-7;
+/** (k − 1)/k!: weight of m_k in P(n≥2). */
+const WEIGHTS = [0, 0, 1 / 2, 1 / 3, 1 / 8, 1 / 30, 1 / 144];
+
+/** `disagreement` of the moments, without names; populations count as far as they show that the motion is not resolved. */
 function difference(fewer: FilteredRun, all: FilteredRun, runs: Runs): number {
   const [before, last] = runs.slice(-2);
+  const a = fewer.moments;
+  const b = all.moments;
+  const multiphoton = b.length > 2 ? b[1] / 2 - b[2] / 3 : 0;
+  let worst = 0;
+  const take = (change: number, size: number): void => {
+    const relative = Math.abs(change) / Math.max(size, FLOOR);
+    if (!(relative <= worst)) worst = relative;
+  };
+  for (let k = 1; k <= b.length; k++) {
+    const weight = k > 2 ? WEIGHTS[k] : 1;
+    const size = weight * Math.abs(b[k - 1]);
+    take(weight * (a[k - 1] - b[k - 1]), k > 2 ? Math.max(size, multiphoton) : size);
+  }
+  if (b.length > 1 && a[0] > 0 && b[0] > 0) {
+    const g = b[1] / b[0] ** 2;
+    take(a[1] / a[0] ** 2 - g, g);
+  }
   const motion = Math.abs(before.run.populations[1] - last.run.populations[1]);
-  return Math.max(disagreement(named(fewer), named(all)), POPULATIONS * motion);
+  return Math.max(RELATIVE * worst, POPULATIONS * motion);
 }
 
 export function named({ moments }: FilteredRun): Record<string, number> {
-  return Object.fromEntries(moments.map((m, k) => [`m${k + 1}`, m]));
+  const values: Record<string, number> = {};
+  moments.forEach((m, k) => {
+    values[`m${k + 1}`] = m;
+  });
+  return values;
 }

@@ -1,7 +1,8 @@
 import type { CountRequest, CountResult } from '../../count.js';
+import { prepare } from '../bloch/problem.js';
+import { firstCounts } from '../bloch/steps.js';
 import type { FastKernel } from '../contract.js';
 import { smoothSpans } from '../spans.js';
-import { coherentRate, phaseIsSteady } from '../step-rule.js';
 import { asTwoLevel } from '../two-level.js';
 import { converge, named } from './converge.js';
 import { type FilteredProblem, run } from './run.js';
@@ -64,26 +65,29 @@ export function problemOf(request: CountRequest): FilteredProblem | null {
   const model = asTwoLevel(request);
   const spans = smoothSpans(drive);
   if (!model || !spans || !filter) return null;
-  const { breakpoints, scales } = drive;
+  const { breakpoints } = drive;
+  const last = breakpoints.length - 1;
+  // Gaps are stepped through: legs go on, and one grid serves all.
+  const window = { start: breakpoints[0], end: breakpoints[last], first: 0, last: last - 1, gap: false };
+  const [part] = prepare({ ...request, filter: null }, model, [window]).spans;
   return {
-    request,
+    drive,
     model,
+    part,
     filter: { kappa: filter.kappa, offset: filter.center - model.energy },
     center: filter.center,
     order: filter.order,
-    start: breakpoints[0],
-    end: breakpoints[breakpoints.length - 1],
-    follow: scales.frequency > 0 && breakpoints.length === 2 && phaseIsSteady(drive, spans),
   };
 }
 
-/** Steps per ps over what the coherent motion would need, and per damping of a leg. */
-const COHERENT = 0.75;
+/** Steps over what the light before the filter needs, and per damping of a leg. */
+const COHERENT = 0.9;
 const DAMPED = 0.5;
 
-function firstSteps({ request, model, filter, start, end, follow }: FilteredProblem): number {
-  const { scales } = request.drive;
-  const rabi = scales.peakRabi * Math.abs(model.weight);
-  const rate = coherentRate(request.drive, rabi, model.energy, follow || scales.frequency === 0);
-  return Math.max(8, Math.ceil((end - start) * Math.max(COHERENT * rate, DAMPED * filter.kappa)));
+function firstSteps({ drive, model, part, filter }: FilteredProblem): number {
+  const [count] = firstCounts({ drive, model, spans: [part], thinning: null, wants: NOTHING });
+  const { start, end } = part.span;
+  return Math.max(Math.ceil(COHERENT * count), Math.ceil((end - start) * DAMPED * filter.kappa));
 }
+
+const NOTHING = { counted: false, ladder: false, thinned: false };

@@ -10,7 +10,7 @@
  * thirds of the operators that the moments of the filter's own field would need.
  */
 
-/** Numbers per block in all arrays: s, r, z, t as (re, im), a block X = ½(t + s σ_x + r σ_y + z σ_z) with t its trace. */
+/** Numbers per block in all arrays: s, r, b, t as (re, im) with X_gx = (s + ir)/2, X_xg = (s − ir)/2, X_xx = b/2 and t the trace. */
 export const STRIDE = 8;
 
 /** Which block feeds which: offsets into the arrays (0 is a block that stays empty), blocks ordered by n. */

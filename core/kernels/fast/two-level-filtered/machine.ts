@@ -2,9 +2,7 @@ import { type Legs, legsFor } from './legs.js';
 import { BYTES } from './propagate.bytes.js';
 import { propagate, ROW, setDamping, type Work, workFor } from './propagate.js';
 import type { StepNumbers } from './step.js';
-
-/** Steps that a table holds. */
-export const BLOCK = 128;
+import { BLOCK } from './table.js';
 
 /** Runs the blocks of one order over tables of steps. Its arrays are used again by the next call. */
 export interface Machine {
@@ -54,7 +52,6 @@ export function machineFor(order: number): Machine {
 function begin(legs: Legs, work: Work, numbers: StepNumbers): void {
   work.y.fill(0);
   const start = legs.at(0, 0, 0);
-  work.y[start + 4] = 1;
   work.y[start + 6] = 1;
   setDamping(work, numbers);
 }

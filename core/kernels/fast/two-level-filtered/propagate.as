@@ -63,7 +63,8 @@ export function propagate(
       const m5 = v128.load_splat<f64>(table, 40);
       const m6 = v128.load_splat<f64>(table, 48);
       const m7 = v128.load_splat<f64>(table, 56);
-      const m8 = v128.load_splat<f64>(table, 64);
+      const k8 = v128.load_splat<f64>(table, 64);
+      const m8 = f64x2.sub(f64x2.splat(1), k8);
       const driven = f64x2.splat(square);
       const vx = f64x2.splat(fx);
       const vy = f64x2.splat(fy);
@@ -75,11 +76,15 @@ export function propagate(
         const f = v128.load_splat<f64>(d, 8);
         const s = v128.load(y + o);
         const r = v128.load(y + o, 16);
-        const z = v128.load(y + o, 32);
+        const x = v128.load(y + o, 32);
         const t = v128.load(y + o, 48);
+        const z = f64x2.sub(t, x);
         const b = f64x2.mul(
           v128.load_splat<f64>(d, 16),
-          f64x2.sub(t, f64x2.add(f64x2.add(f64x2.mul(m6, s), f64x2.mul(m7, r)), f64x2.mul(m8, z))),
+          f64x2.sub(
+            f64x2.add(f64x2.mul(k8, t), f64x2.mul(m8, x)),
+            f64x2.add(f64x2.mul(m6, s), f64x2.mul(m7, r)),
+          ),
         );
         const te = f64x2.mul(v128.load_splat<f64>(d), t);
         const ss = f64x2.add(
@@ -97,11 +102,7 @@ export function propagate(
         const add = f64x2.mul(pairs, v128.load(seen + p, 32));
         v128.store(y + o, f64x2.sub(ss, f64x2.mul(driven, v128.load(y + p))));
         v128.store(y + o, f64x2.sub(rr, f64x2.mul(driven, v128.load(y + p, 16))), 16);
-        v128.store(
-          y + o,
-          f64x2.add(f64x2.add(f64x2.sub(te, b), add), f64x2.mul(driven, v128.load(y + p, 32))),
-          32,
-        );
+        v128.store(y + o, f64x2.add(b, f64x2.mul(driven, v128.load(y + p, 32))), 32);
         v128.store(y + o, f64x2.add(f64x2.add(te, add), f64x2.mul(driven, v128.load(y + p, 48))), 48);
       }
     }
@@ -114,7 +115,8 @@ export function propagate(
       const m5 = load<f64>(table, 40);
       const m6 = load<f64>(table, 48);
       const m7 = load<f64>(table, 56);
-      const m8 = load<f64>(table, 64);
+      const k8 = load<f64>(table, 64);
+      const m8 = 1 - k8;
       let at = second;
       for (let i = 0; i < hermitian; i++, at += RECORD) {
         const o = <usize>load<u32>(at);
@@ -123,9 +125,10 @@ export function propagate(
         const f = load<f64>(d, 8);
         const s = load<f64>(y + o);
         const r = load<f64>(y + o, 16);
-        const z = load<f64>(y + o, 32);
+        const x = load<f64>(y + o, 32);
         const t = load<f64>(y + o, 48);
-        const b = load<f64>(d, 16) * (t - (m6 * s + m7 * r + m8 * z));
+        const z = t - x;
+        const b = load<f64>(d, 16) * (k8 * t + m8 * x - (m6 * s + m7 * r));
         const te = load<f64>(d) * t;
         const ss = f * (m0 * s + m1 * r + m2 * z) + fx * te;
         const rr = f * (m3 * s + m4 * r + m5 * z) + fy * te;
@@ -137,7 +140,7 @@ export function propagate(
         const add = pair * load<f64>(seen + p, 32);
         store<f64>(y + o, ss - square * load<f64>(y + p));
         store<f64>(y + o, rr - square * load<f64>(y + p, 16), 16);
-        store<f64>(y + o, te - b + add + square * load<f64>(y + p, 32), 32);
+        store<f64>(y + o, b + square * load<f64>(y + p, 32), 32);
         store<f64>(y + o, te + add + square * load<f64>(y + p, 48), 48);
       }
     }
@@ -198,7 +201,6 @@ export function propagate(
       v128.store(h, f64x2.add(v128.load(h), d));
       v128.store(h, f64x2.sub(v128.load(h, 16), f64x2.mul(sign, v128.shuffle<f64>(d, d, 1, 0))), 16);
       const turned = f64x2.add(t, f64x2.mul(turnLeft, v128.shuffle<f64>(t, t, 1, 0)));
-      v128.store(h, f64x2.add(v128.load(h, 32), turned), 32);
       v128.store(h, f64x2.add(v128.load(h, 48), turned), 48);
     }
     // Events on the right come after those on the left: what these have changed counts.
@@ -236,7 +238,6 @@ export function propagate(
       v128.store(h, f64x2.add(v128.load(h), x));
       v128.store(h, f64x2.add(v128.load(h, 16), f64x2.mul(sign, v128.shuffle<f64>(x, x, 1, 0))), 16);
       const turned = f64x2.add(t, f64x2.mul(turnRight, v128.shuffle<f64>(t, t, 1, 0)));
-      v128.store(h, f64x2.add(v128.load(h, 32), turned), 32);
       v128.store(h, f64x2.add(v128.load(h, 48), turned), 48);
     }
     // Both sides at once of Hermitian blocks; half of either see what the other has changed.
@@ -269,7 +270,6 @@ export function propagate(
       const h = y + own;
       store<f64>(h, load<f64>(h) + dr);
       store<f64>(h, load<f64>(h, 16) - di, 16);
-      store<f64>(h, load<f64>(h, 32) + t, 32);
       store<f64>(h, load<f64>(h, 48) + t, 48);
     }
   }

@@ -1,12 +1,15 @@
 import type { Legs } from './legs.js';
 import type { StepNumbers } from './step.js';
 
-/** Numbers per step in a table: row-major rotation (9) and the drive at the end of the step (re, im; 1/ps). */
+/**
+ * Numbers per step in a table: row-major rotation (9, the last one as its difference from 1, which keeps small excitations
+ * exact) and the drive at the end of the step (re, im; 1/ps).
+ */
 export const ROW = 11;
 
 /** Arrays of one propagation, laid out like the blocks (legs.ts). */
 export interface Work {
-  /** The blocks: s, r, z, t as (re, im). */
+  /** The blocks: s, r, b, t as (re, im). */
   readonly y: Float64Array;
   /** What events see of each block: 2X_xg, 2X_gx, 2X_xx as (re, im). */
   readonly seen: Float64Array;
@@ -21,7 +24,6 @@ export interface Work {
 export function workFor(legs: Legs): Work {
   const y = new Float64Array(legs.size);
   const start = legs.at(0, 0, 0);
-  y[start + 4] = 1;
   y[start + 6] = 1;
   return {
     y,
@@ -87,7 +89,8 @@ function rotateComplex(
   const m5 = table[k + 5];
   const m6 = table[k + 6];
   const m7 = table[k + 7];
-  const m8 = table[k + 8];
+  const k8 = table[k + 8];
+  const m8 = 1 - k8;
   for (let i = 0; i < count; i++) {
     const o = offset[i];
     const d = 3 * open[i];
@@ -98,13 +101,14 @@ function rotateComplex(
     const si = y[o + 1];
     const rr = y[o + 2];
     const ri = y[o + 3];
-    const zr = y[o + 4];
-    const zi = y[o + 5];
+    const xr = y[o + 4];
+    const xi = y[o + 5];
     const tr = y[o + 6];
     const ti = y[o + 7];
-    // 2X_xx = t − z.
-    const br = g * (tr - (m6 * sr + m7 * rr + m8 * zr));
-    const bi = g * (ti - (m6 * si + m7 * ri + m8 * zi));
+    const zr = tr - xr;
+    const zi = ti - xi;
+    const br = g * (k8 * tr + m8 * xr - (m6 * sr + m7 * rr));
+    const bi = g * (k8 * ti + m8 * xi - (m6 * si + m7 * ri));
     const ter = e * tr;
     const tei = e * ti;
     const ssr = f * (m0 * sr + m1 * rr + m2 * zr) + fx * ter;
@@ -124,8 +128,8 @@ function rotateComplex(
     y[o + 1] = ssi - driven * y[p + 1];
     y[o + 2] = rrr - driven * y[p + 2];
     y[o + 3] = rri - driven * y[p + 3];
-    y[o + 4] = ter - br + pr + driven * y[p + 4];
-    y[o + 5] = tei - bi + pi + driven * y[p + 5];
+    y[o + 4] = br + driven * y[p + 4];
+    y[o + 5] = bi + driven * y[p + 5];
     y[o + 6] = ter + pr + driven * y[p + 6];
     y[o + 7] = tei + pi + driven * y[p + 7];
   }
@@ -151,7 +155,8 @@ function rotateHermitian(
   const m5 = table[k + 5];
   const m6 = table[k + 6];
   const m7 = table[k + 7];
-  const m8 = table[k + 8];
+  const k8 = table[k + 8];
+  const m8 = 1 - k8;
   for (let i = 0; i < count; i++) {
     const o = offset[i];
     const d = 3 * open[i];
@@ -159,9 +164,10 @@ function rotateHermitian(
     const f = damping[d + 1];
     const s = y[o];
     const r = y[o + 2];
-    const z = y[o + 4];
+    const x = y[o + 4];
     const t = y[o + 6];
-    const b = damping[d + 2] * (t - (m6 * s + m7 * r + m8 * z));
+    const z = t - x;
+    const b = damping[d + 2] * (k8 * t + m8 * x - (m6 * s + m7 * r));
     const te = e * t;
     const ss = f * (m0 * s + m1 * r + m2 * z) + fx * te;
     const rr = f * (m3 * s + m4 * r + m5 * z) + fy * te;
@@ -174,7 +180,7 @@ function rotateHermitian(
     const add = pair * seen[p + 4];
     y[o] = ss - driven * y[p];
     y[o + 2] = rr - driven * y[p + 2];
-    y[o + 4] = te - b + add + driven * y[p + 4];
+    y[o + 4] = b + driven * y[p + 4];
     y[o + 6] = te + add + driven * y[p + 6];
   }
 }
@@ -259,8 +265,6 @@ function eventsOnLeft(
     y[o + 3] -= dr;
     const ur = tr - turn * ti;
     const ui = ti + turn * tr;
-    y[o + 4] += ur;
-    y[o + 5] += ui;
     y[o + 6] += ur;
     y[o + 7] += ui;
   }
@@ -315,8 +319,6 @@ function eventsOnRight(
     y[o + 3] += dr;
     const ur = tr + turn * ti;
     const ui = ti - turn * tr;
-    y[o + 4] += ur;
-    y[o + 5] += ui;
     y[o + 6] += ur;
     y[o + 7] += ui;
   }
@@ -352,7 +354,6 @@ function eventsOnBoth(
     const di = 2 * intoCoherence * (bi + wr * qi - wi * qr);
     y[o] += dr;
     y[o + 2] -= di;
-    y[o + 4] += t;
     y[o + 6] += t;
   }
 }

@@ -1,20 +1,21 @@
-import type { CountRequest } from '../../count.js';
+import type { Drive } from '../../../pulse/drive.js';
+import type { BlochSpan } from '../bloch/problem.js';
 import type { TwoLevel } from '../two-level.js';
-import { BLOCK, type Machine, machineFor } from './machine.js';
+import { type Machine, machineFor } from './machine.js';
 import { type Filter, stepNumbers } from './step.js';
-import { type Grid, TableFiller } from './table.js';
+import { BLOCK, fillTable, type Steps } from './table.js';
 import { moments } from './tail.js';
 
 export interface FilteredProblem {
-  readonly request: CountRequest;
+  readonly drive: Drive;
   readonly model: TwoLevel;
+  /** The drive window. */
+  readonly part: BlochSpan;
   readonly filter: Filter;
   /** Centre of the filter in the drive's frame, 1/ps. */
   readonly center: number;
+  /** Number of moments. */
   readonly order: number;
-  readonly start: number;
-  readonly end: number;
-  readonly follow: boolean;
 }
 
 export interface FilteredRun {
@@ -28,21 +29,19 @@ export function run(
   count: number,
   machine: Machine = machineFor(problem.order),
 ): FilteredRun {
-  const { request, model, filter, center } = problem;
-  const h = (problem.end - problem.start) / count;
+  const { drive, model, part, filter, center } = problem;
+  const h = (part.span.end - part.span.start) / count;
   const numbers = stepNumbers(model, filter, h);
   const { legs, table, y } = machine;
   machine.begin(numbers);
-  const grid: Grid = { start: problem.start, h, count, follow: problem.follow };
-  const filler = new TableFiller(request.drive, model, center, grid, numbers.drive);
+  const steps: Steps = { drive, model, part, center, count, h, scale: numbers.drive };
   for (let n = 0; n < count; n += BLOCK) {
     const end = Math.min(count, n + BLOCK);
-    filler.fill(n, end, table);
+    fillTable(steps, n, end, table);
     machine.advance(end - n);
   }
-  const rho = legs.at(0, 0, 0);
   // The last decay stands half beyond the window.
-  const upper = 0.5 * (y[rho + 6] - y[rho + 4]) * Math.exp(0.5 * model.decay * h);
+  const upper = 0.5 * y[legs.at(0, 0, 0) + 4] * Math.exp(0.5 * model.decay * h);
   return {
     moments: moments(legs, y, model, filter, numbers),
     populations: [1 - upper, upper],

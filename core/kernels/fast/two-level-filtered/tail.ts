@@ -24,7 +24,7 @@ export function moments(
   const step = { re: fade * Math.cos(offset * h), im: -fade * Math.sin(offset * h) };
   const gone = -Math.expm1(-(model.coherence + 0.5 * kappa) * h) + fade * 2 * Math.sin(0.5 * offset * h) ** 2;
   const coherent = divide(step, { re: gone, im: -step.im });
-  const excited = (o: number): number => (o === 0 ? 0 : y[o + 6] - y[o + 4]);
+  const excited = (o: number): number => y[o + 4];
   const out: number[] = [];
   let factorial = 1;
   for (let n = 1; n <= legs.order; n++) {
