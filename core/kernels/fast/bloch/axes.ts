@@ -1,4 +1,5 @@
 import { edgeOf, NODES } from './nodes.js';
+import { STRIDE } from './pace.js';
 
 /*
  * Products of rotations as unit quaternions, and what kicks need of them. In the picture that rotates with the drive a kick
@@ -96,7 +97,7 @@ export function turnAxes(
     axes[k + 3] = 2 * (qx * qz - qw * qy);
     axes[k + 4] = 2 * (qy * qz + qw * qx);
     axes[k + 5] = 1 - 2 * (qx * qx + qy * qy);
-    if (pulls) pull(pulls, n, qw, qx, qy, qz);
+    if (pulls && n % STRIDE === 0) pull(pulls, n, qw, qx, qy, qz);
     if (record) {
       record[4 * n] = qw;
       record[4 * n + 1] = qx;
@@ -162,7 +163,7 @@ export function resonantAxes(
     axes[k] = 0;
     axes[k + 1] = 2 * qw * qx;
     axes[k + 2] = 1 - 2 * qx * qx;
-    if (pulls) {
+    if (pulls && n % STRIDE === 0) {
       pulls.edges[2 * n] = edgeOf(samples, i);
       pulls.edges[2 * n + 1] = 0;
       pull(pulls, n, qw, qx, 0, 0);
@@ -187,7 +188,10 @@ function pull({ edges, out }: Pulls, n: number, w: number, x: number, y: number,
 export function turnAbout(q: Quaternion, angle: number): void {
   const c = Math.cos(0.5 * angle);
   const s = Math.sin(0.5 * angle);
-  const [w, x, y, z] = q;
+  const w = q[0];
+  const x = q[1];
+  const y = q[2];
+  const z = q[3];
   q[0] = c * w - s * z;
   q[1] = c * x - s * y;
   q[2] = c * y + s * x;

@@ -30,8 +30,6 @@ export interface Correction {
   readonly quartic: number;
   /** Dephasing over decay. */
   readonly ratio: number;
-  /** Whether it matters that a correction stands in the middle of its kick. */
-  readonly ordered: boolean;
 }
 
 /** Kicks a chain along axes[3n …] for n = from … to − 1. */

@@ -49,7 +49,7 @@ export function kickOver({ model }: BlochProblem, time: number): Kick {
   return { fade: Math.exp(-model.coherence * time), loss: -Math.expm1(-model.decay * time) };
 }
 
-/** Corrections stand at every so manieth kick, so much larger: of 1e-6 at most, they need not be exact. */
+/** Corrections stand at every second kick, counted from the second of a span (correct.ts). */
 export const STRIDE = 2;
 
 /** Bounds of the corrections below which they are left out: in all, and relative to small figures. */
@@ -65,8 +65,7 @@ function correctionOf({ drive, model }: BlochProblem, h: number): Correction | n
   if (whole < NEGLIGIBLE.whole && relative < NEGLIGIBLE.relative) return null;
   const small = (h * decay) ** 2;
   const ratio = dephasing / decay;
-  const ordered = whole * h * (decay + dephasing) > 0.1 * NEGLIGIBLE.whole;
-  return { ordered, quadratic: (-STRIDE * small * ratio) / 48, quartic: (STRIDE * small) / 1920, ratio };
+  return { quadratic: (-STRIDE * small * ratio) / 48, quartic: (STRIDE * small) / 1920, ratio };
 }
 
 /** Area of a Gaussian over its peak and width: √2π. */

@@ -1,6 +1,6 @@
 import { resonantAxes, turnAbout, turnAxes } from './axes.js';
 import { CHAIN_STATE, type Chain, type Correction, type Kick, kicks, kicksOfTwo } from './chain.js';
-import { correct } from './correct.js';
+import { correctedKicks } from './correct.js';
 import { EXCITED, FACTORIAL, GROUND, MEAN, MULTIPHOTON, P0, P1, P2, P3, THINNED } from './figures.js';
 import { phaseAt } from './frame.js';
 import { correctLadder, LADDER_STATE, type Ladder, ladderKicks } from './ladder.js';
@@ -27,36 +27,48 @@ interface State {
   readonly thinned: Chain | null;
 }
 
-function chain(own: number, feed: number, rest: number): Chain {
-  const state = new Float64Array(CHAIN_STATE);
+function chain(own: number, feed: number, rest: number, state: Float64Array): Chain {
+  state.fill(0);
   state[2] = 0.5;
   state[3] = 1;
   return { own, feed, rest, state };
 }
 
+/** States are reused from run to run: new ones would cost as much as some steps. */
+const momentState = new Float64Array(CHAIN_STATE);
+const countState = new Float64Array(CHAIN_STATE);
+const thinnedState = new Float64Array(CHAIN_STATE);
+const ladderState = new Float64Array(LADDER_STATE);
+const rotation = new Float64Array(4);
+
 /** Chains of the moments, of the emitted count and of the thinned one, at the start. */
-export const momentChain = ({ model }: BlochProblem): Chain => chain(1, model.collected, 2 * model.collected);
-export const countChain = ({ model }: BlochProblem): Chain =>
-  chain(1 - model.collected, model.collected, model.collected);
-export function thinnedChain({ model, thinning }: BlochProblem): Chain {
+export const momentChain = ({ model }: BlochProblem, state = new Float64Array(CHAIN_STATE)): Chain =>
+  chain(1, model.collected, 2 * model.collected, state);
+export const countChain = ({ model }: BlochProblem, state = new Float64Array(CHAIN_STATE)): Chain =>
+  chain(1 - model.collected, model.collected, model.collected, state);
+export function thinnedChain(
+  { model, thinning }: BlochProblem,
+  state = new Float64Array(CHAIN_STATE),
+): Chain {
   const seen = model.collected * (thinning ?? 0);
-  return chain(1 - seen, seen, seen);
+  return chain(1 - seen, seen, seen, state);
 }
 
 function begin(problem: BlochProblem): State {
   const { model, wants } = problem;
-  const q = model.collected;
-  const ladder = wants.ladder ? { counted: q, state: new Float64Array(LADDER_STATE) } : null;
-  if (ladder) {
-    ladder.state[2] = 0.5;
-    ladder.state[3] = 1;
+  rotation.fill(0);
+  rotation[0] = 1;
+  if (wants.ladder) {
+    ladderState.fill(0);
+    ladderState[2] = 0.5;
+    ladderState[3] = 1;
   }
   return {
-    q: Float64Array.of(1, 0, 0, 0),
-    moments: momentChain(problem),
-    counted: wants.counted ? countChain(problem) : null,
-    ladder,
-    thinned: wants.thinned ? thinnedChain(problem) : null,
+    q: rotation,
+    moments: momentChain(problem, momentState),
+    counted: wants.counted ? countChain(problem, countState) : null,
+    ladder: wants.ladder ? { counted: model.collected, state: ladderState } : null,
+    thinned: wants.thinned ? thinnedChain(problem, thinnedState) : null,
   };
 }
 
@@ -70,35 +82,32 @@ function kickAll(state: State, kick: Kick, from: number, to: number): void {
   if (counted && thinned) kicks(thinned, kick, axes, from, to);
 }
 
-/** A correction stands in the middle of its kick, or before it where `half` is null because the order does not matter. */
-function correctAndKick(
+/** The same with corrections in the middle of every second kick. */
+function kickCorrected(
   state: State,
   kick: Kick,
-  half: Kick | null,
+  middle: Kick,
   correction: Correction,
   from: number,
   to: number,
 ): void {
-  for (let n = from; n < to; n += STRIDE) {
-    if (half) kickAll(state, half, n, n + 1);
-    correctAll(state, correction, n);
-    if (half) kickAll(state, half, n, n + 1);
-    kickAll(state, kick, half ? n + 1 : n, Math.min(to, n + STRIDE));
+  const { moments, counted, ladder, thinned } = state;
+  correctedKicks(moments, kick, middle, correction, axes, pulls, from, to);
+  if (counted) correctedKicks(counted, kick, middle, correction, axes, pulls, from, to);
+  if (thinned) correctedKicks(thinned, kick, middle, correction, axes, pulls, from, to);
+  for (let n = from; ladder && n < to; n += STRIDE) {
+    ladderKicks(ladder, middle, axes, n, n + 1);
+    correctLadder(ladder, correction, axes, pulls, n);
+    ladderKicks(ladder, middle, axes, n, n + 1);
+    ladderKicks(ladder, kick, axes, n + 1, Math.min(to, n + STRIDE));
   }
-}
-
-function correctAll({ moments, counted, ladder, thinned }: State, correction: Correction, n: number): void {
-  correct(moments, correction, axes, pulls, n);
-  if (counted) correct(counted, correction, axes, pulls, n);
-  if (thinned) correct(thinned, correction, axes, pulls, n);
-  if (ladder) correctLadder(ladder, correction, axes, pulls, n);
 }
 
 /** Propagates a problem with so many steps per span and writes its figures (figures.ts). */
 export function runBloch(problem: BlochProblem, counts: readonly number[], out: Float64Array): void {
   const { model, spans } = problem;
   const state = begin(problem);
-  axes.set([0, 0, 1], 0);
+  axisOf(state.q, axes);
   spans.forEach((part, index) => {
     const { span, frame } = part;
     const length = span.end - span.start;
@@ -116,7 +125,12 @@ export function runBloch(problem: BlochProblem, counts: readonly number[], out: 
 }
 
 /** The axis of kicks under a rotation, to the first three numbers of `out`. */
-export function axisOf([w, x, y, z]: Float64Array, out: Float64Array): void {
+export function axisOf(q: Float64Array, out: Float64Array): void {
+  // Destructuring a typed array goes through its iterator, which costs as much as ten steps.
+  const w = q[0];
+  const x = q[1];
+  const y = q[2];
+  const z = q[3];
   out[0] = 2 * (x * z - w * y);
   out[1] = 2 * (y * z + w * x);
   out[2] = 1 - 2 * (x * x + y * y);
@@ -155,7 +169,7 @@ function propagate(problem: BlochProblem, state: State, part: BlochSpan, count: 
     }
     const last = done + steps === count;
     const end = last ? steps : steps + 1;
-    if (correction) correctAndKick(state, full, correction.ordered ? half : null, correction, 1, end);
+    if (correction) kickCorrected(state, full, half, correction, 1, end);
     else kickAll(state, full, 1, end);
     if (last) kickAll(state, half, steps, steps + 1);
   }
@@ -165,12 +179,13 @@ function propagate(problem: BlochProblem, state: State, part: BlochSpan, count: 
 function finish(state: State, out: Float64Array): void {
   axisOf(state.q, axes);
   const { moments, counted, ladder, thinned } = state;
-  const [x, y, z, trace] = moments.state;
-  const inversion = axes[0] * x + axes[1] * y + axes[2] * z;
+  const rho = moments.state;
+  const inversion = axes[0] * rho[0] + axes[1] * rho[1] + axes[2] * rho[2];
+  const half = 0.5 * rho[3];
   kickAll(state, { fade: 0, loss: 1 }, 0, 1);
   out.fill(Number.NaN);
-  out[GROUND] = 0.5 * trace + inversion;
-  out[EXCITED] = 0.5 * trace - inversion;
+  out[GROUND] = half + inversion;
+  out[EXCITED] = half - inversion;
   out[MEAN] = moments.state[7];
   out[FACTORIAL] = moments.state[8];
   const first = ladder ?? counted;

@@ -1,7 +1,7 @@
 import type { Drive } from '../../../pulse/drive.js';
 import type { GaussianTone } from '../../../pulse/gaussians.js';
 import { type PhaseFrame, phaseAt } from './frame.js';
-import { NODES, OUTER, PLACES } from './nodes.js';
+import { INNER, NODES, OUTER, PLACES } from './nodes.js';
 
 /** A stretch of uniform steps. */
 export interface Grid {
@@ -14,14 +14,6 @@ export interface Grid {
 /** A Gaussian this far down (e-folds) adds nothing, and would leave a recurrence at zero. */
 const DEEP = 45;
 
-/** Steps of a block in which a tone acts at all. */
-function actingSteps(tone: GaussianTone, { start, h }: Grid, from: number, to: number): [number, number] {
-  const reach = Math.sqrt(DEEP / tone.fall);
-  const first = Math.ceil((tone.delay - reach - start) / h);
-  const last = Math.floor((tone.delay + reach - start) / h);
-  return [Math.max(from, first), Math.min(to, last)];
-}
-
 /** The four values of a node's recurrence: the Gaussian at the first step and its ratio from one step to the next. */
 const begun = new Float64Array(4 * NODES);
 
@@ -29,10 +21,9 @@ const begun = new Float64Array(4 * NODES);
  * Gaussian nodes by E(n+1) = E(n)·R(n), R(n+1) = R(n)·W: exact up to rounding, which grows as the square of the steps
  * and is 2e-13 after a block.
  */
-function begin(tone: GaussianTone, scale: number, grid: Grid, first: number): void {
+function begin(tone: GaussianTone, scale: number, { start, h }: Grid, first: number): void {
   const { fall, chirp, rate, phase, delay, amplitude } = tone;
-  const { h } = grid;
-  const middle = grid.start + (first + 0.5) * h - delay;
+  const middle = start + (first + 0.5) * h - delay;
   for (let j = 0; j < NODES; j++) {
     const s = middle + PLACES[j] * h;
     const field = scale * amplitude * Math.exp(-fall * s * s);
@@ -46,28 +37,40 @@ function begin(tone: GaussianTone, scale: number, grid: Grid, first: number): vo
   }
 }
 
-/** Writes the real part of a Gaussian of constant phase to out[4n + j], times `scale`, for the steps of a block. */
+/** Writes a Gaussian without its phase to out[4n + j], times `scale`, for the steps of a block. */
 export function fillReal(
-  tone: GaussianTone,
+  { fall, delay, amplitude }: GaussianTone,
   scale: number,
-  grid: Grid,
+  { start, h }: Grid,
   from: number,
   to: number,
   out: Float64Array,
 ): void {
-  out.fill(0, NODES * from, NODES * to);
-  const [first, last] = actingSteps(tone, grid, from, to);
+  const reach = Math.sqrt(DEEP / fall);
+  const first = Math.max(from, Math.ceil((delay - reach - start) / h));
+  const last = Math.min(to, Math.floor((delay + reach - start) / h));
+  if (first > from || last < to) out.fill(0, NODES * from, NODES * to);
   if (first >= last) return;
-  begin(tone, scale, grid, first);
-  let e0 = begun[0];
-  let e1 = begun[4];
-  let e2 = begun[8];
-  let e3 = begun[12];
-  let r0 = begun[2];
-  let r1 = begun[6];
-  let r2 = begun[10];
-  let r3 = begun[14];
-  const w = Math.exp(-2 * tone.fall * grid.h * grid.h);
+  // exp(−fall(s + d)²) about the middle s of a step, from few exponentials.
+  const s = start + (first + 0.5) * h - delay;
+  const field = scale * amplitude * Math.exp(-fall * s * s);
+  const inner = Math.exp(2 * fall * h * s * INNER);
+  const outer = Math.exp(2 * fall * h * s * OUTER);
+  const square = fall * h * h;
+  const shrink = Math.exp(-square - 2 * fall * h * s);
+  const near = field * Math.exp(-square * INNER * INNER);
+  const far = field * Math.exp(-square * OUTER * OUTER);
+  const w = Math.exp(-2 * square);
+  const kInner = Math.exp(2 * square * INNER);
+  const kOuter = Math.exp(2 * square * OUTER);
+  let e0 = far * outer;
+  let e1 = near * inner;
+  let e2 = near / inner;
+  let e3 = far / outer;
+  let r0 = shrink * kOuter;
+  let r1 = shrink * kInner;
+  let r2 = shrink / kInner;
+  let r3 = shrink / kOuter;
   for (let i = NODES * first; i < NODES * last; i += NODES) {
     out[i] = e0;
     out[i + 1] = e1;
@@ -93,10 +96,12 @@ export function addComplex(
   to: number,
   out: Float64Array,
 ): void {
-  const [first, last] = actingSteps(tone, grid, from, to);
+  const { start, h } = grid;
+  const reach = Math.sqrt(DEEP / tone.fall);
+  const first = Math.max(from, Math.ceil((tone.delay - reach - start) / h));
+  const last = Math.min(to, Math.floor((tone.delay + reach - start) / h));
   if (first >= last) return;
   begin(tone, scale, grid, first);
-  const { h } = grid;
   const shrink = Math.exp(-2 * tone.fall * h * h);
   const c = shrink * Math.cos(2 * tone.chirp * h * h);
   const s = shrink * Math.sin(2 * tone.chirp * h * h);

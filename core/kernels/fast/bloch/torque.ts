@@ -92,8 +92,13 @@ export function torques(
 
 /** Adds one kick to a torque. */
 export function addTorque(torque: Float64Array, slopes: Float64Array, axes: Float64Array, n: number): void {
-  const [vx, vy, vz] = axes.subarray(3 * n, 3 * n + 3);
-  const [gx, gy, gz] = slopes.subarray(3 * n, 3 * n + 3);
+  const k = 3 * n;
+  const vx = axes[k];
+  const vy = axes[k + 1];
+  const vz = axes[k + 2];
+  const gx = slopes[k];
+  const gy = slopes[k + 1];
+  const gz = slopes[k + 2];
   torque[0] -= vy * gz - vz * gy;
   torque[1] -= vz * gx - vx * gz;
   torque[2] -= vx * gy - vy * gx;
