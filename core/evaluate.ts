@@ -6,7 +6,8 @@ import type { Effort } from './kernels/count.js';
 import { phononRangeProblem } from './phonons/count.js';
 import { pulseFigures } from './pulse/figures.js';
 import { orThrow, sampleAll } from './run.js';
-import { type DriftTree, treeOf } from './tree.js';
+import { hasPhonons } from './situation.js';
+import { type DriftTree, treeOf, withNominal } from './tree.js';
 
 /**
  * `search`: one propagation, error estimated from its own steps. `quoted`: repeated with finer steps and more drift
@@ -39,10 +40,9 @@ export const PROMISED = 1e-6;
 export function evaluate(design: Design, accuracy: Accuracy): Figures {
   checkSupport(design);
   const wanted = accuracy === 'verified' ? withExactPhonons(design) : design;
+  if (!wanted.drift) return withNominal(evaluateStill(wanted, accuracy).tree, null);
   const still = evaluateStill({ ...wanted, drift: null }, accuracy);
-  if (!wanted.drift) return { ...still.tree, nominal: null };
-  const { quantile: _none, ...nominal } = still.tree;
-  return { ...evaluateDrifting(wanted, accuracy, still), nominal };
+  return withNominal(evaluateDrifting(wanted, accuracy, still), still.tree);
 }
 
 /** The design with the exact phonon method; itself without phonons. */
@@ -56,15 +56,12 @@ function withPhononMethod(design: Design, method: PhononSpec['method']): Design 
   return { ...design, emitter: { ...design.emitter, phonons: { ...phonons, method } } };
 }
 
+/** Throws UnsupportedDesign where this version has no method for the design; evaluates nothing. */
 export function checkSupport(design: Design): void {
   const { phonons } = design.emitter;
   const problem = phonons && hasPhonons(design) ? phononRangeProblem(phonons) : null;
   if (problem !== null) throw new UnsupportedDesign(problem);
   if (design.pulse.tones.length === 0) throw new UnsupportedDesign('a pulse needs at least one tone');
-}
-
-export function hasPhonons(design: Design): boolean {
-  return design.emitter.phonons !== null && design.emitter.phonons.coupling > 0;
 }
 
 /** A valid design that this version cannot evaluate; the message says what to change. */
@@ -85,14 +82,15 @@ interface Still {
 const EXACT_NODES = [0.5, 0.7, 1];
 const EXACT: Effort = { ...LADDER[0], nodes: EXACT_NODES[0] };
 /** Relative error of means that too few nodes may leave beside the exact phonon method. */
-const ENOUGH_FOR_EXACT = 2e-4;
+const ENOUGH_FOR_EXACT = { quoted: 2e-4, verified: 2e-5 };
 
 const isExact = (design: Design): boolean => hasPhonons(design) && design.emitter.phonons?.method === 'exact';
 
 /** The one effort of an accuracy that does not compare two; null where two must agree. */
 function singleEffort(design: Design, accuracy: Accuracy): Effort | null {
   if (accuracy === 'search') return isExact(design) ? { ...SEARCH, nodes: EXACT.nodes } : SEARCH;
-  return isExact(design) ? EXACT : null;
+  if (!isExact(design)) return null;
+  return accuracy === 'verified' ? { ...EXACT, kernel: 'reference' } : EXACT;
 }
 
 function evaluateStill(design: Design, accuracy: Accuracy): Still {
@@ -109,7 +107,7 @@ function evaluateStill(design: Design, accuracy: Accuracy): Still {
 function evaluateDrifting(design: Design, accuracy: Accuracy, still: Still): DriftTree {
   if (accuracy === 'search') return evaluateOnce(design, still.effort);
   if (isExact(design)) {
-    const { nodes, error } = nodesForExact(design);
+    const { nodes, error } = nodesForExact(design, ENOUGH_FOR_EXACT[accuracy]);
     const tree = evaluateOnce(design, { ...still.effort, nodes });
     const notes = [...tree.notes, ...still.tree.notes.filter(({ path }) => path === 'phonons')];
     const error_estimate = Math.max(tree.accuracy.error_estimate, error);
@@ -119,12 +117,12 @@ function evaluateDrifting(design: Design, accuracy: Accuracy, still: Still): Dri
 }
 
 /** How many drift nodes suffice beside the exact phonon method, judged by a second-order one. */
-function nodesForExact(design: Design): { readonly nodes: number; readonly error: number } {
+function nodesForExact(design: Design, enough: number): { readonly nodes: number; readonly error: number } {
   const cheap = withPhononMethod(design, 'auto');
   const fine = evaluateOnce(cheap, { ...SEARCH, nodes: NODE_EFFORTS[1] });
   for (const nodes of EXACT_NODES) {
     const error = relativeDifference(evaluateOnce(cheap, { ...SEARCH, nodes }), fine);
-    if (error <= ENOUGH_FOR_EXACT || nodes === EXACT_NODES[EXACT_NODES.length - 1]) return { nodes, error };
+    if (error <= enough || nodes === EXACT_NODES[EXACT_NODES.length - 1]) return { nodes, error };
   }
   throw new Error('no drift nodes to choose from');
 }

@@ -4,11 +4,12 @@ import { type ParameterSlot, parameterSlot } from './derivatives/parameters.js';
 import { scalarOf } from './derivatives/scalar.js';
 import type { Design } from './design.js';
 import { weightedMean } from './drift/mean.js';
-import { checkSupport, driftGrid, evaluate, hasPhonons, SEARCH } from './evaluate.js';
+import { checkSupport, driftGrid, evaluate, SEARCH } from './evaluate.js';
 import type { Figures } from './figures.js';
 import { countWithGradient } from './kernels/differentiate.js';
 import type { CountWithGradient } from './kernels/gradient.js';
-import { type DriftTree, treeOf } from './tree.js';
+import { hasPhonons } from './situation.js';
+import { type DriftTree, treeOf, withNominal } from './tree.js';
 
 /** Figures of a design with exact first derivatives. */
 export interface FigureGradient {
@@ -65,13 +66,12 @@ function exactGradient(
   if (!outer.every((f) => f !== null) || !inner.every((f) => f !== null)) return null;
   const drifting = differentiateMean(design, outer, slots, kernel);
   if (drifting === null) return null;
-  if (design.drift === null) return { figures: { ...drifting.tree, nominal: null }, rows: drifting.rows };
+  if (design.drift === null) return { figures: withNominal(drifting.tree, null), rows: drifting.rows };
   const still = differentiateMean({ ...design, drift: null }, inner, slots, kernel);
   if (still === null) return null;
   const rows = [drifting.rows.values(), still.rows.values()];
-  const { quantile: _none, ...tree } = still.tree;
   return {
-    figures: { ...drifting.tree, nominal: tree },
+    figures: withNominal(drifting.tree, still.tree),
     rows: figures.map((path) => rows[nominal(path) ? 1 : 0].next().value as number[]),
   };
 }

@@ -3,7 +3,13 @@ import { FEWEST_MOMENTS, judgeSeries, momentsOf } from './collection/series.js';
 import type { Design } from './design.js';
 import { type DriftNode, driftedDesign } from './drift/nodes.js';
 import { countPhotonsMany } from './kernels/batch.js';
-import { type CountRequest, type Effort, PropagationError } from './kernels/count.js';
+import {
+  type CountRequest,
+  type CountResult,
+  countPhotons,
+  type Effort,
+  PropagationError,
+} from './kernels/count.js';
 import type { PhononCount } from './phonons/contract.js';
 import type { PhononPlan } from './phonons/plan.js';
 import { pulseFigures } from './pulse/figures.js';
@@ -99,7 +105,8 @@ class SceneCache {
 /** A task made ready to be counted. */
 interface Place {
   readonly scene: Scene;
-  readonly plan: PhononPlan;
+  /** Null without phonons. */
+  readonly plan: PhononPlan | null;
   readonly effort: Effort;
   /** Without the filter. */
   readonly base: CountRequest;
@@ -110,9 +117,9 @@ function place(task: NodeTask, wantedEffort: Effort, wanted: Wanted, scenes: Sce
   const scene = scenes.get(task);
   const { design, where } = scene;
   const shift = task.node.shift / HBAR;
-  const plan = planOf(design, where, shift, wantedEffort);
+  const plan = design.emitter.phonons === null ? null : planOf(design, where, shift, wantedEffort);
   // A hierarchy settles to 1e-3: a bound on the moment series far below that would only cost operators.
-  const effort: Effort = plan.method === 'exact' ? { ...wantedEffort, series: 'estimate' } : wantedEffort;
+  const effort: Effort = plan?.method === 'exact' ? { ...wantedEffort, series: 'estimate' } : wantedEffort;
   return { scene, plan, effort, base: emittedRequest(design, where, shift, effort), wanted };
 }
 
@@ -145,7 +152,7 @@ function countAll(places: readonly (Place | Failed)[]): (Count | Failed)[] {
         done[i] = result;
         return;
       }
-      const moments = momentsOf(result.values, order);
+      const moments = order > 0 ? momentsOf(result.values, order) : NO_MOMENTS;
       const settled = order < FEWEST_MOMENTS.estimate;
       const series = settled ? SETTLED : judgeSeries(moments, at.effort.series);
       if (series.kind === 'more') again.push({ i, at, order: series.order });
@@ -156,6 +163,7 @@ function countAll(places: readonly (Place | Failed)[]): (Count | Failed)[] {
   return done;
 }
 
+const NO_MOMENTS: readonly number[] = [];
 const SETTLED = { kind: 'enough', error: 0 } as const;
 
 /** Number of moments to begin with; 0 without a filter. ⟨n⟩ and g⁽²⁾ are exact with two. */
@@ -175,16 +183,24 @@ function requestOf({ scene, base, wanted }: Place, order: number): CountRequest 
 
 /** One answer per request; those without phonons are counted together. */
 function countPlaces(
-  plans: readonly PhononPlan[],
+  plans: readonly (PhononPlan | null)[],
   requests: readonly CountRequest[],
 ): (PhononCount | Failed)[] {
-  if (plans.length > 1 && plans.every(({ method }) => method === 'none')) {
-    return countPhotonsMany(requests).map((result) =>
-      result instanceof PropagationError ? result : { ...result, flags: [], remarks: [], error: 0 },
-    );
-  }
-  return plans.map((plan, k) => attempt(() => plan.count(requests[k])));
+  if (plans.length > 1 && plans.every((plan) => plan === null)) return countPhotonsMany(requests).map(bare);
+  return plans.map((plan, k) => {
+    const request = requests[k];
+    return plan === null ? bare(attempt(() => countPhotons(request))) : attempt(() => plan.count(request));
+  });
 }
+
+/** A count without phonons. */
+function bare(result: CountResult | Failed): PhononCount | Failed {
+  if (result instanceof PropagationError) return result;
+  const { values, populations, steps, localErrors } = result;
+  return { values, populations, steps, localErrors, flags: NOTHING, remarks: NOTHING, error: 0 };
+}
+
+const NOTHING: readonly string[] = [];
 
 function finish({ scene, plan, effort }: Place, count: Count, wanted: Wanted): SampleRun {
   const { result, moments, seriesError } = count;
@@ -193,9 +209,9 @@ function finish({ scene, plan, effort }: Place, count: Count, wanted: Wanted): S
   const counted = { values: result.values, populations: result.populations, moments, leakage };
   return {
     sample: assembleSample(counted, scene.pulse(wanted), design, where, effort.series),
-    phonons: { method: plan.method, flags: result.flags },
+    phonons: { method: plan?.method ?? 'none', flags: result.flags },
     tower: result.tower,
-    remarks: [...plan.remarks, ...result.remarks],
+    remarks: plan ? [...plan.remarks, ...result.remarks] : NOTHING,
     steps: result.steps,
     // A refined mesh no longer has the errors that were measured while it was built.
     error: Math.max(

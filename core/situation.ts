@@ -97,6 +97,10 @@ export function rotatingFilter(filter: FilterSpec, { line, frame }: Situation): 
   };
 }
 
+/** Whether phonons act on the emitter at all. */
+export const hasPhonons = ({ emitter }: Design): boolean =>
+  emitter.phonons !== null && emitter.phonons.coupling > 0;
+
 /** With which phonon method the design is counted. */
 export function planOf(design: Design, where: Situation, shift: number, effort: Effort): PhononPlan {
   const kind = driveKind(design, where, shift);

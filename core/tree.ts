@@ -18,47 +18,52 @@ export function treeOf(
   nodes: readonly DriftNode[],
   runs: readonly SampleRun[],
 ): DriftTree {
-  const samples = runs.map((r) => r.sample);
+  if (runs.length === 1 && nodes[0].weight === 1) {
+    const [{ sample, phonons, steps, error, remarks }] = runs;
+    return figureTree(
+      sample,
+      phonons,
+      { steps, error_estimate: error },
+      remarks,
+      quantiles(design, axes, runs),
+    );
+  }
   const mean = weightedMean(
-    samples,
+    runs.map((r) => r.sample),
     nodes.map((n) => n.weight),
   );
   const { method } = runs[0].phonons;
   const flags = [...new Set(runs.flatMap((r) => r.phonons.flags))];
-  const tree = figureTree(
-    mean,
-    { method, flags },
-    {
-      steps: runs.reduce((s, r) => s + r.steps, 0),
-      error_estimate: runs.reduce((m, r) => Math.max(m, r.error), 0),
-    },
-  );
-  const share = design.drift?.quantile ?? null;
-  const remarks = [...new Set(runs.flatMap((r) => r.remarks))].slice(0, MOST_REMARKS);
-  const notes = [...tree.notes, ...remarks.map((reason) => ({ path: 'phonons', reason }))];
-  return { ...tree, notes, quantile: share === null ? null : quantileFigures(samples, axes, share) };
+  const steps = runs.reduce((s, r) => s + r.steps, 0);
+  const error_estimate = runs.reduce((m, r) => Math.max(m, r.error), 0);
+  const remarks = [...new Set(runs.flatMap((r) => r.remarks))];
+  const over = quantiles(design, axes, runs);
+  return figureTree(mean, { method, flags }, { steps, error_estimate }, remarks, over);
 }
 
-/** Brightness that a share of the drift reaches, and impurity that it does not exceed. */
-function quantileFigures(samples: readonly Sample[], axes: DriftAxes, share: number): QuantileFigures {
-  const over = (of: (s: Sample) => number | null, below: number): number | null => {
-    const values = samples.map(of);
-    return values.includes(null)
-      ? null
-      : driftQuantiles(axes, [{ values: values as number[], share: below }])[0];
-  };
-  return {
-    share,
-    signal: {
-      single: over((s) => s.signal.single, 1 - share),
-      any: over((s) => anyOf(s.signal), 1 - share),
-      mean: over((s) => s.signal.mean, 1 - share),
-    },
-    collected: {
-      multiphoton: over((s) => s.collected.multiphoton, share),
-      g2: over((s) => ratio(s.collected.factorial2, s.collected.mean), share),
-    },
-  };
+/** Brightness that a share of the drift reaches, and impurity that it does not exceed; null where none is asked for. */
+export function quantiles(
+  design: Design,
+  axes: DriftAxes,
+  runs: readonly SampleRun[],
+): QuantileFigures | null {
+  const share = design.drift?.quantile ?? null;
+  if (share === null) return null;
+  const column = (of: (s: Sample) => number | null, below: number) => ({
+    values: runs.map(({ sample }) => of(sample)),
+    share: below,
+  });
+  const columns = [
+    column((s) => s.signal.single, 1 - share),
+    column((s) => anyOf(s.signal), 1 - share),
+    column((s) => s.signal.mean, 1 - share),
+    column((s) => s.collected.multiphoton, share),
+    column((s) => ratio(s.collected.factorial2, s.collected.mean), share),
+  ];
+  const known = columns.filter((c): c is { values: number[]; share: number } => !c.values.includes(null));
+  const found = driftQuantiles(axes, known);
+  const [single, any, mean, multiphoton, g2] = columns.map((c) => found[known.indexOf(c as never)] ?? null);
+  return { share, signal: { single, any, mean }, collected: { multiphoton, g2 } };
 }
 
 const anyOf = (c: Sample['signal']): number | null =>
@@ -68,49 +73,84 @@ function ratio(factorial2: number, mean: number): number | null {
   return mean > 0 ? factorial2 / (mean * mean) : null;
 }
 
-function figureTree(s: Sample, phonons: FigureTree['phonons'], accuracy: FigureTree['accuracy']): FigureTree {
+const TOO_MANY = 'six factorial moments are not enough: too many photons per pulse';
+
+function notesOf({ filtered, signal, emitted }: Sample, remarks: readonly string[]): Note[] {
   const notes: Note[] = [];
-  if (s.filtered && s.filtered.multiphoton === null) {
-    notes.push({
-      path: 'filtered.multiphoton',
-      reason: 'six factorial moments are not enough: too many photons per pulse',
-    });
+  if (filtered && filtered.multiphoton === null) {
+    notes.push({ path: 'filtered.multiphoton', reason: TOO_MANY });
   }
-  if (s.signal.multiphoton === null) {
-    notes.push({
-      path: 'signal.multiphoton',
-      reason: 'six factorial moments are not enough: too many photons per pulse',
-    });
-  }
-  if (!(s.emitted.mean > 0)) notes.push({ path: 'emitted.g2', reason: 'nothing is emitted' });
-  const count = (c: Sample['signal']) => ({
-    mean: c.mean,
-    single: c.single,
-    any: anyOf(c),
-    multiphoton: c.multiphoton,
-    g2: ratio(c.factorial2, c.mean),
-  });
+  if (signal.multiphoton === null) notes.push({ path: 'signal.multiphoton', reason: TOO_MANY });
+  if (!(emitted.mean > 0)) notes.push({ path: 'emitted.g2', reason: 'nothing is emitted' });
+  for (const reason of remarks.slice(0, MOST_REMARKS)) notes.push({ path: 'phonons', reason });
+  return notes;
+}
+
+/** Spelled out: spreads of objects are among the dearest things that a cheap evaluation could do. */
+function figureTree(
+  s: Sample,
+  phonons: FigureTree['phonons'],
+  accuracy: FigureTree['accuracy'],
+  remarks: readonly string[],
+  quantile: QuantileFigures | null,
+): DriftTree {
+  const { emitted, filtered, signal, collected } = s;
   return {
     emitted: {
-      mean: s.emitted.mean,
-      factorial2: s.emitted.factorial2,
-      g2: ratio(s.emitted.factorial2, s.emitted.mean),
-      p: s.emitted.p,
-      multiphoton: s.emitted.multiphoton,
+      mean: emitted.mean,
+      factorial2: emitted.factorial2,
+      g2: ratio(emitted.factorial2, emitted.mean),
+      p: emitted.p,
+      multiphoton: emitted.multiphoton,
     },
-    filtered: s.filtered && {
-      mean: s.filtered.mean,
-      factorial2: s.filtered.factorial2,
-      g2: ratio(s.filtered.factorial2, s.filtered.mean),
-      p: s.filtered.p,
-      multiphoton: s.filtered.multiphoton,
+    filtered: filtered && {
+      mean: filtered.mean,
+      factorial2: filtered.factorial2,
+      g2: ratio(filtered.factorial2, filtered.mean),
+      p: filtered.p,
+      multiphoton: filtered.multiphoton,
     },
-    signal: count(s.signal),
-    collected: { ...count(s.collected), leakage: s.leakage },
+    signal: {
+      mean: signal.mean,
+      single: signal.single,
+      any: anyOf(signal),
+      multiphoton: signal.multiphoton,
+      g2: ratio(signal.factorial2, signal.mean),
+    },
+    collected: {
+      mean: collected.mean,
+      single: collected.single,
+      any: anyOf(collected),
+      multiphoton: collected.multiphoton,
+      g2: ratio(collected.factorial2, collected.mean),
+      leakage: s.leakage,
+    },
     populations: s.populations,
     pulse: s.pulse,
     phonons,
     accuracy,
-    notes,
+    notes: notesOf(s, remarks),
+    quantile,
   };
+}
+
+/** The tree with what it would be without drift (its quantiles left out); null without drift. */
+export function withNominal(tree: DriftTree, still: DriftTree | null): Figures {
+  return {
+    emitted: tree.emitted,
+    filtered: tree.filtered,
+    signal: tree.signal,
+    collected: tree.collected,
+    populations: tree.populations,
+    pulse: tree.pulse,
+    phonons: tree.phonons,
+    accuracy: tree.accuracy,
+    notes: tree.notes,
+    quantile: tree.quantile,
+    nominal: still && withoutQuantile(still),
+  };
+}
+
+function withoutQuantile({ quantile: _none, ...tree }: DriftTree): FigureTree {
+  return tree;
 }

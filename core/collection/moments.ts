@@ -76,18 +76,17 @@ export interface Count {
 
 /** Adds an independent Poisson count of mean `extra` (leaked laser light, dark counts); free of cancellation. */
 export function addPoisson(count: Count, extra: number): Count {
-  const { mean, factorial2, p0, single, multiphoton } = count;
-  const total = {
-    mean: mean + extra,
-    factorial2: factorial2 + 2 * mean * extra + extra * extra,
-  };
+  const { p0, single, multiphoton } = count;
+  const mean = count.mean + extra;
+  const factorial2 = count.factorial2 + 2 * count.mean * extra + extra * extra;
   if (p0 === null || single === null || multiphoton === null) {
-    return { ...total, p0: null, single: null, multiphoton: null };
+    return { mean, factorial2, p0: null, single: null, multiphoton: null };
   }
   const dark = Math.exp(-extra);
   const atLeastOne = -Math.expm1(-extra);
   return {
-    ...total,
+    mean,
+    factorial2,
     p0: p0 * dark,
     single: (single + p0 * extra) * dark,
     multiphoton: multiphoton + single * atLeastOne + p0 * poissonAtLeastTwo(extra),

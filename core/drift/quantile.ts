@@ -54,6 +54,14 @@ function line(): Weighted[] {
   return points.map((x, i) => ({ x: [x], weight: raw[i] / sum }));
 }
 
+/** Points for each number of drifts, made once. */
+const made: (Weighted[] | undefined)[] = [];
+
+function pointsFor(dimension: number): readonly Weighted[] {
+  made[dimension] ??= dimension === 1 ? line() : cloud(dimension);
+  return made[dimension];
+}
+
 /** The value below which a share of the weight lies; between two values in proportion. */
 function weightedQuantile(values: readonly number[], points: readonly Weighted[], share: number): number {
   const order = values.map((_, i) => i).sort((a, b) => values[a] - values[b] || a - b);
@@ -83,7 +91,7 @@ export function driftQuantiles(
 ): number[] {
   const rules = [axes.area, axes.width, axes.shift, axes.center].filter(({ nodes }) => nodes.length > 1);
   if (rules.length === 0) return figures.map(({ values }) => values[0]);
-  const points = rules.length === 1 ? line() : cloud(rules.length);
+  const points = pointsFor(rules.length);
   const at = points.map(({ x }) => stencil(rules, x));
   return figures.map(({ values, share }) => {
     const interpolated = at.map((terms) => terms.reduce((sum, [i, w]) => sum + w * values[i], 0));

@@ -23,6 +23,9 @@ function recurrence(n: number, x: number): { last: number; before: number; sum: 
   return { last, before, sum };
 }
 
+/** Rules made before: one depends on nothing but its order. */
+const known = new Map<number, NormalRule>();
+
 /**
  * Gauss–Hermite rule for a standard normal variable, exact for polynomials up to degree 2n − 1. Nodes ascend.
  * Source: Golub & Welsch, Math. Comput. 23, 221 (1969), with one Newton polish; weights from the Christoffel sum.
@@ -31,6 +34,12 @@ export function gaussHermite(n: number): NormalRule {
   if (!Number.isInteger(n) || n < 1 || n > LIMIT) {
     throw new RangeError(`Gauss–Hermite order: got ${n}; needs an integer from 1 to ${LIMIT}`);
   }
+  const found = known.get(n) ?? makeRule(n);
+  known.set(n, found);
+  return found;
+}
+
+function makeRule(n: number): NormalRule {
   const jacobi = Matrix.zeros(n, n);
   for (let k = 1; k < n; k++) {
     jacobi.set(k, k - 1, Math.sqrt(k));
