@@ -1,4 +1,4 @@
-export { figureDifference } from './accuracy.js';
+export { figureDifference, relativeDifference } from './accuracy.js';
 export { leakedPhotons, piPulseEnergy, pulseFilter } from './collection/leakage.js';
 export * from './collection/moments.js';
 export { addEmittedCounting, addThinnedCounting } from './counting/emitted.js';

@@ -1,4 +1,10 @@
-import { type Design, type Figures, figureDifference, phononChoice } from '../../core/index.js';
+import {
+  type Design,
+  type Figures,
+  figureDifference,
+  phononChoice,
+  relativeDifference,
+} from '../../core/index.js';
 import { type FiguresResult, type Goal, judge, limitStates } from '../../optimizers/index.js';
 import type { QuotedDesign } from './finished-run.js';
 
@@ -59,7 +65,8 @@ function accuracyOf(
     const stated = Math.max(PROMISED, quoted.accuracy.error_estimate) + own;
     return {
       stated,
-      found: figureDifference(quoted, verified),
+      // The exact method settles to a relative error, in which p_0 and p_1 are nothing apart.
+      found: (method === 'exact' ? relativeDifference : figureDifference)(quoted, verified),
       measure: 'largest relative difference of a figure',
     };
   }

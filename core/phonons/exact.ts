@@ -28,6 +28,8 @@ export const exact: PhononMethod = {
     const { tower } = request.effort;
     if (tower) return atSize(request, bath, tower);
     const usual = usualSize(request, bath);
+    // A check of other figures must not share their size.
+    if (request.effort.kernel === 'reference') return settle(request, bath, larger(usual));
     return quoted ? settle(request, bath, usual) : unsettled(request, bath, usual);
   },
 };
@@ -41,6 +43,11 @@ export function usualSize(request: CountRequest, bath: Bath): TowerSize {
   const warm = Math.max(0, Math.ceil(-4 * Math.log(frankCondon(bath)) - 0.3));
   return { terms: usualTerms(bath), depth: Math.min(2 + excitons + warm, MOST_DEPTH) };
 }
+
+const larger = ({ terms, depth }: TowerSize): TowerSize => ({
+  terms: Math.min(terms + 1, MOST_TERMS),
+  depth: Math.min(depth + 1, MOST_DEPTH),
+});
 
 /** As many exponentials as fit the bath to what a hierarchy of usual depth is worth. */
 export function usualTerms(bath: Bath): number {

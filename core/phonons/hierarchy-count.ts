@@ -47,7 +47,7 @@ export function countWithHierarchy(request: CountRequest, bath: Bath, size: Towe
   const bare = new LinearSystem(generator, new HierarchyBuilder().build());
   const filterRate = Math.max(0, ...hierarchy.blocks.map((b) => Math.hypot(b.damping, b.rotation)));
   const base = meshFor(generator, drive, filterRate, { ...request.effort, tolerance: TOLERANCE });
-  const run = runTower(system, bare, drive, base, tower.fastest + filterRate);
+  const run = runTower(system, bare, drive, base, tower.fastest + filterRate, request.effort.kernel);
   const { state } = run;
   const values: Record<string, number> = {};
   for (const { name, factor, lanes } of filterEffects(request, bath, size)) {

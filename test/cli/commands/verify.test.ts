@@ -132,16 +132,16 @@ describe('verify', () => {
     expect((await verified(broken)).out).toMatch(/2 of \d points do not hold:\n {2}designs\/01\.yaml: /);
   });
 
-  it('holds a front of a second-order phonon method against the exact one', async () => {
+  it('holds a front that the exact phonon method corrected against a larger size of it', async () => {
     const { points } = JSON.parse(
       (await verified(await finished(phononStudy('auto')), '--json')).out,
     ) as Document;
     for (const { verified: after, accuracy, relative_difference } of points) {
       expect(after.figures?.phonons.method).toBe('exact');
-      // Really another method, and as near as it says.
+      // Really another evaluation, and as near as it says.
       expect(Math.abs(relative_difference.brightness)).toBeGreaterThan(1e-7);
       expect(accuracy.kept).toBe(true);
-      expect(accuracy.stated).toBeLessThan(2e-2);
+      expect(accuracy.stated).toBeLessThan(2e-3);
     }
   });
 

@@ -1,5 +1,5 @@
 import { describe, expect, it } from 'vitest';
-import { evaluate, figureDifference } from '../../../core/index.js';
+import { evaluate, figureDifference, relativeDifference } from '../../../core/index.js';
 import { design, tone, twoLevelEmitter } from '../../support.js';
 
 describe('accuracy verified', () => {
@@ -19,6 +19,9 @@ describe('accuracy verified', () => {
     ]);
     const verified = evaluate(short, 'verified');
     expect(verified.phonons.method).toBe('exact');
-    expect(verified.emitted).toEqual(evaluate(exact, 'quoted').emitted);
+    const quoted = evaluate(exact, 'quoted');
+    // By a larger hierarchy and other steps.
+    expect(verified.emitted.mean).not.toBe(quoted.emitted.mean);
+    expect(relativeDifference(quoted, verified)).toBeLessThan(1e-4);
   });
 });
