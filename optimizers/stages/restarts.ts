@@ -4,7 +4,10 @@ import { BRANCH_WIDTH, distance, type Knowledge } from './contract.js';
 
 /** Solves that began away from the design that the front ended with at their level, and how many came to it. */
 export interface Restarts {
-  /** Starts that lay at least a branch's width (0.15 of a range, or another entry of a list) away. */
+  /**
+   * Starts that lay at least a branch's width (0.15 of a range) away, with the same entries of lists: a solve keeps
+   * those, so that from another entry it could not come back.
+   */
   readonly elsewhere: number;
   /** Of those, the ones that ended within 1 % of the front's impurity at their level. */
   readonly again: number;
@@ -39,7 +42,8 @@ export function restartsOf(known: Knowledge, level: number | null): Restarts | n
   for (const chain of chains(own)) {
     const member = atLevel(known.front, chain[0].level);
     if (member === null) continue;
-    if (distance(known.problem, chain[0].start, known.problem.unitOf(member.values)) < BRANCH_WIDTH) continue;
+    const away = distance(known.problem, chain[0].start, known.problem.unitOf(member.values));
+    if (away < BRANCH_WIDTH || away === Number.POSITIVE_INFINITY) continue;
     elsewhere++;
     const ended = (s: Solution) =>
       s.brightness >= s.level * (1 - MISS) &&
