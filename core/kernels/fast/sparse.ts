@@ -142,17 +142,19 @@ export class ExponentialFamily {
     return { size: this.matrix.size, start, col, value };
   }
 
-  /** y ← e^{hK} y. */
+  /** y ← e^{hK} y, or with the transpose. */
   apply(
     h: number,
     y: Float64Array,
+    transposed = false,
     term: Float64Array = y.slice(),
     next: Float64Array = new Float64Array(y.length),
   ): void {
     term.set(y);
     const count = termsFor(h * this.norm);
     for (let t = 1; t <= count; t++) {
-      applyRows(this.matrix, term, next);
+      if (transposed) applyColumns(this.matrix, term, next);
+      else applyRows(this.matrix, term, next);
       for (let i = 0; i < y.length; i++) {
         term[i] = (next[i] * h) / t;
         y[i] += term[i];
@@ -207,5 +209,14 @@ export function applyRows(m: SparseRows, y: Float64Array, out: Float64Array): vo
     let sum = 0;
     for (; k < end; k++) sum += value[k] * y[col[k]];
     out[r] = sum;
+  }
+}
+
+/** out = mᵀ · y. */
+function applyColumns(m: SparseRows, y: Float64Array, out: Float64Array): void {
+  const { start, col, value, size } = m;
+  out.fill(0);
+  for (let r = 0; r < size; r++) {
+    for (let k = start[r]; k < start[r + 1]; k++) out[col[k]] += value[k] * y[r];
   }
 }

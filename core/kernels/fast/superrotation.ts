@@ -101,6 +101,21 @@ export class SuperRotation {
     }
   }
 
+  /** Applies the transpose. */
+  applyTransposed(y: Float64Array, scratch: Float64Array): void {
+    const { matrix, m } = this;
+    const { offsets } = this.component;
+    for (let a = 0; a < offsets.length; a++) {
+      const o = offsets[a];
+      for (let j = 0; j < m; j++) scratch[j] = y[o + j];
+      for (let j = 0; j < m; j++) {
+        let sum = 0;
+        for (let i = 0; i < m; i++) sum += matrix[i * m + j] * scratch[i];
+        y[o + j] = sum;
+      }
+    }
+  }
+
   private applySmall(y: Float64Array): void {
     const { matrix: r, m } = this;
     const { offsets } = this.component;

@@ -61,6 +61,30 @@ export class BlockOfThree {
   }
 }
 
+/** out ← mᵀ·y on nine numbers at each offset, in place. */
+export function applyTransposed(m: Float64Array, y: Float64Array, offsets: Int32Array): void {
+  for (let l = 0; l < offsets.length; l++) {
+    const o = offsets[l];
+    const a = y[o];
+    const b = y[o + 1];
+    const c = y[o + 2];
+    const d = y[o + 3];
+    const e = y[o + 4];
+    const f = y[o + 5];
+    const g = y[o + 6];
+    const h = y[o + 7];
+    const k = y[o + 8];
+    for (let j = 0; j < 9; j++) {
+      y[o + j] =
+        m[j] * a +
+        m[j + 9] * b +
+        m[j + 18] * c +
+        (m[j + 27] * d + m[j + 36] * e + m[j + 45] * f) +
+        (m[j + 54] * g + m[j + 63] * h + m[j + 72] * k);
+    }
+  }
+}
+
 function diagonalRow(
   m: Float64Array,
   at: number,

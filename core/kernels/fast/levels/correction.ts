@@ -30,3 +30,21 @@ export function addProduct(
   if (factor === 0) return;
   for (let k = 0; k < value.length; k++) out[row[k]] += factor * value[k] * y[col[k]];
 }
+
+/** out += factor · mᵀ · y. */
+export function addTransposed(
+  { row, col, value }: Triples,
+  factor: number,
+  y: Float64Array,
+  out: Float64Array,
+): void {
+  if (factor === 0) return;
+  for (let k = 0; k < value.length; k++) out[col[k]] += factor * value[k] * y[row[k]];
+}
+
+/** f · m · y. */
+export function between({ row, col, value }: Triples, f: Float64Array, y: Float64Array): number {
+  let sum = 0;
+  for (let k = 0; k < value.length; k++) sum += f[row[k]] * value[k] * y[col[k]];
+  return sum;
+}

@@ -1,8 +1,9 @@
-import type { CountRequest, CountResult } from '../../count.js';
+import type { CountRequest } from '../../count.js';
 import type { FastKernel } from '../contract.js';
 import { smoothSpans } from '../spans.js';
-import { refine } from './refine.js';
-import { problemOf, run } from './run.js';
+import { darkStaysDark, differentiate } from './gradient.js';
+import { refine, type Series } from './refine.js';
+import { type Problem, problemOf, type Run, run } from './run.js';
 import { firstCounts } from './steps.js';
 
 /**
@@ -15,7 +16,7 @@ export const levels: FastKernel = {
   name: 'levels',
   supports: (request) => request.scheme.levels.length > 2,
   count(request, countPart) {
-    const own = countLevels(request);
+    const own = solve(request, false)?.series.result ?? null;
     if (!own || !request.filter) return own;
     // Light before the filter does not see it: the cheaper problem has its own steps.
     const emitted = countPart({ ...request, filter: null });
@@ -26,19 +27,31 @@ export const levels: FastKernel = {
       localErrors: Math.max(own.localErrors, emitted.localErrors),
     };
   },
+  countWithGradient(request, seeds) {
+    if (request.filter) return null;
+    const solved = solve(request, true);
+    return solved && differentiate(solved.problem, solved.series, seeds);
+  },
 };
 
 /** Accepted error in units of the effort's tolerance per step. */
 const ACCEPT = 10;
 
-function countLevels(request: CountRequest): CountResult | null {
+interface Solved {
+  readonly problem: Problem;
+  readonly series: Series<Run>;
+}
+
+function solve(request: CountRequest, keep: boolean): Solved | null {
   const spans = smoothSpans(request.drive);
   if (!spans) return null;
   const problem = problemOf(request, spans, usedComponents(request));
+  if (keep && !darkStaysDark(problem)) return null;
   const counts = firstCounts(problem);
   if (!counts) return null;
   const { tolerance, parts } = request.effort;
-  return refine(counts, tolerance * ACCEPT, (steps) => run(problem, steps), parts);
+  const series = refine(counts, tolerance * ACCEPT, (steps) => run(problem, steps, keep), parts);
+  return series && { problem, series };
 }
 
 const PROBES = 8;

@@ -62,8 +62,15 @@ export class Kick {
     for (let k = 0; k < value.length; k++) out[row[k]] += value[k] * y[col[k]];
   }
 
-  /** y ← e^{hK}·y for another time h, ps. */
-  once(h: number, y: Float64Array): void {
-    this.family.apply(h, y, this.term, this.next);
+  /** out = (e^{hK})ᵀ·y for the chosen step. */
+  applyTransposed(y: Float64Array, out: Float64Array): void {
+    const { diagonal, row, col, value } = this;
+    for (let i = 0; i < diagonal.length; i++) out[i] = diagonal[i] * y[i];
+    for (let k = 0; k < value.length; k++) out[col[k]] += value[k] * y[row[k]];
+  }
+
+  /** y ← e^{hK}·y for another time h, ps, or with the transpose. */
+  once(h: number, y: Float64Array, transposed = false): void {
+    this.family.apply(h, y, transposed, this.term, this.next);
   }
 }

@@ -29,6 +29,7 @@ export class LadderStep {
   /** The unitary of the last step without the phase common to all levels, row-major. */
   readonly re = new Float64Array(9);
   readonly im = new Float64Array(9);
+  /** Only elements that a ladder has are ever written to the first matrices. */
   private readonly work = new Float64Array(12 * MATRIX);
 
   /**
@@ -46,23 +47,8 @@ export class LadderStep {
    * @param slope by how much both fall across the step
    */
   set(nodes: Float64Array, i: number, first: number, second: number, slope: number): void {
-    const { work: w, lower, upper } = this;
-    const f1 = nodes[i + 2];
-    const f2 = nodes[i + 4];
-    const even = 0.5 * (f1 + f2);
-    const odd = HALF_INNER * (f2 - f1);
-    const x3 = SPREAD * (0.5 * (nodes[i] + nodes[i + 6]) - even);
-    const x4 = SPREAD * (HALF_OUTER * (nodes[i + 6] - nodes[i]) - odd);
-    const g1 = nodes[i + 3];
-    const g2 = nodes[i + 5];
-    const evenY = 0.5 * (g1 + g2);
-    const oddY = HALF_INNER * (g2 - g1);
-    const y3 = SPREAD * (0.5 * (nodes[i + 1] + nodes[i + 7]) - evenY);
-    const y4 = SPREAD * (HALF_OUTER * (nodes[i + 7] - nodes[i + 1]) - oddY);
-    put(w, A1, first, second, even - SQUARE * x3, SQUARE * y3 - evenY, lower, upper);
-    put(w, A2, -slope, -slope, odd - SQUARE * x4, SQUARE * y4 - oddY, lower, upper);
-    put(w, A3, 0, 0, x3, -y3, lower, upper);
-    put(w, A4, 0, 0, x4, -y4, lower, upper);
+    const { work: w } = this;
+    this.expand(nodes, i, first, second, slope);
     for (let k = 0; k < MATRIX; k++) {
       w[LEFT + k] = w[A1 + k] + w[A3 + k] * (1 / 28);
       w[RIGHT + k] = w[A2 + k] + w[A4 + k] * (3 / 28);
@@ -92,6 +78,64 @@ export class LadderStep {
     }
     commute(w, LEFT, RIGHT, S3);
     for (let k = 0; k < MATRIX; k++) w[S3 + k] = w[INNERMOST + k] + w[S3 + k] * (1 / 360);
+    this.finish();
+  }
+
+  /** Generator times the step as α₁ + α₂u + α₃u² + α₄u³ about its middle, u = −½ … ½. */
+  private expand(nodes: Float64Array, i: number, first: number, second: number, slope: number): void {
+    const { work: w, lower, upper } = this;
+    const f1 = nodes[i + 2];
+    const f2 = nodes[i + 4];
+    const even = 0.5 * (f1 + f2);
+    const odd = HALF_INNER * (f2 - f1);
+    const x3 = SPREAD * (0.5 * (nodes[i] + nodes[i + 6]) - even);
+    const x4 = SPREAD * (HALF_OUTER * (nodes[i + 6] - nodes[i]) - odd);
+    const g1 = nodes[i + 3];
+    const g2 = nodes[i + 5];
+    const evenY = 0.5 * (g1 + g2);
+    const oddY = HALF_INNER * (g2 - g1);
+    const y3 = SPREAD * (0.5 * (nodes[i + 1] + nodes[i + 7]) - evenY);
+    const y4 = SPREAD * (HALF_OUTER * (nodes[i + 7] - nodes[i + 1]) - oddY);
+    put(w, A1, first, second, even - SQUARE * x3, SQUARE * y3 - evenY, lower, upper);
+    put(w, A2, -slope, -slope, odd - SQUARE * x4, SQUARE * y4 - oddY, lower, upper);
+    put(w, A3, 0, 0, x3, -y3, lower, upper);
+    put(w, A4, 0, 0, x4, -y4, lower, upper);
+  }
+
+  /**
+   * Sets the unitary of a short part of a step, from u = from to u = to, by the expansion of order 4: for derivatives,
+   * which need no more.
+   */
+  setShort(
+    nodes: Float64Array,
+    i: number,
+    first: number,
+    second: number,
+    slope: number,
+    from: number,
+    to: number,
+  ): void {
+    const { work: w } = this;
+    this.expand(nodes, i, first, second, slope);
+    const length = to - from;
+    const c = 0.5 * (from + to);
+    const square = (to * to - from * from) / 2;
+    const cube = (to ** 3 - from ** 3) / 3;
+    const fourth = (to ** 4 - from ** 4) / 4;
+    for (let k = 0; k < MATRIX; k++) {
+      w[LEFT + k] = length * (w[A1 + k] + c * (w[A2 + k] + c * (w[A3 + k] + c * w[A4 + k])));
+      w[RIGHT + k] = length * length * (w[A2 + k] + c * (2 * w[A3 + k] + 3 * c * w[A4 + k]));
+    }
+    commute(w, LEFT, RIGHT, S1);
+    for (let k = 0; k < MATRIX; k++) {
+      w[S3 + k] =
+        length * w[A1 + k] + square * w[A2 + k] + cube * w[A3 + k] + fourth * w[A4 + k] - w[S1 + k] / 12;
+    }
+    this.finish();
+  }
+
+  private finish(): void {
+    const { work: w } = this;
     const d01 = w[S3];
     const d12 = w[S3 + 1];
     this.exponentiate(

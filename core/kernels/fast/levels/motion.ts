@@ -34,39 +34,41 @@ export interface Course {
 export class LadderMotion implements Motion {
   readonly three = { re: new Float64Array(9), im: new Float64Array(9) };
   private readonly step: LadderStep;
-  private readonly nodes: Float64Array;
+  readonly nodes: Float64Array;
+  /** Unitaries of all parts in the source's frame and of all steps in the state's, where they are kept for derivatives. */
+  readonly kept: { readonly parts: Unitaries; readonly steps: Unitaries } | null;
   private readonly all: { readonly re: Float64Array; readonly im: Float64Array };
   private last = 0;
 
-  /** @param parts steps of the expansion per step of the motion */
+  /**
+   * @param parts steps of the expansion per step of the motion
+   * @param keep whether to keep what derivatives need
+   */
   constructor(
-    private readonly course: Course,
-    private readonly ladder: Ladder,
-    private readonly source: Source,
-    private readonly parts: number,
+    readonly course: Course,
+    readonly ladder: Ladder,
+    readonly source: Source,
+    readonly parts: number,
+    keep: boolean,
   ) {
     const { request, span, h, count, energies } = course;
     const part = h / parts;
     this.step = new LadderStep(ladder.lower, ladder.upper);
-    this.nodes = nodeTable(request.drive, ladder.component, source, span, part, count * parts, 0.5 * part);
+    const nodes = nodeTable(request.drive, ladder.component, source, span, part, count * parts, 0.5 * part);
+    this.nodes = keep ? nodes.slice(0, 2 * NODES * count * parts) : nodes;
+    this.kept = keep ? { parts: unitaries(count * parts), steps: unitaries(count) } : null;
     const size = energies.length ** 2;
     this.all = { re: new Float64Array(size), im: new Float64Array(size) };
   }
 
   advance(n: number): void {
-    const { course, ladder, source, step, parts, nodes, three } = this;
-    const { energies, h } = course;
-    const [a, b, c] = ladder.levels;
-    const part = h / parts;
+    const { course, step, parts, nodes, three, kept } = this;
     this.last = n;
-    const { rate, chirp, origin } = source.frame;
-    const slope = 2 * chirp * part * part;
-    const middle = course.span.start + n * h - origin;
-    const f = part * (energies[a] - energies[b]);
-    const g = part * (energies[b] - energies[c]);
     for (let k = 0; k < parts; k++) {
-      const turn = part * (rate + 2 * chirp * (middle + (k + 0.5) * part));
-      step.set(nodes, 2 * NODES * (n * parts + k), f - turn, g - turn, slope);
+      const p = n * parts + k;
+      const { first, second, slope } = this.falls(p);
+      step.set(nodes, 2 * NODES * p, first, second, slope);
+      if (kept) keepOne(step, kept.parts, p);
       if (k === 0) {
         // Nine numbers: the built-in copy takes longer.
         for (let i = 0; i < 9; i++) {
@@ -76,10 +78,37 @@ export class LadderMotion implements Motion {
       } else multiplyThree(step.re, step.im, three.re, three.im);
     }
     if (course.line !== null) this.toLine(n);
+    if (kept) keepOne(three, kept.steps, n);
+  }
+
+  /** What LadderStep.set asks of the energies over part p of the span. */
+  falls(p: number): { readonly first: number; readonly second: number; readonly slope: number } {
+    const { course, ladder, source, parts } = this;
+    const { energies, h, span } = course;
+    const [a, b, c] = ladder.levels;
+    const part = h / parts;
+    const { rate, chirp, origin } = source.frame;
+    const turn = part * (rate + 2 * chirp * (span.start + (p + 0.5) * part - origin));
+    return {
+      first: part * (energies[a] - energies[b]) - turn,
+      second: part * (energies[b] - energies[c]) - turn,
+      slope: 2 * chirp * part * part,
+    };
+  }
+
+  /** Makes a kept step the last one again. */
+  recall(n: number): void {
+    const { kept, three } = this;
+    if (!kept) throw new Error('no steps were kept');
+    this.last = n;
+    for (let k = 0; k < 9; k++) {
+      three.re[k] = kept.steps.re[9 * n + k];
+      three.im[k] = kept.steps.im[9 * n + k];
+    }
   }
 
   /** Phase by which the state's frame turns against the source's. */
-  private phase(t: number): number {
+  phase(t: number): number {
     const { course, source } = this;
     return course.line === null ? 0 : phaseAt(source.frame, t) + course.line * t;
   }
@@ -140,6 +169,24 @@ export class LadderMotion implements Motion {
     const y = scale * out[at + 1];
     out[at] = x * Math.cos(phase) - y * Math.sin(phase);
     out[at + 1] = x * Math.sin(phase) + y * Math.cos(phase);
+  }
+}
+
+/** Unitaries one after another, nine numbers each. */
+export interface Unitaries {
+  readonly re: Float64Array;
+  readonly im: Float64Array;
+}
+
+const unitaries = (count: number): Unitaries => ({
+  re: new Float64Array(9 * count),
+  im: new Float64Array(9 * count),
+});
+
+function keepOne(one: Unitaries, all: Unitaries, at: number): void {
+  for (let k = 0; k < 9; k++) {
+    all.re[9 * at + k] = one.re[k];
+    all.im[9 * at + k] = one.im[k];
   }
 }
 

@@ -10,9 +10,11 @@ const GAIN = 1.2;
 /** Accuracy of populations over that of probabilities. */
 const POPULATIONS = 0.1;
 
-interface Series {
+/** The extrapolated result with the runs behind it. */
+export interface Series<R> {
   readonly result: CountResult;
-  readonly runs: number;
+  readonly runs: readonly R[];
+  readonly weights: readonly number[];
 }
 
 /**
@@ -24,43 +26,38 @@ interface Series {
  * @param parts the accepted series is repeated with every step cut into this many
  * @returns null when the runs run out
  */
-export function refine(
+export function refine<R extends { readonly result: CountResult }>(
   first: readonly number[],
   accept: number,
-  run: (counts: readonly number[]) => CountResult | null,
+  run: (counts: readonly number[]) => R | null,
   parts: number,
-): CountResult | null {
+): Series<R> | null {
   const found = series(first, accept, run, null);
-  if (!found || parts === 1) return found?.result ?? null;
-  const fine = series(
-    first.map((n) => n * parts),
-    accept,
-    run,
-    found.runs,
-  );
-  return fine && { ...fine.result, localErrors: found.result.localErrors };
+  if (!found || parts === 1) return found;
+  const finer = first.map((n) => n * parts);
+  const fine = series(finer, accept, run, found.runs.length);
+  return fine && { ...fine, result: { ...fine.result, localErrors: found.result.localErrors } };
 }
 
-function series(
+function series<R extends { readonly result: CountResult }>(
   first: readonly number[],
   accept: number,
-  run: (counts: readonly number[]) => CountResult | null,
+  run: (counts: readonly number[]) => R | null,
   exactly: number | null,
-): Series | null {
-  const results: CountResult[] = [];
-  let before: CountResult | null = null;
+): Series<R> | null {
+  const runs: R[] = [];
   for (let k = 0; k < (exactly ?? RUNS); k++) {
-    const result = run(first.map((n) => Math.ceil(n * GROWTH ** k)));
-    if (!result) return null;
-    results.push(result);
+    const found = run(first.map((n) => Math.ceil(n * GROWTH ** k)));
+    if (!found) return null;
+    runs.push(found);
     if (k === 0) continue;
-    before = extrapolated(results.slice(1));
-    const all = extrapolated(results);
-    const error = difference(before, all) / GAIN;
+    const results = runs.map((r) => r.result);
+    const { result, weights } = extrapolated(results);
+    const error = difference(extrapolated(results.slice(1)).result, result) / GAIN;
     if (!Number.isFinite(error)) return null;
     if (exactly === null ? error <= accept : k + 1 === exactly) {
       const steps = results.reduce((sum, r) => sum + r.steps, 0);
-      return { result: { ...all, steps, localErrors: error }, runs: k + 1 };
+      return { result: { ...result, steps, localErrors: error }, runs, weights };
     }
   }
   return null;
@@ -74,17 +71,17 @@ function difference(a: CountResult, b: CountResult): number {
 }
 
 /** The value at h = 0 of a + b h⁴ + c h⁶ + … through all results. */
-function extrapolated(results: readonly CountResult[]): CountResult {
+function extrapolated(results: readonly CountResult[]): { result: CountResult; weights: number[] } {
   const last = results[results.length - 1];
-  if (results.length === 1) return last;
   const weights = weightsOf(results.map((r) => (last.steps / r.steps) ** 2));
   const sum = (read: (r: CountResult) => number): number =>
     results.reduce((total, r, i) => total + weights[i] * read(r), 0);
-  return {
+  const result = {
     ...last,
     values: Object.fromEntries(Object.keys(last.values).map((name) => [name, sum((r) => r.values[name])])),
     populations: last.populations.map((_, i) => sum((r) => r.populations[i])),
   };
+  return { result, weights };
 }
 
 /** Weights with Σw = 1 and Σw x² = Σw x³ = … = 0, by elimination. */

@@ -3,7 +3,7 @@ import type { Span } from '../spans.js';
 import { type Ladder, ladderOf } from './ladder.js';
 import { frameEnergies, type Layout, layoutOf, lineFrequency, unevenEnergies } from './layout.js';
 import { type Rotation, rotationsOf } from './rotation.js';
-import { State } from './state.js';
+import { type Passage, State } from './state.js';
 import { type Source, sourceOf } from './table.js';
 
 /** A request with what all its runs share. */
@@ -20,7 +20,12 @@ export interface Problem {
   /** Per span, of the ladder's component; none without a ladder. */
   readonly sources: readonly Source[];
   readonly rotations: readonly Rotation[];
+  /** Steps of the expansion of the rotations per step between kicks. */
+  readonly parts: number;
 }
+
+/** Behind a filter the kicks need steps that are fine enough for the rotations as well. */
+const PARTS = { emitted: 2, filtered: 1 };
 
 export function problemOf(request: CountRequest, spans: readonly Span[], used: readonly boolean[]): Problem {
   const all = frameEnergies(request);
@@ -41,13 +46,20 @@ export function problemOf(request: CountRequest, spans: readonly Span[], used: r
     rotations: rotationsOf(layout.components, layout.levels, ladder?.levels ?? null),
     ladder,
     sources: ladder ? spans.map((span) => sourceOf(drive, ladder.component, span, climb)) : [],
+    parts: request.filter ? PARTS.filtered : PARTS.emitted,
   };
 }
 
+/** One run, with what its derivatives need where they are wanted. */
+export interface Run {
+  readonly result: CountResult;
+  readonly passages: readonly Passage[];
+}
+
 /** One run on uniform steps; null where a kick is too large for its series. */
-export function run(problem: Problem, counts: readonly number[]): CountResult | null {
+export function run(problem: Problem, counts: readonly number[], keep = false): Run | null {
   const { layout, request, spans } = problem;
-  const state = new State(problem);
+  const state = new State(problem, keep);
   let steps = 0;
   for (let s = 0; s < spans.length; s++) {
     const span = spans[s];
@@ -55,15 +67,11 @@ export function run(problem: Problem, counts: readonly number[]): CountResult | 
     else if (!state.pass(s, counts[s])) return null;
     steps += span.gap ? 0 : counts[s];
   }
-  const { y } = state;
+  const { y, passages } = state;
   const values: Record<string, number> = {};
   for (const { name, row } of layout.effects) values[name] = dot(row, y);
-  return {
-    values,
-    populations: request.scheme.levels.map((_, i) => dot(layout.populations[i], y)),
-    steps,
-    localErrors: 0,
-  };
+  const populations = request.scheme.levels.map((_, i) => dot(layout.populations[i], y));
+  return { result: { values, populations, steps, localErrors: 0 }, passages };
 }
 
 function dot(a: Float64Array, b: Float64Array): number {
