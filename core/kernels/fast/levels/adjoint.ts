@@ -1,7 +1,8 @@
-import { addTransposed, between } from './correction.js';
+import { addProduct, addTransposed, between, type Triples } from './correction.js';
 import { MATRIX } from './hermitian.js';
 import { DriveDerivatives } from './quadrature.js';
 import type { Problem } from './run.js';
+import { kickSlope, onceSlope, type Slope } from './slopes.js';
 import {
   correctionAfter,
   correctionFactor,
@@ -12,27 +13,37 @@ import {
   turnLevels,
 } from './state.js';
 
+/** Derivatives of functionals of the final state through one run. */
+export interface RunDerivatives {
+  /** By the drive, span by span. */
+  readonly drives: DriveDerivatives[];
+  /** By each number whose slope was given, per functional; without what the functionals themselves change. */
+  readonly numbers: readonly Float64Array[];
+}
+
 /**
  * Takes functionals of the final state back through one run.
  * @param functionals on the places of the state; used up
- * @returns derivatives by the drive, span by span
+ * @param slopes of what stands between the steps; with these the drive must have one span
  */
 export function backwards(
   problem: Problem,
   passages: readonly Passage[],
   functionals: readonly Float64Array[],
-): DriveDerivatives[] {
-  const out: DriveDerivatives[] = [];
+  slopes: readonly Slope[],
+): RunDerivatives {
+  const drives: DriveDerivatives[] = [];
+  const numbers = slopes.map(() => new Float64Array(functionals.length));
   for (let s = problem.spans.length - 1; s >= 0; s--) {
     const span = problem.spans[s];
     if (span.gap) restBack(problem, span.end - span.start, functionals);
     else {
       const passage = passages.find((p) => p.index === s);
       if (!passage) throw new Error('a span was not kept');
-      out.unshift(passBack(problem, passage, functionals));
+      drives.unshift(new PassageBack(problem, passage, functionals, slopes, numbers).run());
     }
   }
-  return out;
+  return { drives, numbers };
 }
 
 function restBack(problem: Problem, length: number, functionals: readonly Float64Array[]): void {
@@ -44,91 +55,126 @@ function restBack(problem: Problem, length: number, functionals: readonly Float6
   }
 }
 
-function passBack(
-  problem: Problem,
-  passage: Passage,
-  functionals: readonly Float64Array[],
-): DriveDerivatives {
-  const { layout, rotations, spans } = problem;
-  const { index, count, h, motion, states } = passage;
-  const span = spans[index];
-  const { kick } = layout;
-  kick.set(h);
-  const out = new DriveDerivatives(motion, functionals.length);
-  const torques = functionals.map(() => new Float64Array(MATRIX));
-  const spare = new Float64Array(layout.length);
-  for (const f of functionals) {
-    kick.once(0.5 * h, f, true);
-    enter(problem, index, span.end, -1, f, true);
+/** The way back through one span. */
+class PassageBack {
+  private readonly out: DriveDerivatives;
+  private readonly torques: readonly Float64Array[];
+  private readonly spare: Float64Array;
+  private readonly kicked: Float64Array;
+  private readonly kickSlopes: readonly (Triples | null)[];
+
+  constructor(
+    private readonly problem: Problem,
+    private readonly passage: Passage,
+    private readonly functionals: readonly Float64Array[],
+    private readonly slopes: readonly Slope[],
+    private readonly numbers: readonly Float64Array[],
+  ) {
+    const { length } = problem.layout;
+    this.out = new DriveDerivatives(passage.motion, functionals.length);
+    this.torques = functionals.map(() => new Float64Array(MATRIX));
+    this.spare = new Float64Array(length);
+    this.kicked = new Float64Array(length);
+    this.kickSlopes = slopes.map((slope) => kickSlope(slope, passage.h));
+    problem.layout.kick.set(passage.h);
   }
-  for (let n = count - 1; n >= 0; n--) {
-    motion.recall(n);
-    for (const rotation of rotations) rotation.set(motion);
-    const y = states.subarray(n * layout.length, (n + 1) * layout.length);
-    if (n + 1 < count) kickBack(problem, passage, n, functionals, out, spare);
-    torques.forEach((q, i) => {
-      q.fill(0);
-      for (const rotation of rotations) {
-        rotation.applyTransposed(functionals[i]);
-        rotation.addTorque(y, functionals[i], q);
-      }
+
+  run(): DriveDerivatives {
+    const { problem, passage, functionals, torques, out, slopes, numbers } = this;
+    const { layout, rotations, spans } = problem;
+    const { index, count, h, motion } = passage;
+    const span = spans[index];
+    functionals.forEach((f, i) => {
+      slopes.forEach((slope, k) => {
+        numbers[k][i] += onceSlope(slope, 0.5 * h, f, this.stateAfter(count - 1));
+      });
+      layout.kick.once(0.5 * h, f, true);
+      enter(problem, index, span.end, -1, f, true);
     });
-    out.addStep(n, torques);
+    for (let n = count - 1; n >= 0; n--) {
+      if (n + 1 < count) this.kickBack(n);
+      motion.recall(n);
+      for (const rotation of rotations) rotation.set(motion);
+      const y = this.stateAfter(n);
+      torques.forEach((q, i) => {
+        q.fill(0);
+        for (const rotation of rotations) {
+          rotation.addTorque(y, functionals[i], q);
+          rotation.applyTransposed(functionals[i]);
+        }
+      });
+      out.addStep(n, torques);
+    }
+    for (const f of functionals) {
+      enter(problem, index, span.start, 1, f, true);
+      layout.kick.once(0.5 * h, f, true);
+    }
+    return out;
   }
-  for (const f of functionals) {
-    enter(problem, index, span.start, 1, f, true);
-    kick.once(0.5 * h, f, true);
+
+  /** After step n, before the kick. */
+  private stateAfter(n: number): Float64Array {
+    const { length } = this.problem.layout;
+    return this.passage.states.subarray(n * length, (n + 1) * length);
   }
-  return out;
-}
 
-/** Back through kick and correction after step n, whose rotation is the last one set. */
-function kickBack(
-  problem: Problem,
-  passage: Passage,
-  n: number,
-  functionals: readonly Float64Array[],
-  out: DriveDerivatives,
-  spare: Float64Array,
-): void {
-  const { layout, request } = problem;
-  const { edges, h, states } = passage;
-  const width = 2 * request.drive.components;
-  const drive = edges.subarray(n * width, (n + 1) * width);
-  const due = correctionAfter(n);
-  const from = (due === 'after' ? n + 1 : n) * layout.length;
-  const y = states.slice(from, from + layout.length);
-  if (due === 'before') for (const rotation of problem.rotations) rotation.apply(y);
-  functionals.forEach((f, i) => {
-    if (due === 'after') correctBack(problem, out, { n, i, f, y, drive, h }, spare);
-    layout.kick.applyTransposed(f, spare);
-    f.set(spare);
-    if (due === 'before') correctBack(problem, out, { n, i, f, y, drive, h }, spare);
-  });
-}
+  /** Back through kick and correction after step n. */
+  private kickBack(n: number): void {
+    const { problem, functionals, spare, kicked, kickSlopes, numbers } = this;
+    const { layout } = problem;
+    const due = correctionAfter(n);
+    let y = this.stateAfter(n);
+    if (due === 'after') {
+      layout.kick.apply(y, kicked);
+      functionals.forEach((f, i) => {
+        this.correctBack(n, i, f, kicked);
+      });
+    } else if (due === 'before') {
+      kicked.set(y);
+      this.correct(n, y, kicked);
+      y = kicked;
+    }
+    functionals.forEach((f, i) => {
+      kickSlopes.forEach((slope, k) => {
+        if (slope) numbers[k][i] += between(slope, f, y);
+      });
+      layout.kick.applyTransposed(f, spare);
+      f.set(spare);
+      if (due === 'before') this.correctBack(n, i, f, this.stateAfter(n));
+    });
+  }
 
-interface Place {
-  readonly n: number;
-  /** Number of the functional. */
-  readonly i: number;
-  readonly f: Float64Array;
-  readonly y: Float64Array;
-  readonly drive: Float64Array;
-  readonly h: number;
-}
+  private driveAfter(n: number): Float64Array {
+    const width = 2 * this.problem.request.drive.components;
+    return this.passage.edges.subarray(n * width, (n + 1) * width);
+  }
 
-function correctBack(
-  { layout, ladder }: Problem,
-  out: DriveDerivatives,
-  { n, i, f, y, drive, h }: Place,
-  spare: Float64Array,
-): void {
-  const factor = correctionFactor(h);
-  const component = ladder?.component ?? 0;
-  const pair = layout.corrections[component];
-  if (!pair) return;
-  out.addEdge(n, i, factor * between(pair[0], f, y), factor * between(pair[1], f, y));
-  spare.set(f);
-  addTransposed(pair[0], factor * drive[2 * component], spare, f);
-  addTransposed(pair[1], factor * drive[2 * component + 1], spare, f);
+  /** out += the correction of y. */
+  private correct(n: number, y: Float64Array, out: Float64Array): void {
+    const factor = correctionFactor(this.passage.h);
+    const drive = this.driveAfter(n);
+    this.problem.layout.corrections.forEach((pair, c) => {
+      if (!pair) return;
+      addProduct(pair[0], factor * drive[2 * c], y, out);
+      addProduct(pair[1], factor * drive[2 * c + 1], y, out);
+    });
+  }
+
+  private correctBack(n: number, functional: number, f: Float64Array, y: Float64Array): void {
+    const { problem, passage, out, spare, slopes, numbers } = this;
+    const factor = correctionFactor(passage.h);
+    const component = problem.ladder?.component ?? 0;
+    const pair = problem.layout.corrections[component];
+    if (!pair) return;
+    const re = factor * this.driveAfter(n)[2 * component];
+    const im = factor * this.driveAfter(n)[2 * component + 1];
+    slopes.forEach(({ corrections }, k) => {
+      const own = corrections[component];
+      if (own) numbers[k][functional] += re * between(own[0], f, y) + im * between(own[1], f, y);
+    });
+    out.addEdge(n, functional, factor * between(pair[0], f, y), factor * between(pair[1], f, y));
+    spare.set(f);
+    addTransposed(pair[0], re, spare, f);
+    addTransposed(pair[1], im, spare, f);
+  }
 }

@@ -2,9 +2,11 @@ import type { CountRequest } from '../../count.js';
 import type { CountGradient, Seeds, Sensitivity } from '../../gradient.js';
 import type { Span } from '../spans.js';
 import { backwards } from './adjoint.js';
+import type { Layout } from './layout.js';
 import type { DriveDerivatives } from './quadrature.js';
 import type { Series } from './refine.js';
-import type { Problem, Run } from './run.js';
+import { layoutFor, type Problem, type Run } from './run.js';
+import { filterSlopes } from './slopes.js';
 
 /** Whether the derivative by the component that the pulse does not use vanishes by symmetry. */
 export function darkStaysDark({ request, ladder }: Problem): boolean {
@@ -19,25 +21,44 @@ export function darkStaysDark({ request, ladder }: Problem): boolean {
   });
 }
 
-/** Derivatives of an extrapolated value: those of its runs with the same weights. */
+/** What one functional gains from a piece of one run. */
+interface Piece {
+  readonly derivatives: DriveDerivatives;
+  readonly weight: number;
+  readonly span: Span;
+}
+
+/**
+ * Derivatives of an extrapolated value: those of its runs with the same weights.
+ * @returns null for a filter and a drive with gaps, of which the derivative by the filter is not known
+ */
 export function differentiate(
   problem: Problem,
   { result, runs, weights }: Series<Run>,
   seeds: Seeds,
 ): CountGradient | null {
   const { request, layout } = problem;
+  const slopes = filterSlopes(request, layout, (changed) => layoutFor(changed, problem));
+  if (request.filter && (!slopes || problem.spans.length > 1)) return null;
+  const both = slopes ? [slopes.kappa, slopes.center] : [];
   const wanted = seeds(result.values);
-  const pieces: { derivatives: DriveDerivatives; weight: number; span: Span }[] = [];
-  runs.forEach(({ passages }, k) => {
-    const functionals = wanted.map((seed) => {
-      const row = new Float64Array(layout.length);
-      for (const { name, row: effect } of layout.effects) {
-        const factor = seed[name] ?? 0;
-        if (factor !== 0) for (let i = 0; i < row.length; i++) row[i] += factor * effect[i];
-      }
-      return row;
+  const pieces: Piece[] = [];
+  const numbers = both.map(() => new Float64Array(wanted.length));
+  runs.forEach(({ passages, final }, k) => {
+    const functionals = wanted.map((seed) => weighted(layout, seed));
+    wanted.forEach((seed, f) => {
+      both.forEach(({ plus, minus, distance }, p) => {
+        const change = dot(weighted(plus, seed), final) - dot(weighted(minus, seed), final);
+        numbers[p][f] += (weights[k] * change) / distance;
+      });
     });
-    backwards(problem, passages, functionals).forEach((derivatives, s) => {
+    const back = backwards(problem, passages, functionals, both);
+    back.numbers.forEach((values, p) => {
+      values.forEach((v, f) => {
+        numbers[p][f] += weights[k] * v;
+      });
+    });
+    back.drives.forEach((derivatives, s) => {
       pieces.push({ derivatives, weight: weights[k], span: problem.spans[passages[s].index] });
     });
   });
@@ -45,8 +66,29 @@ export function differentiate(
   const segments = Int32Array.from(
     pieces.flatMap(({ derivatives, span }) => segmentsOf(request, span, derivatives.times)),
   );
-  const sensitivities = wanted.map((_, f) => sensitivity(problem, pieces, f, times, segments));
+  const sensitivities = wanted.map((_, f): Sensitivity => {
+    const { drive, shift } = byDrive(problem, pieces, f, times, segments);
+    const [kappa, center] = slopes ? [numbers[0][f], numbers[1][f]] : [0, 0];
+    // With the levels the line moves away from a filter that stays.
+    return { drive, shift: shift - center, kappa, center };
+  });
   return { result, times, segments, sensitivities };
+}
+
+/** The functional that a seed makes of the final state. */
+function weighted(layout: Layout, seed: Readonly<Record<string, number>>): Float64Array {
+  const row = new Float64Array(layout.length);
+  for (const { name, row: effect } of layout.effects) {
+    const factor = seed[name] ?? 0;
+    if (factor !== 0) for (let i = 0; i < row.length; i++) row[i] += factor * effect[i];
+  }
+  return row;
+}
+
+function dot(a: Float64Array, b: Float64Array): number {
+  let sum = 0;
+  for (let i = 0; i < a.length; i++) sum += a[i] * b[i];
+  return sum;
 }
 
 function segmentsOf({ drive }: CountRequest, span: Span, times: Float64Array): number[] {
@@ -57,13 +99,13 @@ function segmentsOf({ drive }: CountRequest, span: Span, times: Float64Array): n
   });
 }
 
-function sensitivity(
+function byDrive(
   { request, ladder }: Problem,
-  pieces: readonly { derivatives: DriveDerivatives; weight: number }[],
+  pieces: readonly Piece[],
   functional: number,
   times: Float64Array,
   segments: Int32Array,
-): Sensitivity {
+): { drive: Float64Array; shift: number } {
   const width = 2 * request.drive.components;
   const at = 2 * (ladder?.component ?? 0);
   const drive = new Float64Array(width * times.length);
@@ -84,5 +126,5 @@ function sensitivity(
       shift += t * (im * value[at] - re * value[at + 1]);
     }
   }
-  return { drive, shift, kappa: 0, center: 0 };
+  return { drive, shift };
 }

@@ -28,14 +28,13 @@ export const levels: FastKernel = {
     };
   },
   countWithGradient(request, seeds) {
-    if (request.filter) return null;
     const solved = solve(request, true);
     return solved && differentiate(solved.problem, solved.series, seeds);
   },
 };
 
 /** Accepted error in units of the effort's tolerance per step. */
-const ACCEPT = 10;
+const ACCEPT = 5;
 
 interface Solved {
   readonly problem: Problem;

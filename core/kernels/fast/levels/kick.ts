@@ -5,7 +5,8 @@ export class Kick {
   /** Largest sum of magnitudes in a row of K, 1/ps. */
   readonly norm: number;
   private readonly family: ExponentialFamily;
-  private rows: SparseRows | null = null;
+  /** e^{hK} for the chosen step. */
+  rows: SparseRows | null = null;
   private readonly diagonal: Float64Array;
   /** Entries off the diagonal: one flat list takes half the time of short rows. */
   private row = new Int32Array(0);

@@ -51,35 +51,32 @@ export class DriveDerivatives {
 
   /**
    * Adds what step n gives.
-   * @param torques of every functional at the start of the step in the state's frame; used up
+   * @param torques of every functional at the end of the step in the state's frame; used up
    */
   addStep(n: number, torques: readonly Float64Array[]): void {
     const { motion, short, inner } = this;
     const { course, parts, nodes, kept } = motion;
     if (!kept) throw new Error('no steps were kept');
     if (course.line !== null) {
-      const phase = motion.phase(course.span.start + n * course.h);
+      const phase = motion.phase(course.span.start + (n + 1) * course.h);
       for (const q of torques) toSource(q, phase);
     }
-    for (let k = 0; k < parts; k++) {
-      const p = n * parts + k;
+    for (let p = (n + 1) * parts - 1; p >= n * parts; p--) {
       const { first, second, slope } = motion.falls(p);
       const re = kept.parts.re.subarray(9 * p, 9 * p + 9);
       const im = kept.parts.im.subarray(9 * p, 9 * p + 9);
+      short.setShort(nodes, 2 * NODES * p, first, second, slope, 0.5 - INSIDE, 0.5);
       torques.forEach((q, f) => {
-        this.put(f, PER_PART * p, WEIGHTS.end, q);
+        this.put(f, PER_PART * (p + 1), WEIGHTS.end, q);
+        turned(short.re, short.im, q, true, inner);
+        this.put(f, PER_PART * p + 2, WEIGHTS.inside, inner);
+        turned(re, im, q, true, q);
       });
       short.setShort(nodes, 2 * NODES * p, first, second, slope, -0.5, INSIDE - 0.5);
       torques.forEach((q, f) => {
         turned(short.re, short.im, q, false, inner);
         this.put(f, PER_PART * p + 1, WEIGHTS.inside, inner);
-      });
-      short.setShort(nodes, 2 * NODES * p, first, second, slope, 0.5 - INSIDE, 0.5);
-      torques.forEach((q, f) => {
-        turned(re, im, q, false, q);
-        turned(short.re, short.im, q, true, inner);
-        this.put(f, PER_PART * p + 2, WEIGHTS.inside, inner);
-        this.put(f, PER_PART * (p + 1), WEIGHTS.end, q);
+        this.put(f, PER_PART * p, WEIGHTS.end, q);
       });
     }
   }

@@ -50,10 +50,17 @@ export function problemOf(request: CountRequest, spans: readonly Span[], used: r
   };
 }
 
+/** The layout of a request that differs in its filter only, on the same places. */
+export function layoutFor(request: CountRequest, { used, line }: Problem): Layout {
+  return layoutOf(request, used, line, unevenEnergies(request, frameEnergies(request)));
+}
+
 /** One run, with what its derivatives need where they are wanted. */
 export interface Run {
   readonly result: CountResult;
   readonly passages: readonly Passage[];
+  /** The state at the end, where derivatives are wanted. */
+  readonly final: Float64Array;
 }
 
 /** One run on uniform steps; null where a kick is too large for its series. */
@@ -71,7 +78,7 @@ export function run(problem: Problem, counts: readonly number[], keep = false): 
   const values: Record<string, number> = {};
   for (const { name, row } of layout.effects) values[name] = dot(row, y);
   const populations = request.scheme.levels.map((_, i) => dot(layout.populations[i], y));
-  return { result: { values, populations, steps, localErrors: 0 }, passages };
+  return { result: { values, populations, steps, localErrors: 0 }, passages, final: keep ? y.slice() : y };
 }
 
 function dot(a: Float64Array, b: Float64Array): number {

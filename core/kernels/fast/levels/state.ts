@@ -29,7 +29,7 @@ export interface Passage {
   readonly count: number;
   readonly h: number;
   readonly motion: LadderMotion;
-  /** States before every step, one after another. */
+  /** States after every step, before the kick, one after another. */
   readonly states: Float64Array;
   /** Re, im of each drive component after every step. */
   readonly edges: Float64Array;
@@ -86,11 +86,11 @@ export class State {
     for (let n = 0; n < count; n++) {
       motion.advance(n);
       if (this.fresh && !kept && motion.three && n + 1 < count && this.waits(motion.three)) continue;
-      kept?.states.set(this.y, n * layout.length);
       for (const rotation of problem.rotations) {
         rotation.set(motion);
         rotation.apply(this.y);
       }
+      kept?.states.set(this.y, n * layout.length);
       if (n + 1 === count) break;
       const due = correctionAfter(n);
       if (due !== 'none') {
