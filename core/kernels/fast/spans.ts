@@ -11,6 +11,9 @@ export interface Span {
   readonly gap: boolean;
 }
 
+const before = new Float64Array(4);
+const after = new Float64Array(4);
+
 /** Jump of the drive at a breakpoint, relative to its peak, above which the breakpoint is an edge and not a cut tail. */
 const EDGE = 1e-8;
 
@@ -21,14 +24,7 @@ const EDGE = 1e-8;
 export function smoothSpans(drive: Drive): readonly Span[] | null {
   const { breakpoints, components, scales } = drive;
   const count = breakpoints.length - 1;
-  const silent = new Uint8Array(count);
-  // Something acts on a window of one segment: its cells need not be bounded.
-  if (count > 1) {
-    silent.fill(1);
-    for (const cell of drive.cells) if (cell.bound > 0) silent[cell.segment] = 0;
-  }
-  const before = new Float64Array(2 * components);
-  const after = new Float64Array(2 * components);
+  const silent = count > 1 ? silentSegments(drive) : null;
   const jump = EDGE * scales.peakRabi;
   const spans: Span[] = [];
   for (let s = 0; s <= count; s++) {
@@ -36,14 +32,22 @@ export function smoothSpans(drive: Drive): readonly Span[] | null {
     after.fill(0);
     if (s > 0) drive.sample(breakpoints[s], s - 1, before);
     if (s < count) drive.sample(breakpoints[s], s, after);
-    for (let i = 0; i < before.length; i++) if (!(Math.abs(after[i] - before[i]) <= jump)) return null;
+    for (let i = 0; i < 2 * components; i++) if (!(Math.abs(after[i] - before[i]) <= jump)) return null;
     if (s === count) break;
+    const gap = silent !== null && silent[s] === 1;
     const previous = spans.at(-1);
-    if (previous && silent[s] === 0 && !previous.gap) {
+    if (previous && !gap && !previous.gap) {
       spans[spans.length - 1] = { ...previous, end: breakpoints[s + 1], last: s };
     } else {
-      spans.push({ start: breakpoints[s], end: breakpoints[s + 1], first: s, last: s, gap: silent[s] === 1 });
+      spans.push({ start: breakpoints[s], end: breakpoints[s + 1], first: s, last: s, gap });
     }
   }
   return spans;
+}
+
+/** 1 for segments without any drive; a window of one segment has none, which saves bounding its cells. */
+function silentSegments(drive: Drive): Uint8Array {
+  const silent = new Uint8Array(drive.breakpoints.length - 1).fill(1);
+  for (const cell of drive.cells) if (cell.bound > 0) silent[cell.segment] = 0;
+  return silent;
 }

@@ -1,6 +1,6 @@
 import type { CountRequest, CountResult, Effort } from '../count.js';
 import { EXCITED, FIGURES, GROUND, named } from './bloch/figures.js';
-import { differentiate } from './bloch/gradient.js';
+import { differentiableCounts, differentiate } from './bloch/gradient.js';
 import { type BlochProblem, prepare } from './bloch/problem.js';
 import { runBloch } from './bloch/run.js';
 import { type Settled, settle, total } from './bloch/settle.js';
@@ -27,9 +27,10 @@ export const twoLevelEmitted: FastKernel = {
   countWithGradient(request, seeds) {
     const problem = problemOf(request);
     const run = problem && runOf(problem, request.effort);
-    if (!run || total(run.counts) > MOST_RECORDED) return null;
+    const counts = run && differentiableCounts(problem, run.counts);
+    if (!counts || total(counts) > MOST_RECORDED) return null;
     const result = resultOf(run);
-    const gradient = differentiate(problem, run.counts, seeds(result.values));
+    const gradient = differentiate(problem, counts, seeds(result.values));
     return gradient && { result, ...gradient };
   },
 };

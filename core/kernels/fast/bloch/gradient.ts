@@ -4,6 +4,7 @@ import { adjointKicks } from './chain-adjoint.js';
 import { FACTORIAL, MEAN, MULTIPHOTON, P0, P1, placeOf, THINNED } from './figures.js';
 import { spatialAdjoint } from './magnus-adjoint.js';
 import { BLOCK, NODES, PLACES } from './nodes.js';
+import { correctionBound } from './pace.js';
 import type { BlochProblem } from './problem.js';
 import { countChain, momentChain, thinnedChain } from './run.js';
 import { addComplex } from './table.js';
@@ -42,6 +43,21 @@ function seededChains(problem: BlochProblem, seeds: readonly Weights[]): SeededC
     if (weights.some((w) => w.some((x) => x !== 0))) out.push({ chain: make(problem), weights });
   }
   return out;
+}
+
+/** Bound of the corrections, which derivatives leave out, up to which that is good enough. */
+const LEFT_OUT = 1e-6;
+/** Most parts into which steps are cut for that. */
+const MOST_PARTS = 8;
+
+/** Steps at which derivatives are exact to LEFT_OUT, or null where that takes too many. */
+export function differentiableCounts(problem: BlochProblem, counts: readonly number[]): number[] | null {
+  const parts = problem.spans.map(({ span }, i) => {
+    if (span.gap) return 1;
+    const bound = correctionBound(problem, (span.end - span.start) / counts[i]);
+    return Math.max(1, Math.ceil(Math.sqrt(bound / LEFT_OUT)));
+  });
+  return Math.max(...parts) > MOST_PARTS ? null : counts.map((n, i) => n * parts[i]);
 }
 
 /** Everything decays: the last kick (chain.ts). */

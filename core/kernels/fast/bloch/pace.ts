@@ -55,17 +55,23 @@ export const STRIDE = 2;
 /** Bounds of the corrections below which they are left out: in all, and relative to small figures. */
 const NEGLIGIBLE = { whole: 5e-10, relative: 1e-7 };
 
-function correctionOf({ drive, model }: BlochProblem, h: number): Correction | null {
+function correctionOf(problem: BlochProblem, h: number): Correction | null {
+  const { decay, dephasing, weight } = problem.model;
+  const rabi = h * problem.drive.scales.peakRabi * Math.abs(weight);
+  const relative = (h * decay * rabi ** 3) / 1920 + (h * dephasing * rabi) / 48;
+  if (correctionBound(problem, h) < NEGLIGIBLE.whole && relative < NEGLIGIBLE.relative) return null;
+  const small = (h * decay) ** 2;
+  const ratio = dephasing / decay;
+  return { quadratic: (-STRIDE * small * ratio) / 48, quartic: (STRIDE * small) / 1920, ratio };
+}
+
+/** Bound of all corrections together, for steps of h (ps); actual effects are ten times smaller. */
+export function correctionBound({ drive, model }: BlochProblem, h: number): number {
   const { decay, dephasing, weight } = model;
   const { peakRabi, time } = drive.scales;
   const rabi = h * peakRabi * Math.abs(weight);
   const perArea = (h * decay * rabi) ** 2 / 1920 + (h * h * decay * dephasing) / 48;
-  const whole = perArea * AREA * peakRabi * time;
-  const relative = (h * decay * rabi ** 3) / 1920 + (h * dephasing * rabi) / 48;
-  if (whole < NEGLIGIBLE.whole && relative < NEGLIGIBLE.relative) return null;
-  const small = (h * decay) ** 2;
-  const ratio = dephasing / decay;
-  return { quadratic: (-STRIDE * small * ratio) / 48, quartic: (STRIDE * small) / 1920, ratio };
+  return perArea * AREA * peakRabi * time;
 }
 
 /** Area of a Gaussian over its peak and width: √2π. */

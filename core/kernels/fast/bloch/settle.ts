@@ -16,9 +16,11 @@ const EXPECTED = 7;
 
 const coarse = new Float64Array(FIGURES);
 const fine = new Float64Array(FIGURES);
+const settled = new Float64Array(FIGURES);
 
-/** The finest run and what it can be improved and trusted by. */
+/** The finest run, improved by the one before it. */
 export interface Settled {
+  /** Overwritten by the next call. */
   readonly figures: Float64Array;
   readonly counts: readonly number[];
   /** In the measure of `disagreement`. */
@@ -47,9 +49,8 @@ export function settle(problem: BlochProblem, accept: number): Settled | null {
     if (!Number.isFinite(error)) return null;
     counts = finer;
     if (error <= accept) {
-      const figures = new Float64Array(FIGURES);
-      for (let i = 0; i <= EXCITED; i++) figures[i] = fine[i] + share * (fine[i] - coarse[i]);
-      return { figures, counts, error };
+      for (let i = 0; i <= EXCITED; i++) settled[i] = fine[i] + share * (fine[i] - coarse[i]);
+      return { figures: settled, counts, error };
     }
     factor = Math.min(MOST, Math.max(LEAST, 1.05 * (error / accept) ** (1 / EXPECTED)));
     coarse.set(fine);
