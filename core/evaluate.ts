@@ -6,7 +6,7 @@ import type { Effort } from './kernels/count.js';
 import { phononRangeProblem } from './phonons/count.js';
 import { pulseFigures } from './pulse/figures.js';
 import { orThrow, sampleAll } from './run.js';
-import { hasPhonons } from './situation.js';
+import { asPropagation, hasPhonons } from './situation.js';
 import { type DriftTree, treeOf, withNominal } from './tree.js';
 
 /**
@@ -84,7 +84,8 @@ const EXACT: Effort = { ...LADDER[0], nodes: EXACT_NODES[0] };
 /** Relative error of means that too few nodes may leave beside the exact phonon method. */
 const ENOUGH_FOR_EXACT = { quoted: 2e-4, verified: 2e-5 };
 
-const isExact = (design: Design): boolean => hasPhonons(design) && design.emitter.phonons?.method === 'exact';
+export const isExact = (design: Design): boolean =>
+  hasPhonons(design) && design.emitter.phonons?.method === 'exact';
 
 /** The one effort of an accuracy that does not compare two; null where two must agree. */
 function singleEffort(design: Design, accuracy: Accuracy): Effort | null {
@@ -186,7 +187,9 @@ export function driftGrid(
   design: Design,
   effort: Effort,
 ): { readonly axes: DriftAxes; readonly nodes: readonly DriftNode[] } {
-  const duration = design.drift ? pulseFigures(design.pulse, null, null, DURATION).duration_ps : 0;
+  const duration = design.drift
+    ? asPropagation(() => pulseFigures(design.pulse, null, null, DURATION)).duration_ps
+    : 0;
   const axes = driftAxes(design, duration, effort.nodes);
   return { axes, nodes: driftNodes(design, axes) };
 }

@@ -1,4 +1,5 @@
 export { figureDifference, relativeDifference } from './accuracy.js';
+export { evaluateMany } from './batch.js';
 export { leakedPhotons, piPulseEnergy, pulseFilter } from './collection/leakage.js';
 export * from './collection/moments.js';
 export { addEmittedCounting, addThinnedCounting } from './counting/emitted.js';

@@ -14,14 +14,16 @@ import type { PhononCount } from './phonons/contract.js';
 import type { PhononPlan } from './phonons/plan.js';
 import { pulseFigures } from './pulse/figures.js';
 import { assembleSample, type SampleRun } from './sample.js';
-import { emittedRequest, planOf, rotatingFilter, type Situation, situation } from './situation.js';
+import { emittedRequest, planOf, rotatingFilter, type Situation, situation, survival } from './situation.js';
 import { HBAR } from './units/constants.js';
-import { EVERYTHING, type Wanted } from './wanted.js';
+import { ALL_FIGURES, type Wanted, type WantedFigures } from './wanted.js';
 
 /** A design at one node of its drift. */
 export interface NodeTask {
   readonly nominal: Design;
   readonly node: DriftNode;
+  /** Everything when left out. */
+  readonly wanted?: WantedFigures;
 }
 
 /** A run that worked; throws what hindered it otherwise. */
@@ -34,18 +36,14 @@ export function orThrow<T>(run: T | PropagationError): T {
  * Figures of many designs and nodes, counted together: the same as one by one.
  * @returns one answer per task; an error where the propagation cannot be carried out
  */
-export function sampleAll(
-  tasks: readonly NodeTask[],
-  effort: Effort,
-  wanted: Wanted = EVERYTHING,
-): (SampleRun | PropagationError)[] {
+export function sampleAll(tasks: readonly NodeTask[], effort: Effort): (SampleRun | PropagationError)[] {
   const scenes = new SceneCache();
-  const places = tasks.map((task) => attempt(() => place(task, effort, wanted, scenes)));
+  const places = tasks.map((task) => attempt(() => place(task, effort, scenes)));
   const counts = countAll(places);
   return places.map((at, i) => {
     const count = counts[i];
     if (at instanceof PropagationError) return at;
-    return count instanceof PropagationError ? count : finish(at, count, wanted);
+    return count instanceof PropagationError ? count : finish(at, count);
   });
 }
 
@@ -113,13 +111,18 @@ interface Place {
   readonly wanted: Wanted;
 }
 
-function place(task: NodeTask, wantedEffort: Effort, wanted: Wanted, scenes: SceneCache): Place {
+function place(task: NodeTask, wantedEffort: Effort, scenes: SceneCache): Place {
   const scene = scenes.get(task);
   const { design, where } = scene;
   const shift = task.node.shift / HBAR;
   const plan = design.emitter.phonons === null ? null : planOf(design, where, shift, wantedEffort);
   // A hierarchy settles to 1e-3: a bound on the moment series far below that would only cost operators.
   const effort: Effort = plan?.method === 'exact' ? { ...wantedEffort, series: 'estimate' } : wantedEffort;
+  const path = {
+    filtered: design.collection.filter !== null,
+    thinned: survival(design, where.scheme) < 1,
+  };
+  const wanted = (task.wanted ?? ALL_FIGURES).of(path);
   return { scene, plan, effort, base: emittedRequest(design, where, shift, effort), wanted };
 }
 
@@ -202,7 +205,7 @@ function bare(result: CountResult | Failed): PhononCount | Failed {
 
 const NOTHING: readonly string[] = [];
 
-function finish({ scene, plan, effort }: Place, count: Count, wanted: Wanted): SampleRun {
+function finish({ scene, plan, effort, wanted }: Place, count: Count): SampleRun {
   const { result, moments, seriesError } = count;
   const { design, where } = scene;
   const leakage = wanted.leakage ? scene.leakage() : 0;

@@ -70,10 +70,10 @@ export function assembleSample(
   const signal = filtered ? filteredSignal(moments, eta, series) : emittedSignal(values, eta);
   return {
     emitted: {
-      mean: values['mean'],
-      factorial2: values['factorial2'],
-      p: [values['p0'], values['p1'], values['p2'], values['p3']],
-      multiphoton: values['multiphoton'],
+      mean: counted(values, 'mean'),
+      factorial2: counted(values, 'factorial2'),
+      p: [counted(values, 'p0'), counted(values, 'p1'), counted(values, 'p2'), counted(values, 'p3')],
+      multiphoton: counted(values, 'multiphoton'),
     },
     filtered,
     signal,
@@ -90,7 +90,7 @@ export function byLevel(
   populations: readonly number[],
 ): Record<string, number> {
   const out: Record<string, number> = {};
-  for (let i = 0; i < levels.length; i++) out[levels[i].name] = populations[i];
+  for (let i = 0; i < levels.length; i++) out[levels[i].name] = populations[i] ?? Number.NaN;
   return out;
 }
 
@@ -117,13 +117,15 @@ function filteredSignal(moments: readonly number[], eta: number, rule: SeriesRul
   };
 }
 
-function emittedSignal(v: Readonly<Record<string, number>>, eta: number): Count {
+const counted = (values: Counted['values'], name: string): number => values[name] ?? Number.NaN;
+
+function emittedSignal(values: Counted['values'], eta: number): Count {
   const whole = eta === 1;
   return {
-    mean: eta * v['mean'],
-    factorial2: eta * eta * v['factorial2'],
-    p0: whole ? v['p0'] : v['thinned0'],
-    single: whole ? v['p1'] : v['thinned1'],
-    multiphoton: whole ? v['multiphoton'] : v['thinnedMultiphoton'],
+    mean: eta * counted(values, 'mean'),
+    factorial2: eta * eta * counted(values, 'factorial2'),
+    p0: counted(values, whole ? 'p0' : 'thinned0'),
+    single: counted(values, whole ? 'p1' : 'thinned1'),
+    multiphoton: counted(values, whole ? 'multiphoton' : 'thinnedMultiphoton'),
   };
 }

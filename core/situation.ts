@@ -9,7 +9,7 @@ import { type Resonance, schemeResonances, slowestFrame } from './kernels/frame.
 import { type Choice, chooseMethod, type DriveKind } from './phonons/choose.js';
 import { type PhononPlan, phononPlan } from './phonons/plan.js';
 import { DispersionError } from './pulse/dispersed.js';
-import { createDrive, type DriveOptions, type PulseDrive } from './pulse/drive.js';
+import { createDrive, type PulseDrive } from './pulse/drive.js';
 import { HBAR, RAD_PER_PS_PER_GHZ } from './units/constants.js';
 
 /** A design in the terms of the propagator, without drift. */
@@ -41,14 +41,16 @@ export function situation(design: Design): Situation {
     resonances.push({ center, quanta: 1, weight: FEWEST_MOMENTS.bound });
   }
   const frame = slowestFrame(resonances);
-  const drive = driveOf(pulse, { frame: frame - reference, projection: scheme.projection });
+  const drive = asPropagation(() =>
+    createDrive(pulse, { frame: frame - reference, projection: scheme.projection }),
+  );
   return { scheme, reference, frame, drive, line };
 }
 
 /** A pulse that spreads beyond what can be sampled is one more propagation that cannot be carried out. */
-function driveOf(pulse: Design['pulse'], options: DriveOptions): PulseDrive {
+export function asPropagation<T>(work: () => T): T {
   try {
-    return createDrive(pulse, options);
+    return work();
   } catch (error) {
     if (error instanceof DispersionError) throw new PropagationError(error.message);
     throw error;

@@ -81,7 +81,7 @@ function notesOf({ filtered, signal, emitted }: Sample, remarks: readonly string
     notes.push({ path: 'filtered.multiphoton', reason: TOO_MANY });
   }
   if (signal.multiphoton === null) notes.push({ path: 'signal.multiphoton', reason: TOO_MANY });
-  if (!(emitted.mean > 0)) notes.push({ path: 'emitted.g2', reason: 'nothing is emitted' });
+  if (emitted.mean <= 0) notes.push({ path: 'emitted.g2', reason: 'nothing is emitted' });
   for (const reason of remarks.slice(0, MOST_REMARKS)) notes.push({ path: 'phonons', reason });
   return notes;
 }

@@ -10,6 +10,8 @@ export type Terms = readonly (readonly [scalar: Scalar, coefficient: number])[];
 /** How a figure is made from scalars. */
 export interface Formula {
   readonly scalars: readonly Scalar[];
+  /** From these values of the scalars; null where the figure does not exist. */
+  value(value: (scalar: Scalar) => number | null): number | null;
   /** At these values of the scalars; null where the figure does not exist. */
   terms(value: (scalar: Scalar) => number | null): Terms | null;
 }
@@ -31,6 +33,7 @@ const BASES: ReadonlySet<string> = new Set(['emitted', 'filtered', 'signal', 'co
 /** Itself. */
 export const identity = (scalar: Scalar): Formula => ({
   scalars: [scalar],
+  value: (value) => value(scalar),
   terms: (value) => (value(scalar) === null ? null : [[scalar, 1]]),
 });
 
@@ -39,6 +42,10 @@ function atLeastOne(basis: string): Formula {
   const scalars = [`${basis}.single`, `${basis}.multiphoton`];
   return {
     scalars,
+    value(value) {
+      const [one, more] = scalars.map(value);
+      return one === null || more === null ? null : one + more;
+    },
     terms: (value) =>
       scalars.some((scalar) => value(scalar) === null) ? null : scalars.map((scalar) => [scalar, 1]),
   };
@@ -49,6 +56,10 @@ function correlation(basis: string): Formula {
   const [mean, factorial2] = [`${basis}.mean`, `${basis}.factorial2`];
   return {
     scalars: [mean, factorial2],
+    value(value) {
+      const [m1, m2] = [value(mean), value(factorial2)];
+      return m1 !== null && m2 !== null && m1 > 0 ? m2 / (m1 * m1) : null;
+    },
     terms(value) {
       const [m1, m2] = [value(mean), value(factorial2)];
       if (m1 === null || m2 === null || !(m1 > 0)) return null;
