@@ -34,7 +34,7 @@ function slicesPicture(result: RunResult): Promise<string> {
     ...{ title, subtitle, xTitle: brightness, yTitle: impurity, logX: false },
     logY: axisScale(series.flatMap((s) => s.points.map(({ y }) => y))) === 'log',
     series,
-    legend: `slices of the front, by the ${thirdText(goal)?.name}`,
+    legend: `slices of the front, by ${thirdText(goal)?.name}`,
     mark: goal.atLeast === null ? null : { x: goal.atLeast, name: `asked for: ${goal.atLeast}` },
   });
 }

@@ -56,7 +56,7 @@ export function frontText(result: RunResult, directory: string, style: Style): s
       parts.push(`best design at ${name}:`, designTable(result, [result.best], style), '');
     else {
       const bests = bestBySlice(result, goal.atLeast, style);
-      parts.push(`best design at ${name}, by the bound of the ${thirdText(goal)?.name}:`, bests, '');
+      parts.push(`best design at ${name}, by the bound of ${thirdText(goal)?.name}:`, bests, '');
     }
   }
   if (result.outOfReach.length > 0)

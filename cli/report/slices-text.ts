@@ -21,7 +21,7 @@ export function slicesText(result: RunResult, color: boolean): string {
   };
   const rows = levels.map((level) => [threeDigits(level), ...bounds.map((slice) => cell(slice, level))]);
   return [
-    `${symbolOf(goal.impurity)}, collected (number of the design), by the bound of the ${axis.name}`,
+    `${symbolOf(goal.impurity)}, collected (number of the design), by the bound of ${axis.name}`,
     '',
     tableText(
       { head: [`${symbolOf(goal.brightness)}\nsignal ≥`, ...bounds.map((b) => boundText(goal, b))], rows },

@@ -16,22 +16,24 @@ export function sliceOf<T extends Judgement>(points: readonly T[], bound: number
 
 /**
  * Bounds of the slices of a front with three objectives, tightest first, in the unit of the figure; the last is null:
- * no bound. They divide evenly (in ratio, where the axis is positive) the way from the least third number that comes
- * with a brightness of interest to what half of the levels take without a bound. Fewer where the axis has no room.
+ * no bound. They divide evenly (in ratio, where the axis is positive) the way from the least third number to that of the
+ * front without a bound, both at the brightness of the best design asked for, or else in the middle of the front. Fewer
+ * where the axis has no room.
  */
 export function sliceBounds(goal: Goal, points: readonly Judgement[]): (number | null)[] {
   if (goal.third === null) return [null];
   const { axis, slices } = goal.third;
   const open = flatFront(points);
   if (open.length === 0) return [null];
-  const levels = levelsOf(goal.front, open);
-  const taken = levels.flatMap((level) => atLevel(open, level)?.third ?? []);
+  const levels = levelsOf(goal.front, open).filter((level) => atLevel(open, level) !== null);
+  const wanted = goal.atLeast ?? levels[Math.floor(levels.length / 2)] ?? 0;
+  // Where the level is out of reach, the brightest design stands for it.
+  const served = atLevel(open, wanted) ?? open[open.length - 1];
+  const level = Math.min(wanted, served.brightness);
   const bright = points.flatMap(({ brightness, third }) =>
-    brightness >= levels[0] && third !== null ? third : [],
+    brightness >= level && third !== null ? third : [],
   );
-  if (taken.length === 0 || bright.length === 0) return [null];
-  taken.sort((a, b) => a - b);
-  const [tight, loose] = [Math.min(...bright), taken[Math.floor(taken.length / 2)]];
+  const [tight, loose] = [Math.min(...bright), served.third ?? Number.NEGATIVE_INFINITY];
   const at = (share: number) =>
     tight > 0 ? tight * (loose / tight) ** share : tight + (loose - tight) * share;
   const inner = Array.from({ length: slices - 1 }, (_, i) => rounded(at((i + 1) / slices)));

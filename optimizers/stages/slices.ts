@@ -4,7 +4,7 @@ import type { Knowledge, Plan } from './contract.js';
 import { explore } from './explore.js';
 
 /** Share of the budget that populations spend on all three objectives at once. */
-const LOOK = 0.2;
+const LOOK = 0.1;
 /** Evaluations that make a slice worth a search of its own. */
 const SLICE_WORTH = 50;
 

@@ -62,7 +62,7 @@ describe('a front with a third axis', () => {
       }
       expect(point.figures.signal.single).toBeGreaterThanOrEqual(level);
       if (slice !== null) expect(energy(point)).toBeLessThanOrEqual(slice);
-      expect(impurity(point)).toBeLessThan(1.03 * leastOf(level, slice));
+      expect(impurity(point)).toBeLessThan(1.05 * leastOf(level, slice));
     }
     // The level at which the best design is asked for is one of each slice, and the best one has no bound.
     const asked = front.filter(({ level }) => level === 0.9);
@@ -142,11 +142,20 @@ describe('bounds of slices', () => {
   const goal: Goal = { ...toySpec(1, 1, TWO, GOAL).goal, front: { from: 0.5, to: 0.9, points: 3 } };
   const point = (brightness: number, impurity: number, third: number) => ({ brightness, impurity, third });
 
-  it('divide the axis evenly in ratio, from the least to what half of the levels take', () => {
-    const open = [point(0.5, 1, 8), point(0.7, 2, 8), point(0.9, 3, 8)];
-    expect(sliceBounds(goal, [...open, point(0.5, 4, 1)])).toEqual([2, 4, null]);
-    // What is darker than the front does not count.
-    expect(sliceBounds(goal, [...open, point(0.5, 4, 1), point(0.4, 3, 0.1)])).toEqual([2, 4, null]);
+  it('divide the axis evenly in ratio, at the brightness of the best design or in the middle of the front', () => {
+    const open = [point(0.5, 1, 2), point(0.7, 2, 27), point(0.9, 3, 8)];
+    const dark = point(0.4, 3, 0.1);
+    expect(sliceBounds(goal, [...open, dark, point(0.9, 4, 1)])).toEqual([2, 4, null]);
+    const middle = { ...goal, atLeast: null };
+    expect(sliceBounds(middle, [...open, dark, point(0.7, 4, 1)])).toEqual([3, 9, null]);
+    // Out of reach: the brightest stands for it.
+    expect(sliceBounds({ ...goal, atLeast: 0.95 }, [...open, point(0.9, 4, 1)])).toEqual([2, 4, null]);
+  });
+
+  it('of an axis that may be negative divide it evenly', () => {
+    const mean: Goal = { ...goal, third: { axis: 'mean', slices: 3 } };
+    const points = [point(0.5, 1, -0.5), point(0.9, 3, -0.9), point(0.9, 4, -1.2)];
+    expect(sliceBounds(mean, points)).toEqual([1.1, 1, null]);
   });
 
   it('are none where the axis has no room, or nothing was found', () => {

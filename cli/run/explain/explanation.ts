@@ -88,9 +88,7 @@ function doubtsOf(growth: Growth | null, best: Restarts | null): string[] {
     );
   }
   if (best !== null && best.elsewhere === 0)
-    doubts.push(
-      'no solve for the best design began elsewhere: nothing tells whether there is a better branch',
-    );
+    doubts.push('the best design was found only once: no local solve began far enough from it to confirm it');
   if (best !== null && best.elsewhere > 0 && best.again === 0)
     doubts.push(
       `the best design was found only once: none of ${best.elsewhere} solves that began elsewhere came to it`,

@@ -80,7 +80,7 @@ describe('optimize with a third axis', () => {
     const { folder, out } = await finished();
     expect(out).toMatch(/signal ≥ *\n/);
     expect(out).toMatch(/≤ [\d.]+ fJ +≤ [\d.]+ fJ +no bound/);
-    expect(out).toContain('best design at signal P(n=1) ≥ 0.7, by the bound of the pulse energy:');
+    expect(out).toContain('best design at signal P(n=1) ≥ 0.7, by the bound of pulse energy:');
     expect(out).toContain('volume between the front and the corner');
     expect(out).toContain('how the front was found');
     expect(out).toMatch(/resonant, near π/);
@@ -89,7 +89,7 @@ describe('optimize with a third axis', () => {
       if (!/^(files|hypervolume)/.test(line)) expect(line.length).toBeLessThanOrEqual(140);
     }
     const svg = read(folder, 'front.svg');
-    expect(svg).toContain('slices of the front, by the pulse energy');
+    expect(svg).toContain('slices of the front, by pulse energy');
     expect(svg).toContain('no bound');
     expect(svg).toContain('asked for: 0.7');
   });
