@@ -1,7 +1,7 @@
 /**
  * The fast kernels against the reference propagator and, for two levels emitted, against the same formulation in scalar
- * C (peers/two-level.c, built here with gcc -O3 -march=native): one count of each case, error estimate included,
- * interleaved; minima, spread and ratios. Prints markdown.
+ * C (peers/two-level.c, built here with gcc -O3 -march=native): one count of each case, error estimate included, and one
+ * with the derivatives of two figures by the whole drive; interleaved; minima, spread and ratios. Prints markdown.
  *
  *   npm run build && npm run bench:kernels [-- rounds [seconds]]        default 7 rounds of 0.1 s
  */
@@ -12,9 +12,10 @@ import { join } from 'node:path';
 import { createInterface } from 'node:readline';
 import { fileURLToPath } from 'node:url';
 import type { Design } from '../core/index.js';
+import type { PhaseFrame } from '../core/kernels/fast/bloch/frame.js';
 import { disagreement } from '../core/kernels/fast/estimate.js';
 import type { TwoLevel } from '../core/kernels/fast/two-level.js';
-import { HBAR } from '../core/units/constants.js';
+import type { GaussianTone } from '../core/pulse/gaussians.js';
 import { CASES } from './cases.js';
 import { machineLine, markdownTable, seconds, summarise } from './timing.js';
 
@@ -50,15 +51,19 @@ class LineProcess {
 
 interface Plan {
   readonly model: TwoLevel;
-  readonly frame: number;
   readonly start: number;
   readonly end: number;
   readonly steps: number;
-  readonly follow: boolean;
+  readonly peakRabi: number;
+  readonly time: number;
+  readonly resonant: boolean;
+  readonly frame: PhaseFrame;
+  readonly tones: readonly GaussianTone[];
 }
 
 interface Answer {
-  readonly elapsed: number;
+  /** Seconds; null where no kernel has derivatives. */
+  readonly elapsed: number | null;
   readonly steps: number;
   readonly values: Readonly<Record<string, number>>;
   readonly plan: Plan | null;
@@ -72,7 +77,7 @@ const counter = new LineProcess(process.execPath, [
 ]);
 
 async function count(
-  kernel: 'fast' | 'reference',
+  kernel: 'fast' | 'reference' | 'gradient',
   design: Design,
   duration: number,
   tolerance = 1e-10,
@@ -81,19 +86,14 @@ async function count(
   return JSON.parse(await counter.ask(JSON.stringify(request))) as Answer;
 }
 
-/** The C program on one case, started from the same steps. */
-function startPeer(
-  program: string,
-  { model, frame, start, end, steps, follow }: Plan,
-  design: Design,
-): LineProcess {
-  const tones = design.pulse.tones.flatMap((t) => {
-    if (t.shape !== 'gaussian') throw new Error('the C peer knows Gaussian tones only');
-    return [t.area, t.fwhm / (2 * Math.sqrt(Math.LN2)), t.gdd, t.detuning / HBAR - frame, t.delay, t.phase];
-  });
-  const numbers = [model.decay, model.dephasing, model.energy, start, end, steps, follow ? 1 : 0];
+/** The C program on one case, started from the same steps in the same frame. */
+function startPeer(program: string, plan: Plan): LineProcess {
+  const { model, frame } = plan;
+  const tones = plan.tones.flatMap((t) => [t.amplitude, t.fall, t.phase, t.rate, t.chirp, t.delay]);
+  const numbers = [model.decay, model.dephasing, model.energy, plan.start, plan.end, plan.steps];
+  const rules = [plan.peakRabi, plan.time, plan.resonant ? 1 : 0, frame.origin, frame.rate, frame.chirp];
   const peer = new LineProcess(program, []);
-  peer.tell([...numbers, design.pulse.tones.length, ...tones].join(' '));
+  peer.tell([...numbers, ...rules, plan.tones.length, ...tones].join(' '));
   return peer;
 }
 
@@ -117,30 +117,42 @@ const program = buildPeer();
 const entries = [];
 for (const { name, design } of CASES) {
   const { plan } = await count('fast', design, 0.3);
-  const peer = plan ? startPeer(program, plan, design) : null;
-  entries.push({ name, design, peer, fast: [] as number[], reference: [] as number[], c: [] as number[] });
+  await count('gradient', design, 0.3);
+  const peer = plan ? startPeer(program, plan) : null;
+  const times = {
+    fast: [] as number[],
+    gradient: [] as number[],
+    reference: [] as number[],
+    c: [] as number[],
+  };
+  entries.push({ name, design, peer, times });
 }
 for (let round = 0; round < rounds; round++) {
-  for (const { design, peer, fast, reference, c } of entries) {
-    fast.push((await count('fast', design, least)).elapsed);
-    if (peer) c.push(await timePeer(peer));
-    reference.push((await count('reference', design, least)).elapsed);
+  for (const { design, peer, times } of entries) {
+    for (const kernel of ['fast', 'gradient', 'reference'] as const) {
+      const { elapsed } = await count(kernel, design, least);
+      if (elapsed !== null) times[kernel].push(elapsed);
+      if (kernel === 'fast' && peer) times.c.push(await timePeer(peer));
+    }
   }
 }
 const rows: string[][] = [];
-for (const { name, design, peer, fast, reference, c } of entries) {
+for (const { name, design, peer, times } of entries) {
   peer?.close();
   const found = await count('fast', design, 0);
   const exact = await count('reference', design, 0, 1e-12);
   const values = Object.fromEntries(Object.keys(found.values).map((k) => [k, exact.values[k]]));
-  const [us, them] = [summarise(fast), summarise(reference)];
-  const inC = c.length > 0 ? summarise(c) : null;
+  const [us, them] = [summarise(times.fast), summarise(times.reference)];
+  const over = (list: readonly number[], digits: number): string =>
+    list.length > 0 ? (summarise(list).least / us.least).toFixed(digits) : '–';
+  const c = times.c.length > 0 ? summarise(times.c) : null;
   rows.push([
     name,
     seconds(us.least),
     us.spread.toFixed(2),
-    inC ? seconds(inC.least) : '–',
-    inC ? (us.least / inC.least).toFixed(2) : '–',
+    c ? seconds(c.least) : '–',
+    c ? (us.least / c.least).toFixed(2) : '–',
+    over(times.gradient, 2),
     seconds(them.least),
     (them.least / us.least).toPrecision(3),
     String(found.steps),
@@ -151,7 +163,18 @@ counter.close();
 console.log(`${machineLine()}; ${rounds} rounds, minima; spread = median / minimum\n`);
 console.log(
   markdownTable(
-    ['case', 'fast', 'spread', 'C', 'fast / C', 'reference', 'reference / fast', 'steps', 'error / promise'],
+    [
+      'case',
+      'fast',
+      'spread',
+      'C',
+      'fast / C',
+      'gradient / fast',
+      'reference',
+      'reference / fast',
+      'steps',
+      'error / promise',
+    ],
     rows,
   ),
 );
