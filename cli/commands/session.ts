@@ -42,8 +42,12 @@ async function searchWithLedger(session: Session): Promise<{ outcome: SearchOutc
       wall = Math.round(earlier * 1000 + performance.now() - began) / 1000;
       await run.ledger.append({ task, wall });
     },
-    onProgress: (p) =>
-      progress.update({ stage: p.stage, done: p.evaluations, total: p.budget, best: bestText(p) }),
+    ...(progress.shown
+      ? {
+          onProgress: (p: SearchProgress) =>
+            progress.update({ stage: p.stage, done: p.evaluations, total: p.budget, best: bestText(p) }),
+        }
+      : {}),
   });
   return { outcome, wall };
 }

@@ -10,11 +10,13 @@ export interface ProgressState {
 }
 
 export interface Progress {
+  /** False where nobody sees it: what it would say need not be found out. */
+  readonly shown: boolean;
   update(state: ProgressState): void;
   stop(): void;
 }
 
-const SILENT: Progress = { update: () => undefined, stop: () => undefined };
+const SILENT: Progress = { shown: false, update: () => undefined, stop: () => undefined };
 
 /** Work that was there before the clock started does not count for the speed. */
 function timeLeft(began: { time: number; done: number }, state: ProgressState): string {
@@ -41,6 +43,7 @@ export function progressBar(stream: NodeJS.WritableStream, unit: string): Progre
   );
   let began: { time: number; done: number } | null = null;
   return {
+    shown: true,
     update(state) {
       if (began === null) {
         began = { time: Date.now(), done: state.done };

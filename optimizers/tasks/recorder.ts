@@ -52,13 +52,13 @@ export class NearestPoint {
 /** Counts and archives the evaluations of a task, and counts its gradients. */
 export class Recorder {
   readonly #problem: Problem;
-  readonly #goal: Goal;
+  readonly #goal: Goal | null;
   readonly #archive = new PointArchive();
   readonly #nearest = new NearestPoint();
   #evaluations = 0;
 
-  /** @param goal of the whole search: `problem` may be that of a slice, what is archived is not */
-  constructor(problem: Problem, goal: Goal) {
+  /** @param goal of what is archived, where it is another than that of `problem`, such as a slice; null where not */
+  constructor(problem: Problem, goal: Goal | null) {
     this.#problem = problem;
     this.#goal = goal;
   }
@@ -76,7 +76,8 @@ export class Recorder {
     this.#evaluations++;
     const { figures, values } = candidate;
     if (figures === null) return candidate;
-    const { impurity, brightness, third, violation } = judge(figures, this.#goal);
+    const verdict = this.#goal === null ? candidate : judge(figures, this.#goal);
+    const { impurity, brightness, third, violation } = verdict;
     if (violation === 0) this.#archive.add({ values, figures, impurity, brightness, third, stage: '' });
     else this.#nearest.offer({ values, figures }, violation);
     return candidate;

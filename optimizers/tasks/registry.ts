@@ -31,7 +31,7 @@ export function runTask(spec: ProblemSpec, problem: Problem, task: Task): TaskRe
   }
   const goal = task.within === undefined ? spec.goal : goalWithin(spec.goal, task.within.bound);
   const own = task.within === undefined ? problem : problem.withGoal(goal);
-  const recorder = new Recorder(own, spec.goal);
+  const recorder = new Recorder(own, task.within === undefined ? null : spec.goal);
   const seed = stream(spec.search.seed, task.index).int(2 ** 32);
   const summary =
     task.budget > 0 ? runner(task, { spec: { ...spec, goal }, problem: own, recorder, seed }) : null;
