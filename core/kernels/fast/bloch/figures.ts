@@ -45,6 +45,15 @@ const RELATIVE = 1e-3;
 /** No accuracy is promised for p_3; a hundredth of that of p_2 is kept. */
 const LOOSE = 100;
 
+/** Absolute rounding error of the mean: populations are differences of numbers of order one. */
+const ROUNDING = 1e-15;
+
+/** What rounding leaves of g⁽²⁾[0] where next to nothing is emitted, in the measure of `distance`. */
+export function rounding(figures: Float64Array): number {
+  const mean = Math.abs(figures[MEAN]);
+  return mean > 0 ? (ROUNDING / mean) * RELATIVE : 0;
+}
+
 /** Populations at the end of the window are kept to ten times the absolute accuracy. */
 const POPULATION = 0.1;
 

@@ -1,4 +1,5 @@
 import type { CountGradient, Sensitivity } from '../../gradient.js';
+import { resetArena, take, takeZeros } from './arena.js';
 import type { Chain } from './chain.js';
 import { adjointKicks } from './chain-adjoint.js';
 import { FACTORIAL, MEAN, MULTIPHOTON, P0, P1, placeOf, THINNED } from './figures.js';
@@ -75,6 +76,7 @@ export function differentiate(
 ): Omit<CountGradient, 'result'> | null {
   const seeded = seededChains(problem, seeds);
   if (!seeded) return null;
+  resetArena();
   const stretches = recordTape(
     problem,
     counts,
@@ -131,7 +133,7 @@ function sweepChains(stretch: Stretch, seeded: readonly SeededChain[], adjoints:
   const { steps, axes, pace, records } = stretch;
   const { half, full } = pace;
   return adjoints[0].map((_, s) => {
-    const slopes = new Float64Array(axes.length);
+    const slopes = takeZeros(axes.length);
     seeded.forEach(({ chain, weights }, c) => {
       if (weights[s].every((w) => w === 0)) return;
       const adjoint = adjoints[c][s];
@@ -168,7 +170,7 @@ function sweepSteps(
 ): void {
   const { steps, axes, vectors, quaternions, turns, samples, energies, grid } = stretch;
   const byVector = torque.map((sum, s) => {
-    const out = new Float64Array(3 * steps);
+    const out = take(3 * steps);
     torques(sum, slopes[s], axes, vectors, quaternions, turns, steps, out);
     addTorque(sum, slopes[s], axes, 0);
     return out;
@@ -184,7 +186,7 @@ function sweepSteps(
 /** From derivatives by samples in the stretch's frame, times its scale, to those by the drive's own samples. */
 function toDriveFrame({ part, steps, grid, pace, turns }: Stretch, bySample: readonly Float64Array[]): void {
   const { frame } = part;
-  const back = new Float64Array(2 * NODES * steps);
+  const back = takeZeros(2 * NODES * steps);
   // e^{iθ} of the frame as a tone that never fades.
   const phase = {
     amplitude: 1,

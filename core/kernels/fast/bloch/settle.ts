@@ -1,4 +1,4 @@
-import { distance, EXCITED, FIGURES } from './figures.js';
+import { distance, EXCITED, FIGURES, rounding } from './figures.js';
 import type { BlochProblem } from './problem.js';
 import { runBloch } from './run.js';
 import { firstCounts, MOST_STEPS } from './steps.js';
@@ -32,7 +32,7 @@ export interface Settled {
  * that the truth lies between the finer run and the point that this power extrapolates to. The middle of the two is
  * returned, which is off by half their distance at most.
  * @param accept error to reach, in the measure of `disagreement`
- * @returns null where the steps run out
+ * @returns null where the steps run out, or rounding alone is too much
  */
 export function settle(problem: BlochProblem, accept: number): Settled | null {
   let counts = firstCounts(problem);
@@ -45,8 +45,9 @@ export function settle(problem: BlochProblem, accept: number): Settled | null {
     if (steps > MOST_STEPS) return null;
     runBloch(problem, finer, fine);
     const share = 0.5 / ((steps / total(counts)) ** SLOWEST - 1);
-    const error = share * distance(coarse, fine);
-    if (!Number.isFinite(error)) return null;
+    const floor = rounding(fine);
+    const error = share * distance(coarse, fine) + floor;
+    if (!Number.isFinite(error) || floor > accept) return null;
     counts = finer;
     if (error <= accept) {
       for (let i = 0; i <= EXCITED; i++) settled[i] = fine[i] + share * (fine[i] - coarse[i]);

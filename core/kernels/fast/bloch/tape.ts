@@ -1,3 +1,4 @@
+import { take, takeZeros } from './arena.js';
 import { turnAbout, turnAxes } from './axes.js';
 import type { Chain } from './chain.js';
 import { RECORD, recordKicks } from './chain-adjoint.js';
@@ -28,7 +29,7 @@ export interface Stretch {
 
 /**
  * Propagates chains once more and keeps what a reverse sweep needs. Corrections that differ from lane to lane are left
- * out: they change derivatives by 1e-6 at most.
+ * out: they change derivatives by 1e-6 at most. The tape lies in the arena.
  */
 export function recordTape(
   problem: BlochProblem,
@@ -77,12 +78,12 @@ export function recordTape(
         slope: 2 * frame.chirp * h * h,
         axial: pace.axial,
       },
-      samples: new Float64Array(2 * NODES * steps),
-      turns: follow ? new Float64Array(steps) : null,
-      vectors: new Float64Array(3 * steps),
-      quaternions: new Float64Array(4 * steps),
-      axes: new Float64Array(3 * (steps + 1)),
-      records: chains.map(() => new Float64Array(RECORD * (steps + 1))),
+      samples: takeZeros(2 * NODES * steps),
+      turns: follow ? take(steps) : null,
+      vectors: take(3 * steps),
+      quaternions: take(4 * steps),
+      axes: take(3 * (steps + 1)),
+      records: chains.map(() => take(RECORD * (steps + 1))),
     };
   }
 
