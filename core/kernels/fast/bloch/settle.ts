@@ -32,7 +32,7 @@ export interface Settled {
  * that the truth lies between the finer run and the point that this power extrapolates to. The middle of the two is
  * returned, which is off by half their distance at most.
  * @param accept error to reach, in the measure of `disagreement`
- * @returns null where the steps run out, or rounding alone is too much
+ * @returns null where the steps run out; an error above what was asked for where rounding alone is more
  */
 export function settle(problem: BlochProblem, accept: number): Settled | null {
   let counts = firstCounts(problem);
@@ -45,13 +45,12 @@ export function settle(problem: BlochProblem, accept: number): Settled | null {
     if (steps > MOST_STEPS) return null;
     runBloch(problem, finer, fine);
     const share = 0.5 / ((steps / total(counts)) ** SLOWEST - 1);
-    const floor = rounding(fine);
-    const error = share * distance(coarse, fine) + floor;
-    if (!Number.isFinite(error) || floor > accept) return null;
+    const error = share * distance(coarse, fine);
+    if (!Number.isFinite(error)) return null;
     counts = finer;
     if (error <= accept) {
       for (let i = 0; i <= EXCITED; i++) settled[i] = fine[i] + share * (fine[i] - coarse[i]);
-      return { figures: settled, counts, error };
+      return { figures: settled, counts, error: error + rounding(fine) };
     }
     factor = Math.min(MOST, Math.max(LEAST, 1.05 * (error / accept) ** (1 / EXPECTED)));
     coarse.set(fine);
