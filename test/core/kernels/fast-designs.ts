@@ -143,7 +143,8 @@ export function agreement(
     else {
       // An error that the kernel owns up to is no broken promise.
       if (found.localErrors <= 1e-9) worst = Math.max(worst, error);
-      if (error > Math.max(1, found.localErrors / 1e-9)) wrong.push(`seed ${seed}, index ${index}: ${error.toFixed(2)} times the promise`);
+      if (error > Math.max(1, found.localErrors / 1e-9))
+        wrong.push(`seed ${seed}, index ${index}: ${error.toFixed(2)} times the promise`);
     }
   }
   return { fast, declined, skipped, worst, wrong };
