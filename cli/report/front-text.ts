@@ -63,8 +63,12 @@ export function frontText(result: RunResult, directory: string, style: Style): s
     parts.push(`brightness levels out of reach: ${levelList(result.outOfReach)}`);
   if (result.explanation !== null) parts.push(explanationText(result.explanation, goal, style.color), '');
   if (result.front.length > 0) parts.push(accuracyLine(result));
+  if (result.front.length > 0) {
+    const what = axis === null ? 'area' : 'volume';
+    parts.push(`hypervolume ${threeDigits(hypervolume.value)} (${what} between the front and the corner at`);
+    parts.push(`  ${corner})`);
+  }
   parts.push(
-    `hypervolume ${threeDigits(hypervolume.value)} (${axis === null ? 'area' : 'volume'} between the front and the corner ${corner})`,
     `${evaluations} evaluations in ${duration(result.wall)}`,
     `files: ${directory}/front.csv, archive.csv, front.json, front.svg, designs/, ledger.jsonl`,
   );

@@ -116,7 +116,7 @@ export const dimensions = {
     name: 'a Rabi frequency',
     internal: '1/ps',
     units: decimal({ '1/ps': 0, 'rad/ps': 0, '1/ns': -3, 'rad/ns': -3 }),
-    display: ['1/ns', '1/ps'],
+    display: ['1/ps'],
     example: '0.4 1/ps',
   },
   temperature: {

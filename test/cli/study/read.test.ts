@@ -291,7 +291,7 @@ describe('overrides', () => {
     expect(tone('tones.0.fwhm', '7 ps').design.pulse.tones.map((t) => t.fwhm)).toEqual([7, 7]);
     expect(tone('pulse.tones.0.fwhm', '7 ps').parameters).toHaveLength(4);
     expect(tone('tones.1.gdd', '{ from: 1 ps^2, to: 3 ps^2 }').parameters).toHaveLength(6);
-    expect(tone('laser', '').design.laser).toBeNull();
+    expect(tone('drift', '').design.drift).toBeNull();
     expect(tone('collection.filter', 'null').design.collection.filter).toBeNull();
     const made = studyOf(MINIMAL, at('collection.filter.fwhm', '30 GHz')).study;
     expect(made.design.collection.filter).toEqual({ fwhm: 30, center: 0 });
