@@ -39,7 +39,7 @@ export function disagreement(a: Values, b: Values): number {
     ['mean', 'factorial2'],
     ['m1', 'm2'],
   ]) {
-    if (!(b[first] > 0) || !(a[first] > 0)) continue;
+    if (!(b[first] > 0) || !(a[first] > 0) || b[second] === undefined) continue;
     const x = a[second] / a[first] ** 2;
     const y = b[second] / b[first] ** 2;
     take(x - y, Math.max(y, FLOOR) / RELATIVE);

@@ -12,27 +12,36 @@ export class GeneralMotion implements Motion {
   private readonly all: { readonly re: Float64Array; readonly im: Float64Array };
   private segment: number;
 
+  /** @param parts steps of the expansion per step of the motion */
   constructor(
     private readonly course: Course,
     used: readonly boolean[],
+    private readonly parts: number,
   ) {
     const { request, energies, h, span } = course;
-    this.step = new UnitaryStep(request.scheme, energies, request.drive, h, used);
+    this.step = new UnitaryStep(request.scheme, energies, request.drive, h / parts, used);
     const size = energies.length ** 2;
     this.all = { re: new Float64Array(size), im: new Float64Array(size) };
     this.segment = span.first;
   }
 
   advance(n: number): void {
-    const { course, step, all } = this;
-    const { span, h, request, line } = course;
+    const { course, step, all, parts } = this;
+    const { span, h, request, line, energies } = course;
     const { breakpoints } = request.drive;
+    const part = h / parts;
     const t = span.start + (n + 0.5) * h;
-    this.segment = segmentAt(breakpoints, span, this.segment, t - NODE * h);
-    const middle = segmentAt(breakpoints, span, this.segment, t);
-    step.advance(t, this.segment, middle, segmentAt(breakpoints, span, middle, t + NODE * h));
-    all.re.set(step.re);
-    all.im.set(step.im);
+    for (let k = 0; k < parts; k++) {
+      const middle = span.start + n * h + (k + 0.5) * part;
+      this.segment = segmentAt(breakpoints, span, this.segment, middle - NODE * part);
+      const second = segmentAt(breakpoints, span, this.segment, middle);
+      const third = segmentAt(breakpoints, span, second, middle + NODE * part);
+      step.advance(middle, this.segment, second, third);
+      if (k === 0) {
+        all.re.set(step.re);
+        all.im.set(step.im);
+      } else multiplyLeft(step, all, energies.length);
+    }
     if (line === null) return;
     const { levels } = request.scheme;
     levels.forEach(({ excitons: up }, i) => {
@@ -41,8 +50,9 @@ export class GeneralMotion implements Motion {
         const c = Math.cos(angle);
         const s = Math.sin(angle);
         const k = i * levels.length + j;
-        all.re[k] = c * step.re[k] - s * step.im[k];
-        all.im[k] = s * step.re[k] + c * step.im[k];
+        const x = all.re[k];
+        all.re[k] = c * x - s * all.im[k];
+        all.im[k] = s * x + c * all.im[k];
       });
     });
   }
@@ -63,6 +73,29 @@ export class GeneralMotion implements Motion {
       const x = out[k];
       out[k] = c * x - s * out[k + 1];
       out[k + 1] = s * x + c * out[k + 1];
+    }
+  }
+}
+
+interface ComplexMatrix {
+  readonly re: Float64Array;
+  readonly im: Float64Array;
+}
+
+/** p ← a·p. */
+function multiplyLeft(a: ComplexMatrix, p: ComplexMatrix, n: number): void {
+  const x = p.re.slice();
+  const y = p.im.slice();
+  for (let i = 0; i < n; i++) {
+    for (let j = 0; j < n; j++) {
+      let re = 0;
+      let im = 0;
+      for (let k = 0; k < n; k++) {
+        re += a.re[i * n + k] * x[k * n + j] - a.im[i * n + k] * y[k * n + j];
+        im += a.re[i * n + k] * y[k * n + j] + a.im[i * n + k] * x[k * n + j];
+      }
+      p.re[i * n + j] = re;
+      p.im[i * n + j] = im;
     }
   }
 }

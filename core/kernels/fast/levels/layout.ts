@@ -61,19 +61,22 @@ export function lineFrequency(request: CountRequest, energies: readonly number[]
 }
 
 /**
- * By how much levels differ from the mean of those with as many excitons, where a collected dipole joins transitions of
- * different frequency: a coherent jump does not commute with that part of the free motion. Zero elsewhere.
+ * By how much levels differ from the mean of those with as many excitons, where transitions of different frequency are
+ * collected together: their dipole does not commute with that part of the free motion. Zero elsewhere.
  */
 export function unevenEnergies(request: CountRequest, energies: readonly number[]): number[] {
   const { dipoles, scheme } = request;
   const n = energies.length;
-  const mixed = dipoles.some(({ re, im }) => {
+  const frequencies = dipoles.map(({ re, im }) => {
     const own: number[] = [];
     for (let k = 0; k < n * n; k++) {
       if (re[k] !== 0 || im[k] !== 0) own.push(energies[k % n] - energies[Math.floor(k / n)]);
     }
-    return own.some((e) => Math.abs(e - own[0]) > LEAST_SPLITTING);
+    return own;
   });
+  // Before a filter all modes count: they feed blocks that turn with one line.
+  const together = request.filter ? [frequencies.flat()] : frequencies;
+  const mixed = together.some((own) => own.some((e) => Math.abs(e - own[0]) > LEAST_SPLITTING));
   if (!mixed) return energies.map(() => 0);
   return scheme.levels.map(({ excitons }, i) => {
     const alike = energies.filter((_, j) => scheme.levels[j].excitons === excitons);
@@ -112,8 +115,8 @@ export function layoutOf(
   return memo.get(ingredients, () => build(ingredients));
 }
 
-/** Lanes of the emitted hierarchy (emitted.ts) that sum to lane 0: no, one and more counted photons. */
-const WHOLE = { names: ['p0', 'p1', 'multiphoton'], all: [1, 2, 5] };
+/** Lanes of the emitted hierarchy (emitted.ts) that sum to lane 0: no, one and more counted photons. The last needs the others. */
+const WHOLE = [1, 2, 5];
 
 function build(ingredients: Ingredients): Layout {
   const { scheme, used, wanted } = ingredients;
@@ -127,8 +130,8 @@ function build(ingredients: Ingredients): Layout {
   let populations = scheme.levels.map((_, i) => unit(i, size * hierarchy.lanes));
   let effects = figures;
   // With the count the whole state is known from its parts.
-  if (!ingredients.filter && WHOLE.names.slice(1).every((n) => figures.some((f) => f.name === n))) {
-    const parts = WHOLE.all;
+  if (!ingredients.filter && figures.some(({ name }) => name === 'multiphoton')) {
+    const parts = WHOLE;
     entries = withoutLane(entries, parts, size);
     seeded = seeded.filter((lane) => lane > 0);
     populations = populations.map((row) => spreadLane(row, parts, size));

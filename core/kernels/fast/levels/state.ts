@@ -74,7 +74,7 @@ export class State {
     const course = { request, span, h, count, energies, line: request.filter ? problem.line : null };
     const motion = ladder
       ? new LadderMotion(course, ladder, sources[index], parts, keep)
-      : new GeneralMotion(course, used);
+      : new GeneralMotion(course, used, parts);
     const width = 2 * request.drive.components;
     const edge = new Float64Array(width);
     const kept = keep && motion instanceof LadderMotion ? this.keepPassage(index, count, h, motion) : null;
