@@ -24,25 +24,40 @@ let failures = 0;
 /** The least wall time with the processor time of that run. */
 const quickest = (runs: readonly Ended[]): Ended => runs.reduce((a, b) => (b.wall < a.wall ? b : a));
 
+/** Two runs with one worker at the same time: what the machine gives two threads at best, with what else it does. */
+async function ceiling(study: string, out: string): Promise<Ended> {
+  const both = await Promise.all(
+    ['a', 'b'].map((side) => optimize(study, `${out}-${side}`, ['--workers', '1'])),
+  );
+  const wall = Math.max(...both.map((run) => run.wall));
+  const cpu = both.reduce((sum, run) => sum + (run.cpu ?? 0), 0);
+  return { code: both[0].code, wall: wall / 2, cpu: cpu / 2 };
+}
+
 async function compare(name: string): Promise<string[][]> {
-  const runs = WORKERS.map((): Ended[] => []);
-  const tables: string[] = [];
+  const study = studyPath(name);
+  const labels = [...WORKERS.map(String), 'two runs at once, half'];
+  const runs = labels.map((): Ended[] => []);
   const loads: string[] = [];
+  const tables: string[] = [];
   for (let round = 0; round < rounds; round++) {
-    for (const [i, workers] of WORKERS.entries()) {
-      const out = join(root, `${name.replaceAll('/', '_')}-${workers}-${round}`);
+    for (const [i, label] of labels.entries()) {
+      const out = join(root, `${names.indexOf(name)}-${i}-${round}`);
       loads[i] = loadLine();
-      runs[i].push(await optimize(studyPath(name), out, ['--workers', String(workers)]));
-      tables.push(tablesOf(out));
+      if (i === WORKERS.length) runs[i].push(await ceiling(study, out));
+      else {
+        runs[i].push(await optimize(study, out, ['--workers', label]));
+        tables.push(tablesOf(out));
+      }
     }
   }
   const same = tables.every((text) => text === tables[0]);
   if (!same || runs.flat().some(({ code }) => code !== 0)) failures++;
   const one = quickest(runs[0]).wall;
-  return WORKERS.map((workers, i) => {
+  return labels.map((label, i) => {
     const { wall, cpu } = quickest(runs[i]);
     const share = cpu === null ? '' : two(cpu / wall);
-    const cells = [name, `${workers}`, two(wall), cpu === null ? '' : two(cpu), share, two(one / wall)];
+    const cells = [name, label, two(wall), cpu === null ? '' : two(cpu), share, two(one / wall)];
     return [...cells, same ? 'yes' : 'NO', loads[i]];
   });
 }

@@ -6,8 +6,8 @@ const TAKEN = 1;
 const DONE = 2;
 const FAILED = 3;
 
-/** Bytes for one result, several times what figures with drift and notes take. */
-const SLOT = 1 << 15;
+/** Bytes for one result, some four times what figures with drift and notes take. */
+const SLOT = 1 << 13;
 
 /** Independent pieces of work of one kind that several threads share out among themselves; in shared memory. */
 export interface SharedBatch<Item = unknown> {
