@@ -103,8 +103,8 @@ export class LinearSystem implements LinearFlow {
   readonly length: number;
   /** Largest damping or rotation of a block, 1/ps: bounds the step of an explicit method. */
   readonly fastest: number;
-  private readonly entries: Entries;
-  private readonly values: Float64Array;
+  protected readonly entries: Entries;
+  protected readonly values: Float64Array;
   private readonly damping: Float64Array;
   private readonly damped: boolean;
   private readonly scatter: Scatter;
@@ -139,13 +139,9 @@ export class LinearSystem implements LinearFlow {
    * @param drive Re and Im of each drive component, 1/ps
    */
   derivative(drive: Float64Array, y: Float64Array, dy: Float64Array): void {
-    const { row, col, parts, width } = this.entries;
+    const { row, col } = this.entries;
     const { values, lanes } = this;
-    for (let k = 0; k < values.length; k++) {
-      let v = parts[k * width];
-      for (let p = 1; p < width; p++) v += parts[k * width + p] * drive[p - 1];
-      values[k] = v;
-    }
+    this.refresh(drive);
     if (this.damped) this.applyDamping(y, dy);
     else dy.fill(0);
     for (let k = 0; k < values.length; k++) {
@@ -155,6 +151,17 @@ export class LinearSystem implements LinearFlow {
       for (let h = 0; h < lanes; h++) dy[r + h] += v * y[c + h];
     }
     this.applyCouplings(y, dy);
+  }
+
+  /** Sets the values of L(t)'s entries for the drive values at t. */
+  protected refresh(drive: Float64Array): void {
+    const { parts, width } = this.entries;
+    const { values } = this;
+    for (let k = 0; k < values.length; k++) {
+      let v = parts[k * width];
+      for (let p = 1; p < width; p++) v += parts[k * width + p] * drive[p - 1];
+      values[k] = v;
+    }
   }
 
   private applyDamping(y: Float64Array, dy: Float64Array): void {

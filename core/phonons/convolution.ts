@@ -4,13 +4,16 @@ import { memoryWeights, STENCIL, stencilStart } from './stencil.js';
 interface Memory {
   readonly re: number;
   readonly im: number;
-  /** Amplitude of e^{−νt} and of its conjugate (zero for a real pole). */
-  readonly own: readonly [number, number];
-  readonly mirrored: readonly [number, number];
+  /** Sum and difference of the amplitudes of e^{−νt} and of its conjugate (zero for a real pole). */
+  readonly plusRe: number;
+  readonly plusIm: number;
+  readonly minusRe: number;
+  readonly minusIm: number;
   /** ∫ e^{−ν(t−s)} X̃(s) ds, (re, im) per coordinate. */
   readonly state: Float64Array;
   weights: readonly Float64Array[];
-  decay: readonly [number, number];
+  decayRe: number;
+  decayIm: number;
 }
 
 /**
@@ -26,43 +29,56 @@ export class Convolution {
   ) {
     this.memories = fit.poles
       .filter((pole, k) => pole.partner >= k)
-      .map((pole) => ({
-        re: pole.re,
-        im: pole.im,
-        own: pole.amplitude,
-        mirrored: pole.im === 0 ? [0, 0] : fit.poles[pole.partner].amplitude,
-        state: new Float64Array(2 * size),
-        weights: [],
-        decay: [0, 0],
-      }));
+      .map((pole) => {
+        const own = pole.amplitude;
+        const mirrored = pole.im === 0 ? [0, 0] : fit.poles[pole.partner].amplitude;
+        return {
+          re: pole.re,
+          im: pole.im,
+          plusRe: own[0] + mirrored[0],
+          plusIm: own[1] + mirrored[1],
+          minusRe: own[0] - mirrored[0],
+          minusIm: own[1] - mirrored[1],
+          state: new Float64Array(2 * size),
+          weights: [],
+          decayRe: 0,
+          decayIm: 0,
+        };
+      });
   }
 
   /** Sets the step; the memory so far stays. */
   setStep(h: number): void {
     for (const m of this.memories) {
-      m.weights = Array.from({ length: STENCIL - 1 }, (_, offset) => memoryWeights(m.re, m.im, h, offset));
+      m.weights = memoryWeights(m.re, m.im, h);
       const size = Math.exp(-m.re * h);
-      m.decay = [size * Math.cos(m.im * h), -size * Math.sin(m.im * h)];
+      m.decayRe = size * Math.cos(m.im * h);
+      m.decayIm = -size * Math.sin(m.im * h);
     }
   }
 
   /** Step j of a grid whose samples of X̃ lie in `series`, point after point. */
   advance(series: Float64Array, j: number, last: number): void {
-    const { size } = this;
+    const { size, memories } = this;
     const start = stencilStart(j, last);
-    for (const m of this.memories) {
+    const first = start * size;
+    for (let k = 0; k < memories.length; k++) {
+      const m = memories[k];
       const w = m.weights[j - start];
-      const [dr, di] = m.decay;
-      const { state } = m;
+      const dr = m.decayRe;
+      const di = m.decayIm;
+      const state = m.state;
       for (let x = 0; x < size; x++) {
         const re = state[2 * x];
         const im = state[2 * x + 1];
         let sr = dr * re - di * im;
         let si = dr * im + di * re;
-        for (let l = 0; l < STENCIL; l++) {
-          const g = series[(start + l) * size + x];
-          sr += w[2 * l] * g;
-          si += w[2 * l + 1] * g;
+        let at = first + x;
+        for (let l = 0; l < 2 * STENCIL; l += 2) {
+          const g = series[at];
+          sr += w[l] * g;
+          si += w[l + 1] * g;
+          at += size;
         }
         state[2 * x] = sr;
         state[2 * x + 1] = si;
@@ -73,12 +89,10 @@ export class Convolution {
   /** Writes P, (re, im) per coordinate. */
   value(out: Float64Array): void {
     out.fill(0);
-    for (const { own, mirrored, state } of this.memories) {
-      const plusRe = own[0] + mirrored[0];
-      const plusIm = own[1] + mirrored[1];
-      const minusRe = own[0] - mirrored[0];
-      const minusIm = own[1] - mirrored[1];
-      for (let x = 0; x < this.size; x++) {
+    const { memories, size } = this;
+    for (let k = 0; k < memories.length; k++) {
+      const { plusRe, plusIm, minusRe, minusIm, state } = memories[k];
+      for (let x = 0; x < size; x++) {
         const re = state[2 * x];
         const im = state[2 * x + 1];
         // c J + c' J* = (c + c') Re J + i (c − c') Im J

@@ -26,11 +26,13 @@ export interface MemoryOptions {
 }
 
 /** Phase, in rad, that the fastest motion may advance per grid step. */
-const LARGEST_PHASE = 0.2;
+const LARGEST_PHASE = 0.4;
 /** Grid step over the shortest time scale of the drive. */
-const LARGEST_SHARE = 0.15;
+const LARGEST_SHARE = 0.3;
 /** Grid step over the bath's time scale while the bath itself moves. */
-const TRANSIENT_SHARE = 0.08;
+const TRANSIENT_SHARE = 0.16;
+/** Steps of the evolution operator per grid step. */
+const SUBSTEPS = 2;
 
 /**
  * Tabulates −Σ_a [X_a, Q_aρ − ρQ_a†] along a drive. Q_a = ∫f_a(s) U X_a(t−s) U† ds follows from a convolution in the
@@ -131,9 +133,13 @@ class MemoryBuilder {
         this.heisenberg(x, series[a].subarray(j * size, (j + 1) * size));
       });
       if (j === count) break;
-      this.hamiltonian.at(this.driveAt(t + MAGNUS_NODES[0] * h, segment.source), first);
-      this.hamiltonian.at(this.driveAt(t + MAGNUS_NODES[1] * h, segment.source), second);
-      this.step.advance(first, second, h, u);
+      for (let part = 0; part < SUBSTEPS; part++) {
+        const dt = h / SUBSTEPS;
+        const from = t + part * dt;
+        this.hamiltonian.at(this.driveAt(from + MAGNUS_NODES[0] * dt, segment.source), first);
+        this.hamiltonian.at(this.driveAt(from + MAGNUS_NODES[1] * dt, segment.source), second);
+        this.step.advance(first, second, dt, u);
+      }
     }
     const values = new Float64Array((count + 1) * pattern.length);
     const q = model.baths.map(() => new Float64Array(2 * size));
@@ -277,16 +283,10 @@ export class MemoryReader {
     const first = stencilStart(Math.min(Math.max(Math.floor(x), 0), last - 1), last);
     lagrange(x - first, weights);
     const a = first * entries;
-    const [w0, w1, w2, w3, w4, w5] = weights;
     for (let e = 0; e < entries; e++) {
-      const at = a + e;
-      out[offset + e] =
-        w0 * values[at] +
-        w1 * values[at + entries] +
-        w2 * values[at + 2 * entries] +
-        w3 * values[at + 3 * entries] +
-        w4 * values[at + 4 * entries] +
-        w5 * values[at + 5 * entries];
+      let sum = 0;
+      for (let l = 0, at = a + e; l < STENCIL; l++, at += entries) sum += weights[l] * values[at];
+      out[offset + e] = sum;
     }
   }
 }

@@ -1,5 +1,6 @@
+import type { Hierarchy } from '../counting/hierarchy.js';
 import { tailEffects } from '../counting/tail.js';
-import { buildGenerator } from '../emitter/generator.js';
+import { buildGenerator, type Generator } from '../emitter/generator.js';
 import type { CountRequest, CountResult } from '../kernels/count.js';
 import { meshFor } from '../kernels/count.js';
 import { LinearSystem } from '../kernels/linear-system.js';
@@ -33,13 +34,9 @@ export function countSecondOrder(
     settling: bath.settling,
   });
   const generator = buildGenerator(model.scheme, frame, shift);
-  const system = new MemorySystem(
-    new LinearSystem(generator, hierarchy),
-    table,
-    2 * request.drive.components,
-  );
+  const system = new MemorySystem(generator, hierarchy, table, 2 * request.drive.components);
   const mesh = shortened(
-    meshFor(generator, plainDrive(request.drive, table, model.driveFactor), system.inner.fastest, effort),
+    meshFor(generator, plainDrive(request.drive, table, model.driveFactor), system.fastest, effort),
     table,
     TRANSIENT_STEP * bath.time,
   );
@@ -48,7 +45,7 @@ export function countSecondOrder(
   let populations: readonly number[] = [];
   const steps = effort.parts > 1 ? refineMesh(mesh, effort.parts) : mesh;
   const state = propagate(system, drive, steps, (t, y) => {
-    if (t <= driveEnd) populations = scheme.levels.map((_, i) => y[i * system.inner.lanes]);
+    if (t <= driveEnd) populations = scheme.levels.map((_, i) => y[i * system.lanes]);
   });
   const effects = tailEffects(buildGenerator(scheme, frame, shift), hierarchy);
   const values: Record<string, number> = {};
@@ -63,33 +60,43 @@ export function countSecondOrder(
   };
 }
 
-/** The counting hierarchy with the memory's entries added to L(t). */
-class MemorySystem {
-  readonly length: number;
+/** The counting hierarchy with the memory's entries, sampled behind the drive values, added to L(t). */
+class MemorySystem extends LinearSystem {
+  /** Entry of L(t) that each of the memory's adds to. */
+  private readonly places: Int32Array;
 
   constructor(
-    readonly inner: LinearSystem,
-    private readonly table: MemoryTable,
+    generator: Generator,
+    hierarchy: Hierarchy,
+    table: MemoryTable,
     private readonly offset: number,
   ) {
-    this.length = inner.length;
+    super(withRoomFor(generator, table), hierarchy);
+    const { row, col } = this.entries;
+    const size = this.size;
+    const index = new Map(Array.from(row, (r, k) => [r * size + col[k], k]));
+    this.places = Int32Array.from(table.row, (r, e) => index.get(r * size + table.col[e]) as number);
   }
 
-  initial(): Float64Array {
-    return this.inner.initial();
+  protected override refresh(sample: Float64Array): void {
+    super.refresh(sample);
+    const { places, values, offset } = this;
+    for (let e = 0; e < places.length; e++) values[places[e]] += sample[offset + e];
   }
+}
 
-  derivative(sample: Float64Array, y: Float64Array, dy: Float64Array): void {
-    this.inner.derivative(sample, y, dy);
-    const { row, col } = this.table;
-    const { lanes } = this.inner;
-    for (let e = 0; e < row.length; e++) {
-      const v = sample[this.offset + e];
-      const r = row[e] * lanes;
-      const c = col[e] * lanes;
-      for (let h = 0; h < lanes; h++) dy[r + h] += v * y[c + h];
-    }
-  }
+/** The generator with an entry, be it zero, wherever the memory has one. */
+function withRoomFor(generator: Generator, { row, col }: MemoryTable): Generator {
+  const { constant } = generator;
+  return {
+    ...generator,
+    constant: {
+      size: constant.size,
+      row: Int32Array.of(...constant.row, ...row),
+      col: Int32Array.of(...constant.col, ...col),
+      value: Float64Array.of(...constant.value, ...new Float64Array(row.length)),
+    },
+  };
 }
 
 function windowOf(table: MemoryTable): Float64Array {
