@@ -39,6 +39,8 @@ async function searchWithLedger(session: Session): Promise<{ outcome: SearchOutc
     signal,
     completed: new Map(run.entries.map(({ task }) => [task.id, task])),
     onTask: async (task) => {
+      // This thread has nothing else to do while others search; a failure shows where the picture is drawn.
+      if (pool.size > 1) loadDrawing().catch(() => undefined);
       wall = Math.round(earlier * 1000 + performance.now() - began) / 1000;
       await run.ledger.append({ task, wall });
     },
@@ -59,11 +61,9 @@ async function work(session: Session): Promise<RunResult | null> {
   const { outcome, wall } = await searchWithLedger(session);
   if (outcome.kind === 'interrupted') return null;
   const total = study.search.evaluations;
-  const quoting = quoteFront(study, outcome, session.pool, signal, (done, points) =>
+  const quoted = await quoteFront(study, outcome, session.pool, signal, (done, points) =>
     progress.update({ stage: `quoting design ${done} of ${points}`, done: total, total, best: '' }),
   );
-  if (session.pool.size > 1) loadDrawing().catch(() => undefined);
-  const quoted = await quoting;
   if (quoted === null) return null;
   const result: RunResult = {
     ...{ study, hash, version: packageVersion(), wall },
