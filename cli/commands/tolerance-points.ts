@@ -14,7 +14,7 @@ export const DRIFTS = ['area', 'width', 'detuning', 'filterCenter'] as const;
 export type DriftName = (typeof DRIFTS)[number];
 
 /** Beyond these rms values a drift is no drift any more, or not allowed in a study; filter centre in filter widths. */
-const MOST = { area: 0.5, width: 0.15, detuning: 2, filterCenter: 2 } as const;
+export const MOST = { area: 0.5, width: 0.15, detuning: 2, filterCenter: 2 } as const;
 /** Where the search for the largest rms begins. */
 const FIRST = { area: 1e-3, width: 1e-3, detuning: 1e-4, filterCenter: 1e-3 } as const;
 /** Relative width of the bracket that bisection ends with. */

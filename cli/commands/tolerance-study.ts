@@ -9,6 +9,7 @@ import {
   type Finding,
   type Largest,
   largestRms,
+  MOST,
   scaled,
   withDrift,
   type Yield,
@@ -96,7 +97,9 @@ function sweepAlong(
   unit: DriftSpec,
   ofStudy: boolean,
 ): ToleranceSweep {
-  const points = FACTORS.flatMap((factor) => {
+  // A width that may not grow any more would look like one that does no harm.
+  const possible = FACTORS.filter((factor) => factor * unit.width <= MOST.width);
+  const points = possible.flatMap((factor) => {
     const { verdict } = assess(withDrift(design, scaled(unit, factor)), demand);
     if (!Number.isFinite(verdict.impurity)) return [];
     return [{ factor, brightness: verdict.brightness, impurity: verdict.impurity }];

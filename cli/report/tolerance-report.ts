@@ -156,10 +156,12 @@ export function toleranceDocument(result: ToleranceResult): unknown {
   };
 }
 
-const legend = ({ name, unit, ofStudy }: ToleranceSweep): string =>
-  name === 'together'
-    ? 'all drifts of the study'
-    : `${driftText(unit)}${ofStudy ? '' : ' (largest tolerated)'}`;
+function legend({ name, unit, ofStudy }: ToleranceSweep, { largest }: ToleranceResult): string {
+  if (name === 'together') return 'all drifts of the study';
+  if (ofStudy) return driftText(unit);
+  const tolerated = largest.some(({ drift, missedBeyond }) => drift === name && missedBeyond.length > 0);
+  return `${driftText(unit)} (largest ${tolerated ? 'tolerated' : 'tried'})`;
+}
 
 /** Picture of brightness and impurity against the rms of each drift. */
 export function tolerancePicture(result: ToleranceResult): Promise<string> {
@@ -170,7 +172,7 @@ export function tolerancePicture(result: ToleranceResult): Promise<string> {
     subtitle: `demand: ${demandText(result)}`,
     brightnessTitle: figureLabel(`${judged}signal.${goal.brightness}`),
     impurityTitle: figureLabel(`${judged}collected.${goal.impurity}`),
-    curves: result.sweeps.map((sweep) => ({ name: legend(sweep), points: sweep.points })),
+    curves: result.sweeps.map((sweep) => ({ name: legend(sweep, result), points: sweep.points })),
     brightness,
     impurity,
   });

@@ -65,6 +65,7 @@ export function seriesChart(plot: SeriesPlot): TopLevelSpec {
     columns: 1,
     symbolOpacity: 1,
     labelLimit: 540,
+    titleLimit: 540,
     title: plot.legend ?? null,
   };
   const lines = {

@@ -30,12 +30,13 @@ export function toleranceChart(plot: TolerancePlot): TopLevelSpec {
   const panel = (field: 'brightness' | 'impurity', title: string, demanded: number | null, last: boolean) => {
     const shown = [...values.map((v) => v[field]), ...(demanded === null ? [] : [demanded])];
     const type = axisScale(shown);
+    const small = Math.max(...shown.map(Math.abs)) < 0.01;
     const y = {
       field,
       type: 'quantitative',
       title,
       scale: type === 'log' ? { type, nice: false, padding: 8 } : { type, zero: false },
-      axis: { tickCount: 5, format: type === 'log' ? '.0e' : '.3~g', minExtent: 60 },
+      axis: { tickCount: 5, format: type === 'log' ? '.0e' : small ? '.2~e' : '.3~g', minExtent: 60 },
     };
     const line = {
       data: { values },
@@ -53,7 +54,7 @@ export function toleranceChart(plot: TolerancePlot): TopLevelSpec {
           type: 'nominal',
           title: null,
           scale: { domain: plot.curves.map(({ name }) => name), range: PALETTE.slice(0, plot.curves.length) },
-          legend: { orient: 'bottom', columns: 2, columnPadding: 24 },
+          legend: { orient: 'bottom', direction: 'vertical', columns: 1, labelLimit: 540 },
         },
       },
     };
