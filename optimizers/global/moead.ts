@@ -57,7 +57,11 @@ function tchebycheff({ objectives }: Reply, weights: readonly number[], { ideal,
   }, 0);
 }
 
-function nadirOf(members: readonly Member[], ideal: readonly number[]): number[] {
+/** Share of the first generation's range below which an objective's range is not taken to have shrunk. */
+const LEAST_RANGE = 0.2;
+
+/** The worst of each objective over feasible members, or over all where there are none. */
+function worstOf(members: readonly Member[], ideal: readonly number[]): number[] {
   const feasible = members.filter(({ reply }) => violation(reply) === 0);
   const from = feasible.length > 1 ? feasible : members;
   return ideal.map((low, k) => Math.max(low, ...from.map(({ reply }) => reply.objectives[k])));
@@ -125,8 +129,11 @@ export function moead(options: Partial<MoeadOptions> = {}): Method {
       const ideal = members[0].reply.objectives.map((_, k) =>
         Math.min(...members.map(({ reply }) => reply.objectives[k])),
       );
+      const ranges = worstOf(members, ideal).map((high, k) => high - ideal[k]);
       for (;;) {
-        const scale = { ideal, nadir: nadirOf(members, ideal) };
+        // A population that has collapsed to a corner of the front would otherwise blow that corner up and stay there.
+        const nadir = worstOf(members, ideal).map((high, k) => Math.max(high, ideal[k] + LEAST_RANGE * ranges[k]));
+        const scale = { ideal, nadir };
         for (const own of shuffled(everyone, random)) {
           const pool = random.next() < all.local ? near[own] : everyone;
           const child = childOf(pool, members, setup, all, random);

@@ -10,14 +10,24 @@ const ISLANDS = 4;
 /** Evaluations that make a further island worth while. */
 const ISLAND_WORTH = 60;
 const MIGRANTS = 3;
+/** Share of an island that is taken from the front. */
+const FRONT_SHARE = 0.25;
 
-/** Ring migration: each island begins with its own population and the best few of its neighbour in place of its last. */
-function migrate(islands: Knowledge['islands'], population: number): (readonly (readonly number[])[])[] {
-  return islands.map((own, i) => {
-    if (islands.length === 1) return own;
-    const guests = islands[(i + 1) % islands.length].slice(0, MIGRANTS);
-    return [...own.slice(0, Math.max(0, population - guests.length)), ...guests];
+/**
+ * Where an island begins: with its own population and, in place of its last, the best few of its neighbour (ring
+ * migration) and members of the front, which solves may have brought far beyond it.
+ */
+function starts(known: Knowledge, island: number, population: number): (readonly number[])[] {
+  const { islands, front, problem } = known;
+  const guests = islands.length > 1 ? islands[(island + 1) % islands.length].slice(0, MIGRANTS) : [];
+  const count = Math.min(front.length, Math.floor(FRONT_SHARE * population));
+  // Each island is given other members, spread over the whole front.
+  const members = Array.from({ length: count }, (_, i) => {
+    const place = (i + (island + 0.5) / islands.length) / count;
+    return problem.unitOf(front[Math.floor(place * front.length)].values);
   });
+  const others = [...guests, ...members];
+  return [...islands[island].slice(0, Math.max(0, population - others.length)), ...others];
 }
 
 /** A budget too small for a population: evenly spread points. */
@@ -33,11 +43,15 @@ export function* explore(known: Knowledge, name: string, budget: number): Plan {
   const population = Math.min(40, Math.max(4, 4 * Math.floor(share / 24)));
   const epochs = Math.ceil(share / EPOCH);
   for (const [epoch, spend] of split(budget, epochs).entries()) {
-    const starts = known.islands.length === count ? migrate(known.islands, population) : [];
+    const begun = known.islands.length === count;
     const floor = known.spec.goal.front.from ?? rangeOfInterest(known)?.from ?? null;
     const stage = epochs > 1 ? `${name}-${epoch + 1}` : name;
     const tasks = split(spend, count).map((size, i) =>
-      known.task(stage, 'island', size, { population, start: starts[i] ?? [], floor }),
+      known.task(stage, 'island', size, {
+        population,
+        start: begun ? starts(known, i, population) : [],
+        floor,
+      }),
     );
     const results = yield { name: stage, tasks };
     known.islands = results.map((result) => (result.summary as IslandSummary | null)?.population ?? []);

@@ -22,7 +22,7 @@ const JUMP: Reach = { far: true, radius: 0.2, shake: 0.02, iterations: 24 };
 /** On the right branch, perhaps. */
 const CONTINUE: Reach = { far: true, radius: 0.1, shake: 0.02, iterations: 20 };
 /** Next to its end. */
-const NEIGHBOUR: Reach = { far: false, radius: 0.02, shake: 0, iterations: 6 };
+const NEIGHBOUR: Reach = { far: true, radius: 0.03, shake: 0, iterations: 12 };
 
 /** Iterations below which a solve is not begun. */
 const FEWEST = 4;
@@ -173,15 +173,27 @@ export function* sweep(known: Knowledge, name: string, budget: number, tried: Se
 }
 
 /** The brightest member of the archive, where it lies beyond all solutions. */
-function brightEnd(known: Knowledge): Pick<Solution, 'level' | 'x' | 'impurity'>[] {
+function brightEnd(known: Knowledge): Knot[] {
   const brightest = known.front[known.front.length - 1];
   const last = bestSolutions(known).at(-1);
   if (brightest === undefined || last === undefined || brightest.brightness <= last.level) return [];
   return [{ level: brightest.brightness, x: unitOf(known, brightest), impurity: brightest.impurity }];
 }
 
-/** Gaps between levels that could gain the front less than this share of all are left. */
-const NEGLIGIBLE = 1e-6;
+type Knot = Pick<Solution, 'level' | 'x' | 'impurity'>;
+
+/** Longest step ahead along a branch, in steps between its last two solutions. */
+const LONGEST = 2;
+
+/** Where a branch through two solutions leads at a higher level, by a secant. */
+function ahead(before: Knot, low: Knot, level: number): number[] {
+  const ratio = Math.min(LONGEST, (level - low.level) / (low.level - before.level));
+  return low.x.map((value, k) => Math.min(Math.max(value + ratio * (value - before.x[k]), 0), 1));
+}
+
+/** Gaps that are this share of the front's whole range are left, within a branch and between two. */
+const SMALL_GAP = 5e-4;
+const SMALL_JUMP = 1e-5;
 
 /**
  * New levels between neighbouring solutions, where the front may gain the most: from the point between the two; on
@@ -194,19 +206,31 @@ export function* refine(
   count: number,
   tried: Set<string>,
 ): Plan<boolean> {
-  const solutions = [...bestSolutions(known), ...brightEnd(known)];
+  const solutions: Knot[] = [...bestSolutions(known), ...brightEnd(known)];
   const gaps = solutions.slice(1).map((high, i) => ({ low: solutions[i], high }));
   const size = ({ low, high }: (typeof gaps)[number]) =>
     (high.level - low.level) * Math.max(0, high.impurity - low.impurity);
-  const smallest = NEGLIGIBLE * gaps.reduce((sum, gap) => sum + size(gap), 0);
-  const widest = gaps.filter((gap) => size(gap) > smallest).sort((a, b) => size(b) - size(a));
+  const one = ({ low, high }: (typeof gaps)[number]) => distance(known.problem, low.x, high.x) < BRANCH_WIDTH;
+  const [first, last] = [solutions[0], solutions[solutions.length - 1]];
+  const whole = gaps.length > 0 ? size({ low: first, high: last }) : 0;
+  const widest = gaps
+    .filter((gap) => size(gap) > (one(gap) ? SMALL_GAP : SMALL_JUMP) * whole)
+    .sort((a, b) => size(b) - size(a));
   const starts = widest.slice(0, count).flatMap(({ low, high }): Start[] => {
     const level = (low.level + high.level) / 2;
-    if (distance(known.problem, low.x, high.x) < BRANCH_WIDTH) {
+    if (one({ low, high })) {
       return [{ level, x: low.x.map((value, k) => (value + high.x[k]) / 2), ...NEIGHBOUR }];
     }
     const from = [low, high].find(({ x }) => isNew(tried, level, x));
-    return from === undefined ? [] : [{ level, x: from.x, ...CONTINUE }];
+    if (from === undefined) return [];
+    const before = from === low ? solutions[solutions.indexOf(low) - 1] : undefined;
+    return [
+      {
+        level,
+        x: before && one({ low: before, high: low }) ? ahead(before, low, level) : from.x,
+        ...CONTINUE,
+      },
+    ];
   });
   yield* solveAll(known, name, starts, budget);
   return starts.length > 0;

@@ -45,6 +45,9 @@ const BRIGHTNESS_MARGIN = 1e-5;
 /** Weight of a missing brightness against the relative impurity, when the best of a solve is chosen. */
 const SHORTFALL = 1e4;
 
+/** Variables beyond which the quadratic subproblems of SQP cost more than they gain. */
+const MANY = 12;
+
 /** Relative gain in impurity that is not worth another iteration. */
 const TOLERANCE = 5e-6;
 
@@ -92,9 +95,10 @@ export const solveTask: TaskRunner = (task, { spec, problem, recorder, seed }): 
     budget: task.budget,
     gradient: exact && recorder.differentiable,
   };
-  const method = far
-    ? movingAsymptotes({ reach: radius, tolerance: TOLERANCE })
-    : sqp({ radius, tolerance: TOLERANCE });
+  const method =
+    far || problem.space.dimension > MANY
+      ? movingAsymptotes({ reach: radius, tolerance: TOLERANCE })
+      : sqp({ radius, tolerance: TOLERANCE });
   optimizeInBatches(method, setup, (trials, gradient) =>
     gradient
       ? trials.map(slopesAt)
