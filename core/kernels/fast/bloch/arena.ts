@@ -13,6 +13,7 @@ export function resetArena(): void {
 /** Numbers of any value. */
 export function take(length: number): Float64Array {
   if (used + length > memory.length) {
+    // What was taken stays where it is.
     memory = new Float64Array(Math.max(2 * memory.length, length));
     used = 0;
   }

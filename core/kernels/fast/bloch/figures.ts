@@ -28,9 +28,6 @@ const NAMES = [
   'thinnedMultiphoton',
 ] as const;
 
-/** Place of a figure by target name, or −1. */
-export const placeOf = (name: string): number => (NAMES as readonly string[]).indexOf(name);
-
 /** Figures by target name. */
 export function named(figures: Float64Array): Record<string, number> {
   const values: Record<string, number> = {};

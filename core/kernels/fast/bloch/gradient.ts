@@ -1,8 +1,7 @@
 import type { CountGradient, Sensitivity } from '../../gradient.js';
 import { resetArena, take, takeZeros } from './arena.js';
-import type { Chain } from './chain.js';
+import { CHAIN_STATE, type Chain } from './chain.js';
 import { adjointKicks } from './chain-adjoint.js';
-import { FACTORIAL, MEAN, MULTIPHOTON, P0, P1, placeOf, THINNED } from './figures.js';
 import { spatialAdjoint } from './magnus-adjoint.js';
 import { BLOCK, NODES, PLACES } from './nodes.js';
 import { correctionBound } from './pace.js';
@@ -20,28 +19,30 @@ interface SeededChain {
   readonly weights: readonly (readonly [number, number, number])[];
 }
 
-/** Figures of each kind of chain, in the order of its traces. −1: the trace is 1 whatever happens. */
+/** Figures of each kind of chain, in the order of its traces; the first trace of the moments is 1 whatever happens. */
 const KINDS = [
-  { make: momentChain, places: [-1, MEAN, FACTORIAL] },
-  { make: countChain, places: [P0, P1, MULTIPHOTON] },
-  { make: thinnedChain, places: [THINNED, THINNED + 1, THINNED + 2] },
+  { make: momentChain, names: [null, 'mean', 'factorial2'] },
+  { make: countChain, names: ['p0', 'p1', 'multiphoton'] },
+  { make: thinnedChain, names: ['thinned0', 'thinned1', 'thinnedMultiphoton'] },
 ] as const;
+const KNOWN = new Set<string>(KINDS.flatMap(({ names }) => names.filter((name) => name !== null)));
 
 /** The chains that matter, or null where a scalar depends on a figure that no chain has. */
 function seededChains(problem: BlochProblem, seeds: readonly Weights[]): SeededChain[] | null {
-  const vectors = seeds.map((seed) => {
-    const byPlace = new Map<number, number>();
-    for (const [name, weight] of Object.entries(seed)) if (weight !== 0) byPlace.set(placeOf(name), weight);
-    return byPlace;
-  });
-  const known = new Set<number>(KINDS.flatMap(({ places }) => places.filter((p) => p >= 0)));
-  if (vectors.some((v) => [...v.keys()].some((place) => !known.has(place)))) return null;
+  for (const seed of seeds) {
+    for (const name in seed) if (seed[name] !== 0 && !KNOWN.has(name)) return null;
+  }
   const out: SeededChain[] = [];
-  for (const { make, places } of KINDS) {
-    const weights = vectors.map(
-      (v) => places.map((p) => v.get(p) ?? 0) as unknown as [number, number, number],
-    );
-    if (weights.some((w) => w.some((x) => x !== 0))) out.push({ chain: make(problem), weights });
+  for (const { make, names } of KINDS) {
+    let any = false;
+    const weights: [number, number, number][] = [];
+    for (const seed of seeds) {
+      const of = (name: string | null) => (name === null ? 0 : (seed[name] ?? 0));
+      const row: [number, number, number] = [of(names[0]), of(names[1]), of(names[2])];
+      any ||= row[0] !== 0 || row[1] !== 0 || row[2] !== 0;
+      weights.push(row);
+    }
+    if (any) out.push({ chain: make(problem, take(CHAIN_STATE)), weights });
   }
   return out;
 }
@@ -74,23 +75,28 @@ export function differentiate(
   counts: readonly number[],
   seeds: readonly Weights[],
 ): Omit<CountGradient, 'result'> | null {
+  resetArena();
   const seeded = seededChains(problem, seeds);
   if (!seeded) return null;
-  resetArena();
   const stretches = recordTape(
     problem,
     counts,
     seeded.map(({ chain }) => chain),
   );
   const total = stretches.reduce((sum, s) => sum + s.steps, 0);
-  const times = new Float64Array(NODES * total);
-  const drives = seeds.map(() => new Float64Array(2 * NODES * total));
+  // One piece of memory for all that is handed out.
+  const length = NODES * total;
+  const buffer = new ArrayBuffer(length * (8 + 16 * seeds.length + 4));
+  const times = new Float64Array(buffer, 0, length);
+  const drives = seeds.map((_, s) => new Float64Array(buffer, 8 * length * (1 + 2 * s), 2 * length));
+  const segments = new Int32Array(buffer, 8 * length * (1 + 2 * seeds.length), length);
   const shifts = seeds.map(() => 0);
-  const torque = seeds.map(() => new Float64Array(3));
+  const torque = seeds.map(() => takeZeros(3));
   const adjoints = seeded.map(({ weights }) => weights.map((w) => seedAdjoint(w)));
   finalKick(stretches[stretches.length - 1], seeded, adjoints, torque);
   let at = total;
-  for (const stretch of [...stretches].reverse()) {
+  for (let k = stretches.length - 1; k >= 0; k--) {
+    const stretch = stretches[k];
     at -= stretch.steps;
     const slopes = sweepChains(stretch, seeded, adjoints);
     sampleTimes(stretch, times, NODES * at);
@@ -99,7 +105,7 @@ export function differentiate(
   }
   return {
     times,
-    segments: segmentsOf(problem, times),
+    segments: placeInSegments(problem, times, segments),
     sensitivities: seeds.map(
       (_, s): Sensitivity => ({ drive: drives[s], shift: shifts[s], kappa: 0, center: 0 }),
     ),
@@ -107,7 +113,11 @@ export function differentiate(
 }
 
 function seedAdjoint([first, second, rest]: readonly [number, number, number]): Float64Array {
-  return Float64Array.of(0, 0, 0, first, 0, 0, 0, second, rest);
+  const adjoint = takeZeros(CHAIN_STATE);
+  adjoint[3] = first;
+  adjoint[7] = second;
+  adjoint[8] = rest;
+  return adjoint;
 }
 
 type Adjoints = readonly (readonly Float64Array[])[];
@@ -118,9 +128,9 @@ function finalKick(
   adjoints: Adjoints,
   torque: readonly Float64Array[],
 ): void {
-  const axis = last.axes.slice(3 * last.steps, 3 * last.steps + 3);
+  const axis = last.axes.subarray(3 * last.steps, 3 * last.steps + 3);
   torque.forEach((sum, s) => {
-    const slope = new Float64Array(3);
+    const slope = takeZeros(3);
     seeded.forEach(({ chain }, c) => {
       adjointKicks(chain, LAST, axis, chain.state, 0, 1, adjoints[c][s], slope);
     });
@@ -222,9 +232,9 @@ function followBack(turns: Float64Array, back: Float64Array): void {
   }
 }
 
-function segmentsOf({ drive }: BlochProblem, times: Float64Array): Int32Array {
+function placeInSegments({ drive }: BlochProblem, times: Float64Array, segments: Int32Array): Int32Array {
   const { breakpoints } = drive;
-  const segments = new Int32Array(times.length);
+  if (breakpoints.length === 2) return segments;
   let segment = 0;
   for (let i = 0; i < times.length; i++) {
     while (segment + 2 < breakpoints.length && times[i] >= breakpoints[segment + 1]) segment++;

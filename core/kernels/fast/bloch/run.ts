@@ -42,14 +42,11 @@ const ladderState = new Float64Array(LADDER_STATE);
 const rotation = new Float64Array(4);
 
 /** Chains of the moments, of the emitted count and of the thinned one, at the start. */
-export const momentChain = ({ model }: BlochProblem, state = new Float64Array(CHAIN_STATE)): Chain =>
+export const momentChain = ({ model }: BlochProblem, state: Float64Array): Chain =>
   chain(1, model.collected, 2 * model.collected, state);
-export const countChain = ({ model }: BlochProblem, state = new Float64Array(CHAIN_STATE)): Chain =>
+export const countChain = ({ model }: BlochProblem, state: Float64Array): Chain =>
   chain(1 - model.collected, model.collected, model.collected, state);
-export function thinnedChain(
-  { model, thinning }: BlochProblem,
-  state = new Float64Array(CHAIN_STATE),
-): Chain {
+export function thinnedChain({ model, thinning }: BlochProblem, state: Float64Array): Chain {
   const seen = model.collected * (thinning ?? 0);
   return chain(1 - seen, seen, seen, state);
 }

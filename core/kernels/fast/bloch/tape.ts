@@ -36,7 +36,8 @@ export function recordTape(
   counts: readonly number[],
   chains: readonly Chain[],
 ): Stretch[] {
-  const q = Float64Array.of(1, 0, 0, 0);
+  const q = takeZeros(4);
+  q[0] = 1;
   return problem.spans.map((part, index) => {
     const { span, frame } = part;
     if (!span.gap && index > 0) turnAbout(q, phaseAt(frame, span.start));
