@@ -2,8 +2,8 @@ import type { CountRequest } from '../../count.js';
 import type { FastKernel } from '../contract.js';
 import { smoothSpans } from '../spans.js';
 import { darkStaysDark, differentiate } from './gradient.js';
-import { refine, type Series } from './refine.js';
-import { type Problem, problemOf, type Run, run } from './run.js';
+import { refine, refineShared, type Series } from './refine.js';
+import { type Problem, problemOf, type Run, run, tablesOf } from './run.js';
 import { firstCounts } from './steps.js';
 
 /**
@@ -41,6 +41,14 @@ interface Solved {
   readonly series: Series<Run>;
 }
 
+/** A sixth of a shared table's steps over the steps of a first run by itself. */
+const SHARE = 0.31;
+
+function tabulate(problem: Problem, counts: readonly number[]) {
+  const tables = tablesOf(problem, counts);
+  return { tables, error: tables.reduce((sum, table) => sum + (table?.error() ?? 0), 0) };
+}
+
 function solve(request: CountRequest, keep: boolean): Solved | null {
   const spans = smoothSpans(request.drive);
   if (!spans) return null;
@@ -49,7 +57,18 @@ function solve(request: CountRequest, keep: boolean): Solved | null {
   const counts = firstCounts(problem);
   if (!counts) return null;
   const { tolerance, parts } = request.effort;
-  const series = refine(counts, tolerance * ACCEPT, (steps) => run(problem, steps, keep), parts);
+  const accept = tolerance * ACCEPT;
+  // Behind a filter the kicks need steps that are fine enough for the rotations, which then cost little.
+  const series =
+    request.filter || !problem.ladder
+      ? refine(counts, accept, (steps) => run(problem, steps, keep), parts)
+      : refineShared(
+          counts.map((n) => Math.ceil(n * SHARE)),
+          accept,
+          (steps) => tabulate(problem, steps),
+          (steps, tables) => run(problem, steps, keep, tables),
+          parts,
+        );
   return series && { problem, series };
 }
 

@@ -3,8 +3,9 @@ import { phaseAt } from '../bloch/frame.js';
 import { NODES } from '../bloch/nodes.js';
 import type { Span } from '../spans.js';
 import type { Ladder } from './ladder.js';
-import { edgeOf, LadderStep } from './ladder-step.js';
-import { nodeTable, type Source } from './table.js';
+import { edgeOf } from './ladder-step.js';
+import type { Source } from './table.js';
+import { keepOne, type Unitaries, type UnitaryTable, unitaries } from './unitary-table.js';
 
 /** The unitaries of successive steps over all levels, and the drive between them, in the frame of the state. */
 export interface Motion {
@@ -33,67 +34,39 @@ export interface Course {
 /** Steps on a ladder; every other level only turns. */
 export class LadderMotion implements Motion {
   readonly three = { re: new Float64Array(9), im: new Float64Array(9) };
-  private readonly step: LadderStep;
-  readonly nodes: Float64Array;
-  /** Unitaries of all parts in the source's frame and of all steps in the state's, where they are kept for derivatives. */
-  readonly kept: { readonly parts: Unitaries; readonly steps: Unitaries } | null;
+  /** Steps of the table per step of the motion. */
+  readonly parts: number;
+  /** Unitaries of all steps in the state's frame, where they are kept for derivatives. */
+  readonly kept: Unitaries | null;
   private readonly all: { readonly re: Float64Array; readonly im: Float64Array };
   private last = 0;
 
-  /**
-   * @param parts steps of the expansion per step of the motion
-   * @param keep whether to keep what derivatives need
-   */
+  /** @param keep whether to keep what derivatives need */
   constructor(
     readonly course: Course,
-    readonly ladder: Ladder,
-    readonly source: Source,
-    readonly parts: number,
+    readonly table: UnitaryTable,
     keep: boolean,
   ) {
-    const { request, span, h, count, energies } = course;
-    const part = h / parts;
-    this.step = new LadderStep(ladder.lower, ladder.upper);
-    const nodes = nodeTable(request.drive, ladder.component, source, span, part, count * parts, 0.5 * part);
-    this.nodes = keep ? nodes.slice(0, 2 * NODES * count * parts) : nodes;
-    this.kept = keep ? { parts: unitaries(count * parts), steps: unitaries(count) } : null;
-    const size = energies.length ** 2;
+    this.parts = table.count / course.count;
+    this.kept = keep ? unitaries(course.count) : null;
+    const size = course.energies.length ** 2;
     this.all = { re: new Float64Array(size), im: new Float64Array(size) };
   }
 
-  advance(n: number): void {
-    const { course, step, parts, nodes, three, kept } = this;
-    this.last = n;
-    for (let k = 0; k < parts; k++) {
-      const p = n * parts + k;
-      const { first, second, slope } = this.falls(p);
-      step.set(nodes, 2 * NODES * p, first, second, slope);
-      if (kept) keepOne(step, kept.parts, p);
-      if (k === 0) {
-        // Nine numbers: the built-in copy takes longer.
-        for (let i = 0; i < 9; i++) {
-          three.re[i] = step.re[i];
-          three.im[i] = step.im[i];
-        }
-      } else multiplyThree(step.re, step.im, three.re, three.im);
-    }
-    if (course.line !== null) this.toLine(n);
-    if (kept) keepOne(three, kept.steps, n);
+  get source(): Source {
+    return this.table.stretch.source;
   }
 
-  /** What LadderStep.set asks of the energies over part p of the span. */
-  falls(p: number): { readonly first: number; readonly second: number; readonly slope: number } {
-    const { course, ladder, source, parts } = this;
-    const { energies, h, span } = course;
-    const [a, b, c] = ladder.levels;
-    const part = h / parts;
-    const { rate, chirp, origin } = source.frame;
-    const turn = part * (rate + 2 * chirp * (span.start + (p + 0.5) * part - origin));
-    return {
-      first: part * (energies[a] - energies[b]) - turn,
-      second: part * (energies[b] - energies[c]) - turn,
-      slope: 2 * chirp * part * part,
-    };
+  get ladder(): Ladder {
+    return this.table.stretch.ladder;
+  }
+
+  advance(n: number): void {
+    const { course, parts, three, kept, table } = this;
+    this.last = n;
+    table.product(n * parts, parts, three);
+    if (course.line !== null) this.toLine(n);
+    if (kept) keepOne(three, kept, n);
   }
 
   /** Makes a kept step the last one again. */
@@ -102,8 +75,8 @@ export class LadderMotion implements Motion {
     if (!kept) throw new Error('no steps were kept');
     this.last = n;
     for (let k = 0; k < 9; k++) {
-      three.re[k] = kept.steps.re[9 * n + k];
-      three.im[k] = kept.steps.im[9 * n + k];
+      three.re[k] = kept.re[9 * n + k];
+      three.im[k] = kept.im[9 * n + k];
     }
   }
 
@@ -159,11 +132,11 @@ export class LadderMotion implements Motion {
   }
 
   driveAfter(n: number, out: Float64Array): void {
-    const { course, ladder, nodes, parts } = this;
+    const { course, ladder, table, parts } = this;
     const { span, h } = course;
     const at = 2 * ladder.component;
-    edgeOf(nodes, 2 * NODES * ((n + 1) * parts - 1), out, at);
-    const scale = (2 * parts) / h;
+    edgeOf(table.nodes, 2 * NODES * ((n + 1) * parts - 1), out, at);
+    const scale = 2 / table.h;
     const phase = this.phase(span.start + (n + 1) * h);
     const x = scale * out[at];
     const y = scale * out[at + 1];
@@ -172,48 +145,8 @@ export class LadderMotion implements Motion {
   }
 }
 
-/** Unitaries one after another, nine numbers each. */
-export interface Unitaries {
-  readonly re: Float64Array;
-  readonly im: Float64Array;
-}
-
-const unitaries = (count: number): Unitaries => ({
-  re: new Float64Array(9 * count),
-  im: new Float64Array(9 * count),
-});
-
-function keepOne(one: Unitaries, all: Unitaries, at: number): void {
-  for (let k = 0; k < 9; k++) {
-    all.re[9 * at + k] = one.re[k];
-    all.im[9 * at + k] = one.im[k];
-  }
-}
-
 function turnBy(re: Float64Array, im: Float64Array, k: number, c: number, s: number): void {
   const x = re[k];
   re[k] = c * x - s * im[k];
   im[k] = s * x + c * im[k];
-}
-
-/** p ← a·p on 3×3 complex matrices. */
-export function multiplyThree(ar: Float64Array, ai: Float64Array, pr: Float64Array, pi: Float64Array): void {
-  for (let j = 0; j < 3; j++) {
-    const x0 = pr[j];
-    const y0 = pi[j];
-    const x1 = pr[j + 3];
-    const y1 = pi[j + 3];
-    const x2 = pr[j + 6];
-    const y2 = pi[j + 6];
-    for (let i = 0; i < 9; i += 3) {
-      const a = ar[i];
-      const b = ai[i];
-      const c = ar[i + 1];
-      const d = ai[i + 1];
-      const e = ar[i + 2];
-      const f = ai[i + 2];
-      pr[i + j] = a * x0 - b * y0 + (c * x1 - d * y1) + (e * x2 - f * y2);
-      pi[i + j] = a * y0 + b * x0 + (c * y1 + d * x1) + (e * y2 + f * x2);
-    }
-  }
 }

@@ -55,16 +55,16 @@ export class DriveDerivatives {
    */
   addStep(n: number, torques: readonly Float64Array[]): void {
     const { motion, short, inner } = this;
-    const { course, parts, nodes, kept } = motion;
-    if (!kept) throw new Error('no steps were kept');
+    const { course, parts, table } = motion;
+    const { nodes, all } = table;
     if (course.line !== null) {
       const phase = motion.phase(course.span.start + (n + 1) * course.h);
       for (const q of torques) toSource(q, phase);
     }
     for (let p = (n + 1) * parts - 1; p >= n * parts; p--) {
-      const { first, second, slope } = motion.falls(p);
-      const re = kept.parts.re.subarray(9 * p, 9 * p + 9);
-      const im = kept.parts.im.subarray(9 * p, 9 * p + 9);
+      const { first, second, slope } = table.falls(p);
+      const re = all.re.subarray(9 * p, 9 * p + 9);
+      const im = all.im.subarray(9 * p, 9 * p + 9);
       short.setShort(nodes, 2 * NODES * p, first, second, slope, 0.5 - INSIDE, 0.5);
       torques.forEach((q, f) => {
         this.put(f, PER_PART * (p + 1), WEIGHTS.end, q);

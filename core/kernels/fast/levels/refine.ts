@@ -63,6 +63,70 @@ function series<R extends { readonly result: CountResult }>(
   return null;
 }
 
+/** Runs that share one table of rotations: steps of a sixth, kicks after every third, every second and every one. */
+const SHARED = { finest: 6, kicks: [2, 3, 6] };
+/** Shared series before a kernel gives up, and growth of the steps to the next where an error was nearly met or not. */
+const ROUNDS = 4;
+const ROUND_GROWTH = { near: 1.25, far: 1.6 };
+/** Error over the accepted one that counts as nearly met. */
+const NEAR = 20;
+
+/**
+ * Series of three runs on the steps of one table of rotations.
+ * @param first a sixth of the steps per span of the first table
+ * @param parts every step of the accepted series is cut into this many
+ */
+export function refineShared<T, R extends { readonly result: CountResult }>(
+  first: readonly number[],
+  accept: number,
+  tabulate: (counts: readonly number[]) => { readonly tables: T; readonly error: number },
+  run: (counts: readonly number[], tables: T) => R | null,
+  parts: number,
+): Series<R> | null {
+  let total = 0;
+  let factor = 1;
+  for (let k = 0; k < ROUNDS; k++) {
+    const base = first.map((n) => Math.ceil(n * factor));
+    const found = threeRuns(base, tabulate, run);
+    if (!found || !Number.isFinite(found.result.localErrors)) return null;
+    total += found.result.steps;
+    if (found.result.localErrors > accept) {
+      factor *= found.result.localErrors < NEAR * accept ? ROUND_GROWTH.near : ROUND_GROWTH.far;
+      continue;
+    }
+    if (parts === 1) return { ...found, result: { ...found.result, steps: total } };
+    const fine = threeRuns(
+      base.map((n) => n * parts),
+      tabulate,
+      run,
+    );
+    return fine && { ...fine, result: { ...fine.result, localErrors: found.result.localErrors } };
+  }
+  return null;
+}
+
+function threeRuns<T, R extends { readonly result: CountResult }>(
+  base: readonly number[],
+  tabulate: (counts: readonly number[]) => { readonly tables: T; readonly error: number },
+  run: (counts: readonly number[], tables: T) => R | null,
+): Series<R> | null {
+  const { tables, error } = tabulate(base.map((n) => SHARED.finest * n));
+  const runs: R[] = [];
+  for (const factor of SHARED.kicks) {
+    const found = run(
+      base.map((n) => factor * n),
+      tables,
+    );
+    if (!found) return null;
+    runs.push(found);
+  }
+  const results = runs.map((r) => r.result);
+  const { result, weights } = extrapolated(results);
+  const kicks = difference(extrapolated(results.slice(1)).result, result) / GAIN;
+  const steps = results.reduce((sum, r) => sum + r.steps, 0);
+  return { result: { ...result, steps, localErrors: Math.max(kicks, error) }, runs, weights };
+}
+
 function difference(a: CountResult, b: CountResult): number {
   return b.populations.reduce(
     (worst, p, i) => Math.max(worst, POPULATIONS * Math.abs(p - a.populations[i])),

@@ -5,6 +5,7 @@ import { frameEnergies, type Layout, layoutOf, lineFrequency, unevenEnergies } f
 import { type Rotation, rotationsOf } from './rotation.js';
 import { type Passage, State } from './state.js';
 import { type Source, sourceOf } from './table.js';
+import { UnitaryTable } from './unitary-table.js';
 
 /** A request with what all its runs share. */
 export interface Problem {
@@ -20,12 +21,7 @@ export interface Problem {
   /** Per span, of the ladder's component; none without a ladder. */
   readonly sources: readonly Source[];
   readonly rotations: readonly Rotation[];
-  /** Steps of the expansion of the rotations per step between kicks. */
-  readonly parts: number;
 }
-
-/** Behind a filter the kicks need steps that are fine enough for the rotations as well. */
-const PARTS = { emitted: 2, filtered: 1 };
 
 export function problemOf(request: CountRequest, spans: readonly Span[], used: readonly boolean[]): Problem {
   const all = frameEnergies(request);
@@ -46,7 +42,6 @@ export function problemOf(request: CountRequest, spans: readonly Span[], used: r
     rotations: rotationsOf(layout.components, layout.levels, ladder?.levels ?? null),
     ladder,
     sources: ladder ? spans.map((span) => sourceOf(drive, ladder.component, span, climb)) : [],
-    parts: request.filter ? PARTS.filtered : PARTS.emitted,
   };
 }
 
@@ -63,10 +58,28 @@ export interface Run {
   readonly final: Float64Array;
 }
 
-/** One run on uniform steps; null where a kick is too large for its series. */
-export function run(problem: Problem, counts: readonly number[], keep = false): Run | null {
+/** The rotations of a ladder on so many steps per span; null for gaps, and for other schemes, which make theirs as they go. */
+export function tablesOf(problem: Problem, counts: readonly number[]): (UnitaryTable | null)[] {
+  const { request, spans, ladder, sources, energies } = problem;
+  return spans.map((span, s) =>
+    ladder && !span.gap
+      ? new UnitaryTable({ request, span, ladder, source: sources[s], energies }, counts[s])
+      : null,
+  );
+}
+
+/**
+ * One run on uniform steps; null where a kick is too large for its series.
+ * @param tables rotations on multiples of the counts
+ */
+export function run(
+  problem: Problem,
+  counts: readonly number[],
+  keep = false,
+  tables: readonly (UnitaryTable | null)[] = tablesOf(problem, counts),
+): Run | null {
   const { layout, request, spans } = problem;
-  const state = new State(problem, keep);
+  const state = new State(problem, tables, keep);
   let steps = 0;
   for (let s = 0; s < spans.length; s++) {
     const span = spans[s];

@@ -1,11 +1,14 @@
 import { phaseAt } from '../bloch/frame.js';
 import { addProduct } from './correction.js';
 import { GeneralMotion } from './general-motion.js';
-import { LadderMotion, type Motion, multiplyThree } from './motion.js';
+import { LadderMotion, type Motion } from './motion.js';
 import type { Problem } from './run.js';
+import { multiplyThree, type UnitaryTable } from './unitary-table.js';
 
 /** Steps between two corrections of the kicks: a fine sum is not needed of what is small. */
 const EVERY = 2;
+/** Steps of the expansion per step between kicks where rotations are of order 6. */
+const GENERAL_PARTS = 2;
 /** Share of the ground state that may be gone before the first kick. */
 const UNTOUCHED = 1e-13;
 /** Largest ‖hK‖ of one kick. */
@@ -47,6 +50,7 @@ export class State {
 
   constructor(
     private readonly problem: Problem,
+    private readonly tables: readonly (UnitaryTable | null)[],
     private readonly keep: boolean,
   ) {
     const { layout } = problem;
@@ -66,15 +70,16 @@ export class State {
   /** A span on uniform steps, with kicks of half a step at both ends; false where a kick is too large for its series. */
   pass(index: number, count: number): boolean {
     const { problem, keep } = this;
-    const { layout, request, ladder, energies, used, spans, sources, parts } = problem;
+    const { layout, request, energies, used, spans } = problem;
+    const table = this.tables[index];
     const span = spans[index];
     const h = (span.end - span.start) / count;
     const { kick } = layout;
     if (!kick.set(h)) return false;
     const course = { request, span, h, count, energies, line: request.filter ? problem.line : null };
-    const motion = ladder
-      ? new LadderMotion(course, ladder, sources[index], parts, keep)
-      : new GeneralMotion(course, used, parts);
+    const motion = table
+      ? new LadderMotion(course, table, keep)
+      : new GeneralMotion(course, used, GENERAL_PARTS);
     const width = 2 * request.drive.components;
     const edge = new Float64Array(width);
     const kept = keep && motion instanceof LadderMotion ? this.keepPassage(index, count, h, motion) : null;
@@ -120,7 +125,7 @@ export class State {
   /** Gathers steps as long as the ground state is whole: decay has nothing to act on. */
   private waits(step: { readonly re: Float64Array; readonly im: Float64Array }): boolean {
     const { re, im } = this.lead;
-    multiplyThree(step.re, step.im, re, im);
+    multiplyThree(step.re, step.im, 0, re, im);
     if (re[3] * re[3] + im[3] * im[3] + re[6] * re[6] + im[6] * im[6] < UNTOUCHED) return true;
     for (let i = 0; i < 9; i++) {
       step.re[i] = re[i];

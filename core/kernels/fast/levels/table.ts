@@ -49,9 +49,6 @@ function frameAtPeak(drive: Drive, component: number, span: Span): PhaseFrame {
   return { ...STILL, origin: t, rate: Math.atan2(e * a - c * b, c * a + e * b) / (2 * d) };
 }
 
-/** Numbers of the last table: one run at a time. */
-let buffer = new Float64Array(1024);
-
 /** Re and Im of `scale`·Ω of one component in the source's frame at the nodes of every step: [8·step + 2·node]. */
 export function nodeTable(
   drive: Drive,
@@ -62,11 +59,8 @@ export function nodeTable(
   count: number,
   scale: number,
 ): Float64Array {
-  const length = 2 * NODES * count;
-  if (buffer.length < length) buffer = new Float64Array(2 * length);
-  const out = buffer;
+  const out = new Float64Array(2 * NODES * count);
   if (tones) {
-    out.fill(0, 0, length);
     const grid = { start: span.start, h };
     for (let from = 0; from < count; from += BLOCK) {
       for (const tone of tones) addComplex(tone, scale, grid, from, Math.min(count, from + BLOCK), out);

@@ -2,7 +2,7 @@ import { describe, expect, it } from 'vitest';
 import { NODES, PLACES } from '../../../../core/kernels/fast/bloch/nodes.js';
 import { ladderOf } from '../../../../core/kernels/fast/levels/ladder.js';
 import { LadderStep } from '../../../../core/kernels/fast/levels/ladder-step.js';
-import { multiplyThree } from '../../../../core/kernels/fast/levels/motion.js';
+import { multiplyThree } from '../../../../core/kernels/fast/levels/unitary-table.js';
 import { cascadeEmitter, design, tone } from '../../../support.js';
 import { requestOf } from '../fast-designs.js';
 
@@ -36,7 +36,7 @@ function propagate(count: number): { re: Float64Array; im: Float64Array } {
       h * (ENERGIES[1] - ENERGIES[2]) - fall,
       2 * CHIRP * h * h,
     );
-    multiplyThree(step.re, step.im, all.re, all.im);
+    multiplyThree(step.re, step.im, 0, all.re, all.im);
   }
   return all;
 }
@@ -83,7 +83,7 @@ describe('unitary steps of a ladder of three levels', () => {
       const all = { re: Float64Array.of(1, 0, 0, 0, 1, 0, 0, 0, 1), im: new Float64Array(9) };
       for (const [from, to] of parts) {
         step.setShort(nodes, 0, -0.5, 0.4, 0.02, from, to);
-        multiplyThree(step.re, step.im, all.re, all.im);
+        multiplyThree(step.re, step.im, 0, all.re, all.im);
       }
       return all;
     };
