@@ -67,7 +67,13 @@ function exactGradient(
   const drifting = differentiateMean(design, outer, slots, kernel);
   if (drifting === null) return null;
   if (design.drift === null) return { figures: withNominal(drifting.tree, null), rows: drifting.rows };
-  const still = differentiateMean({ ...design, drift: null }, inner, slots, kernel);
+  const nominalDesign = { ...design, drift: null };
+  if (inner.length === 0) {
+    // Nothing of the nominal figures is to be differentiated, so they are only evaluated.
+    const { nominal: _none, ...tree } = evaluate(nominalDesign, 'search');
+    return { figures: withNominal(drifting.tree, tree), rows: drifting.rows };
+  }
+  const still = differentiateMean(nominalDesign, inner, slots, kernel);
   if (still === null) return null;
   const rows = [drifting.rows.values(), still.rows.values()];
   return {
