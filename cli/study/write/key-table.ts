@@ -42,7 +42,7 @@ function leafAllowed({ rule }: Leaf<unknown>): string {
     case 'interval':
       return `two values in ${joinNames(unitNames(rule.dimension))}, the lower one first`;
     case 'integer':
-      return `whole number from ${rule.from}`;
+      return `whole number from ${rule.from}${rule.to < 1e6 ? ` to ${rule.to}` : ''}`;
     case 'choice':
       return rule.values.join(', ');
     case 'text':
