@@ -4,6 +4,8 @@ import { differentiableCounts, differentiate } from './bloch/gradient.js';
 import { type BlochProblem, prepare } from './bloch/problem.js';
 import { runBloch } from './bloch/run.js';
 import { type Settled, settle, total } from './bloch/settle.js';
+import { MOST_RECORDED } from './bloch/steps.js';
+import { Tape } from './bloch/tape.js';
 import type { FastKernel } from './contract.js';
 import { smoothSpans } from './spans.js';
 import { asTwoLevel } from './two-level.js';
@@ -21,24 +23,24 @@ export const twoLevelEmitted: FastKernel = {
   supports: (request) => request.filter === null && asTwoLevel(request) !== null,
   count(request) {
     const problem = problemOf(request);
-    const run = problem && runOf(problem, request.effort);
+    const run = problem && runOf(problem, request.effort, null);
     return run && resultOf(run);
   },
   countWithGradient(request, seeds) {
     const problem = problemOf(request);
-    const run = problem && runOf(problem, request.effort);
+    const tape = new Tape();
+    const run = problem && runOf(problem, request.effort, tape);
     const counts = run && differentiableCounts(problem, run.counts);
     if (!counts || total(counts) > MOST_RECORDED) return null;
     const result = resultOf(run);
-    const gradient = differentiate(problem, counts, seeds(result.values));
+    if (total(counts) > result.steps) runBloch(problem, counts, new Float64Array(FIGURES), tape);
+    const gradient = differentiate(problem, tape, seeds(result.values));
     return gradient && { result, ...gradient };
   },
 };
 
 /** Accepted error of a run, in units of the effort's tolerance per step. */
 const ACCEPT = 10;
-/** Most steps of a run that is recorded for its derivatives: half a kilobyte each. */
-const MOST_RECORDED = 60_000;
 
 function problemOf(request: CountRequest): BlochProblem | null {
   const model = asTwoLevel(request);
@@ -46,12 +48,12 @@ function problemOf(request: CountRequest): BlochProblem | null {
   return spans && prepare(request, model, spans);
 }
 
-function runOf(problem: BlochProblem, { parts, tolerance }: Effort): Settled | null {
-  const settled = settle(problem, tolerance * ACCEPT);
+function runOf(problem: BlochProblem, { parts, tolerance }: Effort, tape: Tape | null): Settled | null {
+  const settled = settle(problem, tolerance * ACCEPT, tape);
   if (!settled || parts === 1) return settled;
   const counts = settled.counts.map((n) => n * parts);
   const figures = new Float64Array(FIGURES);
-  runBloch(problem, counts, figures);
+  runBloch(problem, counts, figures, tape);
   return { figures, counts, error: settled.error };
 }
 

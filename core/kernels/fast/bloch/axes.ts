@@ -126,6 +126,7 @@ export function resonantAxes(
   q: Quaternion,
   axes: Float64Array,
   pulls: Pulls | null,
+  record: { readonly vectors: Float64Array; readonly quaternions: Float64Array } | null,
 ): void {
   let qw = q[0];
   let qx = q[1];
@@ -167,6 +168,16 @@ export function resonantAxes(
       pulls.edges[2 * n] = edgeOf(samples, i);
       pulls.edges[2 * n + 1] = 0;
       pull(pulls, n, qw, qx, 0, 0);
+    }
+    if (record) {
+      const { vectors, quaternions } = record;
+      vectors[3 * n] = 2 * half;
+      vectors[3 * n + 1] = 0;
+      vectors[3 * n + 2] = 0;
+      quaternions[4 * n] = qw;
+      quaternions[4 * n + 1] = qx;
+      quaternions[4 * n + 2] = 0;
+      quaternions[4 * n + 3] = 0;
     }
   }
   q[0] = qw;

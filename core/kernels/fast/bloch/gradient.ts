@@ -1,5 +1,5 @@
 import type { CountGradient, Sensitivity } from '../../gradient.js';
-import { resetArena, take, takeZeros } from './arena.js';
+import { take, takeZeros } from './arena.js';
 import { CHAIN_STATE, type Chain } from './chain.js';
 import { adjointKicks } from './chain-adjoint.js';
 import { spatialAdjoint } from './magnus-adjoint.js';
@@ -8,7 +8,7 @@ import { correctionBound } from './pace.js';
 import type { BlochProblem } from './problem.js';
 import { countChain, momentChain, thinnedChain } from './run.js';
 import { addComplex } from './table.js';
-import { recordTape, type Stretch, sampleTimes } from './tape.js';
+import { recordChain, type Stretch, sampleTimes, type Tape } from './tape.js';
 import { addTorque, torques } from './torque.js';
 
 type Weights = Readonly<Record<string, number>>;
@@ -16,6 +16,8 @@ type Weights = Readonly<Record<string, number>>;
 /** A chain that some scalar depends on, and by each scalar the weights of its first trace, second trace and rest. */
 interface SeededChain {
   readonly chain: Chain;
+  /** Its states before the kicks of each stretch. */
+  readonly records: readonly Float64Array[];
   readonly weights: readonly (readonly [number, number, number])[];
 }
 
@@ -28,7 +30,11 @@ const KINDS = [
 const KNOWN = new Set<string>(KINDS.flatMap(({ names }) => names.filter((name) => name !== null)));
 
 /** The chains that matter, or null where a scalar depends on a figure that no chain has. */
-function seededChains(problem: BlochProblem, seeds: readonly Weights[]): SeededChain[] | null {
+function seededChains(
+  problem: BlochProblem,
+  stretches: readonly Stretch[],
+  seeds: readonly Weights[],
+): SeededChain[] | null {
   for (const seed of seeds) {
     for (const name in seed) if (seed[name] !== 0 && !KNOWN.has(name)) return null;
   }
@@ -42,7 +48,9 @@ function seededChains(problem: BlochProblem, seeds: readonly Weights[]): SeededC
       any ||= row[0] !== 0 || row[1] !== 0 || row[2] !== 0;
       weights.push(row);
     }
-    if (any) out.push({ chain: make(problem, take(CHAIN_STATE)), weights });
+    if (!any) continue;
+    const chain = make(problem, take(CHAIN_STATE));
+    out.push({ chain, weights, records: recordChain(chain, stretches) });
   }
   return out;
 }
@@ -66,23 +74,17 @@ export function differentiableCounts(problem: BlochProblem, counts: readonly num
 const LAST = { fade: 0, loss: 1 };
 
 /**
- * Derivatives of scalars of the figures by one reverse sweep over a run at given steps: adjoints of the chains give the
+ * Derivatives of scalars of the figures by one reverse sweep over a recorded run: adjoints of the chains give the
  * derivative by every kick's axis, a running torque those by every rotation, and the reverse of the Magnus expansion those by
  * the samples of the drive. Null where a scalar depends on p_2 or p_3.
  */
 export function differentiate(
   problem: BlochProblem,
-  counts: readonly number[],
+  { stretches }: Tape,
   seeds: readonly Weights[],
 ): Omit<CountGradient, 'result'> | null {
-  resetArena();
-  const seeded = seededChains(problem, seeds);
+  const seeded = seededChains(problem, stretches, seeds);
   if (!seeded) return null;
-  const stretches = recordTape(
-    problem,
-    counts,
-    seeded.map(({ chain }) => chain),
-  );
   const total = stretches.reduce((sum, s) => sum + s.steps, 0);
   // One piece of memory for all that is handed out.
   const length = NODES * total;
@@ -98,7 +100,7 @@ export function differentiate(
   for (let k = stretches.length - 1; k >= 0; k--) {
     const stretch = stretches[k];
     at -= stretch.steps;
-    const slopes = sweepChains(stretch, seeded, adjoints);
+    const slopes = sweepChains(stretch, k, seeded, adjoints);
     sampleTimes(stretch, times, NODES * at);
     if (stretch.steps === 0) passGap(stretch, slopes, torque, shifts);
     else sweepSteps(stretch, slopes, torque, shifts, drives, 2 * NODES * at);
@@ -139,19 +141,23 @@ function finalKick(
 }
 
 /** Derivatives by the axes of a stretch, per scalar. */
-function sweepChains(stretch: Stretch, seeded: readonly SeededChain[], adjoints: Adjoints): Float64Array[] {
-  const { steps, axes, pace, records } = stretch;
+function sweepChains(
+  { steps, axes, pace }: Stretch,
+  index: number,
+  seeded: readonly SeededChain[],
+  adjoints: Adjoints,
+): Float64Array[] {
   const { half, full } = pace;
   return adjoints[0].map((_, s) => {
     const slopes = takeZeros(axes.length);
-    seeded.forEach(({ chain, weights }, c) => {
+    seeded.forEach(({ chain, weights, records }, c) => {
       if (weights[s].every((w) => w === 0)) return;
       const adjoint = adjoints[c][s];
       if (steps > 0) {
-        adjointKicks(chain, half, axes, records[c], steps, steps + 1, adjoint, slopes);
-        adjointKicks(chain, full, axes, records[c], 1, steps, adjoint, slopes);
+        adjointKicks(chain, half, axes, records[index], steps, steps + 1, adjoint, slopes);
+        adjointKicks(chain, full, axes, records[index], 1, steps, adjoint, slopes);
       }
-      adjointKicks(chain, half, axes, records[c], 0, 1, adjoint, slopes);
+      adjointKicks(chain, half, axes, records[index], 0, 1, adjoint, slopes);
     });
     return slopes;
   });

@@ -39,13 +39,20 @@ export function paceOf(problem: BlochProblem, { span }: BlochSpan, count: number
   };
 }
 
+/** The pace of a gap: one kick. */
+export function gapPace(problem: BlochProblem, { span }: BlochSpan): Pace {
+  const h = span.end - span.start;
+  const kick = kickOver(problem, h);
+  return { h, scale: 0, quartic: 0, axial: 0, half: kick, full: kick, correction: null };
+}
+
 /** Energy times the step: of a step in the middle of time t, and its change from step to step. */
 export function energyAt(energy: number, { rate, chirp, origin }: PhaseFrame, h: number, t: number): number {
   return (energy + rate + 2 * chirp * (t - origin)) * h;
 }
 
 /** The effect of some time without drive, ps. */
-export function kickOver({ model }: BlochProblem, time: number): Kick {
+function kickOver({ model }: BlochProblem, time: number): Kick {
   return { fade: Math.exp(-model.coherence * time), loss: -Math.expm1(-model.decay * time) };
 }
 

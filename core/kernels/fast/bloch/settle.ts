@@ -1,7 +1,8 @@
 import { distance, EXCITED, FIGURES, rounding } from './figures.js';
 import type { BlochProblem } from './problem.js';
 import { runBloch } from './run.js';
-import { firstCounts, MOST_STEPS } from './steps.js';
+import { firstCounts, MOST_RECORDED, MOST_STEPS } from './steps.js';
+import type { Tape } from './tape.js';
 
 /** Growth of the number of steps between the first two runs, and bounds of what comes after. */
 const GROWTH = 1.4;
@@ -32,9 +33,10 @@ export interface Settled {
  * that the truth lies between the finer run and the point that this power extrapolates to. The middle of the two is
  * returned, which is off by half their distance at most.
  * @param accept error to reach, in the measure of `disagreement`
+ * @param tape records the finest run
  * @returns null where the steps run out; an error above what was asked for where rounding alone is more
  */
-export function settle(problem: BlochProblem, accept: number): Settled | null {
+export function settle(problem: BlochProblem, accept: number, tape: Tape | null = null): Settled | null {
   let counts = firstCounts(problem);
   if (total(counts) > MOST_STEPS) return null;
   runBloch(problem, counts, coarse);
@@ -43,7 +45,7 @@ export function settle(problem: BlochProblem, accept: number): Settled | null {
     const finer = counts.map((n) => Math.ceil(n * factor));
     const steps = total(finer);
     if (steps > MOST_STEPS) return null;
-    runBloch(problem, finer, fine);
+    runBloch(problem, finer, fine, steps > MOST_RECORDED ? null : tape);
     const share = 0.5 / ((steps / total(counts)) ** SLOWEST - 1);
     const error = share * distance(coarse, fine);
     if (!Number.isFinite(error)) return null;

@@ -6,6 +6,8 @@ import type { BlochProblem, BlochSpan, Source } from './problem.js';
 
 /** Most steps of one run. */
 export const MOST_STEPS = 200_000;
+/** Most steps of a run that is recorded for its derivatives: a third of a kilobyte each. */
+export const MOST_RECORDED = 60_000;
 const FEWEST = 12;
 
 /**

@@ -1,116 +1,109 @@
-import { take, takeZeros } from './arena.js';
-import { turnAbout, turnAxes } from './axes.js';
+import { resetArena, take } from './arena.js';
 import type { Chain } from './chain.js';
 import { RECORD, recordKicks } from './chain-adjoint.js';
-import { phaseAt } from './frame.js';
-import { type Energies, spatialVectors } from './magnus.js';
-import { BLOCK, NODES, PLACES } from './nodes.js';
-import { energyAt, kickOver, type Pace, paceOf, shrink } from './pace.js';
-import type { BlochProblem, BlochSpan } from './problem.js';
-import { axisOf } from './run.js';
-import { addComplex, type Grid, sampleDrive } from './table.js';
+import type { Energies } from './magnus.js';
+import { NODES, PLACES } from './nodes.js';
+import type { Pace } from './pace.js';
+import type { BlochSpan } from './problem.js';
+import type { Grid } from './table.js';
 
-/** One span or gap as it was propagated, with its places in the tape. */
+/** One span or gap as it was propagated; its arrays lie in the arena. */
 export interface Stretch {
   readonly part: BlochSpan;
   readonly steps: number;
   readonly grid: Grid;
   readonly pace: Pace;
   readonly energies: Energies;
+  /** a + ib at samples[8n + 2j], samples[8n + 2j + 1]. */
+  readonly samples: Float64Array;
+  readonly turns: Float64Array | null;
+  readonly vectors: Float64Array;
+  /** The rotation after each step. */
+  readonly quaternions: Float64Array;
+  /** Axis of the kick before each step and of the one after the last. */
+  readonly axes: Float64Array;
+}
+
+/** A block of steps as `propagate` (run.ts) works on it. */
+export interface Block {
   readonly samples: Float64Array;
   readonly turns: Float64Array | null;
   readonly vectors: Float64Array;
   readonly quaternions: Float64Array;
-  /** Axis of the kick before each step and of the one after the last. */
   readonly axes: Float64Array;
-  /** State of each chain before each kick. */
-  readonly records: readonly Float64Array[];
 }
 
-/**
- * Propagates chains once more and keeps what a reverse sweep needs. Corrections that differ from lane to lane are left
- * out: they change derivatives by 1e-6 at most. The tape lies in the arena.
- */
-export function recordTape(
-  problem: BlochProblem,
-  counts: readonly number[],
-  chains: readonly Chain[],
-): Stretch[] {
-  const q = takeZeros(4);
-  q[0] = 1;
-  return problem.spans.map((part, index) => {
-    const { span, frame } = part;
-    if (!span.gap && index > 0) turnAbout(q, phaseAt(frame, span.start));
-    const stretch = span.gap ? gap(problem, part, q) : propagate(problem, part, counts[index], q);
-    chains.forEach((chain, c) => {
-      record(chain, stretch, stretch.records[c]);
-    });
-    if (!span.gap) turnAbout(q, -phaseAt(frame, span.end));
-    return stretch;
-  });
+/** Keeps of a run what a reverse sweep needs. */
+export class Tape {
+  readonly stretches: Stretch[] = [];
 
-  function record(chain: Chain, { steps, pace, axes }: Stretch, into: Float64Array): void {
-    recordKicks(chain, pace.half, axes, 0, 1, into);
-    if (steps === 0) return;
-    recordKicks(chain, pace.full, axes, 1, steps, into);
-    recordKicks(chain, pace.half, axes, steps, steps + 1, into);
+  /** Begins anew, for another run. */
+  rewind(): void {
+    this.stretches.length = 0;
+    resetArena();
   }
 
-  function gap({ model }: BlochProblem, part: BlochSpan, turning: Float64Array): Stretch {
-    const length = part.span.end - part.span.start;
-    turnAbout(turning, model.energy * length);
-    const kick = kickOver(problem, length);
-    const stretch = blank(part, 0, { ...paceOf(problem, part, 1), half: kick, full: kick });
-    axisOf(turning, stretch.axes);
-    return stretch;
-  }
-
-  function blank(part: BlochSpan, steps: number, pace: Pace): Stretch {
-    const { frame, source, span } = part;
-    const { h } = pace;
-    const follow = source.kind === 'sampled' && source.follow;
-    return {
+  /** Begins a span, or a gap of no steps, with the axis that holds before it. */
+  begin(
+    part: BlochSpan,
+    steps: number,
+    pace: Pace,
+    energies: Energies,
+    follows: boolean,
+    axes: Float64Array,
+  ): void {
+    const stretch: Stretch = {
       part,
       steps,
       pace,
-      grid: { start: span.start, h },
-      energies: {
-        first: energyAt(problem.model.energy, frame, h, span.start + 0.5 * h),
-        slope: 2 * frame.chirp * h * h,
-        axial: pace.axial,
-      },
-      samples: takeZeros(2 * NODES * steps),
-      turns: follow ? take(steps) : null,
+      energies,
+      grid: { start: part.span.start, h: pace.h },
+      samples: take(2 * NODES * steps),
+      turns: follows ? take(steps) : null,
       vectors: take(3 * steps),
       quaternions: take(4 * steps),
       axes: take(3 * (steps + 1)),
-      records: chains.map(() => take(RECORD * (steps + 1))),
     };
+    for (let i = 0; i < 3; i++) stretch.axes[i] = axes[i];
+    this.stretches.push(stretch);
   }
 
-  function propagate(
-    { drive }: BlochProblem,
-    part: BlochSpan,
-    steps: number,
-    turning: Float64Array,
-  ): Stretch {
-    const { span, frame, source } = part;
-    const stretch = blank(part, steps, paceOf(problem, part, steps));
-    const { samples, turns, vectors, axes, energies, grid, pace } = stretch;
-    if (source.kind === 'sampled') {
-      sampleDrive(drive, frame, pace.scale, grid, 0, steps, span, turns, samples);
-    } else {
-      for (let from = 0; from < steps; from += BLOCK) {
-        for (const tone of source.tones)
-          addComplex(tone, pace.scale, grid, from, Math.min(steps, from + BLOCK), samples);
-      }
+  /** Keeps steps from … from + steps − 1 of the span begun last. `width` 1: samples are real. */
+  keep(block: Block, from: number, steps: number, width: 1 | 2): void {
+    const { samples, turns, vectors, quaternions, axes } = this.stretches[this.stretches.length - 1];
+    copy(block.vectors, 0, vectors, 3 * from, 3 * steps);
+    copy(block.quaternions, 0, quaternions, 4 * from, 4 * steps);
+    copy(block.axes, 3, axes, 3 * (from + 1), 3 * steps);
+    if (turns && block.turns) copy(block.turns, 0, turns, from, steps);
+    if (width === 2) {
+      copy(block.samples, 0, samples, 2 * NODES * from, 2 * NODES * steps);
+      return;
     }
-    if (pace.quartic > 0) shrink(samples, pace.quartic, 2, steps);
-    spatialVectors(samples, energies, turns, 0, steps, vectors, null);
-    axisOf(turning, axes);
-    turnAxes(vectors, turns, 0, steps, turning, axes, null, stretch.quaternions);
-    return stretch;
+    for (let i = 0, k = 2 * NODES * from; i < NODES * steps; i++, k += 2) {
+      samples[k] = block.samples[i];
+      samples[k + 1] = 0;
+    }
   }
+}
+
+function copy(source: Float64Array, at: number, target: Float64Array, to: number, length: number): void {
+  for (let i = 0; i < length; i++) target[to + i] = source[at + i];
+}
+
+/**
+ * Takes a chain through the kicks of a run and writes its state before each of them, one array per stretch. Corrections
+ * that differ from lane to lane are left out: they change derivatives by 1e-6 at most.
+ */
+export function recordChain(chain: Chain, stretches: readonly Stretch[]): Float64Array[] {
+  return stretches.map(({ steps, pace, axes }) => {
+    const record = take(RECORD * (steps + 1));
+    recordKicks(chain, pace.half, axes, 0, 1, record);
+    if (steps > 0) {
+      recordKicks(chain, pace.full, axes, 1, steps, record);
+      recordKicks(chain, pace.half, axes, steps, steps + 1, record);
+    }
+    return record;
+  });
 }
 
 /** Times of a stretch's samples, ps. */
