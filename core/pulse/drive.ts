@@ -1,6 +1,7 @@
 import { HBAR } from '../units/constants.js';
 import type { Pulse, Tone } from './contract.js';
-import { type SampleDerivatives, toneDerivatives } from './derivatives/drive.js';
+import type { SampleDerivatives } from './derivatives/contract.js';
+import { toneDerivatives } from './derivatives/drive.js';
 import { type Envelope, toneEnvelope } from './envelope.js';
 import { type GaussianTone, gaussianTones } from './gaussians.js';
 import { polarizationWeights } from './polarization.js';

@@ -2,63 +2,69 @@ import { HBAR } from '../../units/constants.js';
 import type { Tone } from '../contract.js';
 import type { EnvelopeSlopes } from '../shapes/contract.js';
 import type { ToneSampler } from '../tones.js';
-import type { ToneAdjoint } from './contract.js';
+import type { ToneAdjoint, ToneSamples } from './contract.js';
 import { AREA, DELAY, DETUNING, FWHM, GDD, PHASE, POLARIZATION, TOD } from './layout.js';
 
-/** Sums per scalar: Re ḡU, Im ḡU, Im ḡU·t, Re of the component across, Re ḡU·slope for time, FWHM, GDD and TOD. */
-const SUMS = 8;
+/** Numbers per sample: the field of area 1, and its slopes over it by time, FWHM, GDD and TOD. */
+const WIDTH = 10;
 
 /** Derivatives of a tone in closed form: every one is the tone's field times a factor known in closed form. */
 export class ClosedToneAdjoint implements ToneAdjoint {
   readonly #tone: Tone;
-  readonly #unit: ToneSampler;
-  readonly #slopes: EnvelopeSlopes;
-  readonly #sums: Float64Array;
-  readonly #field = new Float64Array(2);
-  readonly #ratios = new Float64Array(8);
+  readonly #samples: ToneSamples;
+  readonly #table: Float64Array;
 
   /** @param unit samples the tone with area 1 and weight 1 */
-  constructor(tone: Tone, unit: ToneSampler, slopes: EnvelopeSlopes, scalars: number) {
+  constructor(tone: Tone, unit: ToneSampler, slopes: EnvelopeSlopes, samples: ToneSamples) {
+    const { times, acts } = samples;
     this.#tone = tone;
-    this.#unit = unit;
-    this.#slopes = slopes;
-    this.#sums = new Float64Array(SUMS * scalars);
+    this.#samples = samples;
+    this.#table = new Float64Array(WIDTH * times.length);
+    const ratios = new Float64Array(8);
+    const field = new Float64Array(2);
+    for (let i = 0; i < times.length; i++) {
+      if (!acts(i)) continue;
+      field.fill(0);
+      unit.add(times[i], field);
+      slopes(times[i] - tone.delay, ratios);
+      this.#table.set(field, WIDTH * i);
+      this.#table.set(ratios, WIDTH * i + 2);
+    }
   }
 
-  prepare(t: number): void {
-    this.#field.fill(0);
-    this.#unit.add(t, this.#field);
-    this.#slopes(t - this.#tone.delay, this.#ratios);
-  }
-
-  add(t: number, scalar: number, along: readonly [number, number], across: readonly [number, number]): void {
-    const [ur, ui] = this.#field;
-    const r = this.#ratios;
-    const s = this.#sums;
-    const at = SUMS * scalar;
-    const re = along[0] * ur + along[1] * ui;
-    const im = along[0] * ui - along[1] * ur;
-    s[at] += re;
-    s[at + 1] += im;
-    s[at + 2] += im * t;
-    s[at + 3] += across[0] * ur + across[1] * ui;
-    s[at + 4] += re * r[0] - im * r[1];
-    s[at + 5] += re * r[2] - im * r[3];
-    s[at + 6] += re * r[4] - im * r[5];
-    s[at + 7] += re * r[6] - im * r[7];
-  }
-
-  finish(scalar: number, into: Float64Array, slot: number): void {
-    const { area } = this.#tone;
-    const s = this.#sums;
-    const at = SUMS * scalar;
-    into[slot + AREA] += s[at];
-    into[slot + PHASE] -= area * s[at + 1];
-    into[slot + DETUNING] += (area * s[at + 2]) / HBAR;
-    into[slot + POLARIZATION] += area * s[at + 3];
-    into[slot + DELAY] -= area * s[at + 4];
-    into[slot + FWHM] += area * s[at + 5];
-    into[slot + GDD] += area * s[at + 6];
-    into[slot + TOD] += area * s[at + 7];
+  add(g: ArrayLike<number>, into: Float64Array, slot: number): void {
+    const { times, components, weights } = this.#samples;
+    const table = this.#table;
+    const [h, v] = components === 1 ? [1, 0] : weights;
+    const width = 2 * components;
+    const second = width - 2;
+    let [area, phase, detuning, across, delay, fwhm, gdd, tod] = [0, 0, 0, 0, 0, 0, 0, 0];
+    for (let i = 0; i < times.length; i++) {
+      const at = width * i;
+      const k = WIDTH * i;
+      const ur = table[k];
+      const ui = table[k + 1];
+      const gr = h * g[at] + v * g[at + second];
+      const gi = h * g[at + 1] + v * g[at + second + 1];
+      const re = gr * ur + gi * ui;
+      const im = gr * ui - gi * ur;
+      area += re;
+      phase += im;
+      detuning += im * times[i];
+      delay += re * table[k + 2] - im * table[k + 3];
+      fwhm += re * table[k + 4] - im * table[k + 5];
+      gdd += re * table[k + 6] - im * table[k + 7];
+      tod += re * table[k + 8] - im * table[k + 9];
+      if (second > 0) across += (h * g[at + 2] - v * g[at]) * ur + (h * g[at + 3] - v * g[at + 1]) * ui;
+    }
+    const strength = this.#tone.area;
+    into[slot + AREA] += area;
+    into[slot + PHASE] -= strength * phase;
+    into[slot + DETUNING] += (strength * detuning) / HBAR;
+    into[slot + POLARIZATION] += strength * across;
+    into[slot + DELAY] -= strength * delay;
+    into[slot + FWHM] += strength * fwhm;
+    into[slot + GDD] += strength * gdd;
+    into[slot + TOD] += strength * tod;
   }
 }

@@ -1,11 +1,13 @@
 import { HBAR } from '../../units/constants.js';
 import type { Tone } from '../contract.js';
 import type { Envelope } from '../envelope.js';
+import { gaussianTones } from '../gaussians.js';
 import { polarizationWeights } from '../polarization.js';
 import { pulseShape } from '../shapes/registry.js';
 import { toneSampler } from '../tones.js';
 import { ClosedToneAdjoint } from './closed-tone.js';
-import type { ToneAdjoint } from './contract.js';
+import type { SampleDerivatives, ToneAdjoint, ToneSamples } from './contract.js';
+import { GaussianToneAdjoint } from './gaussian-tone.js';
 import { TONE_SLOTS } from './layout.js';
 import { SpectralToneAdjoint } from './spectral-tone.js';
 
@@ -15,24 +17,20 @@ export interface EnvelopedTone {
   readonly envelope: Envelope;
 }
 
-/** Derivatives of scalars by samples of the drive. */
-export interface SampleDerivatives {
-  /** ps. */
-  readonly times: ArrayLike<number>;
-  /** Segment of the drive meant at each time. */
-  readonly segments: ArrayLike<number>;
-  /** Per scalar, laid out like the samples: re, im of each component, for each time. */
-  readonly scalars: readonly ArrayLike<number>[];
-}
-
-function adjointOf({ tone, envelope }: EnvelopedTone, frame: number, scalars: number): ToneAdjoint | null {
+function adjointOf(
+  { tone, envelope }: EnvelopedTone,
+  frame: number,
+  samples: ToneSamples,
+): ToneAdjoint | null {
   const { form } = envelope;
-  if (form.kind === 'table') return new SpectralToneAdjoint(tone, form.dispersed, frame, scalars);
+  if (form.kind === 'table') return new SpectralToneAdjoint(tone, form.dispersed, frame, samples);
+  const gaussian = gaussianTones([tone], frame);
+  if (gaussian) return new GaussianToneAdjoint(tone, gaussian[0], samples);
   const slopes = pulseShape(tone.shape).slopes(tone.fwhm, tone.gdd);
   if (slopes === null) return null;
   const { phase, delay } = tone;
   const place = { area: 1, phase, rate: tone.detuning / HBAR - frame, delay, weights: [1] };
-  return new ClosedToneAdjoint(tone, toneSampler(envelope, place), slopes, scalars);
+  return new ClosedToneAdjoint(tone, toneSampler(envelope, place), slopes, samples);
 }
 
 /**
@@ -49,35 +47,16 @@ export function toneDerivatives(
   into: readonly Float64Array[],
 ): boolean {
   const count = tones.length;
-  const adjoints = tones.map((tone) => adjointOf(tone, drive.frame, scalars.length));
+  const { components } = drive;
+  const adjoints = tones.map((at, k) => {
+    const acts = count === 1 ? () => true : (i: number) => active[segments[i] * count + k] !== 0;
+    const weights = polarizationWeights(at.tone.polarization);
+    return adjointOf(at, drive.frame, { times, acts, components, weights });
+  });
   if (!adjoints.every((adjoint) => adjoint !== null)) return false;
-  const weights = tones.map(({ tone }) => polarizationWeights(tone.polarization));
-  const along: [number, number] = [0, 0];
-  const across: [number, number] = [0, 0];
-  for (let i = 0; i < times.length; i++) {
-    for (let k = 0; k < count; k++) {
-      if (active[segments[i] * count + k] === 0) continue;
-      const adjoint = adjoints[k];
-      const [h, v] = weights[k];
-      adjoint.prepare(times[i]);
-      for (let j = 0; j < scalars.length; j++) {
-        const g = scalars[j];
-        if (drive.components === 1) {
-          along[0] = g[2 * i];
-          along[1] = g[2 * i + 1];
-        } else {
-          along[0] = h * g[4 * i] + v * g[4 * i + 2];
-          along[1] = h * g[4 * i + 1] + v * g[4 * i + 3];
-          across[0] = h * g[4 * i + 2] - v * g[4 * i];
-          across[1] = h * g[4 * i + 3] - v * g[4 * i + 1];
-        }
-        adjoint.add(times[i], j, along, across);
-      }
-    }
-  }
-  into.forEach((vector, j) => {
+  scalars.forEach((scalar, j) => {
     adjoints.forEach((adjoint, k) => {
-      adjoint.finish(j, vector, TONE_SLOTS * k);
+      adjoint.add(scalar, into[j], TONE_SLOTS * k);
     });
   });
   return true;

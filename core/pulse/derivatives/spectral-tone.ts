@@ -1,13 +1,10 @@
-import { FourierPlan, type UniformTable } from '../../numerics/index.js';
+import { FourierPlan } from '../../numerics/index.js';
 import { HBAR } from '../../units/constants.js';
 import type { Tone } from '../contract.js';
 import { type DispersedEnvelope, overBand } from '../dispersed.js';
 import { pulseShape } from '../shapes/registry.js';
-import type { ToneAdjoint } from './contract.js';
+import type { ToneAdjoint, ToneSamples } from './contract.js';
 import { AREA, DELAY, DETUNING, FWHM, GDD, PHASE, POLARIZATION, TOD } from './layout.js';
-
-/** Sums per scalar: Re ḡU, Im ḡU, Im ḡU·t, Re of the component across. */
-const SUMS = 4;
 
 /**
  * Derivatives of a tone that is read from a table. What changes the spectrum (delay, width, dispersion) goes the way of
@@ -16,62 +13,52 @@ const SUMS = 4;
 export class SpectralToneAdjoint implements ToneAdjoint {
   readonly #tone: Tone;
   readonly #envelope: DispersedEnvelope;
-  readonly #table: UniformTable;
+  readonly #samples: ToneSamples;
   readonly #rate: number;
-  readonly #sums: Float64Array;
-  readonly #grids: Float64Array[];
-  readonly #value = new Float64Array(2);
-  #inside = false;
-  #cos = 1;
-  #sin = 0;
 
   /** @param frame 1/ps, relative to the pulse reference */
-  constructor(tone: Tone, envelope: DispersedEnvelope, frame: number, scalars: number) {
+  constructor(tone: Tone, envelope: DispersedEnvelope, frame: number, samples: ToneSamples) {
     this.#tone = tone;
     this.#envelope = envelope;
-    this.#table = envelope.table;
+    this.#samples = samples;
     this.#rate = tone.detuning / HBAR - frame;
-    this.#sums = new Float64Array(SUMS * scalars);
-    this.#grids = Array.from({ length: scalars }, () => new Float64Array(2 * envelope.table.length));
   }
 
-  prepare(t: number): void {
-    const s = t - this.#tone.delay;
-    this.#inside = s >= this.#envelope.start && s <= this.#envelope.end;
-    if (!this.#inside) return;
-    this.#table.read(s, this.#value);
-    const angle = this.#tone.phase - this.#rate * t;
-    this.#cos = Math.cos(angle);
-    this.#sin = Math.sin(angle);
-  }
-
-  add(t: number, scalar: number, along: readonly [number, number], across: readonly [number, number]): void {
-    if (!this.#inside) return;
-    const [a, b] = this.#value;
-    const ur = this.#cos * a - this.#sin * b;
-    const ui = this.#cos * b + this.#sin * a;
-    const im = along[0] * ui - along[1] * ur;
-    const s = this.#sums;
-    const at = SUMS * scalar;
-    s[at] += along[0] * ur + along[1] * ui;
-    s[at + 1] += im;
-    s[at + 2] += im * t;
-    s[at + 3] += across[0] * ur + across[1] * ui;
-    // ḡ times the carrier: what multiplies a change of the envelope.
-    const re = along[0] * this.#cos + along[1] * this.#sin;
-    const carried = along[0] * this.#sin - along[1] * this.#cos;
-    this.#table.spread(t - this.#tone.delay, re, carried, this.#grids[scalar]);
-  }
-
-  finish(scalar: number, into: Float64Array, slot: number): void {
-    const { area } = this.#tone;
-    const s = this.#sums;
-    const at = SUMS * scalar;
-    into[slot + AREA] += s[at];
-    into[slot + PHASE] -= area * s[at + 1];
-    into[slot + DETUNING] += (area * s[at + 2]) / HBAR;
-    into[slot + POLARIZATION] += area * s[at + 3];
-    this.#finishSpectrum(this.#grids[scalar], into, slot);
+  add(g: ArrayLike<number>, into: Float64Array, slot: number): void {
+    const { times, acts, components, weights } = this.#samples;
+    const { table, start, end } = this.#envelope;
+    const { area, delay, phase } = this.#tone;
+    const [h, v] = components === 1 ? [1, 0] : weights;
+    const width = 2 * components;
+    const second = width - 2;
+    const value = new Float64Array(2);
+    const grid = new Float64Array(2 * table.length);
+    let [along, turned, timed, across] = [0, 0, 0, 0];
+    for (let i = 0; i < times.length; i++) {
+      const t = times[i];
+      const s = t - delay;
+      if (!acts(i) || s < start || s > end) continue;
+      table.read(s, value);
+      const at = width * i;
+      const gr = h * g[at] + v * g[at + second];
+      const gi = h * g[at + 1] + v * g[at + second + 1];
+      const cos = Math.cos(phase - this.#rate * t);
+      const sin = Math.sin(phase - this.#rate * t);
+      const ur = cos * value[0] - sin * value[1];
+      const ui = cos * value[1] + sin * value[0];
+      const im = gr * ui - gi * ur;
+      along += gr * ur + gi * ui;
+      turned += im;
+      timed += im * t;
+      if (second > 0) across += (h * g[at + 2] - v * g[at]) * ur + (h * g[at + 3] - v * g[at + 1]) * ui;
+      // ḡ times the carrier: what multiplies a change of the envelope.
+      table.spread(s, gr * cos + gi * sin, gr * sin - gi * cos, grid);
+    }
+    into[slot + AREA] += along;
+    into[slot + PHASE] -= area * turned;
+    into[slot + DETUNING] += (area * timed) / HBAR;
+    into[slot + POLARIZATION] += area * across;
+    this.#finishSpectrum(grid, into, slot);
   }
 
   /** Σ_j Re(a_j dE_j) with E the transform of the spectrum: Σ_k Re(Â_k dS_k), Â the same transform of a. */
