@@ -65,6 +65,8 @@ async function work(session: Session): Promise<RunResult | null> {
     progress.update({ stage: `quoting design ${done} of ${points}`, done: total, total, best: '' }),
   );
   if (quoted === null) return null;
+  // Threads end while this one draws and writes; whoever opened the pool waits for it.
+  void session.pool.close();
   const result: RunResult = {
     ...{ study, hash, version: packageVersion(), wall },
     ...quoted,

@@ -6,6 +6,6 @@ export interface TaskPool {
   readonly size: number;
   /** Rejects when the task throws, the worker dies or the pool was closed. */
   run(task: Task): Promise<TaskResult>;
-  /** Gives up running tasks and frees the threads. */
+  /** Gives up running tasks and frees the threads; a second call waits for the same end. */
   close(): Promise<void>;
 }

@@ -26,7 +26,11 @@ function problemHere(): Problem | null {
   }
 }
 
-function obey(problem: Problem, order: WorkerOrder): WorkerMessage {
+function obey(problem: Problem, order: WorkerOrder): WorkerMessage | null {
+  if (order.kind === 'leave') {
+    port.close();
+    return null;
+  }
   if (order.kind === 'help') {
     helpWith(order.batch as SharedBatch<Design>, evaluateOne);
     return { kind: 'helped' };
@@ -39,4 +43,9 @@ function obey(problem: Problem, order: WorkerOrder): WorkerMessage {
 }
 
 const problem = problemHere();
-if (problem !== null) port.on('message', (order: WorkerOrder) => say(obey(problem, order)));
+if (problem !== null) {
+  port.on('message', (order: WorkerOrder) => {
+    const answer = obey(problem, order);
+    if (answer !== null) say(answer);
+  });
+}

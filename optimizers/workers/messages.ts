@@ -13,7 +13,9 @@ export interface WorkerSetup {
 /** What a worker is told. */
 export type WorkerOrder =
   | { readonly kind: 'run'; readonly task: Task }
-  | { readonly kind: 'help'; readonly batch: SharedBatch };
+  | { readonly kind: 'help'; readonly batch: SharedBatch }
+  /** To end by itself. */
+  | { readonly kind: 'leave' };
 
 /** What a worker answers; `share` may come while it runs a task. */
 export type WorkerMessage =

@@ -39,7 +39,10 @@ class Pool implements TaskPool {
   readonly #batches = new OpenBatches<Worker>();
   readonly #idle = new Int32Array(new SharedArrayBuffer(4));
   readonly #workers: readonly Worker[];
+  /** Those that have answered and not ended: they hear an order at once. */
+  readonly #loaded = new Set<Worker>();
   #broken: Error | null = null;
+  #closed: Promise<void> | null = null;
 
   constructor(spec: ProblemSpec, size: number) {
     const url = entryUrl();
@@ -49,9 +52,10 @@ class Pool implements TaskPool {
       const worker = new Worker(url, { workerData });
       worker.on('message', (message: WorkerMessage) => this.#hear(worker, message));
       worker.on('error', (error) => this.#break(new Error(`a worker thread failed: ${error.message}`)));
-      worker.on('exit', (code) =>
-        this.#break(new Error(`a worker thread ended unexpectedly (exit code ${code})`)),
-      );
+      worker.on('exit', (code) => {
+        this.#loaded.delete(worker);
+        this.#break(new Error(`a worker thread ended unexpectedly (exit code ${code})`));
+      });
       return worker;
     });
     this.#waiting.push(...this.#workers);
@@ -65,13 +69,27 @@ class Pool implements TaskPool {
     });
   }
 
-  async close(): Promise<void> {
+  close(): Promise<void> {
+    this.#closed ??= this.#close();
+    return this.#closed;
+  }
+
+  /** Stopping a thread from here takes this one as long as it takes that one: those that can are asked to leave. */
+  async #close(): Promise<void> {
     this.#break(new Error('the pool is closed'));
-    await Promise.all(this.#workers.map((worker) => worker.terminate()));
+    const leave: WorkerOrder = { kind: 'leave' };
+    const ends = this.#workers.map(async (worker) => {
+      if (!this.#waiting.includes(worker) || !this.#loaded.has(worker)) return worker.terminate();
+      const ended = new Promise((done) => worker.once('exit', done));
+      worker.postMessage(leave);
+      return ended;
+    });
+    await Promise.all(ends);
   }
 
   #hear(worker: Worker, message: WorkerMessage): void {
     const job = this.#running.get(worker);
+    if (message.kind !== 'broken') this.#loaded.add(worker);
     switch (message.kind) {
       case 'done':
         job?.resolve(message.result);

@@ -83,6 +83,17 @@ describe('worker threads', () => {
     expect(results[1]).toEqual(results[0]);
   });
 
+  it('end whether they are idle, at work or still loading, and once only', async () => {
+    const points = Array.from({ length: 4000 }, (_, i) => [i / 4000, 0.9]);
+    const task = { id: '0-x', kind: 'sample', index: 0, budget: 1, input: { points } };
+    const pool = workerPool(realSpec(10), 2);
+    await pool.run(task);
+    const long = pool.run({ ...task, id: '1-x', budget: 4000 });
+    const given = expect(long).rejects.toThrow('the pool is closed');
+    await Promise.all([pool.close(), pool.close(), workerPool(realSpec(10), 2).close()]);
+    await given;
+  });
+
   it('reject instead of hanging when the worker cannot even build the problem', async () => {
     const broken = toySpec(10, 1, [range('pulse.tones.7.fwhm', 1, 2)]);
     const pool = workerPool(broken, 2);
