@@ -1,41 +1,5 @@
 import type { Drive } from '../../pulse/drive.js';
 import type { Span } from './spans.js';
-import type { TwoLevel } from './two-level.js';
-
-/** Uniform steps of one run. */
-export interface StepPlan {
-  /** Steps per span; 0 for gaps. */
-  readonly counts: readonly number[];
-  /** Whether steps follow the phase of the drive. */
-  readonly follow: boolean;
-}
-
-const MOST_STEPS = 200_000;
-
-/** A plan with more steps by a factor, or null when that is more than a kernel may take. */
-export function finer(plan: StepPlan, factor: number): StepPlan | null {
-  const counts = plan.counts.map((n) => Math.ceil(n * factor));
-  return counts.reduce((a, b) => a + b, 0) > MOST_STEPS ? null : { ...plan, counts };
-}
-
-/**
- * A first guess of the steps. It resolves the envelope, the generalised Rabi frequency (the kicks sample a function
- * that turns with it) and what is left of the kicks' second-order error, which grows as rate·h⁶Ω⁵; the constants were
- * fitted to some hundred random pulses.
- */
-export function firstSteps(drive: Drive, model: TwoLevel, spans: readonly Span[]): StepPlan {
-  const { peakRabi, frequency } = drive.scales;
-  const rabi = peakRabi * Math.abs(model.weight);
-  const follow = frequency > 0 && phaseIsSteady(drive, spans);
-  const damping = model.decay + model.dephasing;
-  const coherent = coherentRate(drive, rabi, model.energy, follow || frequency === 0);
-  const dissipative = 3 * (damping * rabi ** 5) ** (1 / 6) + 8 * damping;
-  const rate = Math.max(coherent, dissipative);
-  return {
-    counts: spans.map((s) => (s.gap ? 0 : Math.max(4, Math.ceil((s.end - s.start) * rate)))),
-    follow,
-  };
-}
 
 /**
  * Steps per ps for the coherent motion. Where the phase can be followed, a chirp matters little beyond the detuning at the
