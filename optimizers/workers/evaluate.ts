@@ -1,5 +1,5 @@
 import { evaluate } from '../../core/evaluate.js';
-import type { EvaluateGradient } from '../../core/gradient.js';
+import { type EvaluateGradient, evaluateGradient } from '../../core/gradient.js';
 import type { Evaluate } from '../problem/problem.js';
 
 /** The evaluation that a search uses unless it is given another. */
@@ -8,5 +8,5 @@ export const evaluateForSearch: Evaluate = (design) => evaluate(design, 'search'
 /** Figures by the exact phonon method, for the fronts of searches with a cheaper one. */
 export const evaluateExactly: Evaluate = (design) => evaluate(design, 'quoted');
 
-/** The exact derivatives that a search uses; null: it takes differences. */
-export const gradientForSearch: EvaluateGradient | null = null;
+/** The exact derivatives that a search uses. */
+export const gradientForSearch: EvaluateGradient = evaluateGradient;
