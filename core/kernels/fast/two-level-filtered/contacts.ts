@@ -12,6 +12,7 @@ export interface Remainders {
   readonly b0: Complex;
   readonly b1: Complex;
   readonly b2: Complex;
+  readonly b3: Complex;
 }
 
 /** |νh/2| below which the closed forms cancel; the series hold to 1e-16 of h. */
@@ -27,13 +28,21 @@ export function remainders(nu: Complex, h: number): Remainders {
 const COTH = [1 / 3, -1 / 45, 2 / 945, -1 / 4725, 2 / 93555, -1382 / 638512875];
 const SINH = [1 / 3, -1 / 15, 2 / 189, -1 / 675, 2 / 10395, -1382 / 58046625];
 const CUBE = [1 / 15, -4 / 189, 1 / 225, -8 / 10395, 1382 / 11609325];
+/** The same of (2 sinh²x + 3)/sinh⁴x − 3/x⁴. */
+const FOURTH = CUBE.map((a, k) => (2 * k + 1) * a);
 
 function bySeries(x: Complex, h: number): Remainders {
   const square = multiply(x, x);
   const p0 = multiply(x, polynomial(COTH, square));
   const p1 = polynomial(SINH, square);
   const p2 = multiply(x, polynomial(CUBE, square));
-  return { b0: scale(p0, -h / 2), b1: scale(p1, h ** 2 / 4), b2: scale(p2, h ** 3 / 8) };
+  const p3 = polynomial(FOURTH, square);
+  return {
+    b0: scale(p0, -h / 2),
+    b1: scale(p1, h ** 2 / 4),
+    b2: scale(p2, h ** 3 / 8),
+    b3: scale(p3, -(h ** 4) / 48),
+  };
 }
 
 function byClosedForm(x: Complex, h: number): Remainders {
@@ -47,7 +56,16 @@ function byClosedForm(x: Complex, h: number): Remainders {
   const b0 = add(divide(one, x), scale(divide(cosh, sinh), -1));
   const b1 = add(divide(one, square), scale(divide(one, sinh2), -1));
   const b2 = add(divide(one, multiply(square, x)), scale(divide(cosh, multiply(sinh2, sinh)), -1));
-  return { b0: scale(b0, h / 2), b1: scale(b1, h ** 2 / 4), b2: scale(b2, h ** 3 / 8) };
+  const b3 = add(
+    divide({ re: 3, im: 0 }, multiply(square, square)),
+    scale(divide(add(scale(sinh2, 2), { re: 3, im: 0 }), multiply(sinh2, sinh2)), -1),
+  );
+  return {
+    b0: scale(b0, h / 2),
+    b1: scale(b1, h ** 2 / 4),
+    b2: scale(b2, h ** 3 / 8),
+    b3: scale(b3, h ** 4 / 48),
+  };
 }
 
 function polynomial(coefficients: readonly number[], x: Complex): Complex {

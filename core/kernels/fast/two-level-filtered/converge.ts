@@ -5,8 +5,6 @@ const GROWTH = [1.3, 2] as const;
 /** Most runs, and most of them that are extrapolated together. */
 const RUNS = 9;
 const TOGETHER = 4;
-/** The last extrapolated value is better than its difference from the one with a run less by at least this, from three runs on. */
-const GAIN = 2;
 /** Order in which what is left after extrapolation falls, at least. */
 const ORDER = 5;
 /** Largest difference of populations in units of what is accepted: they have no series in h to be extrapolated. */
@@ -44,7 +42,9 @@ export function converge(
     }
     const used = runs.slice(-TOGETHER);
     const all = extrapolated(used);
-    const error = difference(extrapolated(used.slice(1)), all, used) / (used.length > 2 ? GAIN : 1);
+    // Two runs do not show whether the series holds: then their whole difference counts.
+    const other = used.length === 2 ? runs[0].run : extrapolated(used.slice(1));
+    const error = difference(other, used.length === 2 ? runs[1].run : all, used);
     if (!Number.isFinite(error)) return null;
     if (error <= accept) return { result: all, last: count, steps, error };
     const growth = 1.05 * (error / accept) ** (1 / ORDER);

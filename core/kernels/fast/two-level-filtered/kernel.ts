@@ -1,15 +1,18 @@
-import type { CountRequest, CountResult } from '../../count.js';
+import type { CountRequest, CountResult, Effort } from '../../count.js';
 import { prepare } from '../bloch/problem.js';
 import { firstCounts } from '../bloch/steps.js';
 import type { FastKernel } from '../contract.js';
 import { smoothSpans } from '../spans.js';
 import { asTwoLevel } from '../two-level.js';
-import { converge, named } from './converge.js';
+import { type Converged, converge, named } from './converge.js';
+import { differentiate, keepingRun } from './gradient.js';
+import { reversibleMachine } from './machine.js';
 import { type FilteredProblem, run } from './run.js';
 
 /**
  * Two levels behind a Lorentzian filter: the moments of the transmitted light by pairs of events (legs.ts), on uniform
- * steps with exact rotations by the drive (step.ts). Figures of the light before the filter are counted apart.
+ * steps with exact rotations by the drive (step.ts). Figures of the light before the filter are counted apart; derivatives
+ * are given of the moments, by the finest of the runs that were extrapolated.
  */
 export const twoLevelFiltered: FastKernel = {
   name: 'two-level filtered',
@@ -17,18 +20,23 @@ export const twoLevelFiltered: FastKernel = {
     request.filter !== null && request.filter.order <= MOST_MOMENTS && asTwoLevel(request) !== null,
   count(request, countPart) {
     const problem = problemOf(request);
-    if (!problem) return null;
-    const { tolerance, parts } = request.effort;
-    const found = converge(firstSteps(problem), tolerance * ACCEPT, MOST_STEPS, (steps) =>
-      run(problem, steps),
-    );
+    const found = problem && settle(problem, request.effort);
     if (!found) return null;
-    const moments =
-      parts === 1
-        ? found
-        : converge(found.last * parts, tolerance * ACCEPT, MOST_STEPS, (n) => run(problem, n));
-    if (!moments) return null;
-    return together(request, named(moments.result), { ...moments, error: found.error }, countPart);
+    return onlyBehind(request) ? behind(found) : together(found, countPart({ ...request, filter: null }));
+  },
+  countWithGradient(request, seeds) {
+    const problem = onlyBehind(request) ? problemOf(request) : null;
+    const machine = problem && reversibleMachine(problem.order);
+    if (!machine) return null;
+    const kept: Float64Array[] = [];
+    const found = settle(problem, request.effort, (steps) => keepingRun(problem, steps, machine, kept));
+    if (!found) return null;
+    const result = behind(found);
+    const weights = seeds(result.values).map((seed) => momentWeights(seed, problem.order));
+    const known = weights.filter((w) => w !== null);
+    if (known.length < weights.length) return null;
+    const gradient = differentiate(problem, machine, found.last, kept, known);
+    return gradient && { result, ...gradient };
   },
 };
 
@@ -39,24 +47,45 @@ const ACCEPT = 10;
 /** Figures of the light behind the filter; all others are those before it. */
 const BEHIND = /^m\d+$/;
 
+const onlyBehind = ({ wanted }: CountRequest): boolean => wanted?.every((name) => BEHIND.test(name)) ?? false;
+
+function settle(
+  problem: FilteredProblem,
+  { tolerance, parts }: Effort,
+  runOn = (steps: number) => run(problem, steps),
+): Converged | null {
+  const from = (first: number) => converge(first, tolerance * ACCEPT, MOST_STEPS, runOn);
+  const found = from(firstSteps(problem));
+  if (!found || parts === 1) return found;
+  const finer = from(found.last * parts);
+  return finer && { ...finer, error: found.error };
+}
+
+const behind = ({ result, steps, error }: Converged): CountResult => ({
+  values: named(result),
+  populations: result.populations,
+  steps,
+  localErrors: error,
+});
+
 /** Light before the filter does not see it: it is a cheaper problem with its own steps. */
-function together(
-  request: CountRequest,
-  values: Readonly<Record<string, number>>,
-  { result, steps, error }: { result: { populations: readonly number[] }; steps: number; error: number },
-  countPart: (request: CountRequest) => CountResult,
-): CountResult {
-  const { wanted } = request;
-  if (wanted?.every((name) => BEHIND.test(name))) {
-    return { values, populations: result.populations, steps, localErrors: error };
+const together = (found: Converged, before: CountResult): CountResult => ({
+  values: { ...before.values, ...named(found.result) },
+  populations: before.populations,
+  steps: found.steps + before.steps,
+  localErrors: Math.max(found.error, before.localErrors),
+});
+
+/** Weights of m_1 … m_K, or null where a scalar depends on another figure. */
+function momentWeights(seed: Readonly<Record<string, number>>, order: number): number[] | null {
+  const weights = new Array<number>(order).fill(0);
+  for (const [name, weight] of Object.entries(seed)) {
+    if (weight === 0) continue;
+    const k = BEHIND.test(name) ? Number(name.slice(1)) : 0;
+    if (k < 1 || k > order) return null;
+    weights[k - 1] = weight;
   }
-  const before = countPart({ ...request, filter: null });
-  return {
-    values: { ...before.values, ...values },
-    populations: before.populations,
-    steps: steps + before.steps,
-    localErrors: Math.max(error, before.localErrors),
-  };
+  return weights;
 }
 
 /** The request as this kernel sees it, or null when the drive has edges. */
@@ -80,14 +109,14 @@ export function problemOf(request: CountRequest): FilteredProblem | null {
   };
 }
 
-/** Steps over what the light before the filter needs, and per damping of a leg. */
-const COHERENT = 0.9;
-const DAMPED = 0.5;
+/** First guess, over what the light before the filter needs, and for the damping of a leg over the window. */
+const COHERENT = 1.2;
+const DAMPED = 0.6;
 
 function firstSteps({ drive, model, part, filter }: FilteredProblem): number {
   const [count] = firstCounts({ drive, model, spans: [part], thinning: null, wants: NOTHING });
   const { start, end } = part.span;
-  return Math.max(Math.ceil(COHERENT * count), Math.ceil((end - start) * DAMPED * filter.kappa));
+  return Math.ceil(COHERENT * count + DAMPED * filter.kappa * (end - start));
 }
 
 const NOTHING = { counted: false, ladder: false, thinned: false };

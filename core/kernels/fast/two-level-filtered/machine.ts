@@ -1,7 +1,7 @@
 import { type Legs, legsFor } from './legs.js';
 import { BYTES } from './propagate.bytes.js';
 import { propagate, ROW, setDamping, type Work, workFor } from './propagate.js';
-import type { StepNumbers } from './step.js';
+import { FILTER_NUMBERS, type StepNumbers } from './step.js';
 import { BLOCK } from './table.js';
 
 /** Runs the blocks of one order over tables of steps. Its arrays are used again by the next call. */
@@ -37,14 +37,24 @@ export function plainMachine(order: number): Machine {
   };
 }
 
-const machines = new Map<number, Machine>();
+const compiledMachines = new Map<number, ReversibleMachine | null>();
+const plainMachines = new Map<number, Machine>();
 
 /** The compiled loops where the host has WebAssembly with vectors of two numbers, else the plain ones. */
 export function machineFor(order: number): Machine {
-  let machine = machines.get(order);
-  if (!machine) {
-    machine = compiledMachine(order) ?? plainMachine(order);
-    machines.set(order, machine);
+  const compiled = reversibleMachine(order);
+  if (compiled) return compiled;
+  const plain = plainMachines.get(order) ?? plainMachine(order);
+  plainMachines.set(order, plain);
+  return plain;
+}
+
+/** The compiled loops, or null where the host cannot run them. */
+export function reversibleMachine(order: number): ReversibleMachine | null {
+  let machine = compiledMachines.get(order);
+  if (machine === undefined) {
+    machine = compiledMachine(order);
+    compiledMachines.set(order, machine);
   }
   return machine;
 }
@@ -61,9 +71,14 @@ const WIDE = 8;
 const PAGE = 65536;
 const RECORD = 48;
 
+/** Exports of propagate.as. */
 interface Compiled {
-  readonly memory: { readonly buffer: ArrayBuffer };
-  readonly propagate: (...numbers: number[]) => void;
+  readonly memory: { readonly buffer: ArrayBuffer; grow(pages: number): number };
+  readonly place: (...numbers: number[]) => void;
+  readonly configure: (numbers: number) => void;
+  readonly propagate: (steps: number, table: number) => void;
+  readonly record: (steps: number, table: number, tape: number) => void;
+  readonly sweep: (...numbers: number[]) => void;
 }
 
 /** What of the host's WebAssembly is used. */
@@ -88,81 +103,78 @@ function instantiate(): Compiled | null {
   return module && host.WebAssembly ? (new host.WebAssembly.Instance(module).exports as Compiled) : null;
 }
 
-export function compiledMachine(order: number): Machine | null {
+/** Adds reverse sweeps to a machine; one scalar at a time. */
+export interface ReversibleMachine extends Machine {
+  /** Takes the first steps of the table and keeps what `reverse` needs of them. */
+  record(steps: number): void;
+  /** Derivatives by the blocks: after the recorded steps before `reverse`, ahead of them after it. */
+  readonly lambda: Float64Array;
+  /** Derivatives by the rows of the table: rotation row-major, then the drive at the end of the step. */
+  readonly byRow: Float64Array;
+  /** Gains the derivatives by the numbers of steps (numberSlopes in step.ts). */
+  readonly byNumber: Float64Array;
+  reverse(steps: number): void;
+}
+
+function compiledMachine(order: number): ReversibleMachine | null {
   const compiled = instantiate();
   if (!compiled) return null;
   const legs = legsFor(order);
   const blocks = legs.complex.count + legs.hermitian.count;
-  const sizes = [
-    legs.size,
-    legs.size,
-    legs.size,
-    legs.size,
-    4 * (order + 1),
-    ROW * BLOCK,
-    (RECORD / WIDE) * blocks,
-  ];
-  const room = sizes.reduce((sum, n) => sum + WIDE * n, WIDE);
-  (compiled.memory as unknown as { grow(pages: number): number }).grow(Math.ceil(room / PAGE));
+  const { size } = legs;
+  const rows = ROW * BLOCK;
+  // Blocks, what events see, its sums and changes stand one after the other, as propagate.as wants them.
+  const sizes = [size, size, size, size, 4 * (order + 1), rows, (RECORD / WIDE) * blocks, NUMBERS];
+  const adjoint = [4 * size * BLOCK, size, rows, FILTER_NUMBERS, 3 * size];
+  const room = [...sizes, ...adjoint].reduce((sum, n) => sum + WIDE * n, WIDE);
+  compiled.memory.grow(Math.ceil(room / PAGE));
   let end = WIDE;
-  const [y, seen, fed, change, damping, table, records] = sizes.map((n) => {
+  const place = (n: number): Float64Array => {
     end += WIDE * n;
     return new Float64Array(compiled.memory.buffer, end - WIDE * n, n);
-  });
+  };
+  const [y, seen, fed, change, damping, table, records, numbers] = sizes.map(place);
+  const [tape, lambda, byRow, byNumber, work] = adjoint.map(place);
   writeRecords(legs, records);
-  const work: Work = { y, seen, fed, change, damping };
-  const places = [records, y, seen, fed, change, damping].map((a) => a.byteOffset);
-  let current: StepNumbers | null = null;
+  const { complex, hermitian } = legs;
+  compiled.place(
+    complex.count,
+    hermitian.count,
+    WIDE * size,
+    records.byteOffset,
+    y.byteOffset,
+    damping.byteOffset,
+  );
+  const held: Work = { y, seen, fed, change, damping };
   return {
     legs,
     y,
     table,
-    begin(numbers) {
-      current = numbers;
-      begin(legs, work, numbers);
+    begin(step) {
+      begin(legs, held, step);
+      writeNumbers(step, numbers);
+      compiled.configure(numbers.byteOffset);
     },
-    advance(steps) {
-      if (!current) return;
-      const {
-        intoTrace,
-        intoCoherence,
-        pair,
-        pairDriven,
-        twice,
-        decaying,
-        dephasing,
-        opened,
-        closed,
-        both,
-        turn,
-      } = current;
-      const { complex, hermitian } = legs;
-      const [r, a, b, c, d, e] = places;
-      compiled.propagate(
-        steps,
-        table.byteOffset,
-        complex.count,
-        hermitian.count,
-        r,
-        a,
-        b,
-        c,
-        d,
-        e,
-        intoTrace,
-        intoCoherence,
-        pair,
-        pairDriven,
-        twice,
-        decaying,
-        dephasing,
-        opened,
-        closed,
-        both,
-        turn,
-      );
+    advance: (steps) => compiled.propagate(steps, table.byteOffset),
+    record: (steps) => compiled.record(steps, table.byteOffset, tape.byteOffset),
+    lambda,
+    byRow,
+    byNumber,
+    reverse(steps) {
+      const [t, p, l, r, n, w] = [table, tape, lambda, byRow, byNumber, work].map((a) => a.byteOffset);
+      compiled.sweep(steps, t, p, 1, l, r, 0, n, w);
     },
   };
+}
+
+const NUMBERS = 11;
+
+/** In the order of `configure` (propagate.as). */
+function writeNumbers(n: StepNumbers, out: Float64Array): void {
+  const { intoTrace, intoCoherence, pair, pairDriven, twice, decaying, opened, closed, turn } = n;
+  out.set([intoTrace, intoCoherence, pair, pairDriven, twice, decaying, opened, closed, turn]);
+  out[9] = n.dephasing;
+  out[10] = n.both;
 }
 
 /** Offsets in bytes as whole numbers of 32 bits, then weights. */

@@ -2,7 +2,7 @@ import type { Drive } from '../../../pulse/drive.js';
 import type { BlochSpan } from '../bloch/problem.js';
 import type { TwoLevel } from '../two-level.js';
 import { type Machine, machineFor } from './machine.js';
-import { type Filter, stepNumbers } from './step.js';
+import { type Filter, type StepNumbers, stepNumbers } from './step.js';
 import { BLOCK, fillTable, type Steps } from './table.js';
 import { moments } from './tail.js';
 
@@ -23,19 +23,32 @@ export interface FilteredRun {
   readonly populations: readonly [number, number];
 }
 
-/** One propagation over so many uniform steps. */
+export function stepsOf(
+  { drive, model, part, filter, center }: FilteredProblem,
+  count: number,
+): { readonly steps: Steps; readonly numbers: StepNumbers } {
+  const h = (part.span.end - part.span.start) / count;
+  const numbers = stepNumbers(model, filter, h);
+  return { steps: { drive, model, part, center, count, h, scale: numbers.drive }, numbers };
+}
+
+/**
+ * One propagation over so many uniform steps.
+ * @param visit called before the first step of every block of steps (table.ts)
+ */
 export function run(
   problem: FilteredProblem,
   count: number,
   machine: Machine = machineFor(problem.order),
+  visit?: (n: number) => void,
 ): FilteredRun {
-  const { drive, model, part, filter, center } = problem;
-  const h = (part.span.end - part.span.start) / count;
-  const numbers = stepNumbers(model, filter, h);
+  const { model, filter } = problem;
+  const { steps, numbers } = stepsOf(problem, count);
+  const { h } = steps;
   const { legs, table, y } = machine;
   machine.begin(numbers);
-  const steps: Steps = { drive, model, part, center, count, h, scale: numbers.drive };
   for (let n = 0; n < count; n += BLOCK) {
+    visit?.(n);
     const end = Math.min(count, n + BLOCK);
     fillTable(steps, n, end, table);
     machine.advance(end - n);

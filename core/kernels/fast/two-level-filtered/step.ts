@@ -9,7 +9,7 @@ export interface Filter {
   readonly offset: number;
 }
 
-/** Numbers of one uniform step. */
+/** Numbers of one uniform step; all but the first four and the last depend on the filter. */
 export interface StepNumbers {
   readonly h: number;
   /** Factor of the coherence and of the excited state over a step without drive. */
@@ -83,4 +83,50 @@ export function stepNumbers(model: TwoLevel, { kappa, offset }: Filter, h: numbe
 /** Factor by which a sum over the middles of steps falls short of an exponential's integral, √(sinh 2x/2x). */
 function middle(x: number): number {
   return 1 + (x * x) / 3;
+}
+
+/**
+ * What depends on the filter, in the order of `sweep` (propagate.as): the logarithm of both strengths of events, then `pair`,
+ * `pairDriven`, `twice`, `decaying`, `opened`, `closed`, `turn` and the logarithm of `damp`.
+ */
+export const FILTER_NUMBERS = 9;
+
+/** Derivatives of those numbers, by κ and by the offset. */
+export function numberSlopes(
+  model: TwoLevel,
+  filter: Filter,
+  numbers: StepNumbers,
+): { readonly kappa: readonly number[]; readonly offset: readonly number[] } {
+  const { decay, dephasing } = model;
+  const { h, pair, pairDriven, twice } = numbers;
+  const { kappa } = filter;
+  const { b1, b2, b3 } = remainders({ re: 0.5 * kappa, im: filter.offset }, h);
+  const light = 0.25 * kappa * model.collected * decay * h;
+  const single = Math.sqrt(0.25 * kappa * model.collected * decay);
+  const middled = light * Math.exp(0.5 * decay * h);
+  // ∂β_j/∂ν = −(j + 1)β_{j+1}, ν = κ/2 + i·offset.
+  return {
+    kappa: [
+      0.5 / kappa,
+      pair / kappa - 0.5 * middled * b1.re,
+      pairDriven / kappa + 0.75 * light * b3.re,
+      (0.5 * twice) / kappa + 0.5 * single * b2.re,
+      decay * b2.re,
+      -0.5 * dephasing * b1.re,
+      0.5 * dephasing * b1.re,
+      -0.5 * dephasing * b1.im,
+      -0.5 * h,
+    ],
+    offset: [
+      0,
+      middled * b1.im,
+      -1.5 * light * b3.im,
+      -single * b2.im,
+      -2 * decay * b2.im,
+      dephasing * b1.im,
+      -dephasing * b1.im,
+      -dephasing * b1.re,
+      0,
+    ],
+  };
 }

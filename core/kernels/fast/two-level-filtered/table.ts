@@ -1,5 +1,5 @@
 import type { Drive } from '../../../pulse/drive.js';
-import { spatialVectors } from '../bloch/magnus.js';
+import { type Energies, spatialVectors } from '../bloch/magnus.js';
 import { NODES, BLOCK as NODES_BLOCK } from '../bloch/nodes.js';
 import { energyAt } from '../bloch/pace.js';
 import type { BlochSpan } from '../bloch/problem.js';
@@ -25,9 +25,10 @@ export interface Steps {
   readonly scale: number;
 }
 
-const samples = new Float64Array(2 * NODES * BLOCK);
-const turns = new Float64Array(BLOCK);
-const vectors = new Float64Array(3 * BLOCK);
+/** What the last table was made from: drive at the nodes (times step and scale), turns of steps' own frames, rotation vectors. */
+export const samples = new Float64Array(2 * NODES * BLOCK);
+export const turns = new Float64Array(BLOCK);
+export const vectors = new Float64Array(3 * BLOCK);
 const edges = new Float64Array(2 * BLOCK);
 
 /** Fills a table with steps from … to − 1 (at most BLOCK), in the frame of the filter, in which open legs stand still. */
@@ -37,19 +38,34 @@ export function fillTable(steps: Steps, from: number, to: number, table: Float64
   const count = to - from;
   const scale = model.weight * h * steps.scale;
   const grid = { start: span.start + from * h, h };
-  const energies = {
-    first: energyAt(model.energy, frame, h, grid.start + 0.5 * h),
-    slope: 2 * frame.chirp * h * h,
-    axial: 0,
-  };
-  const own = source.kind === 'sampled' && source.follow ? turns : null;
+  const own = follows(part) ? turns : null;
   if (source.kind === 'sampled') sampleDrive(drive, frame, scale, grid, 0, count, span, own, samples);
   else {
     samples.fill(0, 0, 2 * NODES * count);
     for (const tone of source.tones) addComplex(tone, scale, grid, 0, count, samples);
   }
-  spatialVectors(samples, energies, own, 0, count, vectors, edges);
+  spatialVectors(samples, energiesFrom(steps, from), own, 0, count, vectors, edges);
   writeRows(steps, grid.start, count, own, table);
+}
+
+/** Whether steps have frames of their own. */
+export const follows = ({ source }: BlochSpan): boolean => source.kind === 'sampled' && source.follow;
+
+/** Energies of the steps from number `from` on. */
+export function energiesFrom({ model, part, h }: Steps, from: number): Energies {
+  const { frame, span } = part;
+  return {
+    first: energyAt(model.energy, frame, h, span.start + (from + 0.5) * h),
+    slope: 2 * frame.chirp * h * h,
+    axial: 0,
+  };
+}
+
+/** What the frame of rotations has gained on that of the filter at time t, rad, without its constant part. */
+export function gain({ part, center }: Steps, t: number): number {
+  const { frame, span } = part;
+  const s = t - frame.origin;
+  return (frame.rate + frame.chirp * s) * s + center * (t - span.start);
 }
 
 /**
@@ -57,20 +73,17 @@ export function fillTable(steps: Steps, from: number, to: number, table: Float64
  * constant part changes no figure and is left out.
  */
 function writeRows(
-  { part, center, h, scale }: Steps,
+  steps: Steps,
   start: number,
   count: number,
   own: Float64Array | null,
   table: Float64Array,
 ): void {
-  const { frame, span } = part;
-  const gain = (t: number): number => {
-    const s = t - frame.origin;
-    return (frame.rate + frame.chirp * s) * s + center * (t - span.start);
-  };
+  const { h, scale } = steps;
+  const { frame } = steps.part;
   // e^{iψ/2} at the grid points and its ratio from one to the next, both by recurrence.
-  const first = 0.5 * gain(start);
-  const step = 0.5 * (gain(start + h) - gain(start));
+  const first = 0.5 * gain(steps, start);
+  const step = 0.5 * (gain(steps, start + h) - gain(steps, start));
   const bend = frame.chirp * h * h;
   let er = Math.cos(first);
   let ei = Math.sin(first);
@@ -101,7 +114,7 @@ function writeRows(
       s =
         0.5 -
         0.08333333333332882 * u +
-        (0.0041666666665944 - 9.920634877258375e-5 * u) * u2 +
+        (0.0041666666665944 - 9.920634877258376e-5 * u) * u2 +
         (1.3778647210317656e-6 - 1.2524233053905736e-8 * u + 7.89673695596647e-11 * u2) * u4;
     } else {
       const half = Math.sqrt(u);
