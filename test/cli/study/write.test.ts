@@ -38,7 +38,8 @@ describe('a written design', () => {
       if (value === undefined || !/^[-+.\d]/.test(value)) continue;
       // A bound has the unit of its figure, and some figures have none.
       if (/^at_(least|most)$/.test(key)) continue;
-      const pure = /^(pulsewright|slices|efficiency|rejection|quantile|from|to|points|evaluations|seed)$/.test(key);
+      const pure =
+        /^(pulsewright|slices|efficiency|rejection|quantile|from|to|points|evaluations|seed)$/.test(key);
       expect(/^\S+ \S+/.test(value), line).toBe(!pure);
     }
     expect(text).not.toMatch(/[{[]/);
