@@ -7,11 +7,15 @@ import {
   hypervolume,
   type Method,
   moead,
+  movingAsymptotes,
   mutationSearch,
   nelderMeadMethod,
   nsga2,
   optimize,
   type Reply,
+  resumeSession,
+  Session,
+  type SessionState,
   simplexLattice,
   sqp,
   type Trial,
@@ -160,5 +164,124 @@ describe('SQP with constraints', () => {
     const { trace } = optimize(sqp({ differenceStep: 1e-7 }), setup, evaluate);
     const near = trace.filter(({ reply }) => Math.max(...reply.constraints) < 1e-4);
     expect(Math.min(...near.map(({ reply }) => reply.objectives[0]))).toBeCloseTo(-44, 2);
+  });
+});
+
+// Minimise x + y within the disc of radius 0.3 about a point off the centre, with exact derivatives on request: the
+// minimum is in closed form.
+const disc = ([x, y]: Trial, gradient: boolean): Reply => {
+  const [cx, cy] = [optimumAt(0), optimumAt(1)];
+  if (gradient) {
+    const gradients = [
+      [1, 1],
+      [2 * (x - cx), 2 * (y - cy)],
+    ];
+    return { objectives: [], constraints: [], gradients };
+  }
+  return { objectives: [x + y], constraints: [(x - cx) ** 2 + (y - cy) ** 2 - 0.09] };
+};
+
+describe.each([sqp(), movingAsymptotes()].map((method) => [method.name, method] as const))(
+  '%s with exact derivatives on request',
+  (_name, method) => {
+    const setup = {
+      space: cube(2),
+      objectives: 1,
+      constraints: 1,
+      start: [[optimumAt(0), optimumAt(1)]],
+      seed: 1,
+      budget: 150,
+      gradient: true,
+    };
+    const near = (trace: readonly { readonly reply: Reply }[]) =>
+      Math.min(
+        ...trace.filter(({ reply }) => reply.constraints[0] < 1e-6).map(({ reply }) => reply.objectives[0]),
+      );
+
+    it('finds the edge of a disc and counts each gradient as two evaluations', () => {
+      let gradients = 0;
+      const { trace, evaluations } = optimize(method, setup, (x, gradient) => {
+        if (gradient) gradients++;
+        return disc(x, gradient);
+      });
+      expect(near(trace)).toBeCloseTo(optimumAt(0) + optimumAt(1) - 0.3 * Math.SQRT2, 5);
+      expect(gradients).toBeGreaterThan(2);
+      expect(evaluations).toBe(trace.length + 2 * gradients);
+      expect(evaluations).toBeLessThan(120);
+    });
+
+    it.each([1, 2, 3, 4, 5, 7, 11])('keeps a budget of %i with its gradients', (budget) => {
+      let spent = 0;
+      const { evaluations } = optimize(method, { ...setup, budget }, (x, gradient) => {
+        spent += gradient ? 2 : 1;
+        return disc(x, gradient);
+      });
+      expect(evaluations).toBe(spent);
+      expect(spent).toBeLessThanOrEqual(budget);
+      // One evaluation may be left where a gradient would take two.
+      expect(spent).toBeGreaterThanOrEqual(budget - 1);
+    });
+
+    it('takes differences where a gradient was asked for in vain, and soon asks no more', () => {
+      let asked = 0;
+      const { trace } = optimize(method, { ...setup, budget: 400 }, (x, gradient) => {
+        if (gradient) asked++;
+        return gradient ? { objectives: [], constraints: [] } : disc(x, false);
+      });
+      expect(near(trace)).toBeCloseTo(optimumAt(0) + optimumAt(1) - 0.3 * Math.SQRT2, 4);
+      expect(asked).toBe(2);
+    });
+
+    it('goes on from a saved state with its gradients', () => {
+      const whole: string[] = [];
+      optimize(method, setup, (x, gradient) => {
+        whole.push(`${gradient} ${x}`);
+        return disc(x, gradient);
+      });
+      const seen: string[] = [];
+      let session = new Session(method, setup);
+      while (session.ask().length > 0) {
+        session = resumeSession(method, JSON.parse(JSON.stringify(session.state())) as SessionState);
+        const { gradient } = session;
+        seen.push(...session.ask().map((x) => `${gradient} ${x}`));
+        session.tell(session.ask().map((x) => disc(x, gradient)));
+      }
+      expect(seen).toEqual(whole);
+    });
+  },
+);
+
+describe('moving asymptotes', () => {
+  // The same test problem as above for SQP (Hock & Schittkowski 43).
+  it('solve Rosen–Suzuki', () => {
+    const evaluate = (u: Trial): Reply => {
+      const [a, b, c, d] = u.map((v) => 6 * v - 2.7);
+      return {
+        objectives: [a * a + b * b + 2 * c * c + d * d - 5 * a - 5 * b - 21 * c + 7 * d],
+        constraints: [
+          a * a + b * b + c * c + d * d + a - b + c - d - 8,
+          a * a + 2 * b * b + c * c + 2 * d * d - a - d - 10,
+          2 * a * a + b * b + c * c + 2 * a - b - d - 5,
+        ],
+      };
+    };
+    const start = [[0.45, 0.45, 0.45, 0.45]];
+    const setup = { space: cube(4), objectives: 1, constraints: 3, start, seed: 1, budget: 600 };
+    const { trace } = optimize(movingAsymptotes(), setup, evaluate);
+    const near = trace.filter(({ reply }) => Math.max(...reply.constraints) < 1e-4);
+    expect(Math.min(...near.map(({ reply }) => reply.objectives[0]))).toBeCloseTo(-44, 1);
+  });
+
+  it('go to the least violation of a constraint that cannot be met, off a saddle', () => {
+    // Least of the constraint: ±0.2 in y about 0.5, where a start on the axis has no slope.
+    const evaluate = ([x, y]: Trial): Reply => {
+      const z = (y - 0.5) ** 2;
+      return { objectives: [1 + x], constraints: [0.1 + (x - 0.3) ** 2 + 25 * (z - 0.04) ** 2] };
+    };
+    const start = [[0.8, 0.501]];
+    const setup = { space: cube(2), objectives: 1, constraints: 1, start, seed: 1, budget: 400 };
+    const { best } = optimize(movingAsymptotes(), setup, evaluate);
+    expect(best?.reply.constraints[0]).toBeLessThan(0.1 + 1e-5);
+    expect(best?.x[1]).toBeCloseTo(0.7, 2);
   });
 });
