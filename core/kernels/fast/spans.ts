@@ -28,8 +28,10 @@ export function smoothSpans(drive: Drive): readonly Span[] | null {
   const jump = EDGE * scales.peakRabi;
   const spans: Span[] = [];
   for (let s = 0; s <= count; s++) {
-    before.fill(0);
-    after.fill(0);
+    for (let i = 0; i < 2 * components; i++) {
+      before[i] = 0;
+      after[i] = 0;
+    }
     if (s > 0) drive.sample(breakpoints[s], s - 1, before);
     if (s < count) drive.sample(breakpoints[s], s, after);
     for (let i = 0; i < 2 * components; i++) if (!(Math.abs(after[i] - before[i]) <= jump)) return null;

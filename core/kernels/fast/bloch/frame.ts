@@ -81,8 +81,11 @@ export function phaseAt(frame: PhaseFrame, t: number): number {
 /** A tone seen in a frame: chirp and rate are what is left of them about the tone's own centre. */
 export function seenFrom(frame: PhaseFrame, tone: GaussianTone): GaussianTone {
   const lag = tone.delay - frame.origin;
+  const { amplitude, fall, delay } = tone;
   return {
-    ...tone,
+    amplitude,
+    fall,
+    delay,
     phase: tone.phase - frame.constant - (frame.rate + frame.chirp * lag) * lag,
     rate: tone.rate + frame.rate + 2 * frame.chirp * lag,
     chirp: tone.chirp - frame.chirp,

@@ -25,16 +25,18 @@ export interface Pace {
 export function paceOf(problem: BlochProblem, { span }: BlochSpan, count: number): Pace {
   const { model } = problem;
   const h = (span.end - span.start) / count;
-  const square = (model.dephasing / model.decay) ** 2;
-  const small = (h * model.decay) ** 2;
+  const ratio = model.dephasing / model.decay;
+  const square = ratio * ratio;
+  const small = h * model.decay * (h * model.decay);
+  const half = kickOver(problem, 0.5 * h);
   const correction = correctionOf(problem, h);
   return {
     h,
     scale: model.weight * h * (1 - (small / 96) * (1 + square)),
     quartic: correction ? (small / 5760) * (1 + 4 * square) : 0,
     axial: correction ? (small / 5760) * (1 + square) : 0,
-    half: kickOver(problem, 0.5 * h),
-    full: kickOver(problem, h),
+    half,
+    full: { fade: half.fade * half.fade, loss: half.loss * (2 - half.loss) },
     correction,
   };
 }
@@ -65,9 +67,9 @@ const NEGLIGIBLE = { whole: 5e-10, relative: 1e-7 };
 function correctionOf(problem: BlochProblem, h: number): Correction | null {
   const { decay, dephasing, weight } = problem.model;
   const rabi = h * problem.drive.scales.peakRabi * Math.abs(weight);
-  const relative = (h * decay * rabi ** 3) / 1920 + (h * dephasing * rabi) / 48;
+  const relative = (h * decay * rabi * rabi * rabi) / 1920 + (h * dephasing * rabi) / 48;
   if (correctionBound(problem, h) < NEGLIGIBLE.whole && relative < NEGLIGIBLE.relative) return null;
-  const small = (h * decay) ** 2;
+  const small = h * decay * (h * decay);
   const ratio = dephasing / decay;
   return { quadratic: (-STRIDE * small * ratio) / 48, quartic: (STRIDE * small) / 1920, ratio };
 }
@@ -77,7 +79,7 @@ export function correctionBound({ drive, model }: BlochProblem, h: number): numb
   const { decay, dephasing, weight } = model;
   const { peakRabi, time } = drive.scales;
   const rabi = h * peakRabi * Math.abs(weight);
-  const perArea = (h * decay * rabi) ** 2 / 1920 + (h * h * decay * dephasing) / 48;
+  const perArea = (h * decay * rabi * (h * decay * rabi)) / 1920 + (h * h * decay * dephasing) / 48;
   return perArea * AREA * peakRabi * time;
 }
 

@@ -47,14 +47,17 @@ export function prepare(request: CountRequest, model: TwoLevel, spans: readonly 
   };
 }
 
+const ALL: Wants = { ladder: true, counted: false, thinned: true };
+
 function wantsOf({ wanted, thinning }: CountRequest): Wants {
-  const any = (...names: string[]) => !wanted || names.some((name) => wanted.includes(name));
-  const ladder = any('p2', 'p3');
-  return {
-    ladder,
-    counted: !ladder && any('p0', 'p1', 'multiphoton'),
-    thinned: thinning !== null && any('thinned0', 'thinned1', 'thinnedMultiphoton'),
-  };
+  if (!wanted) return thinning === null ? { ...ALL, thinned: false } : ALL;
+  let [ladder, counted, thinned] = [false, false, false];
+  for (const name of wanted) {
+    if (name === 'p2' || name === 'p3') ladder = true;
+    else if (name === 'p0' || name === 'p1' || name === 'multiphoton') counted = true;
+    else if (name.startsWith('thinned')) thinned = thinning !== null;
+  }
+  return { ladder, counted: counted && !ladder, thinned };
 }
 
 const STILL: PhaseFrame = { origin: 0, constant: 0, rate: 0, chirp: 0 };
