@@ -1,4 +1,5 @@
 import { type Interval, integrate } from '../numerics/index.js';
+import { HBAR } from '../units/constants.js';
 import { bandWeight } from './band.js';
 import type { Pulse, Tone } from './contract.js';
 import { flatPair, type SpectralFilter } from './flat.js';
@@ -107,7 +108,8 @@ function ownEnergy(tone: Tone, filter: SpectralFilter | null): number {
   if (!filter) return tone.area * tone.area * shape.energy(tone.fwhm);
   // Dispersion only turns phases, and one tone has nothing to interfere with.
   if (shape.flat) return flatPair(tone, tone, filter);
-  return tone.area * tone.area * ownIntegral(tone, filter).value;
+  const closed = shape.filteredEnergy?.(tone.fwhm, filter.kappa, filter.center - tone.detuning / HBAR);
+  return tone.area * tone.area * (closed ?? ownIntegral(tone, filter)).value;
 }
 
 /** Interference of tones k ≠ l behind the filter: Re ∫ E_k E_l* T dω/2π, known to 1e-12 of `scale`. */

@@ -103,6 +103,14 @@ function ownTerm(tone: Tone, filter: SpectralFilter | null): PairTerm | null {
     return { value, slopes };
   }
   if (shape.flat) return null;
+  const closed = shape.filteredEnergy?.(tone.fwhm, filter.kappa, filter.center - tone.detuning / HBAR);
+  if (closed) {
+    slopes[FWHM] = slopes[TONE_SLOTS + FWHM] = closed.byFwhm / 2;
+    slopes[DETUNING] = slopes[TONE_SLOTS + DETUNING] = -closed.byOffset / (2 * HBAR);
+    slopes[PAIR_KAPPA] = closed.byKappa;
+    slopes[PAIR_CENTER] = closed.byOffset;
+    return { value: closed.value, slopes };
+  }
   const integral = ownIntegral(tone, filter);
   integrateSlopes(tone, tone, filter, integral, slopes);
   return { value: integral.value, slopes };

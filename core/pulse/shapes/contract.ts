@@ -27,6 +27,14 @@ export interface ClosedEnvelope {
  */
 export type EnvelopeSlopes = (t: number, out: Float64Array) => void;
 
+/** ∫ spectrum² T dω/2π behind a Lorentzian T of FWHM κ, 1/ps, with its derivatives by FWHM, κ and the filter's offset. */
+export interface FilteredEnergy {
+  readonly value: number;
+  readonly byFwhm: number;
+  readonly byKappa: number;
+  readonly byOffset: number;
+}
+
 /** A transform-limited pulse shape, scaled to area 1, with the FWHM (ps) of its intensity as only parameter. */
 export interface PulseShape {
   readonly name: string;
@@ -55,6 +63,8 @@ export interface PulseShape {
   readonly dispersed?: (fwhm: number, gdd: number) => ClosedEnvelope;
   /** Derivatives of the envelope dispersed by `gdd` (ps²) alone; null where there is no closed form or there are edges. */
   slopes(fwhm: number, gdd: number): EnvelopeSlopes | null;
+  /** Energy behind a filter of FWHM κ (1/ps), `offset` (1/ps) above the pulse's centre, where a closed form exists. */
+  readonly filteredEnergy?: (fwhm: number, kappa: number, offset: number) => FilteredEnergy;
   /** ∫ env² dt, 1/ps; inversely proportional to the FWHM. */
   energy(fwhm: number): number;
 }

@@ -1,4 +1,5 @@
-import type { ClosedEnvelope, EnvelopeSlopes, PulseShape } from './contract.js';
+import { faddeeva } from '../../numerics/faddeeva.js';
+import type { ClosedEnvelope, EnvelopeSlopes, FilteredEnergy, PulseShape } from './contract.js';
 
 /** FWHM of |Ω|² over the field σ: 2√ln 2. */
 const FWHM_PER_SIGMA = 2 * Math.sqrt(Math.LN2);
@@ -57,6 +58,23 @@ function slopes(fwhm: number, gdd: number): EnvelopeSlopes {
   };
 }
 
+/**
+ * A Gaussian spectrum behind a Lorentzian is a Voigt profile: (κ/4) Re w(σ(c + iκ/2)) with w of numerics/faddeeva.ts and c
+ * the offset (Abramowitz & Stegun 7.4.13).
+ */
+function filteredEnergy(fwhm: number, kappa: number, offset: number): FilteredEnergy {
+  const sigma = sigmaOf(fwhm);
+  const half = kappa / 2;
+  const w = new Float64Array(4);
+  faddeeva(sigma * offset, sigma * half, w);
+  return {
+    value: (half / 2) * w[0],
+    byFwhm: (half / 2) * (w[2] * offset - w[3] * half) * (sigma / fwhm),
+    byKappa: 0.25 * (w[0] - half * w[3] * sigma),
+    byOffset: (half / 2) * w[2] * sigma,
+  };
+}
+
 /** exp(−t²/2σ²)/(√(2π) σ), FWHM = 2√(ln 2) σ. */
 export const gaussian: PulseShape = {
   name: 'gaussian',
@@ -84,5 +102,6 @@ export const gaussian: PulseShape = {
   edges: () => [],
   dispersed,
   slopes,
+  filteredEnergy,
   energy: (fwhm) => 1 / (2 * Math.sqrt(Math.PI) * sigmaOf(fwhm)),
 };

@@ -3,6 +3,7 @@ import {
   createDrive,
   type Pulse,
   pulseFigures,
+  pulseShape,
   stream,
   type Tone,
   transmittedEnergy,
@@ -10,6 +11,7 @@ import {
 import { energyDerivatives } from '../../../core/pulse/derivatives/energy.js';
 import { pulseFigureDerivatives } from '../../../core/pulse/derivatives/figures.js';
 import { emptyDerivatives, TONE_KEYS, TONE_SLOTS } from '../../../core/pulse/derivatives/layout.js';
+import { ownIntegral } from '../../../core/pulse/energy.js';
 import { tone } from '../../support.js';
 
 // Every check: against central differences of the values (common practice, no source).
@@ -124,4 +126,18 @@ it('has none for a tone with edges', () => {
   const out = emptyDerivatives(1);
   expect(drive.differentiate({ times: [0], segments: [0], scalars: [[1, 0]] }, [out])).toBe(false);
   expect(out.every((x) => x === 0)).toBe(true);
+});
+
+// The Voigt profile against quadrature of the same integral.
+it.each([
+  [5, 0.02, 0],
+  [5, 0.13, 0.7],
+  [1, 0.006, 38],
+  [0.5, 3, -4],
+  [150, 0.13, 0.05],
+  [150, 0.03, -20],
+])('energy of a %s ps Gaussian behind a filter of %s 1/ps, %s 1/ps off', (fwhm, kappa, center) => {
+  const one = tone({ fwhm, area: 1 });
+  const { value } = pulseShape('gaussian').filteredEnergy!(fwhm, kappa, center);
+  expect(Math.abs(value / ownIntegral(one, { kappa, center }).value - 1)).toBeLessThan(1e-9);
 });
