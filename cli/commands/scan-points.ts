@@ -95,19 +95,26 @@ function shapeFor({ emitter, collection, laser, drift }: Design): FigureShape {
 /** Points of a task: some milliseconds of work at least. */
 const CHUNK = 4;
 
-/** Reads the study at one point after the other, while the workers evaluate earlier ones. */
+/** Time that is tried without worker threads, unless asked otherwise, and the work left that is worth loading them, ms. */
+const TRIAL = 300;
+const WORTH_THREADS = 1500;
+
+/** Reads the study at one point after the other, while the workers evaluate earlier ones; the first one alone. */
 function* scanTasks(plan: Plan, total: number): Generator<Task> {
-  for (let begin = 0; begin < total; begin += CHUNK) {
-    const indices = Array.from({ length: Math.min(CHUNK, total - begin) }, (_, i) => begin + i);
+  for (let begin = 0, size = 1; begin < total; begin += size, size = CHUNK) {
+    const indices = Array.from({ length: Math.min(size, total - begin) }, (_, i) => begin + i);
     const designs = indices.map((index) => studyAt(plan, index).study.design);
     const input: FiguresInput = { designs, accuracy: plan.accuracy };
-    yield {
-      id: `points ${begin + 1} to ${begin + designs.length}`,
-      kind: 'figures',
-      index: begin,
-      budget: 1,
-      input,
-    };
+    yield { id: `points from ${begin + 1}`, kind: 'figures', index: begin, budget: 1, input };
+  }
+}
+
+/** Items of an iterator as long as a condition holds; the others stay in it. */
+function* takeWhile<T>(items: Iterator<T>, condition: () => boolean): Generator<T> {
+  while (condition()) {
+    const next = items.next();
+    if (next.done === true) return;
+    yield next.value;
   }
 }
 
@@ -115,27 +122,40 @@ function* scanTasks(plan: Plan, total: number): Generator<Task> {
 async function evaluatePoints(
   plan: Plan,
   spec: Study,
-  { workers, signal }: ScanEffort,
+  { workers, signal, trial = TRIAL }: ScanEffort,
   context: Context,
 ): Promise<FiguresResult[] | null> {
   const total = pointCount(plan);
   const progress = progressBar(context.streams.stderr, 'points');
-  const pool = taskPool(spec, Math.min(workers, Math.ceil(total / CHUNK)));
   const results = new Array<FiguresResult>(total);
   let done = 0;
   const show = () => progress.update({ stage: 'scan', done, total, best: '' });
+  const run = async (threads: number, tasks: Iterable<Task>) => {
+    const pool = taskPool(spec, threads);
+    try {
+      await runTasks(pool, tasks, signal, ({ summary }, { index }) => {
+        for (const [i, result] of (summary as readonly FiguresResult[]).entries()) {
+          results[index + i] = result;
+          done++;
+        }
+        show();
+      });
+    } finally {
+      await pool.close();
+    }
+  };
   try {
     show();
-    await runTasks(pool, scanTasks(plan, total), signal, ({ summary }, { index }) => {
-      for (const [i, result] of (summary as readonly FiguresResult[]).entries()) {
-        results[index + i] = result;
-        done++;
-      }
-      show();
-    });
+    const tasks = scanTasks(plan, total);
+    const began = performance.now();
+    await run(
+      1,
+      takeWhile(tasks, () => workers === 1 || performance.now() - began < trial),
+    );
+    const left = ((performance.now() - began) * (total - done)) / done;
+    if (done < total && !signal.aborted) await run(left > WORTH_THREADS ? workers : 1, tasks);
   } finally {
     progress.stop();
-    await pool.close();
   }
   return done < total ? null : results;
 }
@@ -144,6 +164,8 @@ async function evaluatePoints(
 export interface ScanEffort {
   readonly workers: number;
   readonly signal: AbortSignal;
+  /** Time that is tried without threads, ms. */
+  readonly trial?: number;
 }
 
 /** @returns null when the signal was aborted before all points were done */

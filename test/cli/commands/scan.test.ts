@@ -1,9 +1,13 @@
 import { EventEmitter } from 'node:events';
 import { existsSync, readFileSync } from 'node:fs';
 import { join } from 'node:path';
+import { PassThrough } from 'node:stream';
 import { setTimeout } from 'node:timers/promises';
 import { describe, expect, it } from 'vitest';
+import type { Context } from '../../../cli/commands/contract.js';
 import { parseOver } from '../../../cli/commands/over.js';
+import { planOf, scanOf } from '../../../cli/commands/scan-points.js';
+import { scanCsv } from '../../../cli/report/scan-report.js';
 import { csvCells, FIXED, FREE, freshFolder, invoke, studyFile } from './invoke.js';
 
 describe('scan', () => {
@@ -162,22 +166,21 @@ describe('scan', () => {
   });
 
   it('gives the same bytes for one, two and four workers, points without figures included', async () => {
+    const over = ['tones.0.area=0.5 pi..1 pi:3', 'tones.0.gdd=0 ps^2..1000000 ps^2:5'];
     const study = studyFile(FIXED.replace('1 pi }', '1 pi, tod: 1 ps^3 }'));
-    const scanned = async (workers: string) => {
-      const base = join(freshFolder(), 'map');
-      const argv = [
-        ...['scan', study, '--accuracy', 'search', '--out', base, '--workers', workers],
-        ...['--over', 'tones.0.area=0.5 pi..1 pi:3', '--over', 'tones.0.gdd=0 ps^2..1000000 ps^2:5'],
-      ];
-      const { code, err } = await invoke(argv);
-      expect(code).toBe(0);
-      expect(err).toContain('no figures at point');
-      return [readFileSync(`${base}.csv`, 'utf8'), readFileSync(`${base}.svg`, 'utf8'), err];
+    const plan = await planOf({ study, over, set: [], accuracy: 'search' });
+    const { signal } = new AbortController();
+    const scanned = async (workers: number) => {
+      const notes: string[] = [];
+      const context = { streams: { stderr: new PassThrough() }, note: (text: string) => notes.push(text) };
+      const scan = await scanOf(plan, [], { workers, signal, trial: 0 }, context as unknown as Context);
+      return { table: scanCsv(scan!), notes };
     };
-    const one = await scanned('1');
-    expect(csvCells(one[0])).toHaveLength(16);
-    expect(await scanned('2')).toEqual(one);
-    expect(await scanned('4')).toEqual(one);
+    const one = await scanned(1);
+    expect(csvCells(one.table)).toHaveLength(16);
+    expect(one.notes).toEqual([expect.stringContaining('no figures at point')]);
+    expect(await scanned(2)).toEqual(one);
+    expect(await scanned(4)).toEqual(one);
   });
 
   it.each(['1', '2'])('stops on SIGINT with %s workers and writes nothing', async (workers) => {
