@@ -63,6 +63,13 @@ export function frontText(result: RunResult, directory: string, style: Style): s
     parts.push(`brightness levels out of reach: ${levelList(result.outOfReach)}`);
   if (result.explanation !== null) parts.push(explanationText(result.explanation, goal, style.color), '');
   if (result.front.length > 0) parts.push(accuracyLine(result));
+  const { correction } = result.outcome;
+  if (correction !== null) {
+    parts.push(
+      `phonons: searched by a second-order method, corrected by the exact one; ${correction.settled} of ${correction.levels} levels`,
+      `  settled to a relative ${correction.tolerance}`,
+    );
+  }
   if (result.front.length > 0) {
     const what = axis === null ? 'area' : 'volume';
     parts.push(`hypervolume ${threeDigits(hypervolume.value)} (${what} between the front and the corner at`);

@@ -19,8 +19,8 @@ export interface Correction {
   /** Where it ended, in the unit cube. */
   readonly x: readonly number[];
   /**
-   * Whether the corrected cheap method foretold the exact figures of the design that it ended at to `EXACT_TOLERANCE`, and
-   * that design reaches the level: then no further step would gain more.
+   * Whether the corrected cheap method was solved to a tenth of `EXACT_TOLERANCE`, foretold the
+   * exact figures of that design to `EXACT_TOLERANCE`, and the design reaches the level.
    */
   readonly settled: boolean;
   /** Largest relative miss of the last foretelling, impurity and brightness; null where none was tried. */
@@ -35,15 +35,17 @@ const RADIUS = 0.1;
 const SHRINK = 0.5;
 /** Relative brightness to keep above the level: the least, and the most that a poor foretelling asks for. */
 const MARGIN = { least: 2e-5, most: 1e-3 };
+/** Relative gain in the last iteration of a solve that calls it ended. */
+const IDLE = EXACT_TOLERANCE / 10;
 /** Weight of a missing brightness and of violated limits against the relative impurity. */
 const SHORTFALL = 100;
 
 /** Evaluations of one round: the cheap and the exact method at its start, and a short solve. */
 export const correctionRound = (space: Space): number => 2 + stepBudget(space);
 
-/** Three values with their differences along the coordinates that are no lists. */
-const stepBudget = ({ categories }: Space): number =>
-  3 * (1 + categories.filter((count) => count === 0).length);
+/** A value with its differences along the coordinates that are no lists. */
+const iteration = ({ categories }: Space): number => 1 + categories.filter((count) => count === 0).length;
+const stepBudget = (space: Space): number => 5 * iteration(space);
 
 /** What the exact method says more than the cheap one at the same design. */
 interface Excess {
@@ -56,6 +58,8 @@ interface Foretold {
   readonly x: Trial;
   readonly impurity: number;
   readonly brightness: number;
+  /** The solve came to its own end, or its last iteration gained next to nothing. */
+  readonly final: boolean;
 }
 
 function excessOf(exact: Candidate, cheap: Candidate): Excess {
@@ -74,15 +78,14 @@ function step(
 ): Foretold {
   const { excess, cheap } = from;
   const scale = Math.max(cheap.impurity + excess.impurity, 1e-12);
-  let best: (Foretold & { readonly merit: number }) | null = null;
+  const trials: (Omit<Foretold, 'final'> & { readonly merit: number })[] = [];
   const replyOf = (x: Trial, candidate: Candidate): Reply => {
     const impurity = candidate.impurity + excess.impurity;
     const brightness = candidate.brightness + excess.brightness;
     const constraints = candidate.constraints.map((c, i) => c + excess.constraints[i]);
     const missing = [wanted.brightness - brightness, ...constraints];
     const merit = impurity / scale + SHORTFALL * missing.reduce((sum, c) => sum + Math.max(0, c), 0);
-    if (Number.isFinite(merit) && (best === null || merit < best.merit))
-      best = { x, impurity, brightness, merit };
+    trials.push({ x, impurity, brightness, merit });
     return { objectives: [impurity], constraints: missing };
   };
   const setup = {
@@ -94,10 +97,15 @@ function step(
     budget: wanted.budget,
   };
   const known = new Map([[from.x.join(), cheap]]);
-  optimizeInBatches(sqp({ radius: wanted.radius, tolerance: EXACT_TOLERANCE / 100 }), setup, (trials) =>
-    trials.map((x) => replyOf(x, known.get(x.join()) ?? recorder.evaluateOn(problem, x, false))),
+  const method = sqp({ radius: wanted.radius, tolerance: IDLE });
+  optimizeInBatches(method, setup, (asked) =>
+    asked.map((x) => replyOf(x, known.get(x.join()) ?? recorder.evaluateOn(problem, x, false))),
   );
-  return best ?? { x: from.x, impurity: scale, brightness: cheap.brightness + excess.brightness };
+  const leastOf = (some: typeof trials) => some.reduce((a, b) => (b.merit < a.merit ? b : a));
+  const best = leastOf(trials);
+  const before = trials.slice(0, -iteration(problem.space));
+  const idle = before.length > iteration(problem.space) && leastOf(before).merit - best.merit <= IDLE;
+  return { ...best, final: idle || trials.length < wanted.budget };
 }
 
 const missOf = (exact: Candidate, foretold: Foretold): { impurity: number; brightness: number } => ({
@@ -127,7 +135,7 @@ export const correctTask: TaskRunner = (task, context): Correction => {
       const by = missOf(truth, foretold);
       miss = Math.max(by.impurity, by.brightness);
       const reached = truth.brightness >= level && truth.violation === 0;
-      if (miss <= EXACT_TOLERANCE && reached) return { level, x, settled: true, miss };
+      if (miss <= EXACT_TOLERANCE && reached && foretold.final) return { level, x, settled: true, miss };
       margin = Math.min(MARGIN.most, Math.max(MARGIN.least, 2 * by.brightness));
     }
     // A value of the cheap method, two of a solve, and the exact one that judges it.
@@ -140,7 +148,7 @@ export const correctTask: TaskRunner = (task, context): Correction => {
     foretold = step(context, from, { brightness: level * (1 + margin), radius, budget });
     if (foretold.x.join() === x.join()) {
       const reached = truth.brightness >= level && truth.violation === 0;
-      return { level, x, settled: reached, miss: 0 };
+      return { level, x, settled: reached && foretold.final, miss };
     }
     x = foretold.x;
   }
