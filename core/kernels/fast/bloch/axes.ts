@@ -208,3 +208,15 @@ export function turnAbout(q: Quaternion, angle: number): void {
   q[2] = c * y + s * x;
   q[3] = c * z + s * w;
 }
+
+/** The axis of kicks under a rotation, to the first three numbers of `out`. */
+export function axisOf(q: Float64Array, out: Float64Array): void {
+  // Destructuring a typed array goes through its iterator, which costs as much as ten steps.
+  const w = q[0];
+  const x = q[1];
+  const y = q[2];
+  const z = q[3];
+  out[0] = 2 * (x * z - w * y);
+  out[1] = 2 * (y * z + w * x);
+  out[2] = 1 - 2 * (x * x + y * y);
+}

@@ -1,59 +1,14 @@
 import type { CountGradient, Sensitivity } from '../../gradient.js';
 import { take, takeZeros } from './arena.js';
-import { CHAIN_STATE, type Chain } from './chain.js';
 import { adjointKicks } from './chain-adjoint.js';
 import { spatialAdjoint } from './magnus-adjoint.js';
 import { BLOCK, NODES, PLACES } from './nodes.js';
 import { correctionBound } from './pace.js';
 import type { BlochProblem } from './problem.js';
-import { countChain, momentChain, thinnedChain } from './run.js';
+import { type SeededChain, seedAdjoint, seededChains, type Weights } from './seeds.js';
 import { addComplex } from './table.js';
-import { recordChain, type Stretch, sampleTimes, type Tape } from './tape.js';
+import { type Stretch, sampleTimes, type Tape } from './tape.js';
 import { addTorque, torques } from './torque.js';
-
-type Weights = Readonly<Record<string, number>>;
-
-/** A chain that some scalar depends on, and by each scalar the weights of its first trace, second trace and rest. */
-interface SeededChain {
-  readonly chain: Chain;
-  /** Its states before the kicks of each stretch. */
-  readonly records: readonly Float64Array[];
-  readonly weights: readonly (readonly [number, number, number])[];
-}
-
-/** Figures of each kind of chain, in the order of its traces; the first trace of the moments is 1 whatever happens. */
-const KINDS = [
-  { make: momentChain, names: [null, 'mean', 'factorial2'] },
-  { make: countChain, names: ['p0', 'p1', 'multiphoton'] },
-  { make: thinnedChain, names: ['thinned0', 'thinned1', 'thinnedMultiphoton'] },
-] as const;
-const KNOWN = new Set<string>(KINDS.flatMap(({ names }) => names.filter((name) => name !== null)));
-
-/** The chains that matter, or null where a scalar depends on a figure that no chain has. */
-function seededChains(
-  problem: BlochProblem,
-  stretches: readonly Stretch[],
-  seeds: readonly Weights[],
-): SeededChain[] | null {
-  for (const seed of seeds) {
-    for (const name in seed) if (seed[name] !== 0 && !KNOWN.has(name)) return null;
-  }
-  const out: SeededChain[] = [];
-  for (const { make, names } of KINDS) {
-    let any = false;
-    const weights: [number, number, number][] = [];
-    for (const seed of seeds) {
-      const of = (name: string | null) => (name === null ? 0 : (seed[name] ?? 0));
-      const row: [number, number, number] = [of(names[0]), of(names[1]), of(names[2])];
-      any ||= row[0] !== 0 || row[1] !== 0 || row[2] !== 0;
-      weights.push(row);
-    }
-    if (!any) continue;
-    const chain = make(problem, take(CHAIN_STATE));
-    out.push({ chain, weights, records: recordChain(chain, stretches) });
-  }
-  return out;
-}
 
 /** Bound of the corrections, which derivatives leave out, up to which that is good enough. */
 const LEFT_OUT = 1e-6;
@@ -112,14 +67,6 @@ export function differentiate(
       (_, s): Sensitivity => ({ drive: drives[s], shift: shifts[s], kappa: 0, center: 0 }),
     ),
   };
-}
-
-function seedAdjoint([first, second, rest]: readonly [number, number, number]): Float64Array {
-  const adjoint = takeZeros(CHAIN_STATE);
-  adjoint[3] = first;
-  adjoint[7] = second;
-  adjoint[8] = rest;
-  return adjoint;
 }
 
 type Adjoints = readonly (readonly Float64Array[])[];
