@@ -92,7 +92,7 @@ function fromSpectrum(shape: PulseShape, tone: Tone): Envelope {
 export function toneEnvelope(tone: Tone): Envelope {
   const shape = pulseShape(tone.shape);
   const { fwhm, gdd, tod, area } = tone;
-  if (tod === 0 && gdd === 0) return fromClosed(transformLimited(shape, fwhm), shape.edges(fwhm), area);
   if (tod === 0 && shape.dispersed) return fromClosed(shape.dispersed(fwhm, gdd), [], area);
+  if (tod === 0 && gdd === 0) return fromClosed(transformLimited(shape, fwhm), shape.edges(fwhm), area);
   return fromSpectrum(shape, tone);
 }
