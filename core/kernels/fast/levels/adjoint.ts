@@ -81,7 +81,8 @@ class PassageBack {
 
   run(): DriveDerivatives {
     const { problem, passage, functionals, torques, out, slopes, numbers } = this;
-    const { layout, rotations, spans } = problem;
+    const { layout, spans } = problem;
+    const { rotations } = layout;
     const { index, count, h, motion } = passage;
     const span = spans[index];
     functionals.forEach((f, i) => {
@@ -96,13 +97,13 @@ class PassageBack {
       motion.recall(n);
       for (const rotation of rotations) rotation.set(motion);
       const y = this.stateAfter(n);
-      torques.forEach((q, i) => {
-        q.fill(0);
+      for (let i = 0; i < torques.length; i++) {
+        for (let k = 0; k < MATRIX; k++) torques[i][k] = 0;
         for (const rotation of rotations) {
-          rotation.addTorque(y, functionals[i], q);
+          rotation.addTorque(y, functionals[i], torques[i]);
           rotation.applyTransposed(functionals[i]);
         }
-      });
+      }
       out.addStep(n, torques);
     }
     for (const f of functionals) {
@@ -122,7 +123,7 @@ class PassageBack {
   private kickBack(n: number): void {
     const { problem, functionals, spare, kicked, kickSlopes, numbers } = this;
     const { layout } = problem;
-    const due = correctionAfter(n);
+    const due = correctionAfter(n, this.passage.every);
     let y = this.stateAfter(n);
     if (due === 'after') {
       layout.kick.apply(y, kicked);
@@ -134,14 +135,16 @@ class PassageBack {
       this.correct(n, y, kicked);
       y = kicked;
     }
-    functionals.forEach((f, i) => {
-      kickSlopes.forEach((slope, k) => {
+    for (let i = 0; i < functionals.length; i++) {
+      const f = functionals[i];
+      for (let k = 0; k < kickSlopes.length; k++) {
+        const slope = kickSlopes[k];
         if (slope) numbers[k][i] += between(slope, f, y);
-      });
+      }
       layout.kick.applyTransposed(f, spare);
-      f.set(spare);
+      for (let k = 0; k < f.length; k++) f[k] = spare[k];
       if (due === 'before') this.correctBack(n, i, f, this.stateAfter(n));
-    });
+    }
   }
 
   private driveAfter(n: number): Float64Array {
@@ -151,7 +154,7 @@ class PassageBack {
 
   /** out += the correction of y. */
   private correct(n: number, y: Float64Array, out: Float64Array): void {
-    const factor = correctionFactor(this.passage.h);
+    const factor = correctionFactor(this.passage.h, this.passage.every);
     const drive = this.driveAfter(n);
     this.problem.layout.corrections.forEach((pair, c) => {
       if (!pair) return;
@@ -162,7 +165,7 @@ class PassageBack {
 
   private correctBack(n: number, functional: number, f: Float64Array, y: Float64Array): void {
     const { problem, passage, out, spare, slopes, numbers } = this;
-    const factor = correctionFactor(passage.h);
+    const factor = correctionFactor(passage.h, passage.every);
     const component = problem.ladder?.component ?? 0;
     const pair = problem.layout.corrections[component];
     if (!pair) return;

@@ -29,7 +29,8 @@ interface Piece {
 }
 
 /**
- * Derivatives of an extrapolated value: those of its runs with the same weights.
+ * Derivatives of an extrapolated value: those of its runs with the same weights; or those of the finest run alone where
+ * only that was kept, which are good to the share by which it differs from the extrapolated value, mostly 1e-6.
  * @returns null for a filter and a drive with gaps, of which the derivative by the filter is not known
  */
 export function differentiate(
@@ -44,28 +45,36 @@ export function differentiate(
   const wanted = seeds(result.values);
   const pieces: Piece[] = [];
   const numbers = both.map(() => new Float64Array(wanted.length));
-  runs.forEach(({ passages, final }, k) => {
+  const whole = runs.every(({ kept }) => kept);
+  runs.forEach(({ passages, final, kept }, k) => {
+    if (!kept) return;
+    const weight = whole ? weights[k] : 1;
     const functionals = wanted.map((seed) => weighted(layout, seed));
     wanted.forEach((seed, f) => {
       both.forEach(({ plus, minus, distance }, p) => {
         const change = dot(weighted(plus, seed), final) - dot(weighted(minus, seed), final);
-        numbers[p][f] += (weights[k] * change) / distance;
+        numbers[p][f] += (weight * change) / distance;
       });
     });
     const back = backwards(problem, passages, functionals, both);
     back.numbers.forEach((values, p) => {
       values.forEach((v, f) => {
-        numbers[p][f] += weights[k] * v;
+        numbers[p][f] += weight * v;
       });
     });
     back.drives.forEach((derivatives, s) => {
-      pieces.push({ derivatives, weight: weights[k], span: problem.spans[passages[s].index] });
+      pieces.push({ derivatives, weight, span: problem.spans[passages[s].index] });
     });
   });
-  const times = Float64Array.from(pieces.flatMap(({ derivatives }) => Array.from(derivatives.times)));
-  const segments = Int32Array.from(
-    pieces.flatMap(({ derivatives, span }) => segmentsOf(request, span, derivatives.times)),
-  );
+  const count = pieces.reduce((sum, { derivatives }) => sum + derivatives.times.length, 0);
+  const times = new Float64Array(count);
+  const segments = new Int32Array(count);
+  let at = 0;
+  for (const { derivatives, span } of pieces) {
+    times.set(derivatives.times, at);
+    putSegments(request, span, derivatives.times, segments, at);
+    at += derivatives.times.length;
+  }
   const sensitivities = wanted.map((_, f): Sensitivity => {
     const { drive, shift } = byDrive(problem, pieces, f, times, segments);
     const [kappa, center] = slopes ? [numbers[0][f], numbers[1][f]] : [0, 0];
@@ -91,12 +100,18 @@ function dot(a: Float64Array, b: Float64Array): number {
   return sum;
 }
 
-function segmentsOf({ drive }: CountRequest, span: Span, times: Float64Array): number[] {
+function putSegments(
+  { drive }: CountRequest,
+  span: Span,
+  times: Float64Array,
+  out: Int32Array,
+  at: number,
+): void {
   let segment = span.first;
-  return Array.from(times, (t) => {
-    while (segment < span.last && t >= drive.breakpoints[segment + 1]) segment++;
-    return segment;
-  });
+  for (let k = 0; k < times.length; k++) {
+    while (segment < span.last && times[k] >= drive.breakpoints[segment + 1]) segment++;
+    out[at + k] = segment;
+  }
 }
 
 function byDrive(

@@ -1,6 +1,7 @@
 import type { CountRequest } from '../../count.js';
 import type { FastKernel } from '../contract.js';
 import { smoothSpans } from '../spans.js';
+import { withArena } from './arena.js';
 import { darkStaysDark, differentiate } from './gradient.js';
 import { refine, refineShared, type Series } from './refine.js';
 import { type Problem, problemOf, type Run, run, tablesOf } from './run.js';
@@ -16,7 +17,7 @@ export const levels: FastKernel = {
   name: 'levels',
   supports: (request) => request.scheme.levels.length > 2,
   count(request, countPart) {
-    const own = solve(request, false)?.series.result ?? null;
+    const own = withArena(() => solve(request, false)?.series.result ?? null);
     if (!own || !request.filter) return own;
     // Light before the filter does not see it: the cheaper problem has its own steps.
     const emitted = countPart({ ...request, filter: null });
@@ -28,8 +29,10 @@ export const levels: FastKernel = {
     };
   },
   countWithGradient(request, seeds) {
-    const solved = solve(request, true);
-    return solved && differentiate(solved.problem, solved.series, seeds);
+    return withArena(() => {
+      const solved = solve(request, true);
+      return solved && differentiate(solved.problem, solved.series, seeds);
+    });
   },
 };
 
@@ -66,7 +69,8 @@ function solve(request: CountRequest, keep: boolean): Solved | null {
           counts.map((n) => Math.ceil(n * SHARE)),
           accept,
           (steps) => tabulate(problem, steps),
-          (steps, tables) => run(problem, steps, keep, tables),
+          (steps, tables) =>
+            run(problem, steps, keep && steps.every((n, s) => n === (tables[s]?.count ?? n)), tables),
           parts,
         );
   return series && { problem, series };

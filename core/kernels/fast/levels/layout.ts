@@ -15,6 +15,8 @@ import {
 import { type Component, mixedWith, reach } from './coordinates.js';
 import { doubleCommutator, type Triples } from './correction.js';
 import { Kick } from './kick.js';
+import { ladderOf } from './ladder.js';
+import { type Rotation, rotationsOf } from './rotation.js';
 import { IngredientMemo, type Ingredients, rounded } from './signature.js';
 
 /**
@@ -27,6 +29,7 @@ export interface Layout {
   readonly levels: number;
   readonly length: number;
   readonly components: readonly Component[];
+  readonly rotations: readonly Rotation[];
   readonly kick: Kick;
   /** [[K, V], K] for V the effect of Re Ω and Im Ω of each used drive component, in pairs. */
   readonly corrections: readonly (readonly [Triples, Triples] | null)[];
@@ -157,7 +160,11 @@ function build(ingredients: Ingredients): Layout {
     edges.map(([a, b]) => [b, a]),
   );
   const active = new Set([...reached].filter((v) => needed.has(v)));
-  return compact({ generator, entries, owner, active, effects, populations, seeded, used }, hierarchy.lanes);
+  const three = ladderOf(scheme, used)?.levels ?? null;
+  return compact(
+    { generator, entries, owner, active, effects, populations, seeded, used, three },
+    hierarchy.lanes,
+  );
 }
 
 /** The figures asked for, on [lane·size + coordinate]. */
@@ -194,6 +201,8 @@ interface Parts {
   readonly populations: readonly Float64Array[];
   readonly seeded: readonly number[];
   readonly used: readonly boolean[];
+  /** Levels of the ladder that is driven, if one is. */
+  readonly three: readonly number[] | null;
 }
 
 /** Gives every active coordinate of every lane its place; coordinates of one component lie together. */
@@ -223,13 +232,15 @@ function compact(parts: Parts, lanes: number): Layout {
     kept.map((e) => e.value),
   );
   const restricted = (row: Float64Array) => Float64Array.from(places, (p) => row[p]);
+  const components = roots
+    .map((_, c) => ({ coordinates: members[c], offsets: Int32Array.from(offsets[c]) }))
+    .filter((c) => c.offsets.length > 0);
   return {
     levels: generator.levels,
     length: places.length,
+    components,
+    rotations: rotationsOf(components, generator.levels, parts.three),
     states: [new Float64Array(places.length), new Float64Array(places.length)],
-    components: roots
-      .map((_, c) => ({ coordinates: members[c], offsets: Int32Array.from(offsets[c]) }))
-      .filter((c) => c.offsets.length > 0),
     kick: new Kick(constant),
     corrections: parts.used.map((acts, c) =>
       acts

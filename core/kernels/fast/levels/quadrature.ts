@@ -1,5 +1,6 @@
 import { phaseAt } from '../bloch/frame.js';
 import { NODES } from '../bloch/nodes.js';
+import { take } from './arena.js';
 import { MATRIX, turned } from './hermitian.js';
 import { LadderStep } from './ladder-step.js';
 import type { LadderMotion } from './motion.js';
@@ -32,7 +33,7 @@ export class DriveDerivatives {
     const count = course.count * parts;
     const part = course.h / parts;
     this.short = new LadderStep(ladder.lower, ladder.upper);
-    this.times = new Float64Array(PER_PART * count + 1);
+    this.times = take(PER_PART * count + 1);
     for (let p = 0; p < count; p++) {
       const start = course.span.start + p * part;
       this.times[PER_PART * p] = start;
@@ -40,8 +41,8 @@ export class DriveDerivatives {
       this.times[PER_PART * p + 2] = start + (1 - INSIDE) * part;
     }
     this.times[PER_PART * count] = course.span.end;
-    this.scalars = Array.from({ length: functionals }, () => new Float64Array(2 * this.times.length));
-    this.phases = new Float64Array(2 * this.times.length);
+    this.scalars = Array.from({ length: functionals }, () => take(2 * this.times.length));
+    this.phases = take(2 * this.times.length);
     this.times.forEach((t, i) => {
       const phase = -phaseAt(motion.source.frame, t);
       this.phases[2 * i] = Math.cos(phase);
@@ -63,21 +64,20 @@ export class DriveDerivatives {
     }
     for (let p = (n + 1) * parts - 1; p >= n * parts; p--) {
       const { first, second, slope } = table.falls(p);
-      const re = all.re.subarray(9 * p, 9 * p + 9);
-      const im = all.im.subarray(9 * p, 9 * p + 9);
       short.setShort(nodes, 2 * NODES * p, first, second, slope, 0.5 - INSIDE, 0.5);
-      torques.forEach((q, f) => {
+      for (let f = 0; f < torques.length; f++) {
+        const q = torques[f];
         this.put(f, PER_PART * (p + 1), WEIGHTS.end, q);
-        turned(short.re, short.im, q, true, inner);
+        turned(short.re, short.im, 0, q, true, inner);
         this.put(f, PER_PART * p + 2, WEIGHTS.inside, inner);
-        turned(re, im, q, true, q);
-      });
+        turned(all.re, all.im, 9 * p, q, true, q);
+      }
       short.setShort(nodes, 2 * NODES * p, first, second, slope, -0.5, INSIDE - 0.5);
-      torques.forEach((q, f) => {
-        turned(short.re, short.im, q, false, inner);
+      for (let f = 0; f < torques.length; f++) {
+        turned(short.re, short.im, 0, torques[f], false, inner);
         this.put(f, PER_PART * p + 1, WEIGHTS.inside, inner);
-        this.put(f, PER_PART * p, WEIGHTS.end, q);
-      });
+        this.put(f, PER_PART * p, WEIGHTS.end, torques[f]);
+      }
     }
   }
 

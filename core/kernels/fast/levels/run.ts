@@ -2,7 +2,6 @@ import type { CountRequest, CountResult } from '../../count.js';
 import type { Span } from '../spans.js';
 import { type Ladder, ladderOf } from './ladder.js';
 import { frameEnergies, type Layout, layoutOf, lineFrequency, unevenEnergies } from './layout.js';
-import { type Rotation, rotationsOf } from './rotation.js';
 import { type Passage, State } from './state.js';
 import { type Source, sourceOf } from './table.js';
 import { UnitaryTable } from './unitary-table.js';
@@ -20,7 +19,6 @@ export interface Problem {
   readonly line: number;
   /** Per span, of the ladder's component; none without a ladder. */
   readonly sources: readonly Source[];
-  readonly rotations: readonly Rotation[];
 }
 
 export function problemOf(request: CountRequest, spans: readonly Span[], used: readonly boolean[]): Problem {
@@ -39,7 +37,6 @@ export function problemOf(request: CountRequest, spans: readonly Span[], used: r
     energies,
     line,
     layout,
-    rotations: rotationsOf(layout.components, layout.levels, ladder?.levels ?? null),
     ladder,
     sources: ladder ? spans.map((span) => sourceOf(drive, ladder.component, span, climb)) : [],
   };
@@ -54,6 +51,8 @@ export function layoutFor(request: CountRequest, { used, line }: Problem): Layou
 export interface Run {
   readonly result: CountResult;
   readonly passages: readonly Passage[];
+  /** Whether what derivatives need was kept. */
+  readonly kept: boolean;
   /** The state at the end, where derivatives are wanted. */
   readonly final: Float64Array;
 }
@@ -91,7 +90,12 @@ export function run(
   const values: Record<string, number> = {};
   for (const { name, row } of layout.effects) values[name] = dot(row, y);
   const populations = request.scheme.levels.map((_, i) => dot(layout.populations[i], y));
-  return { result: { values, populations, steps, localErrors: 0 }, passages, final: keep ? y.slice() : y };
+  return {
+    result: { values, populations, steps, localErrors: 0 },
+    passages,
+    kept: keep,
+    final: keep ? y.slice() : y,
+  };
 }
 
 function dot(a: Float64Array, b: Float64Array): number {

@@ -1,11 +1,12 @@
 import { phaseAt } from '../bloch/frame.js';
+import { take } from './arena.js';
 import { addProduct } from './correction.js';
 import { GeneralMotion } from './general-motion.js';
 import { LadderMotion, type Motion } from './motion.js';
 import type { Problem } from './run.js';
 import { multiplyThree, type UnitaryTable } from './unitary-table.js';
 
-/** Steps between two corrections of the kicks: a fine sum is not needed of what is small. */
+/** Steps between two corrections of the kicks, at least: a fine sum is not needed of what is small. */
 const EVERY = 2;
 /** Steps of the expansion per step between kicks where rotations are of order 6. */
 const GENERAL_PARTS = 2;
@@ -17,26 +18,34 @@ const LARGEST_KICK = 4;
 /** What stands between two steps besides the kick: none, a correction before or after it. */
 export type Correction = 'none' | 'before' | 'after';
 
+/** Steps between corrections: runs on finer steps of one table correct about as often as those on coarser ones. */
+export const correctionsEvery = (parts: number): number => EVERY + Math.max(0, 3 - parts);
+
 /** By turns before and after the kick, which is as good as in its middle. */
-export function correctionAfter(n: number): Correction {
-  if (n % EVERY !== 0) return 'none';
-  return n % (2 * EVERY) === 0 ? 'before' : 'after';
+export function correctionAfter(n: number, every: number): Correction {
+  if (n % every !== 0) return 'none';
+  return n % (2 * every) === 0 ? 'before' : 'after';
 }
 
 /** Factor of a correction: (h²/24)[[K, V], K] per time, over all steps up to the next one. */
-export const correctionFactor = (h: number): number => (EVERY * h ** 3) / 24;
+export const correctionFactor = (h: number, every: number): number => (every * h ** 3) / 24;
 
 /** What derivatives need of a span. */
 export interface Passage {
   readonly index: number;
   readonly count: number;
   readonly h: number;
+  /** Steps between corrections. */
+  readonly every: number;
   readonly motion: LadderMotion;
   /** States after every step, before the kick, one after another. */
   readonly states: Float64Array;
   /** Re, im of each drive component after every step. */
   readonly edges: Float64Array;
 }
+
+/** Rotation gathered before the first kick: one run at a time. */
+const lead = { re: new Float64Array(9), im: new Float64Array(9) };
 
 /** The state of all lanes on its way through the drive window. */
 export class State {
@@ -46,7 +55,6 @@ export class State {
   private spare: Float64Array;
   /** Nothing but the ground state yet. */
   private fresh = true;
-  private readonly lead = { re: Float64Array.of(1, 0, 0, 0, 1, 0, 0, 0, 1), im: new Float64Array(9) };
 
   constructor(
     private readonly problem: Problem,
@@ -57,6 +65,10 @@ export class State {
     [this.y, this.spare] = layout.states;
     this.y.fill(0);
     for (const seed of layout.seeds) this.y[seed] = 1;
+    for (let k = 0; k < 9; k++) {
+      lead.re[k] = k % 4 === 0 ? 1 : 0;
+      lead.im[k] = 0;
+    }
   }
 
   /** A gap without drive: free motion and decay commute. */
@@ -82,7 +94,10 @@ export class State {
       : new GeneralMotion(course, used, GENERAL_PARTS);
     const width = 2 * request.drive.components;
     const edge = new Float64Array(width);
-    const kept = keep && motion instanceof LadderMotion ? this.keepPassage(index, count, h, motion) : null;
+    const every = table && !request.filter ? correctionsEvery(table.count / count) : EVERY;
+    const factor = correctionFactor(h, every);
+    const kept =
+      keep && motion instanceof LadderMotion ? this.keepPassage({ index, count, h, every, motion }) : null;
     if (!this.fresh) {
       kick.once(0.5 * h, this.y);
       // Between spans the state of an unfiltered count is kept in the request's frame.
@@ -91,21 +106,23 @@ export class State {
     for (let n = 0; n < count; n++) {
       motion.advance(n);
       if (this.fresh && !kept && motion.three && n + 1 < count && this.waits(motion.three)) continue;
-      for (const rotation of problem.rotations) {
+      for (const rotation of problem.layout.rotations) {
         rotation.set(motion);
         rotation.apply(this.y);
       }
-      kept?.states.set(this.y, n * layout.length);
+      if (kept) {
+        for (let i = 0, at = n * layout.length; i < layout.length; i++) kept.states[at + i] = this.y[i];
+      }
       if (n + 1 === count) break;
-      const due = correctionAfter(n);
+      const due = correctionAfter(n, every);
       if (due !== 'none') {
         motion.driveAfter(n, edge);
         kept?.edges.set(edge, n * width);
       }
-      if (due === 'before') this.correct(edge, correctionFactor(h));
+      if (due === 'before') this.correct(edge, factor);
       kick.apply(this.y, this.spare);
       this.swap();
-      if (due === 'after') this.correct(edge, correctionFactor(h));
+      if (due === 'after') this.correct(edge, factor);
     }
     this.fresh = false;
     enter(problem, index, span.end, -1, this.y);
@@ -113,18 +130,18 @@ export class State {
     return true;
   }
 
-  private keepPassage(index: number, count: number, h: number, motion: LadderMotion): Passage {
+  private keepPassage(of: Omit<Passage, 'states' | 'edges'>): Passage {
     const { layout, request } = this.problem;
-    const states = new Float64Array(layout.length * count);
-    const edges = new Float64Array(2 * request.drive.components * count);
-    const passage = { index, count, h, motion, states, edges };
+    const states = take(layout.length * of.count);
+    const edges = take(2 * request.drive.components * of.count);
+    const passage = { ...of, states, edges };
     this.passages.push(passage);
     return passage;
   }
 
   /** Gathers steps as long as the ground state is whole: decay has nothing to act on. */
   private waits(step: { readonly re: Float64Array; readonly im: Float64Array }): boolean {
-    const { re, im } = this.lead;
+    const { re, im } = lead;
     multiplyThree(step.re, step.im, 0, re, im);
     if (re[3] * re[3] + im[3] * im[3] + re[6] * re[6] + im[6] * im[6] < UNTOUCHED) return true;
     for (let i = 0; i < 9; i++) {
@@ -203,7 +220,7 @@ export function turnLevels(
     ? { re: Float64Array.from(at, (k: number) => re[k]), im: Float64Array.from(at, (k: number) => im[k]) }
     : null;
   const motion: Motion = { three, full: () => ({ re, im }), advance() {}, driveAfter() {} };
-  for (const rotation of problem.rotations) {
+  for (const rotation of problem.layout.rotations) {
     rotation.set(motion);
     if (transposed) rotation.applyTransposed(y);
     else rotation.apply(y);

@@ -4,6 +4,7 @@ import { type PhaseFrame, phaseAt, phaseFrame, seenFrom } from '../bloch/frame.j
 import { BLOCK, NODES, PLACES } from '../bloch/nodes.js';
 import { addComplex } from '../bloch/table.js';
 import type { Span } from '../spans.js';
+import { take } from './arena.js';
 
 /** The frame in which a span is propagated, and what the drive is there. */
 export interface Source {
@@ -59,7 +60,7 @@ export function nodeTable(
   count: number,
   scale: number,
 ): Float64Array {
-  const out = new Float64Array(2 * NODES * count);
+  const out = take(2 * NODES * count);
   if (tones) {
     const grid = { start: span.start, h };
     for (let from = 0; from < count; from += BLOCK) {

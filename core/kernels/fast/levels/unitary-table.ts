@@ -1,6 +1,7 @@
 import type { CountRequest } from '../../count.js';
 import { NODES } from '../bloch/nodes.js';
 import type { Span } from '../spans.js';
+import { take } from './arena.js';
 import type { Ladder } from './ladder.js';
 import { LadderStep } from './ladder-step.js';
 import { nodeTable, type Source } from './table.js';
@@ -12,8 +13,8 @@ export interface Unitaries {
 }
 
 export const unitaries = (count: number): Unitaries => ({
-  re: new Float64Array(9 * count),
-  im: new Float64Array(9 * count),
+  re: take(9 * count),
+  im: take(9 * count),
 });
 
 export function keepOne(one: Unitaries, all: Unitaries, at: number): void {
