@@ -146,6 +146,13 @@ function step(table: usize, dephased: bool): void {
       v128.store(seen + o, f64x2.sub(ss, ir));
       v128.store(seen + o, f64x2.add(ss, ir), 16);
       v128.store(seen + o, b, 32);
+      if (p == 0) {
+        v128.store(y + o, ss);
+        v128.store(y + o, rr, 16);
+        v128.store(y + o, b, 32);
+        v128.store(y + o, te, 48);
+        continue;
+      }
       const add = f64x2.mul(pairs, v128.load(seen + p, 32));
       v128.store(y + o, f64x2.sub(ss, f64x2.mul(driven, v128.load(y + p))));
       v128.store(y + o, f64x2.sub(rr, f64x2.mul(driven, v128.load(y + p, 16))), 16);
@@ -201,6 +208,15 @@ function step(table: usize, dephased: bool): void {
     const d = seen + <usize>load<u32>(at, 24);
     const u = v128.load_splat<f64>(at, 32);
     const v = v128.load_splat<f64>(at, 40);
+    if (load<u32>(at, 8) == 0) {
+      // Nothing was closed yet.
+      v128.store(o, factored(dephased, opening, v128.load(a)));
+      v128.store(o, v128.load(a, 32), 16);
+      if (load<u32>(at, 20) == 0) continue;
+      v128.store(o, factored(dephased, opening, v128.load(c, 16)), 32);
+      v128.store(o, v128.load(c, 32), 48);
+      continue;
+    }
     v128.store(o, sources(dephased, opening, v128.load(a), closing, u, v128.load(b)));
     v128.store(o, f64x2.add(v128.load(a, 32), f64x2.mul(u, v128.load(b, 32))), 16);
     v128.store(o, sources(dephased, opening, v128.load(c, 16), closing, v, v128.load(d, 16)), 32);
@@ -230,9 +246,13 @@ function step(table: usize, dephased: bool): void {
     const o = fed + own;
     const a = fed + <usize>load<u32>(at, 12);
     const b = fed + <usize>load<u32>(at, 16);
-    const u = v128.load_splat<f64>(at, 32);
-    const p = f64x2.add(v128.load(a), f64x2.mul(u, v128.load(b)));
-    const q = f64x2.add(v128.load(a, 16), f64x2.mul(u, v128.load(b, 16)));
+    let p = v128.load(a);
+    let q = v128.load(a, 16);
+    if (load<u32>(at, 8) != 0) {
+      const u = v128.load_splat<f64>(at, 32);
+      p = f64x2.add(p, f64x2.mul(u, v128.load(b)));
+      q = f64x2.add(q, f64x2.mul(u, v128.load(b, 16)));
+    }
     const into = v128.load(o, 16);
     const t = f64x2.mul(traces, f64x2.add(f64x2.add(v128.load(o), times(wr, wi, p)), times(xr, xi, into)));
     const d = f64x2.mul(coherences, f64x2.add(into, times(wr, wi, q)));
@@ -246,6 +266,7 @@ function step(table: usize, dephased: bool): void {
   // Events on the right come after those on the left: what these have changed counts.
   at = records;
   for (let i = 0; i < complex; i++, at += RECORD) {
+    if ((load<u32>(at, 20) | load<u32>(at, 24)) == 0) continue;
     const own = <usize>load<u32>(at);
     const c = change + <usize>load<u32>(at, 20);
     const d = change + <usize>load<u32>(at, 24);
@@ -258,6 +279,7 @@ function step(table: usize, dephased: bool): void {
   const zi = f64x2.neg(xi);
   at = records;
   for (let i = 0; i < complex; i++, at += RECORD) {
+    if ((load<u32>(at, 20) | load<u32>(at, 24)) == 0) continue;
     const own = <usize>load<u32>(at);
     const o = fed + own;
     const c = fed + <usize>load<u32>(at, 20);
@@ -284,6 +306,7 @@ function step(table: usize, dephased: bool): void {
   const ci = decaying * re;
   at = second;
   for (let i = 0; i < hermitian; i++, at += RECORD) {
+    if ((load<u32>(at, 20) | load<u32>(at, 24)) == 0) continue;
     const own = <usize>load<u32>(at);
     const o = fed + own;
     const jc = <usize>load<u32>(at, 20);
@@ -424,9 +447,10 @@ function reverse(
   let xIm = none;
   // Events on the right.
   for (let at = records; at < second; at += RECORD) {
-    const own = <usize>load<u32>(at);
     const c = <usize>load<u32>(at, 20);
     const d = <usize>load<u32>(at, 24);
+    if ((c | d) == 0) continue;
+    const own = <usize>load<u32>(at);
     const v = v128.load_splat<f64>(at, 40);
     const p = f64x2.add(v128.load(was + c, 32), f64x2.mul(v, v128.load(was + d, 32)));
     const q = f64x2.add(v128.load(was + c, 48), f64x2.mul(v, v128.load(was + d, 48)));
@@ -457,9 +481,10 @@ function reverse(
   }
   // Both sides of Hermitian blocks: what is real is carried in the first place.
   for (let at = second; at < end; at += RECORD) {
-    const own = <usize>load<u32>(at);
     const c = <usize>load<u32>(at, 20);
     const d = <usize>load<u32>(at, 24);
+    if ((c | d) == 0) continue;
+    const own = <usize>load<u32>(at);
     const v = v128.load_splat<f64>(at, 40);
     const gc = f64x2.add(v128.load(moved + c, 16), f64x2.mul(v, v128.load(moved + d, 16)));
     const pre = f64x2.add(v128.load(was + c, 32), f64x2.mul(v, v128.load(was + d, 32)));
@@ -505,9 +530,10 @@ function reverse(
   }
   // What events on the left have changed.
   for (let at = records; at < second; at += RECORD) {
-    const own = <usize>load<u32>(at);
     const c = <usize>load<u32>(at, 20);
     const d = <usize>load<u32>(at, 24);
+    if ((c | d) == 0) continue;
+    const own = <usize>load<u32>(at);
     const v = v128.load_splat<f64>(at, 40);
     const g = f64x2.add(v128.load(byChange + own, 16), v128.load(byFed + own, 32));
     if (dephased) {
@@ -549,8 +575,9 @@ function reverse(
     const lp = times(wr, vi, t);
     const lq = times(wr, vi, e);
     addTo(byFed + a, lp);
-    addTo(byFed + d, f64x2.mul(u, lp));
     addTo(byFed + a + 16, lq);
+    if (d == 0) continue;
+    addTo(byFed + d, f64x2.mul(u, lp));
     addTo(byFed + d + 16, f64x2.mul(u, lq));
   }
   // Sums over sources.
@@ -576,10 +603,13 @@ function reverse(
         dClosed = f64x2.add(dClosed, f64x2.mul(f64x2.mul(u, la), v128.load(saw + f)));
       }
       addTo(bySeen + a, factored(dephased, opening, la));
-      addTo(bySeen + f, factored(dephased, closing, f64x2.mul(u, la)));
       addTo(bySeen + a + 32, lb);
-      addTo(bySeen + f + 32, f64x2.mul(u, lb));
+      if (f != 0) {
+        addTo(bySeen + f, factored(dephased, closing, f64x2.mul(u, la)));
+        addTo(bySeen + f + 32, f64x2.mul(u, lb));
+      }
     }
+    if ((c | d) == 0) continue;
     if (dephased) {
       dOpened = f64x2.add(dOpened, f64x2.mul(x, v128.load(saw + c, 16)));
       dClosed = f64x2.add(dClosed, f64x2.mul(f64x2.mul(v, x), v128.load(saw + d, 16)));
@@ -629,26 +659,28 @@ function reverse(
     const lb = v128.load(lambda + own, 32);
     const la = v128.load(bySeen + own);
     const ld = v128.load(bySeen + own, 16);
-    // The block with one pair less.
-    const pa = v128.load(saw + before);
-    const pd = v128.load(saw + before, 16);
-    const pb = v128.load(saw + before, 32);
-    const ps = f64x2.mul(f64x2.splat(0.5), f64x2.add(pa, pd));
-    const pr = f64x2.mul(f64x2.mul(f64x2.splat(-0.5), sign), swap(f64x2.sub(pd, pa)));
-    const pt = f64x2.mul(v128.load_splat<f64>(f0), v128.load(begun + before, 48));
-    dPair = f64x2.add(dPair, f64x2.mul(lt, pb));
-    dDriven = f64x2.add(
-      dDriven,
-      f64x2.sub(
-        f64x2.add(f64x2.mul(lb, pb), f64x2.mul(lt, pt)),
-        f64x2.add(f64x2.mul(ls, ps), f64x2.mul(lr, pr)),
-      ),
-    );
-    addTo(lambda + before, f64x2.neg(f64x2.mul(driven, ls)));
-    addTo(lambda + before + 16, f64x2.neg(f64x2.mul(driven, lr)));
-    addTo(lambda + before + 32, f64x2.mul(driven, lb));
-    addTo(lambda + before + 48, f64x2.mul(driven, lt));
-    addTo(bySeen + before + 32, f64x2.mul(pairs, lt));
+    if (before != 0) {
+      // The block with one pair less.
+      const pa = v128.load(saw + before);
+      const pd = v128.load(saw + before, 16);
+      const pb = v128.load(saw + before, 32);
+      const ps = f64x2.mul(f64x2.splat(0.5), f64x2.add(pa, pd));
+      const pr = f64x2.mul(f64x2.mul(f64x2.splat(-0.5), sign), swap(f64x2.sub(pd, pa)));
+      const pt = f64x2.mul(v128.load_splat<f64>(f0), v128.load(begun + before, 48));
+      dPair = f64x2.add(dPair, f64x2.mul(lt, pb));
+      dDriven = f64x2.add(
+        dDriven,
+        f64x2.sub(
+          f64x2.add(f64x2.mul(lb, pb), f64x2.mul(lt, pt)),
+          f64x2.add(f64x2.mul(ls, ps), f64x2.mul(lr, pr)),
+        ),
+      );
+      addTo(lambda + before, f64x2.neg(f64x2.mul(driven, ls)));
+      addTo(lambda + before + 16, f64x2.neg(f64x2.mul(driven, lr)));
+      addTo(lambda + before + 32, f64x2.mul(driven, lb));
+      addTo(lambda + before + 48, f64x2.mul(driven, lt));
+      addTo(bySeen + before + 32, f64x2.mul(pairs, lt));
+    }
     let ss = f64x2.add(ls, f64x2.add(la, ld));
     let rr = f64x2.add(lr, f64x2.mul(sign, swap(f64x2.sub(la, ld))));
     let bb = f64x2.add(lb, v128.load(bySeen + own, 32));
