@@ -12,6 +12,8 @@ const MOST = 2;
 const RUNS = 8;
 /** Order of the slowest error left: third order in the rates of the kicks. */
 const SLOWEST = 4;
+/** Error for which the first guess was fitted. */
+const FITTED = 1e-9;
 /** Order by which the next number of steps is chosen. */
 const EXPECTED = 7;
 
@@ -37,19 +39,20 @@ export interface Settled {
  * @returns null where the steps run out; an error above what was asked for where rounding alone is more
  */
 export function settle(problem: BlochProblem, accept: number, tape: Tape | null = null): Settled | null {
-  let counts = firstCounts(problem);
+  const finer = (FITTED / accept) ** (1 / EXPECTED);
+  let counts = firstCounts(problem).map((n) => Math.ceil(n * finer));
   if (total(counts) > MOST_STEPS) return null;
   runBloch(problem, counts, coarse);
   let factor = GROWTH;
   for (let k = 1; k < RUNS; k++) {
-    const finer = counts.map((n) => Math.ceil(n * factor));
-    const steps = total(finer);
+    const next = counts.map((n) => Math.ceil(n * factor));
+    const steps = total(next);
     if (steps > MOST_STEPS) return null;
-    runBloch(problem, finer, fine, steps > MOST_RECORDED ? null : tape);
+    runBloch(problem, next, fine, steps > MOST_RECORDED ? null : tape);
     const share = 0.5 / ((steps / total(counts)) ** SLOWEST - 1);
     const error = share * distance(coarse, fine);
     if (!Number.isFinite(error)) return null;
-    counts = finer;
+    counts = next;
     if (error <= accept) {
       for (let i = 0; i <= EXCITED; i++) settled[i] = fine[i] + share * (fine[i] - coarse[i]);
       return { figures: settled, counts, error: error + rounding(fine) };
