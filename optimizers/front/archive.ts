@@ -58,8 +58,12 @@ export class Archive<T> {
       return true;
     }
     for (let i = 0; i < at; i++) if (dominates(entries[i].objectives, objectives)) return false;
-    const kept = entries.slice(at).filter((entry) => !dominates(objectives, entry.objectives));
-    entries.splice(at, entries.length - at, { objectives: [...objectives], item }, ...kept);
+    let kept = at;
+    for (let i = at; i < entries.length; i++) {
+      if (!dominates(objectives, entries[i].objectives)) entries[kept++] = entries[i];
+    }
+    entries.length = kept;
+    entries.splice(at, 0, { objectives: [...objectives], item });
     return true;
   }
 
