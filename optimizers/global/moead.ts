@@ -132,7 +132,9 @@ export function moead(options: Partial<MoeadOptions> = {}): Method {
       const ranges = worstOf(members, ideal).map((high, k) => high - ideal[k]);
       for (;;) {
         // A population that has collapsed to a corner of the front would otherwise blow that corner up and stay there.
-        const nadir = worstOf(members, ideal).map((high, k) => Math.max(high, ideal[k] + LEAST_RANGE * ranges[k]));
+        const nadir = worstOf(members, ideal).map((high, k) =>
+          Math.max(high, ideal[k] + LEAST_RANGE * ranges[k]),
+        );
         const scale = { ideal, nadir };
         for (const own of shuffled(everyone, random)) {
           const pool = random.next() < all.local ? near[own] : everyone;

@@ -1,7 +1,7 @@
 import { binCenter } from '../problem/space.js';
 import type { Knowledge, Plan } from './contract.js';
 import { samplePoints } from './enumerate.js';
-import { bestSolutions } from './polish.js';
+import { bestSolutions } from './solutions.js';
 
 /** Points along a coordinate: enough to tell neighbouring branches apart, few enough to be cheap. */
 const FEWEST = 4;

@@ -1,7 +1,7 @@
 import { levelsOf } from '../front/levels.js';
 import { BRANCH_WIDTH, distance, type Knowledge, type Plan } from './contract.js';
 import { samplePoints } from './enumerate.js';
-import { bestSolutions, standing } from './polish.js';
+import { bestSolutions, standing } from './solutions.js';
 
 /** Knot of the curve of optimal designs. */
 interface Knot {

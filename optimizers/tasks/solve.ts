@@ -7,6 +7,8 @@ import { constraintCount } from '../problem/limits.js';
 import type { Candidate } from '../problem/problem.js';
 import type { TaskRunner } from './contract.js';
 
+export type SolveMethod = 'moving-asymptotes' | 'sqp';
+
 /** Least impurity at a brightness of at least `level`, from one start. */
 export interface SolveInput {
   readonly level: number;
@@ -14,8 +16,7 @@ export interface SolveInput {
   readonly start: readonly number[];
   /** First distance of the asymptotes, or first trust radius, in units of the cube. */
   readonly radius: number;
-  /** Far from the end moving asymptotes find the way along curved valleys, near it SQP converges faster. */
-  readonly far: boolean;
+  readonly method: SolveMethod;
   /** Whether exact derivatives are worth asking for. */
   readonly exact: boolean;
   /** The start is moved at random by up to this much along each coordinate: off symmetry, where a branch may fork. */
@@ -60,7 +61,7 @@ function shaken(x: Trial, size: number, categories: readonly number[], random: S
 }
 
 export const solveTask: TaskRunner = (task, { spec, problem, recorder, seed }): Solution | null => {
-  const { level, start: given, radius, far, exact, shake } = task.input as SolveInput;
+  const { level, start: given, radius, method: wanted, exact, shake } = task.input as SolveInput;
   const start = shaken(given, shake, problem.space.categories, stream(seed, 0));
   let best: Solution | null = null;
   let scale = 0;
@@ -96,7 +97,7 @@ export const solveTask: TaskRunner = (task, { spec, problem, recorder, seed }): 
     gradient: exact && recorder.differentiable,
   };
   const method =
-    far || problem.space.dimension > MANY
+    wanted === 'moving-asymptotes' || problem.space.dimension > MANY
       ? movingAsymptotes({ reach: radius, tolerance: TOLERANCE })
       : sqp({ radius, tolerance: TOLERANCE });
   optimizeInBatches(method, setup, (trials, gradient) =>
