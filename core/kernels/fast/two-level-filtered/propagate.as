@@ -334,15 +334,20 @@ function step(table: usize, dephased: bool): void {
   }
 }
 
-/** The same, and what each step began with and came through: blocks before it, then the three arrays after it. */
+/** The same, and what each step began with and came through: blocks before it, then the three arrays, written in place. */
 export function record(steps: i32, table: usize, tape: usize): void {
   for (let n = 0; n < steps; n++, table += ROW) {
     memory.copy(tape, y, size);
+    seen = tape + size;
+    fed = seen + size;
+    change = fed + size;
     if (dephasing != 0) step(table, true);
     else step(table, false);
-    memory.copy(tape + size, seen, 3 * size);
     tape += 4 * size;
   }
+  seen = y + size;
+  fed = seen + size;
+  change = fed + size;
 }
 
 // @ts-ignore: decorator
