@@ -7,6 +7,10 @@ const GROWTH = 1.3;
 const RUNS = 5;
 /** The extrapolated value is better than its difference from the one without the coarsest run by at least this. */
 const GAIN = 1.2;
+/** An error is not believed to have fallen by more than this from one run to the next. */
+const FALL = 50;
+/** Nor an extrapolated value to be better than its difference from the finest run of a shared series by more than this. */
+const TRUST = 2;
 /** Accuracy of populations over that of probabilities. */
 const POPULATIONS = 0.1;
 
@@ -46,6 +50,7 @@ function series<R extends { readonly result: CountResult }>(
   exactly: number | null,
 ): Series<R> | null {
   const runs: R[] = [];
+  let previous = 0;
   for (let k = 0; k < (exactly ?? RUNS); k++) {
     const found = run(first.map((n) => Math.ceil(n * GROWTH ** k)));
     if (!found) return null;
@@ -53,7 +58,10 @@ function series<R extends { readonly result: CountResult }>(
     if (k === 0) continue;
     const results = runs.map((r) => r.result);
     const { result, weights } = extrapolated(results);
-    const error = difference(extrapolated(results.slice(1)).result, result) / GAIN;
+    const change = difference(extrapolated(results.slice(1)).result, result) / GAIN;
+    // Two values can agree by chance; three in a row do not.
+    const error = Math.max(change, previous / FALL);
+    previous = change;
     if (!Number.isFinite(error)) return null;
     if (exactly === null ? error <= accept : k + 1 === exactly) {
       const steps = results.reduce((sum, r) => sum + r.steps, 0);
@@ -122,7 +130,8 @@ function threeRuns<T, R extends { readonly result: CountResult }>(
   }
   const results = runs.map((r) => r.result);
   const { result, weights } = extrapolated(results);
-  const kicks = difference(extrapolated(results.slice(1)).result, result) / GAIN;
+  const two = extrapolated(results.slice(1)).result;
+  const kicks = Math.max(difference(two, result) / GAIN, difference(results[2], two) / TRUST);
   const steps = results.reduce((sum, r) => sum + r.steps, 0);
   return { result: { ...result, steps, localErrors: Math.max(kicks, error) }, runs, weights };
 }
