@@ -254,11 +254,11 @@ static int evaluate(double *out) {
     total += finer;
     const double share = 0.5 / (pow((double)finer / count, 4) - 1), error = share * differ(coarse, fine);
     count = finer;
-    if (error <= 1e-9) {
+    if (error <= 8e-10) {
       for (int j = 0; j < 6; j++) out[j] = fine[j] + share * (fine[j] - coarse[j]);
       return total;
     }
-    factor = fmin(2, fmax(1.2, 1.05 * pow(error / 1e-9, 1.0 / 7)));
+    factor = fmin(2, fmax(1.2, 1.05 * pow(error / 8e-10, 1.0 / 7)));
     memcpy(coarse, fine, sizeof coarse);
   }
   return -total;

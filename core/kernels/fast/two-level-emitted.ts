@@ -39,8 +39,8 @@ export const twoLevelEmitted: FastKernel = {
   },
 };
 
-/** Accepted error of a run, in units of the effort's tolerance per step. */
-const ACCEPT = 10;
+/** Accepted error of a run, in units of the effort's tolerance per step: a fifth is left for what the estimate misses. */
+const ACCEPT = 8;
 
 function problemOf(request: CountRequest): BlochProblem | null {
   const model = asTwoLevel(request);

@@ -13,7 +13,7 @@ const RUNS = 8;
 /** Order of the slowest error left: third order in the rates of the kicks. */
 const SLOWEST = 4;
 /** Error for which the first guess was fitted. */
-const FITTED = 1e-9;
+const FITTED = 8e-10;
 /** Order by which the next number of steps is chosen. */
 const EXPECTED = 7;
 
