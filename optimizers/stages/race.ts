@@ -34,6 +34,8 @@ const LARGE = 0.35;
 const LEAST = 0.25;
 /** With fewer variables populations find the branches as well, and cheaper. */
 const FEWEST_VARIABLES = 5;
+/** Evaluations of an iteration above which solves are too dear to be thrown away. */
+const DEAREST = 8;
 /** Weight of a missed brightness or limit against the relative impurity. */
 const SHORTFALL = 100;
 
@@ -42,6 +44,7 @@ export function raceBudget(known: Knowledge): number {
   const continuous = known.problem.space.categories.filter((count) => count === 0).length;
   const full = FULL * known.iterationCost;
   const budget = Math.floor(Math.min(MOST * known.left, Math.max(full, LARGE * known.left)));
+  if (known.iterationCost > DEAREST) return 0;
   return continuous >= FEWEST_VARIABLES && budget >= LEAST * full ? budget : 0;
 }
 
