@@ -45,6 +45,17 @@ export function mergeGenerator(generator: Generator): Entries {
   };
 }
 
+/** Largest frequency at which a coherence turns without drive, 1/ps. */
+function fastestCoherence({ levels, constant }: Generator): number {
+  let most = 0;
+  for (let k = 0; k < constant.value.length; k++) {
+    // A coherence's two coordinates feed each other by its frequency.
+    const [r, c] = [constant.row[k], constant.col[k]];
+    if (r >= levels && c >= levels && r !== c) most = Math.max(most, Math.abs(constant.value[k]));
+  }
+  return most;
+}
+
 /** dy[to] += factor · y[from], for every coupling and matrix entry. */
 interface Scatter {
   readonly from: Int32Array;
@@ -101,7 +112,10 @@ export class LinearSystem implements LinearFlow {
   readonly size: number;
   readonly lanes: number;
   readonly length: number;
-  /** Largest damping or rotation of a block, 1/ps: bounds the step of an explicit method. */
+  /**
+   * Largest damping and turning of a block without drive, the motion of its levels included, 1/ps: bounds the step of an
+   * explicit method. 0 where no block is damped or turns by itself: then the density operator alone sets the steps.
+   */
   readonly fastest: number;
   protected readonly entries: Entries;
   protected readonly values: Float64Array;
@@ -122,7 +136,13 @@ export class LinearSystem implements LinearFlow {
       if (!b.hermitian) this.damping[b.lane + 1] = b.damping;
     }
     this.damped = this.damping.some((d) => d !== 0);
-    this.fastest = Math.max(0, ...hierarchy.blocks.map((b) => Math.hypot(b.damping, b.rotation)));
+    const turning = fastestCoherence(generator);
+    this.fastest = Math.max(
+      0,
+      ...hierarchy.blocks.map((b) =>
+        b.damping === 0 && b.rotation === 0 ? 0 : Math.hypot(b.damping, Math.abs(b.rotation) + turning),
+      ),
+    );
     this.scatter = flattenCouplings(hierarchy, this.size);
     this.seeded = hierarchy.seeded.map((block) => hierarchy.blocks[block].lane);
   }
