@@ -2,7 +2,6 @@ import { leakedPhotons, pulseFilter } from './collection/leakage.js';
 import { FEWEST_MOMENTS, judgeSeries, momentsOf } from './collection/series.js';
 import type { Design } from './design.js';
 import { type DriftNode, driftedDesign } from './drift/nodes.js';
-import { countPhotonsMany } from './kernels/batch.js';
 import {
   type CountRequest,
   type CountResult,
@@ -184,12 +183,11 @@ function requestOf({ scene, base, wanted }: Place, order: number): CountRequest 
   return { ...request, wanted: [...moments, ...wanted.emitted] };
 }
 
-/** One answer per request; those without phonons are counted together. */
+/** One answer per request. */
 function countPlaces(
   plans: readonly (PhononPlan | null)[],
   requests: readonly CountRequest[],
 ): (PhononCount | Failed)[] {
-  if (plans.length > 1 && plans.every((plan) => plan === null)) return countPhotonsMany(requests).map(bare);
   return plans.map((plan, k) => {
     const request = requests[k];
     return plan === null ? bare(attempt(() => countPhotons(request))) : attempt(() => plan.count(request));

@@ -63,9 +63,3 @@ export function parseOver(text: string, tones: number, downward = false): Over {
   });
   return { path, values, log, texts: values.map((value) => exactQuantity(value, dimension)) };
 }
-
-/** The range as the user may read it back, such as `0 pi..4 pi:81`. */
-export function describeOver({ path, texts, log }: Over): string {
-  const range = `${texts[0]}..${texts[texts.length - 1]}:${texts.length}`;
-  return `${path}=${range}${log ? ':log' : ''}`;
-}

@@ -49,14 +49,3 @@ export function figurePaths(shape: FigureShape): string[] {
   const quantiles = shape.quantile === true ? QUANTILES.map((name) => `quantile.${name}`) : [];
   return shape.drift ? [...quantiles, ...paths, ...paths.map((path) => `nominal.${path}`)] : paths;
 }
-
-/** The shape of one evaluated point. */
-export function shapeOf(figures: Figures): FigureShape {
-  return {
-    filtered: figures.filtered !== null,
-    drift: figures.nominal !== null,
-    energies: figures.pulse.energy_fj !== null,
-    quantile: figures.quantile !== null,
-    levels: Object.keys(figures.populations),
-  };
-}

@@ -20,12 +20,6 @@ export function bestIndex(members: readonly Member[]): number {
   return best;
 }
 
-/** Uniform draw of one coordinate; a list coordinate gets the middle of a bin. */
-export function drawCoordinate(space: Space, coordinate: number, random: Stream): number {
-  const count = space.categories[coordinate];
-  return count > 0 ? binCenter(random.int(count), count) : random.next();
-}
-
 /**
  * Latin hypercube (McKay, Beckman & Conover, Technometrics 21, 239 (1979)): in every coordinate one point in each of
  * `count` equal strata; list coordinates are dealt out evenly.

@@ -16,9 +16,4 @@ export interface FastKernel {
   count(request: CountRequest, countPart: (request: CountRequest) => CountResult): CountResult | null;
   /** The same with exact derivatives; left out by kernels that have none. */
   readonly countWithGradient?: CountWithGradient;
-  /**
-   * Many requests that differ in numbers only, such as the nodes of a drift or a population: shared tables, and lanes
-   * where they pay. One answer per request, null as in `count`.
-   */
-  countMany?(requests: readonly CountRequest[]): readonly (CountResult | null)[];
 }

@@ -1,8 +1,7 @@
 import type { FastKernel } from './contract.js';
-import { kicked } from './kicked.js';
 import { levels } from './levels/kernel.js';
 import { twoLevelEmitted } from './two-level-emitted.js';
 import { twoLevelFiltered } from './two-level-filtered/kernel.js';
 
 /** Every fast kernel, in the order in which a request is offered to them. */
-export const fastKernels: readonly FastKernel[] = [twoLevelEmitted, twoLevelFiltered, levels, kicked];
+export const fastKernels: readonly FastKernel[] = [twoLevelEmitted, twoLevelFiltered, levels];

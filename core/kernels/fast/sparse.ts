@@ -201,7 +201,7 @@ function identity(size: number): SparseRows {
 }
 
 /** out = m · y. */
-export function applyRows(m: SparseRows, y: Float64Array, out: Float64Array): void {
+function applyRows(m: SparseRows, y: Float64Array, out: Float64Array): void {
   const { start, col, value, size } = m;
   let k = start[0];
   for (let r = 0; r < size; r++) {

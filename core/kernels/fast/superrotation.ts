@@ -1,14 +1,11 @@
 import { coherencePairs } from '../../emitter/operators.js';
-import type { Component } from './kicked-layout.js';
+import type { Component } from './levels/coordinates.js';
 
 /**
  * The map X ↦ U X U† on the coordinates of one component (operators.ts): an orthogonal-like real matrix, row-major.
  */
 export class SuperRotation {
   readonly matrix: Float64Array;
-  /** For two levels: the map on all four coordinates, and the places of the component's entries in it. */
-  private readonly full = new Float64Array(16);
-  private readonly picks: Int32Array;
   private readonly m: number;
   /** Per coordinate: the two levels and whether it is a diagonal (0), real (1) or imaginary (2) part. */
   private readonly spots: readonly (readonly [number, number, 0 | 1 | 2])[];
@@ -25,8 +22,6 @@ export class SuperRotation {
     });
     this.m = component.coordinates.length;
     this.matrix = new Float64Array(this.m * this.m);
-    const { coordinates } = component;
-    this.picks = Int32Array.from(coordinates.flatMap((r) => coordinates.map((c) => 4 * r + c)));
   }
 
   /** Fills the matrix from the unitary. */
@@ -54,26 +49,6 @@ export class SuperRotation {
         matrix[r * m + c] = v;
       }
     }
-  }
-
-  /** Fills the matrix from a rotation of the Bloch vector (bloch-step.ts) of two levels. */
-  setBloch(m: Float64Array): void {
-    const { full, picks, matrix } = this;
-    full[0] = full[5] = 0.5 + 0.5 * m[8];
-    full[1] = full[4] = 0.5 - 0.5 * m[8];
-    full[2] = m[6];
-    full[3] = m[7];
-    full[6] = -m[6];
-    full[7] = -m[7];
-    full[8] = 0.5 * m[2];
-    full[9] = -0.5 * m[2];
-    full[10] = m[0];
-    full[11] = m[1];
-    full[12] = 0.5 * m[5];
-    full[13] = -0.5 * m[5];
-    full[14] = m[3];
-    full[15] = m[4];
-    for (let k = 0; k < picks.length; k++) matrix[k] = full[picks[k]];
   }
 
   /** Applies the matrix to every lane's part of the state. */

@@ -14,7 +14,7 @@ const GENERAL = 1.3;
 const CHIRP = 0.5;
 /** Largest ‖hK‖ of the first run. */
 const RESOLVED = 4;
-/** First guesses above which the reference was measured to be as fast. */
+/** First guesses above which the reference is taken to be as fast: not measured. */
 const MOST = { emitted: 6000, filtered: 1500 };
 
 /** First guess of the steps per span (0 for gaps), or null where other ways are as fast. */
